@@ -1,5 +1,7 @@
 // A zone's rules as data; see time.hpp.
 #include <algorithm>
+#include <array>
+#include <cstddef>
 #include <utility>
 
 #include "core/units/time.hpp"
@@ -23,15 +25,16 @@ Seconds Calendar::offset_at(Instant at) const {
 
 Calendar::Meaning Calendar::meaning_of(CivilTime reading) const {
   // No zone is further than a day from UTC: only the offsets around the reading can fit.
+  constexpr Seconds one_day{86400};
   const Instant near{reading.time_since_epoch()};
+  const std::array<Seconds, 3> offsets{offset_at(near - one_day), offset_at(near),
+                                       offset_at(near + one_day)};
   Meaning meaning;
-  std::vector<Seconds> tried;
-  for (const Seconds shift : {Seconds{-86400}, Seconds{0}, Seconds{86400}}) {
-    const Seconds offset = offset_at(near + shift);
-    if (std::find(tried.begin(), tried.end(), offset) != tried.end()) continue;
-    tried.push_back(offset);
-    const Instant candidate = near - offset;
-    if (offset_at(candidate) != offset) continue;
+  for (std::size_t i = 0; i < offsets.size(); ++i) {
+    const auto tried = offsets.begin() + static_cast<std::ptrdiff_t>(i);
+    if (std::find(offsets.begin(), tried, *tried) != tried) continue;
+    const Instant candidate = near - *tried;
+    if (offset_at(candidate) != *tried) continue;
     if (!meaning.first) {
       meaning.first = candidate;
     } else {
@@ -44,15 +47,16 @@ Calendar::Meaning Calendar::meaning_of(CivilTime reading) const {
 
 Instant Calendar::at(CivilTime reading) const {
   if (const Meaning meaning = meaning_of(reading); meaning.first) return *meaning.first;
-  // Skipped: the change that skipped it lies within a day; its instant is the first that exists.
-  const Instant near{reading.time_since_epoch()};
-  Instant best = near - offset_at(near);
-  for (const Change& change : changes_) {
-    if (change.from > near - Seconds{86400} && change.from < near + Seconds{86400}) {
-      best = change.from;
+  // Skipped: by the change whose old and new clock readings lie on either side of the reading.
+  const Seconds clock = reading.time_since_epoch();
+  for (std::size_t i = 1; i < changes_.size(); ++i) {
+    const Seconds change = changes_[i].from.time_since_epoch();
+    if (change + changes_[i - 1].offset <= clock && clock < change + changes_[i].offset) {
+      return changes_[i].from;
     }
   }
-  return best;
+  const Instant near{clock};
+  return near - offset_at(near);
 }
 
 Instant Calendar::start_of(CivilDay day) const { return at(CivilTime(day)); }
