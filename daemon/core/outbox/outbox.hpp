@@ -11,6 +11,7 @@
 #include <optional>
 #include <span>
 #include <string>
+#include <string_view>
 #include <vector>
 
 #include "core/letters/letter.hpp"
@@ -18,18 +19,27 @@
 
 namespace antherd::outbox {
 
+/// How long a letter rests after its answer was lost, before it goes once more.
+constexpr Seconds doubt_rest{10 * 60};
+/// How long the line rests after trouble that only a person can mend.
+constexpr Seconds trouble_rest{60 * 60};
+/// Later than this after its decision a letter says so.
+constexpr Seconds late_after{30 * 60};
+/// How long an alert is of use, given anew by retry().
+constexpr Seconds alert_validity{72 * 3600};
+
 enum class State { waiting, sending, in_doubt, sent, parked };
 
 struct Item {
-  std::int64_t id = 0;          // the store's, 0 before it is stored
+  std::int64_t id = 0;  // the store's, 0 before it is stored
   letters::Letter letter;
   State state = State::waiting;
   int attempts = 0;
-  int doubts = 0;               // how often the answer after the last dot was lost
-  Instant next_try;             // not before
+  int doubts = 0;    // how often the answer after the last dot was lost
+  Instant next_try;  // not before; waits of the server's are the Line's
   std::optional<Instant> first_try;
   std::optional<Instant> ended;  // sent or parked
-  std::string answer;           // the last answer in one sentence, never a secret
+  std::string answer;            // the last answer in one sentence, never a secret
 };
 
 /// How one conversation ended.
@@ -38,36 +48,59 @@ enum class Ending {
   wait,              // 4xx, refused, no route, no name, lost while sending the body
   parked,            // 5xx for this recipient or content
   in_doubt,          // lost or silent after the last dot
-  settings_trouble,  // login refused, no TLS, unknown CA, wrong name: keep all, retry hourly, say so
+  settings_trouble,  // login refused, no TLS, unknown CA, wrong name: keep all, retry hourly, say
+                     // so
+};
+
+/// Whom the server's answer was about. A 450 at RCPT says "not this mailbox now": the line is fine
+/// and the others go on. A refused connection or a 421 says "not now, any of you".
+enum class Concern {
+  server,     // no line, greeting, login, sender, 421, no answer
+  recipient,  // the answer to RCPT
+  letter,     // the answer after the body was read: mostly the server's trouble, at times this text
 };
 
 struct Receipt {
   std::int64_t item = 0;
   Ending ending = Ending::wait;
-  int code = 0;               // the server's last reply code, 0 when there was none
-  std::string sentence;       // one clear sentence for people
+  Concern concern = Concern::server;
+  int code = 0;          // the server's last reply code, 0 when there was none
+  std::string sentence;  // one clear sentence for people
   Instant at;
 };
 
 /// The server's own clock: shared by all letters, kept with them.
 struct Line {
-  int failures = 0;                   // in a row
-  std::optional<Instant> next_try;    // not before
+  int failures = 0;                 // in a row
+  std::optional<Instant> next_try;  // not before
   std::optional<Instant> last_success;
-  std::string trouble;                // settings trouble, or empty
+  std::string trouble;  // settings trouble, or empty
   bool operator==(const Line&) const = default;
 };
 
-/// The letter is handed to the mail edge.
+// The arrows are total: an event that has no arrow from the item's state leaves it as it is, so a
+// late receipt or a doubled wish can do no harm. An acceptance is a fact and leads to `sent` from
+// everywhere; nothing leads out of `sent`.
+
+/// The letter is handed to the mail edge. From `waiting`, and from `in_doubt` once its rest is
+/// over.
 Item take(Item item, Instant now);
-/// The body has been read out; the last dot follows once this is stored.
+/// The body has been read out; the last dot follows once this is stored. Counts one doubt, which a
+/// clear answer takes back.
 Item doubt(Item item, Instant now);
 /// The conversation has ended.
 Item receive(Item item, const Receipt& receipt);
+/// @param jitter01  0…1, see retry_delay
 Line receive(Line line, const Receipt& receipt, double jitter01);
-/// At start: what was `sending` when we died goes back to waiting; `in_doubt` waits 10 min.
+/// At start: what was `sending` when we died had no last dot and goes back to waiting; `in_doubt`
+/// waits out its 10 min, or is parked when that was its second doubt. Many starts are as one.
 Item recover(Item item, Instant now);
-/// Back to waiting by a person's wish.
+/// At start and after new settings: the line may be tried at once, whatever it waited for.
+Line reopen(Line line);
+/// Too old to be of use (see Plan::expired): parked, with the sentence that names it.
+Item expire(Item item, Instant now);
+/// Back to waiting by a person's wish, due now. An expired letter gets 72 h again; a doubtful one
+/// stays marked and may come into doubt once more.
 Item retry(Item item, Instant now);
 
 /// What the carrier would do now: which item goes next (the gravest, then the oldest, that is due),
@@ -77,13 +110,20 @@ struct Plan {
   std::vector<std::int64_t> expired;
   std::optional<Instant> look_again;
 };
+/// One conversation at a time: while an item is `sending` nothing else goes. An item that the mail
+/// edge holds between doubt() and receive() looks like any other in doubt, so the carrier must not
+/// ask while its worker is busy. Waits longer than the timetable knows come from a clock that was
+/// set since; they count as over.
 Plan plan(std::span<const Item> items, const Line& line, Instant now);
 
 /// The letter as it must go now: "[delayed 2 d 3 h]" in the subject when more than 30 min late,
-/// whether the danger still held, and "You may already have this letter" after a doubt.
+/// whether the danger still held, and "You may already have this letter" after a doubt. The subject
+/// stays ≤ 70 characters; identity, and with it the Message-ID, stays the same.
 letters::Letter as_sent(const Item& item, Instant now);
 
 /// Waiting time after so many failures in a row: 1, 2, 5, 10, 20, 30 min, then 30 min − 0…20 %.
+/// @param failures  ≥ 1; below that nothing is waited
+/// @param jitter01  0…1, beyond is cut; 1 takes the whole 20 % off
 Seconds retry_delay(int failures, double jitter01);
 
 const char* name_of(State state);
