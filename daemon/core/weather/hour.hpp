@@ -19,9 +19,10 @@ enum class Verdict { good, suspect, wrong };
 enum class Reason {
   none,
   out_of_range,
-  above_saturation,   // humidity above 102 %, set to 100
+  above_saturation,  // humidity above 102 %, set to 100
   spike,
-  unconfirmed,        // a jump whose later neighbour has not arrived: left out until it has
+  unconfirmed,  // a jump whose later neighbour has not arrived (near enough to be tested:
+                // 3 h, humidity 1 h): suspect, and yet left out until it has
   stuck,
   dew_above_temperature,
   rain_in_dry_air,
@@ -46,12 +47,12 @@ struct Hour {
   HourStart start;
   int n = 0;
   int n_humidity = 0;
-  double coverage = 0.0;                       // min(1, n / expected), 0…1
+  double coverage = 0.0;  // min(1, n / expected), 0…1
   double humidity_coverage = 0.0;
-  std::optional<Celsius> temperature;          // mean
+  std::optional<Celsius> temperature;  // mean
   std::optional<Celsius> temperature_max;
   std::optional<Celsius> temperature_min;
-  std::optional<Percent> humidity;             // mean, 0…100
+  std::optional<Percent> humidity;  // mean, 0…100
   std::optional<Percent> humidity_max;
   std::optional<Percent> humidity_min;
   std::optional<Millimetre> rain;              // sum for the water balance
@@ -59,8 +60,9 @@ struct Hour {
   std::optional<MetrePerSecond> wind;          // mean, at 2 m (FAO-56 eq. 47)
   std::optional<WattPerSquareMetre> solar;     // mean
   std::optional<double> wet_minutes;           // sensor: minutes wet in this hour, 0…60
-  bool whole_degrees = false;  // every temperature of the hour and of the 24 before is a whole °C/°F
-  std::vector<Flag> flags;     // in order of element, reason
+  bool whole_degrees =
+      false;                // every temperature of the hour and of the 24 before is a whole °C/°F
+  std::vector<Flag> flags;  // in order of element, reason
 
   bool operator==(const Hour&) const = default;
   /// Enough temperature to count in heat and thermal time (coverage ≥ 0.75).
@@ -69,14 +71,16 @@ struct Hour {
   bool valid() const { return has_temperature() && humidity && humidity_coverage >= 0.75; }
 };
 
-/// How far around a changed sample the hour records can change: quality control looks back and
-/// ahead, so that hours in [time − hours_touched_before, time + hours_touched_after] are to be made
-/// anew.
-constexpr Seconds hours_touched_before{5 * 3600};
-constexpr Seconds hours_touched_after{26 * 3600};
+/// How far around a changed sample the hour records can change: hours that hold an instant of
+/// [time − hours_touched_before, time + hours_touched_after] are to be made anew. Back: a later
+/// neighbour settles spikes within 3 h, twice, a dew point's humidity within 2 h more, and an end
+/// stamp shifts by one interval. Ahead: 24 h of fog or of whole degrees, 30 h of a rain counter's
+/// silence, and the spike checks before them. Right for intervals up to 3 h.
+constexpr Seconds hours_touched_before{12 * 3600};
+constexpr Seconds hours_touched_after{36 * 3600};
 /// How much more context `gather` needs on each side of the hours it is asked for.
-constexpr Seconds context_before{26 * 3600};
-constexpr Seconds context_after{5 * 3600};
+constexpr Seconds context_before{36 * 3600};
+constexpr Seconds context_after{12 * 3600};
 
 /// Makes the hour records of [from, to).
 /// @param samples  one station's standing samples in time order, one per time, holding at least

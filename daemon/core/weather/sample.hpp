@@ -4,6 +4,7 @@
 
 #include <compare>
 #include <optional>
+#include <vector>
 
 #include "core/units/quantity.hpp"
 #include "core/units/time.hpp"
@@ -11,14 +12,14 @@
 namespace antherd::weather {
 
 struct Sample {
-  Instant time;                             // as the station stamped it, UTC
-  std::optional<Celsius> temperature;       // raw
-  std::optional<Percent> humidity;          // raw, may exceed 100
-  std::optional<Celsius> dew_point;         // where the station reports it instead of humidity
-  std::optional<Millimetre> rain;           // raw value, see RainMeaning
-  std::optional<MetrePerSecond> wind;       // at the station's wind height
+  Instant time;                        // as the station stamped it, UTC
+  std::optional<Celsius> temperature;  // raw
+  std::optional<Percent> humidity;     // raw, may exceed 100
+  std::optional<Celsius> dew_point;    // where the station reports it instead of humidity
+  std::optional<Millimetre> rain;      // raw value, see RainMeaning
+  std::optional<MetrePerSecond> wind;  // at the station's wind height
   std::optional<WattPerSquareMetre> solar;
-  std::optional<double> wet_minutes;        // leaf wetness sensor, minutes wet in an hour's share
+  std::optional<double> wet_minutes;  // leaf wetness sensor, minutes wet in an hour's share
 
   bool operator==(const Sample&) const = default;
   bool empty() const {
@@ -30,5 +31,8 @@ struct Sample {
 /// more humid stands, whatever came first (science §3). A strict order, so that the outcome does
 /// not depend on arrival; ties beyond are broken by the remaining values.
 bool stands_before(const Sample& a, const Sample& b);
+
+/// The samples that stand, one per time, in time order, whatever order they came in.
+std::vector<Sample> standing(std::vector<Sample> samples);
 
 }  // namespace antherd::weather

@@ -16,20 +16,20 @@ struct Place {
   Metre elevation{0};
 };
 
-enum class Stamp { instant, start, end };       // what a sample's time says of its interval
-enum class Shield { fanned, plain, unknown };   // how the thermometer is shaded
+enum class Stamp { instant, start, end };      // what a sample's time says of its interval
+enum class Shield { fanned, plain, unknown };  // how the thermometer is shaded
 enum class RainMeaning { since_last, day_total, counter };
 
 struct Station {
   std::string name;
   Place place;
-  Seconds interval{300};        // between two samples
-  Seconds silent_after{3600};   // no accepted sample for this long: no_data
-  Seconds arrives_every{300};   // how often readings reach us (batches)
+  Seconds interval{300};       // between two samples
+  Seconds silent_after{3600};  // no accepted sample for this long: no_data
+  Seconds arrives_every{300};  // how often readings reach us (batches)
   Stamp stamp = Stamp::instant;
   Shield shield = Shield::unknown;
   RainMeaning rain_meaning = RainMeaning::since_last;
-  Calendar rain_zone;           // the zone whose midnight resets a day_total
+  Calendar rain_zone;  // the zone whose midnight resets a day_total
   Metre wind_height{2};
   double radiation_coefficient = 0.16;  // kRs of science §7: 0.16 inland, 0.19 near a coast
   bool near_coast() const { return radiation_coefficient > 0.175; }
