@@ -1,0 +1,103 @@
+// See wetness.hpp.
+#include "core/risk/wetness.hpp"
+
+#include <algorithm>
+
+#include "core/weather/sun.hpp"
+
+namespace antherd::risk {
+namespace {
+
+bool humid_film(LeafState& state, const LeafHour& hour, const HumidRules& rules) {
+  if (rules.dew_point_film) {
+    const double depression = (hour.temperature - hour.dew_point).value;
+    if (depression <= 2.0) state.humid_film = true;
+    if (depression >= 3.8) state.humid_film = false;
+    return state.humid_film;
+  }
+  return hour.humidity.value >= rules.film_humidity ||
+         (hour.humidity.value >= rules.film_humidity_calm && hour.drying.value < 0.1);
+}
+
+/// The night that holds the end of an irrigation, if that end lies between sunset − 3 h and
+/// sunrise, both included. The sunset is the one before that sunrise.
+std::optional<NightSet> night_of(const field::Irrigation& irrigation, const weather::Place& place) {
+  using std::chrono::days;
+  const CivilDay day =
+      std::chrono::floor<days>(weather::solar_time(irrigation.end, place.longitude));
+  for (const CivilDay morning : {day, day + days{1}}) {
+    const auto rise = weather::sun_day(morning, place).rise;
+    const auto set = weather::sun_day(morning - days{1}, place).set;
+    if (!rise || !set || irrigation.end > *rise) continue;
+    if (irrigation.end < *set - 3 * one_hour) return std::nullopt;
+    NightSet night{irrigation.start, irrigation.end, *set, *rise, true, false};
+    night.enough = !irrigation.depth || irrigation.depth->value >= 1.0;
+    night.close_to_limit = irrigation.end - one_hour < *set - 3 * one_hour;
+    return night;
+  }
+  return std::nullopt;
+}
+
+}  // namespace
+
+Wet wet_hour(LeafState& state, const LeafHour& hour, const Watering& water,
+             const HumidRules& rules) {
+  constexpr double film_counts_from = 0.02, rain_counts_from = 0.2, sensor_wet_from = 30.0;
+  state.film_mm = std::min(rules.bucket_mm, state.film_mm + hour.rain.value + water.depth.value);
+  if (water.unknown_depth) state.film_mm = rules.bucket_mm;
+  const bool film = state.film_mm > film_counts_from;
+  const bool damp = humid_film(state, hour, rules);
+  state.film_mm = std::max(0.0, state.film_mm - hour.drying.value);
+
+  Wet result;
+  const bool fallen = hour.rain.value >= rain_counts_from || water.overlaps;
+  if (hour.sensor_minutes) {
+    const bool sensed = *hour.sensor_minutes >= sensor_wet_from;
+    result.water = fallen || (sensed && (film || water.night_set));
+    result.wet = fallen || sensed;
+  } else {
+    result.water = fallen || film || water.night_set;
+    result.wet = result.water || damp;
+  }
+  return result;
+}
+
+void after_gap(LeafState& state) { state = LeafState{}; }
+
+std::vector<NightSet> night_sets(const std::vector<field::Irrigation>& irrigations,
+                                 const weather::Place& place) {
+  std::vector<NightSet> sets;
+  for (const field::Irrigation& irrigation : irrigations) {
+    if (irrigation.method != field::Method::overhead) continue;
+    if (auto night = night_of(irrigation, place)) sets.push_back(*night);
+  }
+  std::stable_sort(sets.begin(), sets.end(),
+                   [](const NightSet& a, const NightSet& b) { return a.end < b.end; });
+  return sets;
+}
+
+Watering watering_of(HourStart hour, const std::vector<field::Irrigation>& irrigations,
+                     const std::vector<NightSet>& sets) {
+  Watering result;
+  const Instant from = hour, to = end_of(hour);
+  for (const field::Irrigation& irrigation : irrigations) {
+    if (irrigation.start >= to) break;  // sorted by start
+    if (irrigation.method != field::Method::overhead || irrigation.end <= from) continue;
+    result.overlaps = true;
+    if (!irrigation.depth) {
+      result.unknown_depth = true;
+      continue;
+    }
+    const auto length = static_cast<double>((irrigation.end - irrigation.start).count());
+    const auto shared = static_cast<double>(
+        (std::min(irrigation.end, to) - std::max(irrigation.start, from)).count());
+    result.depth += *irrigation.depth * (shared / length);
+  }
+  const Instant middle = middle_of(hour);
+  result.night_set = std::any_of(sets.begin(), sets.end(), [&](const NightSet& set) {
+    return set.enough && middle >= set.start && middle <= set.sunrise;
+  });
+  return result;
+}
+
+}  // namespace antherd::risk

@@ -1,0 +1,71 @@
+// Whether leaves are wet in an hour (science §7): humid film, water film, night sets, rain,
+// irrigation, or a sensor. It must not know what wetness does.
+#pragma once
+
+#include <optional>
+#include <vector>
+
+#include "core/field/diary.hpp"
+#include "core/risk/rules.hpp"
+#include "core/units/quantity.hpp"
+#include "core/units/time.hpp"
+#include "core/weather/station.hpp"
+
+namespace antherd::risk {
+
+/// What one hour brings to a leaf. An hour without data is not given at all (see `after_gap`).
+struct LeafHour {
+  HourStart start;
+  Celsius temperature;
+  Percent humidity;
+  Celsius dew_point;
+  Millimetre drying;                      // potential, of the hour
+  Millimetre rain{0};                     // for wetness
+  std::optional<double> sensor_minutes;   // leaf wetness sensor
+};
+
+/// What overhead irrigation brings to an hour, whether it has data or not.
+struct Watering {
+  bool overlaps = false;         // any overlap with an overhead irrigation
+  bool unknown_depth = false;    // fills the water film
+  Millimetre depth{0};           // known depth falling in this hour
+  bool night_set = false;        // a night set keeps the leaves wet in this hour
+};
+
+struct Wet {
+  bool wet = false;
+  bool water = false;            // by water film, night set, rain or irrigation
+};
+
+/// Carried from hour to hour.
+struct LeafState {
+  double film_mm = 0;            // water film
+  bool humid_film = false;       // for the dew-point option's hysteresis
+};
+
+/// One hour with data. Source: science §7; constant-RH film Sentelhas et al. 2008; dew-point
+/// option Huber & Gillespie 1992 (from memory); bucket and night sets are judgements.
+Wet wet_hour(LeafState& state, const LeafHour& hour, const Watering& water, const HumidRules& rules);
+/// An hour without data: the film starts empty after it.
+void after_gap(LeafState& state);
+
+/// An overhead irrigation of ≥ 1 mm or unknown depth that ends between sunset − 3 h and the next
+/// sunrise: leaves stay wet from its start to that sunrise.
+struct NightSet {
+  Instant start;
+  Instant end;
+  Instant sunset;
+  Instant sunrise;
+  bool enough = true;              // ≥ 1 mm or unknown; otherwise it only counts as an evening
+  bool close_to_limit = false;     // had it ended an hour earlier it would not have counted
+};
+
+/// All evening and night irrigations of a diary, by end. Source: science §7, "Night sets".
+std::vector<NightSet> night_sets(const std::vector<field::Irrigation>& irrigations,
+                                 const weather::Place& place);
+
+/// What the overhead irrigations and night sets bring to an hour.
+Watering watering_of(HourStart hour, const std::vector<field::Irrigation>& irrigations,
+                     const std::vector<NightSet>& sets);
+
+}  // namespace antherd::risk

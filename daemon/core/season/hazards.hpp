@@ -1,0 +1,82 @@
+// Heat and humid days as the fold carries them, and the episodes that they open and close
+// (science §6, §8; contracts "Alerts and notices"). They must not know what was said.
+#pragma once
+
+#include <array>
+#include <deque>
+#include <optional>
+#include <vector>
+
+#include "core/alerts/episode.hpp"
+#include "core/risk/heat.hpp"
+#include "core/risk/humid.hpp"
+#include "core/season/phenology.hpp"
+#include "core/season/plan.hpp"
+#include "core/season/status.hpp"
+
+namespace antherd::season {
+
+/// The day so far and the days before, for one temperature shift.
+struct HeatTrack {
+  risk::HeatTally tally;
+  std::array<double, 4> before{};  // degree-hours of the four days before, newest first
+  Level level = Level::none;       // highest placed level of the day's hours
+  Level weather_level = Level::none;
+};
+
+struct HeatHazard {
+  std::optional<CivilDay> day;
+  std::array<HeatTrack, 3> tracks;  // as measured, 1 °C cooler, 1 °C hotter
+  double flower_share = 0;
+  bool in_window = false;
+  std::vector<std::pair<HourStart, double>> hours;  // of the day, with their temperatures
+  std::optional<HeatDay> yesterday;
+  double exposed_share = 0;
+  int hot_days = 0;
+  double affected_low = 0, affected_high = 0;
+  std::deque<double> nights;        // means of the last 20 nights, °C
+  double night_sum = 0;
+  int night_hours = 0;
+  int warm_nights = 0;
+  std::optional<std::size_t> episode;  // index of the open one
+};
+
+struct HumidHazard {
+  std::vector<risk::DayHour> hours;  // of the humid day so far
+  risk::LeafState leaf;
+  risk::Spell spell;
+  bool yesterday_hot = false;
+  std::vector<HumidDay> last_five;
+  std::optional<std::size_t> episode;
+};
+
+struct HourContext {
+  const Plan& plan;
+  const DiaryView& diary;
+  const Air& air;
+  const Phenology& crop;
+  CivilDay day;              // civil day of the hour's start
+  bool day_ends = false;     // the next hour belongs to another civil day
+  bool watched = true;
+};
+
+/// One hour of heat. @return the civil day when it ends with this hour
+std::optional<HeatDay> advance(HeatHazard& heat, std::vector<alerts::Episode>& episodes,
+                               const HourContext& hour, double flower_share);
+
+/// One hour of wetness. @return the humid day when it ends with this hour
+std::optional<HumidDay> advance(HumidHazard& humid, std::vector<alerts::Episode>& episodes,
+                                const HourContext& hour, Millimetre drying, risk::Wet& wet);
+
+/// The day so far as a record. @param track  0 as measured
+HeatDay day_so_far(const HeatHazard& heat);
+
+/// Moves an episode to a level, opening or closing it as needed.
+void move_episode(std::vector<alerts::Episode>& episodes, std::optional<std::size_t>& open,
+                  alerts::Kind kind, const std::string& subject, HourStart hour, Level level,
+                  Certainty certainty, std::optional<double> figure);
+
+/// How sure an alert of this moment is: scouted is Observed, else by the odds of flowering.
+Certainty certainty_of(const Phenology& crop, const Plan& plan);
+
+}  // namespace antherd::season

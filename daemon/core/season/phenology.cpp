@@ -1,0 +1,221 @@
+// See phenology.hpp.
+#include "core/season/phenology.hpp"
+
+#include <algorithm>
+
+#include "core/crop/development.hpp"
+#include "core/crop/flowers.hpp"
+#include "core/weather/sun.hpp"
+
+namespace antherd::season {
+namespace {
+
+constexpr int unknown_from_day = 35, unknown_to_day = 110;  // after sowing, science §5
+constexpr double shoulder_days = 8.0;
+
+Instant noon_of(const Plan& plan, CivilDay day) {
+  return plan.calendar.at(CivilTime(day) + std::chrono::hours{12});
+}
+
+/// The field was not watched for too long: the note says where it stands, the past is forgotten.
+void anchor(Phenology& crop, const crop::Observation& seen) {
+  crop.time = seen.reached;
+  crop.belief = crop::Belief{1.0, seen.sd};
+  crop.held.reset();
+  crop.unseen = 0;
+  crop.filled = 0;
+}
+
+/// @return whether the note is held
+bool weigh(Phenology& crop, const crop::Observation& seen) {
+  if (crop::agrees(crop.belief, seen)) {
+    crop.belief = crop::update(crop.belief, seen);
+    crop.held.reset();
+    return false;
+  }
+  if (crop.held && (crop::agrees(crop.held->with, seen) ||
+                    crop::agrees(crop::Belief{crop.held->seen.factor, crop.held->seen.sd}, seen))) {
+    crop.belief = crop::update(crop.held->with, seen);
+    crop.held.reset();
+    return false;
+  }
+  crop.held = HeldNote{seen, crop::update(crop.belief, seen)};
+  return true;
+}
+
+bool take_note(Phenology& crop, const Plan& plan, const field::Scouting& note) {
+  const int stage = *note.stage;
+  crop.last_note = note.date;
+  crop.last_note_stage = stage;
+  if (stage < field::stage::buds || stage > field::stage::flowers_done) return false;
+  const bool began = note.began || stage == field::stage::first_anthers;
+  if (stage == field::stage::flowers_done && began) crop.done = note.date;
+  const bool flowering = stage >= field::stage::first_anthers && stage < field::stage::flowers_done;
+  if (flowering) crop.done.reset();
+  const auto seen = crop::observe(stage, began, crop.time, crop.units.mean_10_days(),
+                                  plan.traits.needs);
+  crop.scouted = true;
+  if (!crop.known()) {
+    anchor(crop, seen);
+    return false;
+  }
+  return weigh(crop, seen);
+}
+
+bool take_notes(Phenology& crop, const Plan& plan, const DiaryView& diary, HourStart now) {
+  bool held = false;
+  for (; crop.next_note < diary.notes.size(); ++crop.next_note) {
+    const field::Scouting& note = diary.notes[crop.next_note];
+    if (noon_of(plan, note.date) > Instant(now)) break;
+    if (!note.stage) continue;
+    const auto later = std::find_if(diary.notes.begin() + static_cast<long>(crop.next_note) + 1,
+                                    diary.notes.end(), [&](const field::Scouting& other) {
+                                      return other.date == note.date && other.stage;
+                                    });
+    if (later != diary.notes.end()) continue;  // of several on one day the last entered stands
+    held = take_note(crop, plan, note) || held;
+  }
+  return held;
+}
+
+double unit_of(const Phenology& crop, const Plan& plan, const Air& air) {
+  double unit = crop::development_unit(*air.temperature);
+  if (!plan.field.photoperiod) return unit;
+  const double time = crop.time.value, factor = crop.belief.mean;
+  const bool sensitive = time >= plan.traits.needs.emerged.value * factor &&
+                         time < plan.traits.needs.first_anthers.value * factor;
+  if (!sensitive) return unit;
+  const auto solar_day = std::chrono::floor<std::chrono::days>(
+      weather::solar_time(middle_of(air.start), plan.field.longitude));
+  return unit * crop::photoperiod_factor(weather::day_length_hours(solar_day, plan.place()),
+                                         plan.traits.photoperiod);
+}
+
+double next_unit(Phenology& crop, const Plan& plan, const Air& air) {
+  auto& clock = crop.by_clock[static_cast<std::size_t>(
+      (air.start.time_since_epoch().count() % 24 + 24) % 24)];
+  ++crop.hours;
+  if (air.temperature) {
+    const double unit = unit_of(crop, plan, air);
+    crop.units.add(unit);
+    clock.add(unit);
+    return unit;
+  }
+  ++crop.unseen;
+  const auto mean = clock.mean();
+  if (mean) ++crop.filled;
+  return mean.value_or(0.0);
+}
+
+Part part_of(const Phenology& crop, const Plan& plan, CivilDay day) {
+  if (!crop.known()) {
+    const auto since = (day - plan.field.sown).count();
+    if (since < unknown_from_day) return Part::before;
+    return since <= unknown_to_day ? Part::window : Part::after;
+  }
+  const WindowEdges edges = window_edges(crop, plan);
+  const bool done = crop.done && day > *crop.done;
+  if (!done && crop.time >= edges.opens && crop.time < edges.closes) return Part::window;
+  if (!done && crop.time < edges.opens) {
+    const double ahead = crop.time.value + shoulder_days * crop.units.mean_10_days();
+    return ahead >= edges.opens.value ? Part::shoulder_before : Part::before;
+  }
+  return crop.time < edges.seed_fill_ends ? Part::shoulder_after : Part::after;
+}
+
+void remember_dates(Phenology& crop, const Plan& plan, CivilDay day, Part part) {
+  for (std::size_t i = 0; i < told_stages.size(); ++i) {
+    const double needed =
+        crop::requirement(told_stages[i], plan.traits.needs).value * crop.belief.mean;
+    if (crop.time.value < needed) {
+      crop.reached[i].reset();
+    } else if (!crop.reached[i]) {
+      crop.reached[i] = day;
+    }
+  }
+  if (part == Part::window) {
+    if (!crop.window_first) crop.window_first = day;
+    crop.window_last.reset();
+  } else if (crop.part == Part::window) {
+    crop.window_last = day;
+  }
+  if (part == Part::before || part == Part::shoulder_before) {
+    crop.window_first.reset();
+    crop.window_last.reset();
+  }
+}
+
+}  // namespace
+
+void UnitMemory::add(double unit) {
+  const std::size_t at = count_ % size;
+  if (count_ >= size) sum_ -= ring_[at];
+  if (count_ >= short_size) short_sum_ -= ring_[(count_ - short_size) % size];
+  ring_[at] = unit;
+  sum_ += unit;
+  short_sum_ += unit;
+  ++count_;
+}
+
+double UnitMemory::mean_10_days() const {
+  return count_ == 0 ? 0.0 : short_sum_ / static_cast<double>(std::min(count_, short_size));
+}
+double UnitMemory::mean_14_days() const {
+  return count_ == 0 ? 0.0 : sum_ / static_cast<double>(std::min(count_, size));
+}
+
+std::optional<double> ClockHour::mean() const {
+  if (count == 0) return std::nullopt;
+  const int n = std::min(count, 3);
+  double sum = 0;
+  for (int i = 0; i < n; ++i) sum += last[static_cast<std::size_t>(i)];
+  return sum / n;
+}
+
+crop::FlowerOdds Phenology::odds(const Plan& plan) const {
+  return crop::odds(plan.traits.needs, belief, filled_share());
+}
+
+double Phenology::stage(const Plan& plan) const {
+  return crop::stage_at(time, plan.traits.needs, belief.mean);
+}
+
+WindowEdges window_edges(const Phenology& crop, const Plan& plan) {
+  const auto& needs = plan.traits.needs;
+  const auto edges = [&](const crop::Belief& belief) {
+    const auto odds = crop::odds(needs, belief, crop.filled_share());
+    const double seed_fill = 0.6 * (needs.ripe - needs.flowers_done).value;
+    return WindowEdges{odds.opens(), odds.closes(),
+                       ThermalTime(odds.begins + odds.lasts + seed_fill)};
+  };
+  WindowEdges result = edges(crop.belief);
+  if (crop.held) {
+    const WindowEdges other = edges(crop.held->with);
+    result.opens = std::min(result.opens, other.opens);
+    result.closes = std::max(result.closes, other.closes);
+    result.seed_fill_ends = std::max(result.seed_fill_ends, other.seed_fill_ends);
+  }
+  return result;
+}
+
+PhenologyHour advance(Phenology& crop, const Plan& plan, const DiaryView& diary, const Air& air,
+                      CivilDay day) {
+  PhenologyHour result;
+  result.note_was_held = take_notes(crop, plan, diary, air.start);
+  const ThermalTime before = crop.time;
+  result.unit = next_unit(crop, plan, air);
+  crop.time += ThermalTime(result.unit / 24.0);
+  if (crop.known()) {
+    const auto odds = crop.odds(plan);
+    const auto opened = [&](ThermalTime t) {
+      return crop::share_opened(100.0 * (t.value - odds.begins) / odds.lasts);
+    };
+    result.flower_share = opened(crop.time) - opened(before);
+  }
+  const Part part = part_of(crop, plan, day);
+  remember_dates(crop, plan, day, part);
+  crop.part = part;
+  return result;
+}
+
+}  // namespace antherd::season

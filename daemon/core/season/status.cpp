@@ -1,0 +1,224 @@
+// The field as it stands, for letters and screens; see status.hpp.
+#include <algorithm>
+#include <cmath>
+
+#include "core/crop/development.hpp"
+#include "core/season/fold.hpp"
+#include "core/weather/sun.hpp"
+
+namespace antherd::season {
+namespace {
+
+using std::chrono::days;
+
+FlowerStatus flower_status(const State& state, const Plan& plan) {
+  const Phenology& crop = state.crop;
+  const auto odds = crop.odds(plan);
+  const WindowEdges edges = window_edges(crop, plan);
+  FlowerStatus flower;
+  flower.known = crop.known();
+  flower.scouted = crop.scouted;
+  flower.last_note = crop.last_note;
+  flower.last_note_stage = crop.last_note_stage;
+  flower.note_held = crop.held.has_value();
+  flower.part = crop.part;
+  flower.stage = crop.stage(plan);
+  flower.filled_share = crop.filled_share();
+  flower.thermal_time = crop.time.value;
+  flower.needed_first_anthers = odds.begins;
+  flower.window_first = crop.window_first;
+  flower.window_last = crop.window_last;
+  if (!flower.known) return flower;
+  flower.p_begun = odds.begun(crop.time);
+  flower.p_over = odds.over(crop.time);
+  flower.p_flower = odds.in_flower(crop.time);
+  if (!flower.window_first) flower.window_first = expected_day(state, edges.opens.value);
+  if (!flower.window_last) flower.window_last = expected_day(state, edges.closes.value);
+  if (crop.done) flower.window_last = crop.done;
+  flower.flower_first = crop.reached[2] ? crop.reached[2] : expected_day(state, odds.begins);
+  flower.flower_last = crop.reached[4] ? crop.reached[4]
+                                       : expected_day(state, odds.begins + odds.lasts);
+  const double daily = crop.units.mean_14_days();
+  if (daily > 0) flower.flower_first_days = odds.sd_begin / daily;
+  if (crop.part == Part::window && crop.window_first) {
+    flower.day_of_window = static_cast<int>((state.day - *crop.window_first).count()) + 1;
+  }
+  if (flower.window_first && flower.window_last) {
+    flower.days_in_window =
+        static_cast<int>((*flower.window_last - *flower.window_first).count()) + 1;
+  }
+  if (flower.flower_first) {
+    const auto after = (*flower.flower_first - plan.field.sown).count();
+    flower.implausible = after < 40 || after > 100;
+  }
+  return flower;
+}
+
+std::optional<alerts::Episode> recent_episode(const State& state, alerts::Kind kind) {
+  for (auto episode = state.episodes.rbegin(); episode != state.episodes.rend(); ++episode) {
+    if (episode->kind != kind) continue;
+    const bool recent = episode->open() || end_of(*state.last) - *episode->closed <= days{1};
+    return recent ? std::optional(*episode) : std::nullopt;
+  }
+  return std::nullopt;
+}
+
+HeatStatus heat_status(const State& state) {
+  HeatStatus heat;
+  heat.today = day_so_far(state.heat);
+  heat.yesterday = state.heat.yesterday;
+  const HeatTrack& track = state.heat.tracks[0];
+  heat.degree_hours_3_days = track.tally.degree_hours + track.before[0] + track.before[1];
+  heat.degree_hours_5_days = heat.degree_hours_3_days + track.before[2] + track.before[3];
+  heat.exposed_share = state.heat.exposed_share;
+  heat.hot_days = state.heat.hot_days;
+  heat.if_cooler = state.heat.tracks[1].level;
+  heat.if_hotter = state.heat.tracks[2].level;
+  heat.episode = recent_episode(state, alerts::Kind::heat);
+  return heat;
+}
+
+/// When a grower would water tonight, and the morning that follows.
+struct Tonight {
+  Instant start;
+  CivilDay morning{};  // the humid day that holds the night bears this date
+};
+
+Tonight tonight(const State& state, const Plan& plan) {
+  const Instant now = end_of(*state.last);
+  const CivilDay today = std::chrono::floor<days>(weather::solar_time(now, plan.field.longitude));
+  Tonight night{now, today + days{1}};
+  for (const CivilDay day : {today, today + days{1}}) {
+    const auto sunset = weather::sun_day(day, plan.place()).set;
+    if (!sunset || *sunset + one_hour < now) continue;
+    night.start = std::max(now, *sunset);
+    night.morning = day + days{1};
+    break;
+  }
+  return night;
+}
+
+/// Runs the fold on to the end of a humid day with the last 24 hours' weather again.
+Level level_after(const State& state, const Plan& plan, const DiaryView& diary, CivilDay morning) {
+  State ahead = state;
+  const std::vector<Air> pattern = state.last_day;
+  for (std::size_t i = 0; i < 60; ++i) {
+    Air air = pattern[i % pattern.size()];
+    air.start = *ahead.last + std::chrono::hours{1};
+    const Step step = advance(ahead, plan, diary, air);
+    if (step.humid_day && step.humid_day->date >= morning) return step.humid_day->level;
+  }
+  return ahead.humid.spell.level;
+}
+
+/// The same diary with an overhead set of two hours tonight.
+DiaryView watered(const Tonight& night, const Plan& plan, const DiaryView& diary) {
+  field::Diary changed{diary.irrigations, diary.notes};
+  field::Irrigation set;
+  set.field = plan.field.name;
+  set.start = night.start;
+  set.end = night.start + 2 * one_hour;
+  set.method = field::Method::overhead;
+  changed.irrigations.push_back(set);
+  return DiaryView(std::move(changed), plan.place());
+}
+
+HumidStatus humid_status(const State& state, const Plan& plan, const DiaryView& diary) {
+  HumidStatus humid;
+  humid.last_five = state.humid.last_five;
+  if (!humid.last_five.empty()) humid.last = humid.last_five.back();
+  const Instant now = end_of(*state.last);
+  const CivilDay today = state.day;
+  std::vector<CivilDay> mornings;
+  for (const risk::NightSet& set : diary.sets) {
+    if (set.end > now || !set.enough) continue;
+    const CivilDay morning = plan.calendar.day_of(set.sunrise);
+    if (today - morning >= days{5} || morning > today + days{1}) continue;
+    if (std::find(mornings.begin(), mornings.end(), morning) == mornings.end()) {
+      mornings.push_back(morning);
+    }
+    humid.close_to_sunset_limit = humid.close_to_sunset_limit || set.close_to_limit;
+  }
+  humid.night_sets_last_five = static_cast<int>(std::min<std::size_t>(5, mornings.size()));
+  if (state.streak_last && today - *state.streak_last <= days{0}) {
+    humid.streak = static_cast<int>((*state.streak_last - *state.streak_first).count()) + 1;
+  }
+  for (const field::Scouting& note : diary.notes) {
+    humid.disease_seen = humid.disease_seen || (note.disease.value_or(false) && note.date <= today);
+  }
+  humid.episode = recent_episode(state, alerts::Kind::humid_spell);
+  if (plan.field.irrigation == field::Method::overhead && state.last_day.size() == 24) {
+    const Tonight night = tonight(state, plan);
+    humid.if_watered_tonight =
+        level_after(state, plan, watered(night, plan, diary), night.morning);
+    humid.if_not_watered = level_after(state, plan, diary, night.morning);
+  }
+  return humid;
+}
+
+void merge_flags(std::vector<weather::Flag>& all, const std::vector<weather::Flag>& more) {
+  for (const weather::Flag& flag : more) {
+    const auto same = std::find_if(all.begin(), all.end(), [&](const weather::Flag& f) {
+      return f.element == flag.element && f.verdict == flag.verdict && f.reason == flag.reason;
+    });
+    if (same == all.end()) {
+      all.push_back(flag);
+    } else {
+      same->count += flag.count;
+    }
+  }
+}
+
+DataStatus data_status(const State& state, const Plan& plan) {
+  DataStatus data;
+  data.last_reading = state.last_reading;
+  bool still_sun = false;
+  for (const Air& air : state.last_day) {
+    if (!air.temperature) ++data.hours_missing_24;
+    if (air.station < 0) continue;
+    data.whole_degrees = air.whole_degrees;
+    data.station = plan.stations[static_cast<std::size_t>(air.station)].name;
+    const auto hot = state.heat.tracks[0].tally.t_max_hour;
+    if (hot == air.start && air.daylight && air.wind && air.wind->value < 1.0) still_sun = true;
+  }
+  for (const auto& flags : state.last_flags) merge_flags(data.flags_24, flags);
+  if (data.station.empty() && !plan.stations.empty()) data.station = plan.stations.front().name;
+  for (const weather::Station& station : plan.stations) {
+    if (station.name != data.station) continue;
+    data.rain_measured = station.measures_rain;
+    data.shield_may_read_high = still_sun && station.shield != weather::Shield::fanned;
+  }
+  return data;
+}
+
+}  // namespace
+
+std::optional<CivilDay> expected_day(const State& state, double thermal_time) {
+  const double missing = thermal_time - state.crop.time.value;
+  const double daily = state.crop.units.mean_14_days();
+  if (missing <= 0 || state.crop.units.count() < 120 || daily <= 0) return std::nullopt;
+  return state.day + days{static_cast<int>(std::ceil(missing / daily))};
+}
+
+FieldStatus status(const State& state, const Plan& plan, const DiaryView& diary) {
+  FieldStatus result;
+  result.field = plan.field.name;
+  result.irrigation = plan.field.irrigation;
+  result.watch = state.watch;
+  if (!state.last) return result;
+  result.as_of = end_of(*state.last);
+  if (!state.last_day.empty()) {
+    result.temperature = state.last_day.back().temperature;
+    result.humidity = state.last_day.back().humidity;
+  }
+  for (const field::Irrigation& irrigation : diary.irrigations) {
+    if (irrigation.start < result.as_of) result.last_irrigation_end = irrigation.end;
+  }
+  result.flower = flower_status(state, plan);
+  result.heat = heat_status(state);
+  result.humid = humid_status(state, plan, diary);
+  result.data = data_status(state, plan);
+  return result;
+}
+
+}  // namespace antherd::season
