@@ -2,6 +2,7 @@
 #pragma once
 
 #include <map>
+#include <optional>
 #include <span>
 #include <string>
 #include <vector>
@@ -9,6 +10,7 @@
 #include "core/alerts/decide.hpp"
 #include "core/field/diary.hpp"
 #include "core/letters/letter.hpp"
+#include "core/risk/rules.hpp"
 #include "core/season/status.hpp"
 #include "core/units/time.hpp"
 
@@ -18,27 +20,28 @@ namespace antherd::letters {
 struct StationStory {
   std::string station;
   std::optional<Instant> last_reading;
-  std::vector<std::string> fields;         // that it watches
+  std::vector<std::string> fields;  // that it watches
   std::vector<std::string> fields_in_window;
-  std::string source;                      // "drop folder drop/", "http://192.168.1.20/now.json"
-  int refused_rows = 0;                    // in the last 24 h
-  std::string last_trouble;                // of the source, e.g. "connection refused"
+  std::string source;        // "drop folder drop/", "http://192.168.1.20/now.json"
+  int refused_rows = 0;      // in the last 24 h
+  std::string last_trouble;  // of the source, e.g. "connection refused"
   std::vector<weather::Flag> flags_24;
 };
 
 /// Everything the letters of one tick may speak of.
 struct Desk {
   std::string farm;
-  const Calendar* calendar = nullptr;      // farm time
+  const Calendar* calendar = nullptr;  // farm time
   Instant now;
   Units units = Units::us;
-  bool clock_set = true;                   // false: "computer clock not set"
+  bool clock_set = true;  // false: "computer clock not set"
   std::map<std::string, season::FieldStatus> fields;
   std::map<std::string, StationStory> stations;
-  std::optional<Instant> next_daily;       // when the next daily line is due
+  std::optional<Instant> next_daily;  // when the next daily line is due
   std::optional<Instant> next_weekly;
   Seconds remind_after{24 * 3600};
-  bool exercise = false;                   // the demo
+  bool exercise = false;                              // the demo
+  std::map<std::string, risk::HeatRules> heat_rules;  // of fields with their own; else the usual
 };
 
 /// Letters of one tick: tellings of one kind merge per recipient, worst field first; those that
@@ -51,25 +54,26 @@ std::vector<Letter> compose_daily(std::span<const Recipient> recipients, const D
 
 /// One field's week (or season) as the review tells it: seen, not seen, decided, told.
 struct FieldReview {
-  season::FieldStatus status;                   // at the end
-  std::vector<season::HeatDay> days;            // of the period, oldest first
-  std::vector<season::HumidDay> humid_days;     // likewise
-  std::vector<alerts::Episode> episodes;        // that touch the period
-  std::vector<alerts::Said> said;               // in the period
+  season::FieldStatus status;                // at the end
+  std::vector<season::HeatDay> days;         // of the period, oldest first
+  std::vector<season::HumidDay> humid_days;  // likewise
+  std::map<CivilDay, Celsius> coolest;       // lowest hourly mean of a day, where measured
+  std::vector<alerts::Episode> episodes;     // that touch the period
+  std::vector<alerts::Said> said;            // in the period
   std::vector<field::Irrigation> irrigations;
   std::vector<field::Scouting> notes;
   int hours_expected = 0, hours_valid = 0;
   int warm_nights = 0;
-  double affected_low = 0, affected_high = 0;   // 0…1, indicative
+  double affected_low = 0, affected_high = 0;  // 0…1, indicative
 };
 struct Review {
-  std::string title;                            // "Week 2026-W28" or "Season 2026"
-  CivilDay first{}, last{};                     // both included
+  std::string title;         // "Week 2026-W28" or "Season 2026"
+  CivilDay first{}, last{};  // both included
   std::vector<FieldReview> fields;
   std::vector<alerts::Said> said_of_stations;
   int letters_sent = 0, letters_waiting = 0, letters_parked = 0;
-  std::vector<std::string> parked;              // one line each: who, what, why
-  std::vector<std::string> troubles;            // service troubles of the period, one line each
+  std::vector<std::string> parked;    // one line each: who, what, why
+  std::vector<std::string> troubles;  // service troubles of the period, one line each
 };
 std::string compose_review(const Review& review, const Desk& desk);
 std::vector<Letter> compose_weekly(const Review& review, std::span<const Recipient> recipients,

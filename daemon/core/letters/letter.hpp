@@ -30,10 +30,10 @@ struct Letter {
   std::string body;       // UTF-8, lines ≤ 78 columns
   std::string kind;       // "heat", "humid_spell", …, "daily", "weekly"
   alerts::Severity severity = alerts::Severity::minor;
-  Instant decided;        // when it was decided: its Date
+  Instant decided;                     // when it was decided: its Date
   std::optional<Instant> valid_until;  // 72 h for alerts
-  std::string still;      // one sentence for a delayed copy: what held when it was decided
-  bool raise = false;     // a rise in severity always goes
+  std::string still;   // one sentence for a delayed copy: what held when it was decided
+  bool raise = false;  // a rise in severity always goes
 };
 
 }  // namespace antherd::letters

@@ -1,0 +1,128 @@
+// How far the measurements behind a letter can be trusted, in words.
+#include <algorithm>
+
+#include "core/letters/parts.hpp"
+#include "core/letters/wrap.hpp"
+
+namespace antherd::letters {
+namespace {
+
+std::string reason_words(weather::Reason reason) {
+  switch (reason) {
+    case weather::Reason::none:
+      return "in doubt";
+    case weather::Reason::out_of_range:
+      return "out of range";
+    case weather::Reason::above_saturation:
+      return "above 102 %";
+    case weather::Reason::spike:
+      return "a spike";
+    case weather::Reason::unconfirmed:
+      return "a jump not yet confirmed";
+    case weather::Reason::stuck:
+      return "stuck";
+    case weather::Reason::dew_above_temperature:
+      return "dew point above the temperature";
+    case weather::Reason::rain_in_dry_air:
+      return "rain in dry air";
+  }
+  return "in doubt";
+}
+
+std::string flags_sentence(const std::vector<weather::Flag>& flags) {
+  std::vector<std::string> named;
+  for (const weather::Flag& flag : flags) {
+    if (flag.verdict == weather::Verdict::good) continue;
+    if (named.size() == 3) break;
+    named.push_back(flag_words(flag));
+  }
+  if (named.empty()) return "";
+  return "Doubtful in the last 24 h: " + list(named) + ".";
+}
+
+}  // namespace
+
+std::string element_words(weather::Element element) {
+  switch (element) {
+    case weather::Element::temperature:
+      return "temperature";
+    case weather::Element::humidity:
+      return "humidity";
+    case weather::Element::dew_point:
+      return "dew point";
+    case weather::Element::rain:
+      return "rain";
+    case weather::Element::wind:
+      return "wind";
+    case weather::Element::solar:
+      return "sun";
+    case weather::Element::wetness:
+      return "leaf wetness";
+  }
+  return "a value";
+}
+
+std::string flag_words(const weather::Flag& flag) {
+  const std::string used =
+      flag.verdict == weather::Verdict::wrong || flag.reason == weather::Reason::unconfirmed
+          ? "left out"
+          : "used";
+  return element_words(flag.element) + " " + reason_words(flag.reason) + " (" + used + ")";
+}
+
+std::string data_paragraph(const FieldStatus& status, const Words& words, bool heat) {
+  const season::DataStatus& data = status.data;
+  std::vector<std::string> said;
+  const std::string station = plain(data.station);
+  if (data.hours_missing_24 > 0) {
+    said.push_back(count(data.hours_missing_24, "hour") +
+                   " of the last 24 missing: what happened then is not known.");
+  } else if (!station.empty()) {
+    said.push_back("Station " + station + ", the last 24 h complete.");
+  }
+  said.push_back(flags_sentence(data.flags_24));
+  if (heat && data.shield_may_read_high) {
+    said.push_back(
+        "The thermometer has no fan and the hot hours were sunny and still: it may read "
+        "high.");
+  }
+  if (heat && data.whole_degrees) {
+    said.push_back("The station sends whole degrees: Severe waits for a reading above " +
+                   words.threshold(words.heat_rules(status.field).severe) + ".");
+  }
+  if (!heat && !data.rain_measured) {
+    said.push_back("Rain is not measured here: rain that fell is not in this.");
+  }
+  return join(said);
+}
+
+const FieldStatus* status_of(const Desk& desk, const std::string& field) {
+  const auto found = desk.fields.find(field);
+  return found == desk.fields.end() ? nullptr : &found->second;
+}
+
+std::string quoted(const std::string& name) {
+  const std::string clean = plain(name);
+  const auto harmless = [](char c) {
+    const auto byte = static_cast<unsigned char>(c);
+    return byte >= 0x80 || (c >= 'a' && c <= 'z') || (c >= 'A' && c <= 'Z') ||
+           (c >= '0' && c <= '9') || c == '-' || c == '_' || c == '.';
+  };
+  if (!clean.empty() && clean[0] != '-' && std::all_of(clean.begin(), clean.end(), harmless)) {
+    return clean;
+  }
+  if (clean.find_first_of("\"$`\\!") == std::string::npos) return "\"" + clean + "\"";
+  std::string single = "'";
+  for (const char c : clean) single += c == '\'' ? std::string("'\\''") : std::string(1, c);
+  return single + "'";
+}
+
+std::string scout_command(const std::string& field, const std::string& rest) {
+  return "antherd scout " + quoted(field) + " " + rest;
+}
+
+std::string water_command(const std::string& field, const std::string& rest) {
+  return "antherd water " + quoted(field) + " " + rest;
+}
+
+}  // namespace antherd::letters

@@ -1,0 +1,178 @@
+// The one screen of `antherd now`. Every line is cut to the page, so that a screen stays a screen.
+#include <algorithm>
+#include <map>
+
+#include "core/letters/parts.hpp"
+#include "core/letters/wrap.hpp"
+
+namespace antherd::letters {
+namespace {
+
+constexpr std::size_t label_width = 10;
+constexpr std::size_t most_open = 4;  // alerts named one by one
+constexpr std::size_t most_attention = 4;
+
+std::string cut(const std::string& text) { return clip(unglued(text), page_width) + "\n"; }
+
+std::string labelled(const std::string& label, const std::string& text) {
+  return cut("  " + label + std::string(label_width - label.size(), ' ') + text);
+}
+
+std::string watch_words(const FieldStatus& status) {
+  switch (status.watch) {
+    case season::Watch::before_sowing:
+      return "not watched: not sown yet";
+    case season::Watch::watched:
+      return "";
+    case season::Watch::ripe:
+      return "not watched: ripe; give the new sowing date";
+    case season::Watch::sown_long_ago:
+      return "not watched: sown long ago; give the new sowing date";
+    case season::Watch::harvested:
+      return "not watched: harvested";
+  }
+  return "";
+}
+
+std::string stage_line(const FieldStatus& status, const Words& words) {
+  const std::string resting = watch_words(status);
+  if (!resting.empty()) return resting;
+  const season::FlowerStatus& flower = status.flower;
+  std::string text = flower_state(status);
+  if (!flower.known) return text + ": note a stage (antherd scout)";
+  text += ", stage " + number(flower.stage, 0);
+  if (flower.part == season::Part::window && flower.day_of_window) {
+    text += ", window day " + std::to_string(*flower.day_of_window);
+    if (flower.days_in_window) text += " of about " + std::to_string(*flower.days_in_window);
+  } else if (flower.flower_first && *flower.flower_first > words.today()) {
+    text += ", first anthers " + words.about(*flower.flower_first, flower.flower_first_days);
+  }
+  if (flower.note_held) text += ", a note is held";
+  if (flower.implausible) text += ", check the sowing date";
+  return text;
+}
+
+std::string heat_line(const FieldStatus& status, const Words& words) {
+  const season::HeatDay& today = status.heat.today;
+  const risk::HeatRules& rules = words.heat_rules(status.field);
+  if (!today.t_max) return "nothing measured today";
+  std::string text = "at most " + words.temperature(*today.t_max, rules) + ", " +
+                     hot_hours(today, rules, words) + ": " + level_word(today.level);
+  if (status.temperature)
+    text = "now " + words.temperature(*status.temperature, rules) + ", " + text;
+  return text;
+}
+
+std::string mildew_line(const FieldStatus& status) {
+  if (!status.humid.last) return "no humid day judged yet";
+  std::string text = level_word(status.humid.last->level);
+  if (!status.humid.last->judged) text += ", last day not judged (data missing)";
+  if (status.humid.last->r) text += ", score " + number(*status.humid.last->r, 1);
+  if (waters_leaves(status)) {
+    text += "; watered tonight " + level_word(status.humid.if_watered_tonight) + ", if not " +
+            level_word(status.humid.if_not_watered);
+  }
+  return text;
+}
+
+std::string water_line(const FieldStatus& status, const Words& words) {
+  std::string text;
+  switch (status.irrigation) {
+    case field::Method::overhead:
+      text = "overhead, before " + std::to_string(status.humid.night_sets_last_five) +
+             " of the last 5 mornings";
+      break;
+    case field::Method::drip:
+      text = "drip, wets no leaf";
+      break;
+    case field::Method::furrow:
+      text = "furrow, wets no leaf";
+      break;
+    case field::Method::none:
+      return "no irrigation";
+  }
+  text += status.last_irrigation_end ? "; last ended " + words.when(*status.last_irrigation_end)
+                                     : "; none in the log";
+  if (status.days_to_stress) {
+    text += "; " + std::to_string(std::max(0, *status.days_to_stress)) + " d to stress";
+  }
+  return text;
+}
+
+std::string data_line(const FieldStatus& status, const Words& words) {
+  const season::DataStatus& data = status.data;
+  std::string text = data.station.empty() ? "no station" : plain(data.station);
+  text += data.last_reading ? ", last hour to " + words.closing(*data.last_reading)
+                            : ", no reading yet";
+  if (data.hours_missing_24 > 0) {
+    text += ", " + std::to_string(data.hours_missing_24) + " h of 24 missing";
+  }
+  const auto doubtful = std::count_if(
+      data.flags_24.begin(), data.flags_24.end(),
+      [](const weather::Flag& flag) { return flag.verdict != weather::Verdict::good; });
+  if (doubtful > 0) text += ", doubtful values: " + std::to_string(doubtful);
+  if (!data.rain_measured) text += ", rain not measured";
+  return text;
+}
+
+std::string field_block(const FieldStatus& status, const Words& words) {
+  std::string text = cut(plain(status.field) + ": " + stage_line(status, words));
+  if (status.watch != season::Watch::watched) return text;
+  return text + labelled("heat", heat_line(status, words)) +
+         labelled("mildew", mildew_line(status)) + labelled("water", water_line(status, words)) +
+         labelled("data", data_line(status, words));
+}
+
+/// One line an open episode: the last of what was said of it, gravest first.
+std::string open_block(std::span<const alerts::Said> unclosed, const Words& words) {
+  std::map<std::string, const alerts::Said*> last;
+  for (const alerts::Said& said : unclosed) {
+    const alerts::Said*& known = last[said.episode];
+    if (known == nullptr || said.at >= known->at) known = &said;
+  }
+  std::vector<const alerts::Said*> ordered;
+  for (const auto& [episode, said] : last) ordered.push_back(said);
+  std::stable_sort(ordered.begin(), ordered.end(), [](const auto* a, const auto* b) {
+    return a->level != b->level ? a->level > b->level : a->start < b->start;
+  });
+  if (ordered.empty()) return cut("OPEN: no alert");
+  std::string text = cut("OPEN");
+  for (std::size_t i = 0; i < ordered.size(); ++i) {
+    if (i + 1 == most_open && ordered.size() > most_open) {
+      return text + cut("  and " + std::to_string(ordered.size() - i) + " more: antherd review");
+    }
+    const alerts::Said& said = *ordered[i];
+    text += cut("  " + clip(plain(said.subject), 30) + ": " + kind_words(said.kind) +
+                (said.level == Level::none ? "" : " " + level_word(said.level)) + " since " +
+                words.when(said.start) + (said.seen ? ", seen" : ""));
+  }
+  return text;
+}
+
+std::string attention_block(std::span<const std::string> attention) {
+  if (attention.empty()) return "";
+  std::string text = cut("ATTENTION");
+  for (std::size_t i = 0; i < attention.size(); ++i) {
+    if (i + 1 == most_attention && attention.size() > most_attention) {
+      return text + cut("  and " + std::to_string(attention.size() - i) + " more: see the log");
+    }
+    text += cut("  " + plain(attention[i]));
+  }
+  return text;
+}
+
+}  // namespace
+
+std::string compose_now(const Desk& desk, std::span<const alerts::Said> unclosed,
+                        std::span<const std::string> attention) {
+  const Words words(desk);
+  std::string text = cut(std::string(desk.exercise ? "EXERCISE: " : "") + plain(desk.farm) + ", " +
+                         words.day(words.today()) + " " + words.clock(desk.now) +
+                         (desk.clock_set ? "" : " (computer clock not set)"));
+  if (desk.fields.empty()) text += "\nNo field is in the settings.\n";
+  for (const auto& [name, status] : desk.fields) text += "\n" + field_block(status, words);
+  text += "\n" + open_block(unclosed, words);
+  return text + attention_block(attention);
+}
+
+}  // namespace antherd::letters

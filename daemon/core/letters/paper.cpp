@@ -1,0 +1,161 @@
+// Parts put on paper: subject, body and the short form. No words of any one kind of letter here.
+#include <algorithm>
+
+#include "core/letters/parts.hpp"
+#include "core/letters/wrap.hpp"
+
+namespace antherd::letters {
+namespace {
+
+constexpr std::size_t in_short = 6;     // other fields told with their paragraphs
+constexpr std::size_t in_lines = 100;   // further ones by their first line: a letter stays < 32 KiB
+constexpr std::size_t least_name = 10;  // of a name in a subject
+
+std::string lines_of(const std::vector<std::string>& lines) {
+  std::string text;
+  for (const std::string& line : lines) text += line + "\n";
+  return text;
+}
+
+/// A command for a shell, broken before an option with a backslash where it is too long.
+std::string command_text(const std::string& command) {
+  std::string text;
+  std::string line = "  ";
+  for (std::size_t at = 0; at < command.size();) {
+    const std::size_t next = std::min(command.find(" --", at + 1), command.size());
+    const std::string piece = command.substr(at, next - at);
+    if (columns(line) + columns(piece) > page_width - 2 && columns(line) > 4) {
+      text += line + " \\\n";
+      line = "    " + piece.substr(piece[0] == ' ' ? 1 : 0);
+    } else {
+      line += piece;
+    }
+    at = next;
+  }
+  text += line;
+  std::string fitted;
+  for (std::size_t at = 0; at <= text.size();) {
+    const std::size_t end = std::min(text.find('\n', at), text.size());
+    const std::string one = text.substr(at, end - at);
+    fitted += (columns(one) <= page_width ? one + "\n" : lines_of(wrap(one, page_width, 2, 4)));
+    at = end + 1;
+  }
+  return fitted;
+}
+
+/// The first line on one line: a long name is cut, the figure is not.
+std::string first_line(const Part& part) {
+  const std::size_t width = columns(part.first);
+  if (width <= page_width || !part.first.starts_with(part.name)) return paragraph(part.first);
+  const std::size_t over = width - page_width;
+  const std::size_t name = columns(part.name);
+  const std::size_t keep = std::max(least_name, name > over ? name - over : 0);
+  return paragraph(clip(part.name, keep) + part.first.substr(part.name.size()));
+}
+
+std::string marks(const Desk& desk) {
+  std::string text;
+  if (desk.exercise)
+    text += paragraph("This is an exercise: an invented season. Do not act on it.");
+  if (!desk.clock_set) text += paragraph("Computer clock not set: times are the station's own.");
+  return text;
+}
+
+std::string other_part(const Part& part) {
+  std::string text =
+      "\n" + std::string(page_width, '-') + "\n" + first_line(part) + paragraph(part.tonight);
+  for (const Section& section : part.sections) {
+    if (section.own) text += section_text(section);
+  }
+  return text;
+}
+
+/// Signs outside plain ASCII that we use ourselves, spelt for phone gateways: one such sign makes
+/// a gateway send three messages for one.
+std::string spelt_out(std::string text) {
+  const std::vector<std::pair<std::string, std::string>> spelling{
+      {" °", ""}, {"°", ""}, {"±", "+-"}, {"≥", ">="}, {"–", "-"}, {"·", " "}, {"…", ".."}};
+  for (const auto& [sign, spelt] : spelling) {
+    for (std::size_t at = text.find(sign); at != std::string::npos; at = text.find(sign, at)) {
+      text.replace(at, sign.size(), spelt);
+      at += spelt.size();
+    }
+  }
+  return text;
+}
+
+std::string more(std::size_t others) { return " +" + std::to_string(others) + " more"; }
+
+}  // namespace
+
+std::string paragraph(const std::string& text) { return lines_of(wrap(text, page_width)); }
+
+std::string section_text(const Section& section) {
+  if (section.text.empty() && section.lines.empty() && section.commands.empty()) return "";
+  std::string text = "\n" + section.heading + "\n";
+  for (const std::string& line : section.lines) text += lines_of(wrap(line, page_width, 2, 6));
+  text += paragraph(section.text);
+  for (const std::string& command : section.commands) text += command_text(command);
+  return text;
+}
+
+std::string subject_line(const Part& part, const std::string& before, const std::string& after) {
+  std::string rest = unglued(part.rest);
+  while (true) {
+    const std::string around = before + part.lead + ": " + " " + rest + after;
+    const std::size_t taken = columns(around);
+    const std::size_t room = taken < subject_width ? subject_width - taken : 0;
+    const std::size_t needed = std::min(columns(part.name), least_name);
+    if (room >= needed) {
+      return unglued(before + part.lead + ": " + clip(part.name, room) + " " + rest + after);
+    }
+    const std::size_t comma = rest.rfind(", ");
+    if (comma == std::string::npos) break;
+    rest.erase(comma);
+  }
+  return clip(unglued(before + part.lead + ": " + clip(part.name, least_name) + " " + rest + after),
+              subject_width);
+}
+
+std::string body_of(const Part& worst, const std::vector<Part>& others, const std::string& next,
+                    const Desk& desk) {
+  std::string text = first_line(worst) + paragraph(worst.tonight) + marks(desk);
+  for (const Section& section : worst.sections) text += section_text(section);
+  for (std::size_t i = 0; i < others.size() && i < in_short; ++i) text += other_part(others[i]);
+  if (others.size() > in_short) {
+    text += "\n" + std::string(page_width, '-') + "\n";
+    const std::size_t end = std::min(others.size(), in_short + in_lines);
+    for (std::size_t i = in_short; i < end; ++i) text += first_line(others[i]);
+    if (others.size() > end) {
+      text += paragraph("And " + std::to_string(others.size() - end) + " more: antherd now");
+    }
+  }
+  if (!others.empty()) text += "\n" + std::string(page_width, '-') + "\n";
+  std::string next_text = section_text({"NEXT", join({worst.next, next}), {}, true, {}});
+  if (!others.empty()) next_text.erase(0, 1);
+  return text + next_text + "\n" + paragraph(standing_caution(Language::english));
+}
+
+std::string brief_of(const Part& worst, std::size_t others, const Desk& desk) {
+  const std::string before = desk.exercise ? "EXERCISE: " : "";
+  const std::string after = (others > 0 ? more(others) : "") + ".";
+  constexpr std::size_t name_room = 28;
+  std::string head =
+      before + worst.lead + ": " + clip(worst.name, name_room) + " " + worst.rest + after;
+  head = spelt_out(unglued(head));
+  std::string tail = spelt_out(unglued(worst.brief));
+  while (columns(head) + 1 + columns(tail) > brief_width && !tail.empty()) {
+    const std::size_t stop = tail.rfind(". ");
+    tail = stop == std::string::npos ? "" : tail.substr(0, stop + 1);
+  }
+  if (!tail.empty()) head += " " + tail;
+  return spelt_out(clip(head, brief_width - 1));
+}
+
+std::string standing_caution(Language) {
+  return "Advice from estimates: scout before acting. For any treatment the label and local rules "
+         "decide; ask the extension service or a licensed adviser. Not a safety device for people: "
+         "in such heat follow the worker heat rules of your place.";
+}
+
+}  // namespace antherd::letters

@@ -1,0 +1,178 @@
+// One field's chapter of the review.
+#include <algorithm>
+
+#include "core/letters/review.hpp"
+#include "core/letters/wrap.hpp"
+
+namespace antherd::letters {
+namespace {
+
+std::string saying_words(Saying saying) {
+  switch (saying) {
+    case Saying::opened:
+      return "opened";
+    case Saying::raised:
+      return "raised";
+    case Saying::reminder:
+      return "reminder";
+    case Saying::eased:
+      return "eased";
+    case Saying::ended:
+      return "ended";
+    case Saying::notice:
+      return "notice";
+    case Saying::learned_late:
+      return "learned late";
+  }
+  return "";
+}
+
+std::string date_and_time(Instant end, const Words& words) {
+  return words.day(words.day_of_end(end)) + glue + words.clock(end);
+}
+
+Section seen(const FieldReview& field) {
+  const int missing = std::max(0, field.hours_expected - field.hours_valid);
+  std::vector<std::string> said{std::to_string(field.hours_valid) + " of " +
+                                count(field.hours_expected, "hour") + " seen."};
+  if (missing > 0) {
+    said.push_back(count(missing, "hour") +
+                   " not seen: what happened then is not known and is in no figure here.");
+  }
+  const auto not_judged = std::count_if(field.humid_days.begin(), field.humid_days.end(),
+                                        [](const season::HumidDay& day) { return !day.judged; });
+  if (not_judged > 0) {
+    said.push_back(count(static_cast<int>(not_judged), "humid day") +
+                   " not judged for want of data.");
+  }
+  std::vector<std::string> doubtful;
+  for (const weather::Flag& flag : field.status.data.flags_24) {
+    if (flag.verdict != weather::Verdict::good && doubtful.size() < 4) {
+      doubtful.push_back(flag_words(flag));
+    }
+  }
+  if (!doubtful.empty()) said.push_back("Doubtful in the last 24 h: " + list(doubtful) + ".");
+  if (!field.status.data.rain_measured) said.push_back("Rain is not measured.");
+  return {"SEEN", join(said), {}, true, {}};
+}
+
+Section flower(const FieldReview& field, const Words& words) {
+  Section section{"FLOWER", flower_paragraph(field.status, words), {}, true, {}};
+  for (const field::Scouting& note : field.notes) {
+    std::vector<std::string> parts;
+    if (note.stage) parts.push_back(stage_words(*note.stage) + (note.began ? " began" : ""));
+    if (note.disease) parts.push_back(*note.disease ? "mildew seen" : "no mildew seen");
+    if (note.seed_set && note.seed_looked) {
+      parts.push_back("seed in " + std::to_string(*note.seed_set) + " of " +
+                      std::to_string(*note.seed_looked));
+    }
+    if (!note.note.empty()) parts.push_back(plain(note.note));
+    section.lines.push_back(words.day(note.date) + ": noted " + list(parts));
+  }
+  return section;
+}
+
+Section exposure(const FieldReview& field, const Words& words) {
+  const FieldStatus& status = field.status;
+  const risk::HeatRules& rules = words.heat_rules(status.field);
+  std::vector<std::string> said;
+  if (!status.flower.known) {
+    said.push_back("Flowers met by heat: not known while flowering is not known.");
+  } else {
+    said.push_back("Exposed this season: " + in_hundred(status.heat.exposed_share) +
+                   " flowers opened on days with an hour at " + words.threshold(rules.severe) +
+                   " or more.");
+    if (field.affected_high > 0) {
+      said.push_back("Affected: " + in_hundred(field.affected_low) + " to " +
+                     in_hundred(field.affected_high) +
+                     " (indicative: no dose–response curve has been published for this crop).");
+    }
+  }
+  if (field.warm_nights > 0) {
+    said.push_back(count(field.warm_nights, "warm night") +
+                   " between flower and ripe; at one trial site such nights went with fewer "
+                   "grains. No letter is sent for them.");
+  } else {
+    said.push_back("No warm night counted between flower and ripe.");
+  }
+  return {"HEAT AND FLOWERS", join(said), {}, true, {}};
+}
+
+std::string method_words(field::Method method) {
+  switch (method) {
+    case field::Method::overhead:
+      return "overhead";
+    case field::Method::drip:
+      return "drip";
+    case field::Method::furrow:
+      return "furrow";
+    case field::Method::none:
+      break;
+  }
+  return "water";
+}
+
+Section water_log(const FieldReview& field, const Words& words) {
+  Section section{"WATER", "", {}, true, {}};
+  for (const field::Irrigation& one : field.irrigations) {
+    const Calendar& calendar = words.calendar();
+    const bool same_day = calendar.day_of(one.start) == words.day_of_end(one.end);
+    section.lines.push_back(words.day(calendar.day_of(one.start)) + " " + words.clock(one.start) +
+                            " to " + (same_day ? "" : words.day(words.day_of_end(one.end)) + " ") +
+                            words.clock(one.end) + ", " + method_words(one.method) +
+                            (one.depth ? ", " + words.depth(*one.depth) : ", depth unknown") +
+                            (one.set > 0 ? ", set " + std::to_string(one.set) : ""));
+  }
+  if (section.lines.empty()) {
+    section.text = field.status.irrigation == field::Method::none
+                       ? "No irrigation is set for this field."
+                       : "No water was logged. If any ran, enter it: the mildew watch goes by "
+                         "this log.";
+  }
+  return section;
+}
+
+Section decided(const FieldReview& field, const Words& words) {
+  Section section{"DECIDED", "", {}, true, {}};
+  for (const alerts::Episode& episode : field.episodes) {
+    section.lines.push_back(
+        kind_words(episode.kind) + " from " + words.day(words.calendar().day_of(episode.start)) +
+        glue + words.clock(episode.start) +
+        (episode.closed ? " to " + date_and_time(*episode.closed, words) : ", still open") +
+        ", at most " + level_word(episode.peak));
+  }
+  if (section.lines.empty()) section.text = "No warning was due.";
+  return section;
+}
+
+Section told(const FieldReview& field, const Words& words) {
+  Section section{"TOLD", "", {}, true, {}};
+  for (const alerts::Said& said : field.said) section.lines.push_back(said_line(said, words));
+  if (section.lines.empty()) section.text = "Nothing.";
+  return section;
+}
+
+}  // namespace
+
+std::string said_line(const alerts::Said& said, const Words& words) {
+  std::string text = words.day(words.calendar().day_of(said.at)) + glue + words.clock(said.at) +
+                     ": " + plain(said.subject) + ", " + kind_words(said.kind) + " " +
+                     saying_words(said.saying);
+  if (said.level != Level::none) text += ", " + level_word(said.level);
+  if (said.seen) text += " (seen)";
+  return text;
+}
+
+std::string field_chapter(const FieldReview& field, const Words& words) {
+  const std::string name = clip(plain(field.status.field), page_width);
+  std::string text =
+      "\n" + std::string(page_width, '=') + "\n" + name + "\n\n" + day_table(field, words);
+  for (const Section& section :
+       {seen(field), flower(field, words), exposure(field, words), water_log(field, words),
+        decided(field, words), told(field, words)}) {
+    text += section_text(section);
+  }
+  return text;
+}
+
+}  // namespace antherd::letters

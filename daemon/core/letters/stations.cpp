@@ -1,0 +1,260 @@
+// Letters about the watch itself: a silent station, a sensor in doubt, mail that did not go.
+// Silence must never look like good news.
+#include <algorithm>
+
+#include "core/letters/parts.hpp"
+#include "core/letters/wrap.hpp"
+
+namespace antherd::letters {
+namespace {
+
+const StationStory* story_of(const Words& words, const std::string& station) {
+  const auto found = words.desk().stations.find(station);
+  return found == words.desk().stations.end() ? nullptr : &found->second;
+}
+
+std::string names_of_fields(const std::vector<std::string>& fields) {
+  std::vector<std::string> named;
+  for (const std::string& field : fields) named.push_back(plain(field));
+  return list(named);
+}
+
+/// The field of the station whose flowers matter most now: one in its window, else any.
+const FieldStatus* gravest_field(const Words& words, const StationStory* story) {
+  if (story == nullptr) return nullptr;
+  for (const auto* fields : {&story->fields_in_window, &story->fields}) {
+    const FieldStatus* best = nullptr;
+    for (const std::string& field : *fields) {
+      const FieldStatus* status = status_of(words.desk(), field);
+      if (status != nullptr && (best == nullptr || seen_in_flower(*status))) best = status;
+    }
+    if (best != nullptr) return best;
+  }
+  return nullptr;
+}
+
+std::string flower_end(const Words& words, const StationStory* story) {
+  const FieldStatus* status = gravest_field(words, story);
+  return status == nullptr ? "" : ", " + flower_tag(*status);
+}
+
+std::string each_field(const Words& words, const StationStory* story) {
+  if (story == nullptr) return "";
+  std::vector<std::string> said;
+  for (const std::string& field : story->fields) {
+    const FieldStatus* status = status_of(words.desk(), field);
+    if (status == nullptr) continue;
+    std::vector<std::string> held;
+    if (status->heat.episode && status->heat.episode->open()) {
+      held.push_back("heat warning open at " + level_word(status->heat.episode->level));
+    }
+    if (status->humid.episode && status->humid.episode->open()) {
+      held.push_back("mildew warning open at " + level_word(status->humid.episode->level));
+    }
+    if (held.empty()) held.push_back("no warning was open");
+    said.push_back(plain(field) + ": " + flower_state(*status) + "; when last seen, " + list(held) +
+                   ".");
+  }
+  return join(said);
+}
+
+std::string what_to_check(const StationStory* story) {
+  std::vector<std::string> said{"Has the station power, is its cable or radio in place?"};
+  if (story == nullptr) return said.front();
+  const std::string source = plain(story->source);
+  if (source.find("http://") != std::string::npos || source.find("https://") != std::string::npos) {
+    said.push_back("Does its address answer from this computer: " + source + "?");
+  } else if (!source.empty()) {
+    said.push_back("Do new files or lines still arrive: " + source + "?");
+  }
+  if (!story->last_trouble.empty()) {
+    said.push_back("Last trouble: " + plain(story->last_trouble) + ".");
+  }
+  if (story->refused_rows > 0) {
+    said.push_back(count(story->refused_rows, "row") +
+                   " came in the last 24 h but could not be read: see refused.csv.");
+  }
+  return join(said);
+}
+
+Part no_data_open(const Telling& telling, const Words& words) {
+  const StationStory* story = story_of(words, telling.subject);
+  const Instant since =
+      story != nullptr && story->last_reading ? *story->last_reading : telling.start;
+  const std::string length = duration(std::max(Seconds{0}, words.desk().now - since));
+  const std::string fields = story == nullptr ? "" : names_of_fields(story->fields);
+  const bool reminder = telling.saying == Saying::reminder;
+  Part part;
+  part.lead = "No data " + severity_word(telling.severity) + (reminder ? " reminder" : "");
+  part.rest = "silent " + length + " since " + words.when(since) + flower_end(words, story);
+  part.first =
+      plain(telling.subject) + ": no reading since " + words.when(since) + " (" + length + ").";
+  part.tonight = "Tonight: nobody is watching " + (fields.empty() ? "its fields" : fields) +
+                 "; go by your own thermometer.";
+  std::vector<std::string> silent;
+  if (reminder) silent.push_back("A reminder: told first after " + words.when(telling.start) + ".");
+  silent.push_back(
+      "Heat and wet leaves are not seen now, and no warning about them can come. "
+      "No letter about heat or mildew means nothing while this lasts.");
+  if (story != nullptr && !story->fields_in_window.empty()) {
+    silent.push_back("In their flowering window: " + names_of_fields(story->fields_in_window) +
+                     ".");
+  }
+  part.sections = {{"SILENT", join(silent), {}, true},
+                   {"FIELDS", each_field(words, story), {}, true},
+                   {"CHECK", what_to_check(story), {}, true},
+                   {"LOOK",
+                    "A thermometer in the shade at midday, leaves by touch at 10 am. Readings that "
+                    "were kept by the station and arrive later are counted then.",
+                    {},
+                    false}};
+  part.next = "Word when readings are back; a reminder after " +
+              duration(words.desk().remind_after) + " while it lasts.";
+  part.brief = (fields.empty() ? "Its fields" : capital(fields)) +
+               " not watched. Check power, file, address.";
+  part.still = "When this was decided the station had been silent since " +
+               words.day(words.calendar().day_of(since)) + " " + words.clock(since) + ".";
+  return part;
+}
+
+std::string unseen(const Words& words, const StationStory* story) {
+  std::vector<std::string> said;
+  if (story != nullptr) {
+    for (const std::string& field : story->fields) {
+      const FieldStatus* status = status_of(words.desk(), field);
+      if (status == nullptr) continue;
+      const int hours = status->data.hours_missing_24;
+      said.push_back(plain(field) + ": " +
+                     (hours == 0 ? std::string("no hour of the last 24 is missing")
+                                 : count(hours, "hour") + " of the last 24 not seen") +
+                     ".");
+    }
+  }
+  said.push_back(
+      "What heat or wet leaves there were in missing hours is not known; they neither "
+      "raised nor lowered a level. If those readings arrive later, they are counted and "
+      "told as learned late.");
+  return join(said);
+}
+
+Part no_data_ended(const Telling& telling, const Words& words) {
+  const StationStory* story = story_of(words, telling.subject);
+  Part part;
+  part.lead = "Data back";
+  const std::string gone =
+      telling.figure ? std::to_string(static_cast<int>(*telling.figure + 0.5)) + glue + "h silent"
+                     : "after silence";
+  part.rest =
+      "readings since " + words.when(telling.about) + ", " + gone + flower_end(words, story);
+  part.first = plain(telling.subject) + ": readings are back since " + words.when(telling.about) +
+               ", " + gone + ".";
+  part.tonight = "Tonight: the watch is on again; the missing hours stay unknown.";
+  part.sections = {{"MISSING",
+                    "Silent from " + words.when(telling.start) + ". " + unseen(words, story),
+                    {},
+                    true},
+                   {"FIELDS", each_field(words, story), {}, true}};
+  part.next = "Letters about heat and mildew come again as usual.";
+  part.brief = "Missing hours stay unknown.";
+  part.still = "Readings were back when this was decided.";
+  return part;
+}
+
+std::string fault_words(const Telling& telling, const StationStory* story) {
+  if (!telling.detail.empty()) return plain(telling.detail);
+  if (story != nullptr) {
+    for (const weather::Flag& flag : story->flags_24) {
+      if (flag.verdict != weather::Verdict::good) return flag_words(flag);
+    }
+  }
+  return "a quality check keeps failing";
+}
+
+Part doubtful(const Telling& telling, const Words& words) {
+  const StationStory* story = story_of(words, telling.subject);
+  const std::string fault = fault_words(telling, story);
+  const bool over = telling.saying == Saying::ended || telling.saying == Saying::eased;
+  Part part;
+  if (over) {
+    part.lead = "Sensor back in order";
+    part.rest = "since " + words.closing(telling.about);
+    part.first = plain(telling.subject) + ": readings pass the checks again since " +
+                 words.closing(telling.about) + ".";
+    part.tonight = "Tonight: the watch relies on it again; the doubtful hours stay doubtful.";
+    part.sections = {{"FIELDS", each_field(words, story), {}, true}};
+    part.next = "If the checks fail again, a new letter comes.";
+    part.brief = "Doubtful hours stay doubtful.";
+    part.still = "The sensor passed its checks when this was decided.";
+    return part;
+  }
+  part.lead = "Doubtful sensor " + severity_word(telling.severity) +
+              (telling.saying == Saying::reminder ? " reminder" : "");
+  part.rest = fault + ", " + words.closing(telling.about) + flower_end(words, story);
+  part.first = plain(telling.subject) + ": " + fault + ", since " + words.when(telling.start) + ".";
+  part.tonight = "Tonight: trust your own thermometer and your own eyes over this station.";
+  std::vector<std::string> named;
+  if (story != nullptr) {
+    for (const weather::Flag& flag : story->flags_24) {
+      if (flag.verdict != weather::Verdict::good && named.size() < 4) {
+        named.push_back(flag_words(flag));
+      }
+    }
+  }
+  part.sections = {
+      {"SENSOR",
+       "A check has failed for 6 h or more. Warnings that rest on this sensor may come late, not "
+       "at all, or without cause." +
+           (named.empty() ? "" : " Last 24 h: " + list(named) + "."),
+       {},
+       true},
+      {"FIELDS", each_field(words, story), {}, true},
+      {"CHECK",
+       "Hold a second thermometer in the shade beside it. Is the shield clean, the fan turning, "
+       "the plug dry? Is the column or unit in the settings right?",
+       {},
+       false}};
+  part.next = "Word when it passes again; a reminder after " + duration(words.desk().remind_after) +
+              " while it lasts.";
+  part.brief = "Warnings may be wrong or late. Check sensor and shield.";
+  part.still = "The sensor was in doubt when this was decided.";
+  return part;
+}
+
+}  // namespace
+
+Part station_part(const Telling& telling, const Words& words) {
+  const bool over = telling.saying == Saying::ended || telling.saying == Saying::eased;
+  Part part = telling.kind == Kind::doubtful_sensor ? doubtful(telling, words)
+              : over                                ? no_data_ended(telling, words)
+                                                    : no_data_open(telling, words);
+  part.name = plain(telling.subject);
+  return part;
+}
+
+Part service_part(const Telling& telling, const Words& words) {
+  const bool over = telling.saying == Saying::ended || telling.saying == Saying::eased;
+  const std::string from = words.when(telling.start);
+  Part part;
+  part.name = plain(telling.subject);
+  part.lead = over ? "Mail works again" : "Mail trouble " + severity_word(telling.severity);
+  part.rest = (over ? "it waited from " : "letters wait since ") + from;
+  part.first = over ? "Letters go out again; they waited from " + from + " to " +
+                          words.when(telling.about) + "."
+                    : "Letters have been waiting since " + from + ".";
+  part.tonight = over ? "Tonight: read the delayed letters; each says when it was decided."
+                      : "Tonight: do not count on letters; look at the screen: antherd now";
+  part.sections = {
+      {"MAIL",
+       (telling.detail.empty() ? "" : "The mail server said: " + plain(telling.detail) + ". ") +
+           std::string("The watch itself went on all the while, and nothing that was "
+                       "decided has been dropped without being named."),
+       {"antherd letters"},
+       true}};
+  part.next = over ? "Letters come as usual." : "Word when mail works again.";
+  part.brief = over ? "Read the delayed letters." : "Look at antherd now.";
+  part.still =
+      over ? "Mail worked when this was decided." : "Mail was waiting when this was decided.";
+  return part;
+}
+
+}  // namespace antherd::letters

@@ -1,0 +1,199 @@
+// Where the two hazards meet: what tonight's water would do, and what it would not.
+#include <algorithm>
+
+#include "core/letters/parts.hpp"
+#include "core/letters/wrap.hpp"
+
+namespace antherd::letters {
+namespace {
+
+using field::Method;
+using season::HumidStatus;
+
+Level mildew_level(const FieldStatus& status) {
+  return status.humid.last ? status.humid.last->level : Level::none;
+}
+
+std::string method_noun(Method method) {
+  switch (method) {
+    case Method::drip:
+      return "Drip";
+    case Method::furrow:
+      return "Furrow water";
+    default:
+      return "Water";
+  }
+}
+
+/// Two outcomes side by side, as a sentence that promises neither.
+std::string two_ways(const HumidStatus& humid) {
+  const Level wet = humid.if_watered_tonight;
+  const Level dry = humid.if_not_watered;
+  if (wet != dry) {
+    return "overhead water tonight would put mildew at " + level_word(wet) +
+           " by tomorrow evening; without it, " + level_word(dry) + " (if tomorrow is like today).";
+  }
+  if (wet == Level::none) {
+    return "one overhead set would leave the mildew level below Moderate; several evenings in a "
+           "row are what raises it.";
+  }
+  return "with or without overhead water, mildew would stand at " + level_word(wet) +
+         " tomorrow evening (if tomorrow is like today).";
+}
+
+std::string sprinkler_nights(const FieldStatus& status) {
+  const int nights = status.humid.night_sets_last_five;
+  if (nights == 0) {
+    return waters_leaves(status) ? "No overhead water is logged before any of the last 5 mornings."
+                                 : "";
+  }
+  return "Sprinklers ran before " + std::to_string(nights) + " of the last 5 mornings.";
+}
+
+std::string level_now(const FieldStatus& status) {
+  if (!status.humid.last) return "Mildew has not been judged yet: no full humid day is in.";
+  if (!status.humid.last->judged) {
+    return "The last humid day was not judged for want of data; the mildew level stays as it "
+           "was: " +
+           level_word(mildew_level(status)) + ".";
+  }
+  return "Mildew level now: " + level_word(mildew_level(status)) + ".";
+}
+
+std::string sunset_limit(const FieldStatus& status) {
+  if (!status.humid.close_to_sunset_limit) return "";
+  return "A set that ended an hour earlier would not have counted as a night set: the line, 3 h "
+         "before sunset, is a judgement.";
+}
+
+}  // namespace
+
+bool waters_leaves(const FieldStatus& status) { return status.irrigation == Method::overhead; }
+
+std::string tonight_and_mildew(const FieldStatus& status) {
+  switch (status.irrigation) {
+    case Method::overhead:
+      return "Tonight: " + two_ways(status.humid);
+    case Method::drip:
+      return "Tonight: drip wets no leaf, so it neither feeds nor starves mildew.";
+    case Method::furrow:
+      return "Tonight: furrow water wets no leaf, so it neither feeds nor starves mildew.";
+    case Method::none:
+      break;
+  }
+  return "Tonight: no irrigation here to decide on; look at the flowers tomorrow in the cool.";
+}
+
+std::string tonight_in_brief(const FieldStatus& status) {
+  switch (status.irrigation) {
+    case Method::overhead:
+      break;
+    case Method::drip:
+      return "Mildew: drip wets no leaf.";
+    case Method::furrow:
+      return "Mildew: furrow wets no leaf.";
+    case Method::none:
+      return "Mildew " + level_word(mildew_level(status)) + ".";
+  }
+  const Level wet = status.humid.if_watered_tonight;
+  const Level dry = status.humid.if_not_watered;
+  if (wet == dry) return "Overhead water or not tonight: mildew " + level_word(wet) + ".";
+  return "Overhead water tonight: mildew " + level_word(wet) + ", without " + level_word(dry) + ".";
+}
+
+std::string mildew_side(const FieldStatus& status, const Words&) {
+  std::vector<std::string> said{sprinkler_nights(status), level_now(status)};
+  switch (status.irrigation) {
+    case Method::overhead:
+      said.push_back(capital(two_ways(status.humid)));
+      said.push_back("A hot day slows mildew; wet leaves all night bring it back.");
+      said.push_back(sunset_limit(status));
+      break;
+    case Method::drip:
+    case Method::furrow:
+      said.push_back(method_noun(status.irrigation) +
+                     " wets no leaf: only dew, fog and rain count here.");
+      break;
+    case Method::none:
+      said.push_back("Only dew, fog and rain wet this field.");
+      break;
+  }
+  return join(said);
+}
+
+std::string heat_side(const FieldStatus& status, const Words& words) {
+  const season::HeatDay& today = status.heat.today;
+  const risk::HeatRules& rules = words.heat_rules(status.field);
+  std::vector<std::string> said;
+  if (today.t_max) {
+    said.push_back("Today so far at most " + words.temperature(*today.t_max, rules) + ": " +
+                   hot_hours(today, rules, words) + ".");
+  } else {
+    said.push_back("Today's heat: nothing measured yet.");
+  }
+  if (status.heat.episode && status.heat.episode->open()) {
+    said.push_back("A heat warning is open at " + level_word(status.heat.episode->level) + ".");
+  }
+  if (today.level != Level::none || (status.heat.episode && status.heat.episode->open())) {
+    said.push_back(
+        "Heat by itself does not call for water; sprinklers in the evening would feed "
+        "mildew.");
+    if (!waters_leaves(status)) said.pop_back();
+  }
+  if (status.heat.hot_days > 0) {
+    said.push_back("This season " + in_hundred(status.heat.exposed_share) +
+                   " flowers opened on days with an hour at " + words.threshold(rules.severe) +
+                   " or more.");
+  }
+  return join(said);
+}
+
+std::string water_in_heat(const FieldStatus& status, const Words& words) {
+  const bool logged = status.last_irrigation_end.has_value();
+  if (logged && status.days_to_stress && *status.days_to_stress <= 2) {
+    const int days = *status.days_to_stress;
+    return "By your log the root zone is " +
+           (days <= 0 ? std::string("at the edge of water stress")
+                      : std::to_string(days) + glue + "d from water stress") +
+           ". Water may be due on its own account; last water ended " +
+           words.when(*status.last_irrigation_end) + "." +
+           (waters_leaves(status)
+                ? " A set that ends more than 3 h before sunset lets the leaves dry."
+                : "");
+  }
+  std::string text = "This heat by itself does not call for water.";
+  if (logged)
+    text += " Last water in the log ended " + words.when(*status.last_irrigation_end) + ".";
+  return text;
+}
+
+std::string water_in_humid(const FieldStatus& status, const Words& words) {
+  std::vector<std::string> said;
+  if (status.last_irrigation_end) {
+    said.push_back("Last water in the log ended " + words.when(*status.last_irrigation_end) + ".");
+  } else if (status.irrigation != Method::none) {
+    said.push_back("No water is in the log.");
+  }
+  switch (status.irrigation) {
+    case Method::overhead:
+      said.push_back(
+          "If the field needs water, a set that ends more than 3 h before sunset lets "
+          "the leaves dry before night.");
+      said.push_back(sunset_limit(status));
+      break;
+    case Method::drip:
+    case Method::furrow:
+      said.push_back(method_noun(status.irrigation) + " wets no leaf.");
+      break;
+    case Method::none:
+      said.push_back("No irrigation is set for this field.");
+      break;
+  }
+  if (status.days_to_stress && *status.days_to_stress <= 2 && status.last_irrigation_end) {
+    said.push_back("By the log the root zone is near water stress (about " +
+                   std::to_string(std::max(0, *status.days_to_stress)) + glue + "d).");
+  }
+  return join(said);
+}
+
+}  // namespace antherd::letters
