@@ -1,8 +1,10 @@
 // The store: one SQLite file of facts (WAL, synchronous FULL, STRICT tables, numbered schema) and
 // the transaction that keeps an hour, what was said of it and its letters together. No derived
-// crop state is kept. One owner, one thread.
+// crop state is kept. A Store belongs to one thread; several processes may hold one on one folder:
+// the service, one command that writes into the diary, and any number of readers.
 #pragma once
 
+#include <chrono>
 #include <cstdint>
 #include <map>
 #include <memory>
@@ -22,10 +24,10 @@ namespace antherd::store {
 
 /// What taking samples in changed. Hours between `earliest` and `latest` are to be made anew.
 struct Intake {
-  int added = 0;        // times that were not known
-  int replaced = 0;     // a different sample of a known time now stands
-  int conflicts = 0;    // different samples kept aside
-  int repeated = 0;     // identical: ignored
+  int added = 0;                            // times that were not known
+  int replaced = 0;                         // a different sample of a known time now stands
+  int conflicts = 0;                        // different samples kept aside
+  int repeated = 0;                         // identical: ignored
   std::optional<Instant> earliest, latest;  // of added and replaced ones
 };
 
@@ -34,35 +36,54 @@ using Notes = std::map<std::string, std::string>;
 
 /// One tick's decisions: kept in one transaction or not at all.
 struct Decision {
-  std::map<std::string, std::vector<weather::Hour>> hours;  // by station: written or replaced
-  std::map<std::string, std::vector<HourStart>> hours_gone; // by station: no longer any sample
+  std::map<std::string, std::vector<weather::Hour>> hours;   // by station: written or replaced
+  std::map<std::string, std::vector<HourStart>> hours_gone;  // by station: no longer any sample
   std::vector<alerts::Said> said;
-  std::vector<outbox::Item> letters;                        // state waiting
-  Notes notes;                                              // e.g. "last_weekly"
+  std::vector<outbox::Item> letters;  // state waiting
+  Notes notes;                        // e.g. "last_weekly"
 };
 
 class Store {
  public:
   struct Options {
-    std::string folder;
-    bool read_only = false;   // reading commands beside a running service
+    std::string folder;      // made when it is missing (one level) unless read_only
+    bool read_only = false;  // reading commands beside a running service; makes no file
+    bool service = false;    // the one service of this folder: lock, check, ballast
+    Instant now;             // service: the date that a damaged file is set aside with
+    std::chrono::milliseconds patience{5000};  // how long to wait for another process's lock
+    std::int64_t page_limit = 0;  // upper bound of the file in pages of 4096 bytes; 0: the disk's
   };
 
-  /// Opens or makes `antherd.db`. Refuses a second writing instance, a newer schema and a damaged
-  /// file, each by name (a damaged one is left as it is). read_only fails when there is none.
+  /// Opens `antherd.db` in a folder, making it when there is none.
+  ///
+  /// service: refuses a second service, naming its process, and a network file system, naming it;
+  /// checks the whole file, and a damaged one is renamed (see set_aside) and a new one begun;
+  /// makes the ballast when there is room. Writing commands (neither flag) work beside the service.
+  /// read_only fails when there is no file. Every mode refuses a newer schema, naming both numbers,
+  /// and a file of another program; all but the service refuse a damaged file and leave it as it
+  /// is.
   static Result<Store> open(const Options& options);
   Store(Store&&) noexcept;
   Store& operator=(Store&&) noexcept;
   ~Store();
 
-  // Samples. One transaction each call.
+  /// Where a damaged file was put when the service opened, if it was: the whole path.
+  std::optional<std::string> set_aside() const;
+  /// Whether the last call that failed did so because the disk (or page_limit) is full.
+  bool out_of_space() const;
+
+  // A call that fails has changed nothing, and the store remains usable.
+
+  /// Takes samples in and puts `notes` (file bookmarks), in one transaction. Of different samples
+  /// of one time the one that weather::stands_before all others stands, the others are kept aside,
+  /// whatever came first. Values must be finite.
   Result<Intake> add_samples(const std::string& station, std::span<const weather::Sample> samples,
                              const Notes& notes = {});
   Result<std::vector<weather::Sample>> samples(const std::string& station, Instant from,
                                                Instant to) const;  // [from, to), in time order
   Result<std::optional<Instant>> last_sample(const std::string& station) const;
   Result<std::vector<weather::Sample>> conflicts(const std::string& station) const;
-  Outcome drop_samples_before(Instant before);
+  Outcome drop_samples_before(Instant before);  // conflicts too
 
   // Hours, in time order, [from, to).
   Result<std::vector<weather::Hour>> hours(const std::string& station, HourStart from,
@@ -71,19 +92,23 @@ class Store {
   // Diary. Adding what is already there (same_as) changes nothing and returns its id.
   Result<std::int64_t> add(const field::Irrigation& irrigation);
   Result<std::int64_t> add(const field::Scouting& note);
-  Outcome remove_irrigation(std::int64_t id);   // fails when there is none
+  Outcome remove_irrigation(std::int64_t id);  // fails when there is none
   Outcome remove_scouting(std::int64_t id);
   Result<field::Diary> diary(const std::string& field) const;  // sorted
   /// Grows by one with every change of the diary, also by another process: a cheap look for news.
   Result<std::int64_t> diary_version() const;
 
   // Decisions, the ledger and the outbox.
+  /// Keeps all of a decision in one transaction. A letter whose id and recipient are there already,
+  /// and an entry of the ledger that is there already, are not kept a second time.
   Outcome save(const Decision& decision);
-  Result<std::vector<alerts::Said>> said(Instant since) const;
-  Outcome mark_seen(const std::string& episode, alerts::Level level);
-  Result<std::vector<outbox::Item>> letters_open() const;   // waiting, sending, in doubt
+  Result<std::vector<alerts::Said>> said(Instant since) const;  // said at or after, in time order
+  Outcome mark_seen(const std::string& episode, alerts::Level level);  // fails when never said
+  Result<std::vector<outbox::Item>> letters_open() const;              // waiting, sending, in doubt
   Result<std::vector<outbox::Item>> letters_since(Instant since) const;  // decided since, any state
   Result<std::optional<outbox::Item>> letter(std::int64_t id) const;
+  /// Keeps an item's new state and the line's, in one transaction. The words of a stored letter
+  /// never change. Fails when there is no such letter.
   Outcome update(const outbox::Item& item, const outbox::Line& line);
   Result<outbox::Line> line() const;
 
@@ -92,9 +117,19 @@ class Store {
   Result<Notes> notes_with_prefix(const std::string& prefix) const;
   Outcome put_notes(const Notes& notes);
 
-  /// A hash over the tables of facts (samples, conflicts, hours, diary), independent of the order
-  /// in which they came.
+  /// A hash (32 hexadecimal digits) over the facts (samples, conflicts, hours, diary): equal facts
+  /// have equal fingerprints, whatever the order they came in, how often, and under which ids.
   Result<std::string> fingerprint() const;
+
+  // Room on the disk.
+  /// Gives 8 MiB back to a full disk. Done when there is no ballast either.
+  Outcome release_ballast();
+  /// Makes the ballast anew; fails while less than 24 MiB are free. Done when it is there.
+  Outcome keep_ballast();
+  /// Writes `antherd-copy-YYYY-Www.db` (ISO week of `now`, UTC): everything but samples, checked,
+  /// forced to disk, then given its name; the two newest copies are kept. Also from a read_only
+  /// store, so that a worker can do it. A copy of this week that is there already is replaced.
+  Outcome copy_without_samples(Instant now);
 
  private:
   struct Inside;

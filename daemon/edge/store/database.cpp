@@ -1,0 +1,170 @@
+// See database.hpp.
+#include "edge/store/database.hpp"
+
+#include <cmath>
+#include <filesystem>
+#include <limits>
+
+#include "core/failures/result.hpp"
+
+namespace antherd::store {
+
+Statement::~Statement() { sqlite3_reset(handle_); }
+
+void Statement::check(int code) {
+  if (code == SQLITE_OK) return;
+  sqlite3* connection = sqlite3_db_handle(handle_);
+  throw Trouble{sqlite3_extended_errcode(connection), sqlite3_errmsg(connection), {}};
+}
+
+void Statement::put_integer(std::int64_t value) {
+  check(sqlite3_bind_int64(handle_, ++next_, value));
+}
+
+void Statement::put(double value) {
+  // SQLite would make a NaN NULL: it must not pass for a missing value.
+  ANTHERD_CHECK(std::isfinite(value));
+  check(sqlite3_bind_double(handle_, ++next_, value));
+}
+
+void Statement::put(std::string_view text) {
+  // A null pointer would bind NULL; an empty text is a text.
+  const char* bytes = text.data() == nullptr ? "" : text.data();
+  check(sqlite3_bind_text64(handle_, ++next_, bytes, text.size(), SQLITE_STATIC, SQLITE_UTF8));
+}
+
+void Statement::put(std::nullopt_t) { check(sqlite3_bind_null(handle_, ++next_)); }
+
+bool Statement::step() {
+  column_ = 0;
+  const int code = sqlite3_step(handle_);
+  if (code == SQLITE_ROW) return true;
+  if (code != SQLITE_DONE) check(code);
+  return false;
+}
+
+void Statement::run() {
+  while (step()) {
+  }
+  reset();
+}
+
+void Statement::reset() {
+  sqlite3_reset(handle_);
+  next_ = 0;
+}
+
+bool Statement::is_null() const { return sqlite3_column_type(handle_, column_) == SQLITE_NULL; }
+
+std::int64_t Statement::integer() { return sqlite3_column_int64(handle_, column_++); }
+
+int Statement::small() {
+  const std::int64_t value = integer();
+  if (value < std::numeric_limits<int>::min() || value > std::numeric_limits<int>::max()) {
+    throw Trouble{SQLITE_CORRUPT, "a number in the file is out of range", {}};
+  }
+  return static_cast<int>(value);
+}
+
+double Statement::real() { return sqlite3_column_double(handle_, column_++); }
+
+std::string Statement::text() {
+  const int column = column_++;
+  const unsigned char* bytes = sqlite3_column_text(handle_, column);
+  const int size = sqlite3_column_bytes(handle_, column);
+  if (bytes == nullptr || size <= 0) return {};
+  return std::string(reinterpret_cast<const char*>(bytes), static_cast<std::size_t>(size));
+}
+
+std::string reading_uri(const std::string& path, Database::Mode mode) {
+  constexpr char digits[] = "0123456789ABCDEF";
+  std::string uri = "file://";
+  for (const char letter : std::filesystem::absolute(path).string()) {
+    if (letter == '%' || letter == '?' || letter == '#') {
+      const auto byte = static_cast<unsigned char>(letter);
+      uri += '%';
+      uri += digits[byte >> 4];
+      uri += digits[byte & 15];
+    } else {
+      uri += letter;
+    }
+  }
+  // readonly_shm: a reader must not make the -shm, for then it would belong to the reader, and the
+  // service could not open it.
+  uri += mode == Database::Mode::still ? "?mode=ro&immutable=1" : "?mode=ro&readonly_shm=1";
+  return uri;
+}
+
+Database::Database(const std::string& path, Mode mode, std::chrono::milliseconds patience) {
+  sqlite3* connection = nullptr;
+  const bool writes = mode == Mode::write;
+  // Absolute, so that no folder's name is taken for a URI.
+  const std::string name =
+      writes ? std::filesystem::absolute(path).string() : reading_uri(path, mode);
+  const int access = writes ? SQLITE_OPEN_READWRITE | SQLITE_OPEN_CREATE : SQLITE_OPEN_READONLY;
+  const int flags = access | SQLITE_OPEN_URI | SQLITE_OPEN_NOMUTEX;
+  const int code = sqlite3_open_v2(name.c_str(), &connection, flags, nullptr);
+  connection_.reset(connection);
+  if (connection == nullptr) throw Trouble{SQLITE_NOMEM, "out of memory", {}};
+  sqlite3_extended_result_codes(connection, 1);
+  if (code != SQLITE_OK) fail(code);
+  sqlite3_busy_timeout(connection, static_cast<int>(patience.count()));
+  sqlite3_db_config(connection, SQLITE_DBCONFIG_DEFENSIVE, 1, nullptr);
+  sqlite3_db_config(connection, SQLITE_DBCONFIG_TRUSTED_SCHEMA, 0, nullptr);
+  script("PRAGMA temp_store = MEMORY; PRAGMA cell_size_check = ON; PRAGMA foreign_keys = ON");
+  if (writes) {
+    // FULL: what was committed stays through a power cut. The limit keeps a big intake's log from
+    // lying on the disk for ever.
+    script("PRAGMA synchronous = FULL; PRAGMA journal_size_limit = 4194304");
+  }
+}
+
+Database::~Database() { statements_.clear(); }
+
+void Database::fail(int code) { throw Trouble{code, sqlite3_errmsg(connection_.get()), {}}; }
+
+Statement Database::use(const char* sql) {
+  auto& cached = statements_[sql];
+  if (!cached) {
+    sqlite3_stmt* statement = nullptr;
+    const int code = sqlite3_prepare_v3(connection_.get(), sql, -1, SQLITE_PREPARE_PERSISTENT,
+                                        &statement, nullptr);
+    if (code != SQLITE_OK) {
+      statements_.erase(sql);
+      fail(code);
+    }
+    cached.reset(statement);
+  }
+  ANTHERD_CHECK(!sqlite3_stmt_busy(cached.get()));
+  return Statement(cached.get());
+}
+
+void Database::script(const char* sql) {
+  const int code = sqlite3_exec(connection_.get(), sql, nullptr, nullptr, nullptr);
+  if (code != SQLITE_OK) fail(code);
+}
+
+std::int64_t Database::number(const char* sql) {
+  Statement statement = use(sql);
+  return statement.step() ? statement.integer() : 0;
+}
+
+std::string Database::text(const char* sql) {
+  Statement statement = use(sql);
+  return statement.step() ? statement.text() : std::string();
+}
+
+std::int64_t Database::changes() const { return sqlite3_changes64(connection_.get()); }
+
+std::int64_t Database::last_id() const { return sqlite3_last_insert_rowid(connection_.get()); }
+
+void Database::rollback() noexcept {
+  if (sqlite3_get_autocommit(connection_.get()) != 0) return;  // SQLite undid it itself
+  sqlite3_exec(connection_.get(), "ROLLBACK", nullptr, nullptr, nullptr);
+}
+
+void Database::leave_log() {
+  sqlite3_db_config(connection_.get(), SQLITE_DBCONFIG_NO_CKPT_ON_CLOSE, 1, nullptr);
+}
+
+}  // namespace antherd::store

@@ -1,0 +1,92 @@
+// Opening a store: for the service, for a command that writes, for a command that reads.
+#include <filesystem>
+
+#include "edge/store/inside.hpp"
+
+namespace antherd::store {
+namespace {
+
+/// Opens and checks; a Failure leaves the files as they are.
+template <class Inside>
+Outcome open_files(Inside& inside) {
+  return inside.attempt("open the store", [&] {
+    inside.connect();
+    inside.settle_schema();
+    return Done{};
+  });
+}
+
+/// The same for the service, which sets a damaged file aside and begins anew.
+template <class Inside>
+Outcome open_as_service(Inside& inside) {
+  const auto there = file_state(inside.path);
+  bool damaged = there && there->size == 0;  // cut down to nothing: SQLite would call it new
+  if (!damaged) {
+    const Outcome opened = inside.attempt("open the store", [&] {
+      try {
+        inside.connect();
+        if (there) inside.check_all();
+        inside.settle_schema();
+      } catch (const Trouble& trouble) {
+        if (!trouble.damaged()) throw;
+        damaged = true;
+      }
+      return Done{};
+    });
+    if (!damaged) return opened;
+  }
+  if (inside.database) {
+    inside.database->rollback();
+    inside.database->leave_log();
+    inside.database.reset();
+  }
+  Result<std::string> aside = put_aside(inside.options.folder, inside.options.now);
+  if (!aside) return aside.failure();
+  inside.aside = *aside;
+  return open_files(inside);
+}
+
+}  // namespace
+
+Result<Store> Store::open(const Options& options) {
+  auto inside = std::make_unique<Inside>();
+  inside->options = options;
+  inside->path = options.folder + "/antherd.db";
+  if (options.read_only) {
+    std::error_code error;
+    if (!std::filesystem::exists(inside->path, error)) {
+      return Failure{"open the store", inside->path, "there is none yet",
+                     "start the service first, or name another [store] folder"};
+    }
+    if (Outcome opened = open_files(*inside); !opened) return opened.failure();
+    return Store(std::move(inside));
+  }
+  if (Outcome made = make_folder(options.folder); !made) return made.failure();
+  if (!options.service) {
+    if (Outcome opened = open_files(*inside); !opened) return opened.failure();
+    return Store(std::move(inside));
+  }
+  if (Outcome local = refuse_network(options.folder); !local) return local.failure();
+  Result<int> lock = take_service_lock(options.folder);
+  if (!lock) return lock.failure();
+  inside->lock = *lock;
+  if (Outcome opened = open_as_service(*inside); !opened) return opened.failure();
+  // Without room there is no ballast for now; keep_ballast is asked again by the service.
+  static_cast<void>(make_ballast(options.folder));
+  return Store(std::move(inside));
+}
+
+Store::Store(std::unique_ptr<Inside> inside) : inside_(std::move(inside)) {}
+Store::Store(Store&&) noexcept = default;
+Store& Store::operator=(Store&&) noexcept = default;
+Store::~Store() = default;
+
+std::optional<std::string> Store::set_aside() const { return inside_->aside; }
+
+bool Store::out_of_space() const { return inside_->full; }
+
+Outcome Store::release_ballast() { return remove_ballast(inside_->options.folder); }
+
+Outcome Store::keep_ballast() { return make_ballast(inside_->options.folder); }
+
+}  // namespace antherd::store
