@@ -15,16 +15,16 @@ namespace antherd::station {
 struct PollMemory {
   std::string etag;
   std::string last_modified;
-  std::string last_body_hash;     // an unchanged answer without validators is not fresh either,
-                                  // unless it carries its own time
-  int failures = 0;               // in a row: back-off to 15 min
+  std::string last_body_hash;  // an unchanged answer without validators is not fresh either,
+                               // unless it carries its own time
+  int failures = 0;            // in a row: back-off to 15 min
   bool operator==(const PollMemory&) const = default;
 };
 
 struct Answer {
-  Readings readings;              // empty on trouble or when nothing changed
+  Readings readings;  // empty on trouble or when nothing changed
   bool not_modified = false;
-  std::optional<Failure> trouble; // one clear sentence
+  std::optional<Failure> trouble;  // one clear sentence
   PollMemory memory;
 };
 

@@ -1,0 +1,155 @@
+// One poll of a station; see poll.hpp. Redirects are followed here, one by one, so that each can
+// be judged; what the answer means is json.cpp's matter.
+#include "edge/station/poll.hpp"
+
+#include <algorithm>
+#include <utility>
+
+#include "edge/station/limits.hpp"
+#include "edge/station/text.hpp"
+#include "edge/station/transfer.hpp"
+
+namespace antherd::station {
+namespace {
+
+std::string clause_of(long status) {
+  const std::string number = " (HTTP " + std::to_string(status) + ")";
+  switch (status) {
+    case 204:
+      return "the answer is empty" + number;
+    case 401:
+    case 403:
+      return "the station wants a login or forbids it" + number;
+    case 404:
+    case 410:
+      return "the station has no such page" + number + ": is the path right?";
+    case 429:
+      return "the station is asked too often" + number;
+    default:
+      break;
+  }
+  if (status >= 500) return "the station has trouble of its own" + number;
+  return "the station answered with something else than its values" + number;
+}
+
+bool is_redirect(long status) {
+  return status == 301 || status == 302 || status == 303 || status == 307 || status == 308;
+}
+
+/// Why a redirect is not followed, or nothing.
+std::string redirect_fault(const std::string& from, const std::string& to) {
+  const UrlParts here = parts_of(from);
+  const UrlParts there = parts_of(to);
+  if (to.empty() || there.scheme.empty()) return "it redirects to nowhere";
+  if (there.scheme != "http" && there.scheme != "https") {
+    return "it redirects to something that is no web page";
+  }
+  if (there.host != here.host) {
+    return "it redirects to another host, '" + visible(there.host, 100) +
+           "': if that is right, name it in the settings";
+  }
+  if (here.scheme == "https" && there.scheme == "http") {
+    return "it redirects from https to http, where nobody vouches for the answer";
+  }
+  return "";
+}
+
+std::vector<std::string> header_lines(const PollMemory& memory) {
+  std::vector<std::string> lines{"Accept: application/json, */*;q=0.1"};
+  if (!memory.etag.empty()) lines.push_back("If-None-Match: " + memory.etag);
+  if (!memory.last_modified.empty()) {
+    lines.push_back("If-Modified-Since: " + memory.last_modified);
+  }
+  return lines;
+}
+
+/// Asks, following redirects within the host.
+Response ask(const HttpForm& form, const PollMemory& memory, const std::atomic<bool>& stop) {
+  Request request{form.url, header_lines(memory), limits::http_total};
+  Response response;
+  for (int redirects = 0;; ++redirects) {
+    response = transfer(request, stop);
+    request.total -= response.took;
+    if (response.stopped || !response.why.empty() || !is_redirect(response.status)) {
+      return response;
+    }
+    if (redirects == limits::http_redirects) {
+      response.why = "it redirects more than 3 times";
+    } else {
+      response.why = redirect_fault(request.url, response.location);
+    }
+    if (response.why.empty() && request.total <= std::chrono::milliseconds{0}) {
+      response.why = "no whole answer within 20 s";
+    }
+    if (!response.why.empty()) return response;
+    request.url = response.location;
+  }
+}
+
+Answer failed(const PollMemory& memory, Failure trouble) {
+  Answer answer;
+  answer.memory = memory;
+  answer.memory.failures = std::min(memory.failures + 1, 1000);
+  answer.trouble = std::move(trouble);
+  return answer;
+}
+
+Answer failed(const HttpForm& form, const PollMemory& memory, const std::string& why) {
+  return failed(memory, Failure{"read the station over HTTP", shown_url(form.url), why,
+                                "it is asked again later"});
+}
+
+/// An answer 200: fresh, or the same as the one before.
+Answer read_answer(const HttpForm& form, const PollMemory& memory, const Response& response,
+                   Instant now) {
+  PollMemory next;
+  next.etag = response.etag;
+  next.last_modified = response.last_modified;
+  next.last_body_hash = hash_hex(response.body);
+  if (form.record.time.arrival && next.last_body_hash == memory.last_body_hash) {
+    Answer answer;  // no time of its own and no byte changed: nothing says that it is fresh
+    answer.not_modified = true;
+    answer.memory = next;
+    return answer;
+  }
+  Result<Readings> readings = read_json(response.body, shown_url(form.url), form.record, now);
+  if (!readings) return failed(memory, readings.failure());
+  Answer answer;
+  answer.readings = *std::move(readings);
+  answer.memory = next;
+  return answer;
+}
+
+}  // namespace
+
+Answer poll(const HttpForm& form, const PollMemory& memory, const std::function<Instant()>& now,
+            const std::atomic<bool>& stop) {
+  const UrlParts parts = parts_of(form.url);
+  if ((parts.scheme != "http" && parts.scheme != "https") || parts.host.empty()) {
+    return failed(form, memory, "the URL is none of http:// or https://");
+  }
+  const Response response = ask(form, memory, stop);
+  Answer answer;
+  answer.memory = memory;
+  if (response.stopped) return answer;
+  if (!response.why.empty()) return failed(form, memory, response.why);
+  if (response.status == 304) {
+    answer.not_modified = true;
+    answer.memory.failures = 0;
+    return answer;
+  }
+  if (response.status != 200) return failed(form, memory, clause_of(response.status));
+  return read_answer(form, memory, response, now());
+}
+
+Seconds poll_delay(const HttpForm& form, const PollMemory& memory, double jitter01) {
+  if (memory.failures <= 0) return form.every;
+  double delay = static_cast<double>(form.every.count());
+  const double longest = static_cast<double>(limits::longest_back_off.count());
+  for (int i = 0; i < memory.failures && delay < longest; ++i) delay *= 2;
+  delay = std::min(delay, longest);
+  delay *= 1.0 - 0.2 * std::clamp(jitter01, 0.0, 1.0);
+  return std::max(form.every, Seconds{static_cast<Seconds::rep>(delay)});
+}
+
+}  // namespace antherd::station
