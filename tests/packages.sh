@@ -1,3 +1,4 @@
+# shellcheck shell=bash
 # Sourced by tests/run and demo/run: says what is missing on this machine and installs it.
 # Sets nothing but functions whose names begin with "packages_" or "build_".
 
