@@ -94,7 +94,8 @@ Telling learned_late(const Story& story, Instant first, const Change& gravest) {
   for (const Change& change : story.changes) {
     if (change.at >= first) telling.changes.push_back(change);
   }
-  // While it lasts, about stays the late moment: before now, so that record_of tells it from an end.
+  // While it lasts, about stays the late moment: before now, so that record_of tells it from an
+  // end.
   if (!story.open) telling.about = story.changes.back().at;
   return telling;
 }

@@ -1,0 +1,190 @@
+// Silent and doubtful stations: when an episode opens, rises, falls and closes.
+#include "core/alerts/stations.hpp"
+
+#include <cstdio>
+
+#include "support/catch.hpp"
+#include "tale.hpp"
+
+using namespace tale;
+
+namespace {
+
+const Calendar pacific = Calendar::fixed(Seconds{-7 * 3600}, "summer");  // 22:00 is 05:00 UTC
+constexpr double never = 1e6;
+
+StationWatch bench() {
+  StationWatch watch;
+  watch.station = "bench";
+  watch.calendar = &pacific;
+  return watch;
+}
+
+std::vector<Span> span(double from, double to) { return {Span{at(from), at(to)}}; }
+
+// Hours of farm time on 1 July and after.
+double farm(double hour) { return hour + 7; }
+
+std::string told(const std::vector<Episode>& episodes) {
+  std::string text;
+  for (const Episode& e : episodes) {
+    for (const Change& c : e.changes) {
+      const double hour = static_cast<double>((c.at - at(7)).count()) / 3600.0;
+      char line[96];
+      std::snprintf(line, sizeof line, "%s %s@%g ", name_of(c.phase), risk::name_of(c.level), hour);
+      text += line;
+    }
+    text += "| ";
+  }
+  return text;
+}
+
+std::string silent(double last, double back, const std::vector<Span>& window,
+                   const std::vector<Span>& watched, double now) {
+  Silence gap{at(farm(last)), std::nullopt};
+  if (back < never) gap.back = at(farm(back));
+  return told(silences(bench(), std::vector<Silence>{gap}, window, watched, at(farm(now))));
+}
+
+const std::vector<Span> always = span(-10000, 10000);
+
+}  // namespace
+
+TEST_CASE("patience: the settings' wish, three intervals, and what a batch adds") {
+  StationWatch watch = bench();
+  CHECK(patience_of(watch) == Seconds{3600});
+  watch.interval = Seconds{3600};
+  watch.arrives_every = Seconds{3600};
+  CHECK(patience_of(watch) == Seconds{3 * 3600});
+  watch.interval = Seconds{300};
+  watch.arrives_every = Seconds{6 * 3600};
+  CHECK(patience_of(watch) == Seconds{3600 + 6 * 3600 - 300});
+}
+
+TEST_CASE("gaps are longer than the patience; the newest sample begins a silence of its own") {
+  CHECK(silences_from({}, Seconds{3600}).empty());
+  const std::vector<Instant> times{at(3), at(0), at(1), at(1), at(6.5)};
+  const std::vector<Silence> expected{{at(1), at(3)}, {at(3), at(6.5)}, {at(6.5), std::nullopt}};
+  CHECK(silences_from(times, Seconds{3600}) == expected);
+  CHECK(silences_from(times, Seconds{2 * 3600}).size() == 2);
+}
+
+TEST_CASE("a silence by day opens when the patience ends and closes when a sample is back") {
+  CHECK(silent(9, never, {}, always, 9.99).empty());
+  CHECK(silent(9, never, {}, always, 10) == "opened Moderate@10 | ");
+  CHECK(silent(9, 12, {}, always, 11) ==
+        "opened Moderate@10 | ");  // what is back later is not known
+  CHECK(silent(9, 12, {}, always, 12) == "opened Moderate@10 closed none@12 | ");
+  CHECK(silent(9, 10, {}, always, 20).empty());
+  const auto episodes =
+      silences(bench(), std::vector<Silence>{{at(16), at(19.5)}}, {}, always, at(30));
+  REQUIRE(episodes.size() == 1);
+  CHECK(episodes[0].kind == Kind::no_data);
+  CHECK(episodes[0].subject == "bench");
+  CHECK(episodes[0].start == at(16));
+  CHECK(episodes[0].changes[0].figure == 1.0);
+  CHECK(episodes[0].changes[1].figure == 3.5);
+  CHECK(episodes[0].closed == at(19.5));
+  CHECK(episodes[0].peak == Level::moderate);
+  CHECK(episodes[0].level == Level::none);
+}
+
+TEST_CASE("a silence at night waits until six in the morning") {
+  CHECK(silent(21, never, {}, always, 29).empty());
+  CHECK(silent(21, never, {}, always, 30) == "opened Moderate@30 | ");  // 22:00 is night
+  CHECK(silent(20.9, never, {}, always, 30) == "opened Moderate@21.9 | ");
+  CHECK(silent(26, 29.9, {}, always, 40).empty());
+  CHECK(silent(26, 30, {}, always, 40).empty());
+  CHECK(silent(29, never, {}, always, 40) == "opened Moderate@30 | ");  // 06:00 is day
+}
+
+TEST_CASE("severe inside a flowering window, rising when it opens and falling when it closes") {
+  CHECK(silent(9, 12, span(farm(0), farm(48)), always, 50) == "opened Severe@10 closed none@12 | ");
+  CHECK(silent(9, never, span(farm(24), farm(96)), always, 200) ==
+        "opened Moderate@10 raised Severe@30 lowered Moderate@96 | ");
+  CHECK(silent(9, never, span(farm(24), farm(28)), always, 200) == "opened Moderate@10 | ");
+  // two fields in flower, one after the other
+  std::vector<Span> two = span(farm(0), farm(40));
+  two.push_back(Span{at(farm(30)), at(farm(60))});
+  CHECK(silent(9, never, two, always, 200) == "opened Severe@10 lowered Moderate@60 | ");
+}
+
+TEST_CASE("a station is watched only while a field needs it") {
+  CHECK(silent(9, never, {}, {}, 100).empty());
+  CHECK(silent(9, never, {}, span(farm(-100), farm(10)), 100).empty());
+  const auto harvest = silences(bench(), std::vector<Silence>{{at(farm(9)), at(farm(90))}}, {},
+                                span(farm(-100), farm(48)), at(farm(100)));
+  CHECK(told(harvest) == "opened Moderate@10 closed none@48 | ");
+  CHECK(harvest[0].changes.back().detail == season_over);
+  // silent since before the sowing: the first day of the season says so
+  const auto sown = silences(bench(), std::vector<Silence>{{at(farm(9)), std::nullopt}}, {},
+                             span(farm(24), farm(2000)), at(farm(100)));
+  CHECK(told(sown) == "opened Moderate@30 | ");
+  CHECK(sown[0].start == at(farm(24)));
+  CHECK(sown[0].changes[0].figure == 21.0);
+}
+
+namespace {
+std::vector<FailingHour> hours_of(const std::string& check, const std::string& marks) {
+  std::vector<FailingHour> hours;  // x fails, . is well, _ has no data
+  for (std::size_t i = 0; i < marks.size(); ++i) {
+    hours.push_back(FailingHour{hour_of(at(farm(static_cast<double>(i)))), check, marks[i] == 'x',
+                                marks[i] != '_'});
+  }
+  return hours;
+}
+std::string doubt(const std::string& marks, const std::vector<Span>& window = {}) {
+  return told(
+      doubtful("bench", hours_of("temperature stuck", marks), window, always, at(farm(500))));
+}
+}  // namespace
+
+TEST_CASE("six failing hours with data open, six good ones close") {
+  CHECK(doubt("xxxxx.xxxxx").empty());
+  CHECK(doubt("xxxxxx") == "opened none@6 | ");
+  CHECK(doubt("..xxxxxx") == "opened none@8 | ");
+  CHECK(doubt("xxx__xxx") == "opened none@8 | ");  // hours without data count neither way
+  CHECK(doubt("xxxxxx.....x......") == "opened none@6 closed none@18 | ");
+  CHECK(doubt("xxxxxx...___...") == "opened none@6 closed none@15 | ");
+  CHECK(doubt("xxxxxx______") == "opened none@6 | ");  // silence mends nothing
+  CHECK(doubt("xxxxxx......xxxxxx") == "opened none@6 closed none@12 | opened none@18 | ");
+}
+
+TEST_CASE("a doubtful sensor is Moderate in the window") {
+  CHECK(doubt("xxxxxx......", span(farm(0), farm(100))) == "opened Moderate@6 closed none@12 | ");
+  CHECK(doubt("xxxxxx", span(farm(9), farm(20))) ==
+        "opened none@6 raised Moderate@9 lowered none@20 | ");
+  const auto episodes =
+      doubtful("bench", hours_of("temperature stuck", "xxxxxx"), {}, always, at(farm(6)));
+  REQUIRE(episodes.size() == 1);
+  CHECK(episodes[0].start == at(farm(0)));
+  CHECK(episodes[0].changes[0].detail == "temperature stuck");
+  CHECK_FALSE(episodes[0].changes[0].figure);
+  CHECK(doubtful("bench", hours_of("x", "xxxxxx"), {}, always, at(farm(5.9))).empty());
+}
+
+TEST_CASE("checks that fail together are one episode, in whatever order the hours come") {
+  auto hours = hours_of("temperature stuck", "xxxxxx......");
+  const auto more = hours_of("humidity stuck", "xxxxxxxxx......");
+  hours.insert(hours.end(), more.begin(), more.end());
+  const auto one = doubtful("bench", hours, {}, always, at(farm(100)));
+  CHECK(told(one) == "opened none@6 closed none@15 | ");
+  CHECK(one[0].changes[0].detail == "humidity stuck; temperature stuck");
+  std::reverse(hours.begin(), hours.end());
+  CHECK(doubtful("bench", hours, {}, always, at(farm(100))) == one);
+}
+
+TEST_CASE("a silent night in the flowering window reaches the reader at six, once") {
+  Service service;
+  std::string heard;
+  for (double hour = 20; hour <= 40; hour += 1) {
+    std::vector<Instant> samples;
+    for (double t = 0; t <= 21 && t <= hour; t += 0.25) samples.push_back(at(farm(t)));
+    if (hour >= 33) samples.push_back(at(farm(33)));
+    const auto gaps = silences_from(samples, patience_of(bench()));
+    const auto episodes = silences(bench(), gaps, span(farm(0), farm(900)), always, at(farm(hour)));
+    for (const Telling& t : service.tick(episodes, at(farm(hour)))) heard += line(t, hour);
+  }
+  // the single sample of 33:00 is followed by silence again
+  CHECK(heard == "opened Severe@30 ended none@33 opened Severe@34 ");
+}
