@@ -8,7 +8,7 @@ namespace {
 using outbox::Item;
 
 #define ANTHERD_LETTER_COLUMNS                                                                   \
-  "id, identity, recipient, subject, body, kind, severity, decided, valid_until, still, raise, " \
+  "id, identity, recipient, subject, body, kind, severity, decided, valid_until, still, rise, " \
   "state, attempts, doubts, next_try, first_try, ended, answer"
 
 Item read_item(Statement& row) {
@@ -49,7 +49,7 @@ std::vector<Item> read_items(Statement& row) {
 void Store::Inside::put(const std::vector<outbox::Item>& items) {
   Statement statement = database->use(
       "INSERT INTO letter(identity, recipient, subject, body, kind, severity, decided, "
-      "valid_until, still, raise, state, attempts, doubts, next_try, first_try, ended, answer) "
+      "valid_until, still, rise, state, attempts, doubts, next_try, first_try, ended, answer) "
       "VALUES(?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?) "
       "ON CONFLICT(identity, recipient) DO NOTHING");
   for (const Item& item : items) {

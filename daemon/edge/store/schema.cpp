@@ -139,7 +139,7 @@ CREATE TABLE letter(
   decided INTEGER NOT NULL,
   valid_until INTEGER,
   still TEXT NOT NULL,
-  raise INTEGER NOT NULL,
+  rise INTEGER NOT NULL,
   state TEXT NOT NULL,
   attempts INTEGER NOT NULL,
   doubts INTEGER NOT NULL,
