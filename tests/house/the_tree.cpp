@@ -74,6 +74,14 @@ TEST_CASE("the top of the tree is as agreed") {
   CHECK(check_top_level(top_level()) == Complaints{});
 }
 
+TEST_CASE("the letter in the README is one that the program writes") {
+  const std::string letter = text_of("tests/core/letters/expected/heat-opened.txt");
+  REQUIRE(letter.size() > 500);
+  const bool shown = text_of("README.md").find("```\n" + letter + "```\n") != std::string::npos;
+  INFO("paste tests/core/letters/expected/heat-opened.txt between the letter marks of README.md");
+  CHECK(shown);
+}
+
 TEST_CASE("no test vanishes quietly") {
   int count = 0, expected = -1;
   for (const File& file : tree())
