@@ -168,9 +168,9 @@ void CsvReader::read_row(std::string_view row) {
     if (equal_fold(cells_[*columns_.where], form_.where->first)) is_header(row);
     return;  // a row of another station
   }
-  if (cells_.size() < columns_.count) {
+  if (const std::size_t count = cells_.size(); count < columns_.count) {
     if (is_header(row)) return;
-    return refuse(row, "it has " + std::to_string(cells_.size()) + " cells, the header has " +
+    return refuse(row, "it has " + std::to_string(count) + " cells, the header has " +
                            std::to_string(columns_.count));
   }
   weather::Sample sample;
