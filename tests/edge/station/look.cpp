@@ -299,7 +299,7 @@ TEST_CASE("the same file whole or in pieces cut anywhere gives the same") {
   const Readings whole = read_all(text, local_form());
   CHECK(whole.samples.size() == 7);
   CHECK(whole.refused.size() == 4);
-  for (int round = 0; round < 60; ++round) {
+  for (int round = 0; round < 24; ++round) {
     const Folder folder;
     Watch watch(folder, local_form());
     folder.write("a.csv", "");
