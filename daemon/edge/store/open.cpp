@@ -25,7 +25,7 @@ Outcome open_as_service(Inside& inside) {
     const Outcome opened = inside.attempt("open the store", [&] {
       try {
         inside.connect();
-        if (there) inside.check_all();
+        inside.check_all();
         inside.settle_schema();
       } catch (const Trouble& trouble) {
         if (!trouble.damaged()) throw;

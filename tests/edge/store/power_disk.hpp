@@ -1,0 +1,63 @@
+// A disk in memory that can lose its power: what was not forced to it is then forgotten, kept or
+// torn, write by write. It becomes SQLite's default file system while it lives. One connection at a
+// time; locks are granted without asking.
+#pragma once
+
+#include <sqlite3.h>
+
+#include <cstdint>
+#include <map>
+#include <random>
+#include <string>
+#include <vector>
+
+namespace ground {
+
+class PowerDisk {
+ public:
+  explicit PowerDisk(std::uint32_t seed);
+  PowerDisk(const PowerDisk&) = delete;
+  PowerDisk& operator=(const PowerDisk&) = delete;
+  ~PowerDisk();
+
+  /// The power goes at the n-th write, truncation or forced write from now.
+  void cut_after(int operations) { left_ = operations; }
+  bool dead() const { return dead_; }
+  /// The power comes back: the disk holds what was forced, and what chance left of the rest.
+  void revive();
+  /// A disk that lies: forced writes to files of this ending are acknowledged and not done.
+  void lie_about(std::string ending) { lied_about_ = std::move(ending); }
+
+  struct Write {
+    bool truncation = false;
+    std::int64_t at = 0;  // of a truncation: the new size
+    std::string bytes;
+  };
+  struct File {
+    std::string now;                        // as the running system sees it
+    std::string durable;                    // as it surely is after a cut
+    std::vector<Write> pending;             // not forced yet
+    std::vector<std::vector<char>> shared;  // the log's index, memory only
+  };
+  struct Tally {
+    int cuts = 0, kept = 0, forgotten = 0, torn = 0, syncs = 0;
+  };
+  const Tally& tally() const { return tally_; }
+
+  // For the functions that SQLite calls.
+  std::map<std::string, File>& files() { return files_; }
+  bool count_down();
+  void change(File& file, Write write);
+  bool force(const std::string& name, File& file);
+
+ private:
+  std::map<std::string, File> files_;
+  std::mt19937 random_;
+  int left_ = 0;
+  bool dead_ = false;
+  std::string lied_about_;
+  Tally tally_;
+  sqlite3_vfs vfs_{};
+};
+
+}  // namespace ground
