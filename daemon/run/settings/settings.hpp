@@ -81,6 +81,7 @@ struct Complaint {
   std::string got;        // "degX"
   std::string allowed;    // "degC, degF or K"
   std::string example;    // 'temperature = { column = "temp_f", unit = "degF" }'
+  std::string advice;     // instead of `allowed`, in words of its own: 'did you mean "rain"?'
   std::string sentence() const;   // "antherd.toml:31: …"
 };
 

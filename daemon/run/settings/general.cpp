@@ -1,0 +1,95 @@
+// The tables of the farm, the store, the log, the alerts and the diary.
+#include <chrono>
+
+#include "edge/clock/clock.hpp"
+#include "run/settings/parts.hpp"
+#include "run/settings/quantities.hpp"
+
+namespace antherd::settings {
+namespace {
+
+constexpr std::size_t longest_farm_name = 60;  // it stands in letters of 78 columns
+constexpr Seconds one_day{86400};
+
+}  // namespace
+
+void read_farm(Work& work) {
+  const Wanted name{"the farm's name, at most 60 characters", "name = \"Larkspur Bench\""};
+  const Wanted zone{"the farm's time zone by its IANA name", "time_zone = \"America/Los_Angeles\""};
+  const auto farm = section(work, "farm");
+  if (!farm) {
+    if (work.root.find("farm") == nullptr) {
+      work.faults.complaints.push_back({work.faults.file, 1, "[farm]", "",
+                                        "a table with the farm's name and time zone",
+                                        "[farm] with name = \"Larkspur Bench\" and "
+                                        "time_zone = \"America/Los_Angeles\" below it",
+                                        ""});
+    }
+    return;
+  }
+  work.settings.farm = farm->name("name", longest_farm_name, name, true).value_or("");
+  if (const auto zone_name = farm->text("time_zone", zone, true)) {
+    const Result<Calendar> calendar = clock::calendar_of(*zone_name);
+    if (calendar) {
+      work.settings.calendar = *calendar;
+    } else {
+      const Failure& why = calendar.failure();
+      farm->object("time_zone", in_quotes(*zone_name), why.why + "; " + why.what_next,
+                   zone.example);
+    }
+  }
+  const Words<letters::Units> units{{"us", letters::Units::us}, {"metric", letters::Units::metric}};
+  work.settings.units =
+      farm->choice("units", units, "units = \"us\"").value_or(letters::Units::metric);
+  work.settings.exercise = farm->truth("exercise").value_or(false);
+}
+
+void read_store_and_log(Work& work) {
+  work.settings.store_folder = "/var/lib/antherd";
+  if (const auto store = section(work, "store")) {
+    if (const auto folder = path_of(work, *store, "folder", false)) {
+      work.settings.store_folder = *folder;
+    }
+    // The morning outlook fits 45 days; hours are kept for ever, so samples may go after that.
+    work.settings.keep_samples =
+        store
+            ->quantity(
+                "keep_samples", parse_duration, 30 * one_day, 36'525 * one_day,
+                {"a duration from 30 d to 36525 d, with its unit", "keep_samples = \"400 d\""})
+            .value_or(work.settings.keep_samples);
+  }
+  if (const auto log = section(work, "log")) {
+    work.settings.log.file = path_of(work, *log, "file", false).value_or("");
+    const Words<std::string> levels{
+        {"debug", "debug"}, {"info", "info"}, {"warning", "warning"}, {"error", "error"}};
+    work.settings.log.level = log->choice("level", levels, "level = \"info\"").value_or("info");
+  }
+}
+
+void read_alerts(Work& work) {
+  const auto alerts = section(work, "alerts");
+  if (!alerts) return;
+  const Words<risk::Level> levels{{"Moderate", risk::Level::moderate},
+                                  {"Severe", risk::Level::severe},
+                                  {"Extreme", risk::Level::extreme}};
+  work.settings.policy.min_level =
+      alerts->choice("min_severity", levels, "min_severity = \"Moderate\"")
+          .value_or(risk::Level::moderate);
+  work.settings.policy.remind_after =
+      alerts
+          ->quantity("remind_after", parse_duration, one_hour, 30 * one_day,
+                     {"a duration from 1 h to 30 d, with its unit", "remind_after = \"24 h\""})
+          .value_or(work.settings.policy.remind_after);
+  if (alerts->has("folder")) {
+    alerts->object("folder", shown(*alerts->find("folder")),
+                   "alerts as CAP files are not in this version; remove the line");
+  }
+}
+
+void read_diary(Work& work) {
+  const auto diary = section(work, "diary");
+  if (!diary) return;
+  work.settings.diary_folder = path_of(work, *diary, "folder", true).value_or("");
+}
+
+}  // namespace antherd::settings
