@@ -1,6 +1,7 @@
 // From judged values to hours; see gather in hour.hpp. One pass in time order.
 // This file must not know what an hour is used for.
 #include <algorithm>
+#include <chrono>
 #include <cmath>
 #include <cstddef>
 #include <tuple>
@@ -17,6 +18,9 @@ namespace {
 
 constexpr double dry_air = 50.0;        // %, mean of the hour
 constexpr double rain_to_wonder = 0.5;  // mm in the hour
+
+static_assert(longest_rain_gap + one_hour <= context_before &&
+              longest_rain_gap <= hours_touched_after);
 
 double rounded(double value) { return std::round(value * 1e6) / 1e6; }
 
@@ -182,18 +186,15 @@ const Judged* at_sample(const Series& series, std::size_t& cursor, std::size_t p
   return found ? &series[cursor] : nullptr;
 }
 
-}  // namespace
-
-std::vector<Hour> gather(std::span<const Sample> samples, const Station& station, HourStart from,
-                         HourStart to) {
-  ANTHERD_CHECK(station.interval > Seconds{0});
+/// Adds the hours of one span of time; `samples` hold it and its context.
+void gather_span(std::span<const Sample> samples, const Station& station, HourStart from,
+                 HourStart to, std::vector<Hour>& hours) {
   Series temperature = judge_temperature(samples);
   Series humidity = judge_humidity(samples, temperature);
   judge_stuck(temperature, humidity, station.interval);
 
   // A sample stamped at the end of its interval speaks of the time before.
   const Seconds shift = station.stamp == Stamp::end ? station.interval : Seconds{0};
-  std::vector<Hour> hours;
   RainGauge gauge(station);
   WholeDegrees whole_degrees(temperature, shift);
   HourMaker maker(station);
@@ -220,6 +221,34 @@ std::vector<Hour> gather(std::span<const Sample> samples, const Station& station
     maker.add_others(sample);
   }
   close();
+}
+
+/// What is made at once: a long record needs no more memory than this and its context.
+constexpr std::chrono::hours span_length{24 * 14};
+
+/// The samples of [from, to), found by their time order.
+std::span<const Sample> between(std::span<const Sample> samples, Instant from, Instant to) {
+  const auto earlier = [](const Sample& sample, Instant time) { return sample.time < time; };
+  const auto first = std::lower_bound(samples.begin(), samples.end(), from, earlier);
+  return {first, std::lower_bound(first, samples.end(), to, earlier)};
+}
+
+}  // namespace
+
+std::vector<Hour> gather(std::span<const Sample> samples, const Station& station, HourStart from,
+                         HourStart to) {
+  ANTHERD_CHECK(station.interval > Seconds{0});
+  std::vector<Hour> hours;
+  if (samples.empty()) return hours;
+  // Only where there are samples: a caller may ask for all time.
+  from = std::max(from, hour_of(samples.front().time - station.interval));
+  to = std::min(to, hour_of(samples.back().time) + std::chrono::hours{1});
+  while (from < to) {
+    const HourStart next = std::min(to, from + span_length);
+    gather_span(between(samples, Instant(from) - context_before, Instant(next) + context_after),
+                station, from, next, hours);
+    from = next;
+  }
   return hours;
 }
 

@@ -6,6 +6,7 @@
 #include <chrono>
 #include <cmath>
 #include <cstddef>
+#include <utility>
 
 #include "core/failures/result.hpp"
 #include "core/weather/air.hpp"
@@ -26,9 +27,9 @@ constexpr Seconds chain_block{3 * 3600};
 constexpr std::size_t none = static_cast<std::size_t>(-1);
 
 /// How far `to` is from `from` as a multiple of the limit; nothing where there is no test.
-std::optional<double> jump(const Judged& from, const Judged& to, SpikeLimit limit_of) {
+std::optional<double> jump(const Judged& from, const Judged& to, const SpikeLimit& limits) {
   const Seconds apart = from.time < to.time ? to.time - from.time : from.time - to.time;
-  const auto limit = limit_of(apart);
+  const auto limit = limits.by_time(apart);
   if (!limit) return std::nullopt;
   const double difference = to.value - from.value;
   const double size = std::abs(difference);
@@ -38,11 +39,11 @@ std::optional<double> jump(const Judged& from, const Judged& to, SpikeLimit limi
 
 /// The marks of a value between two neighbours, either of which may be absent.
 Marks spike_marks(const Judged& value, const Judged* earlier, const Judged* later,
-                  SpikeLimit limit_of) {
-  if (!earlier) return 0;
-  const auto before = jump(*earlier, value, limit_of);
+                  const SpikeLimit& limit) {
+  if (!earlier || std::abs(value.value - earlier->value) <= limit.least) return 0;
+  const auto before = jump(*earlier, value, limit);
   if (!before || *before == 0.0) return 0;
-  const auto after = later ? jump(*later, value, limit_of) : std::nullopt;
+  const auto after = later ? jump(*later, value, limit) : std::nullopt;
   // Only what is near enough to test against can confirm; a value left alone stays in doubt.
   if (!after) return mark_unconfirmed;
   if (*after == 0.0 || (*after > 0.0) != (*before > 0.0)) return 0;
@@ -61,8 +62,10 @@ std::vector<std::uint32_t> standing_places(const Series& series) {
 }
 
 /// First pass: in time order, so that a value judged wrong is no earlier neighbour to the next.
-void find_wrong_spikes(Series& series, const std::vector<std::uint32_t>& places,
-                       SpikeLimit limit_of) {
+/// Whether there was any.
+bool find_wrong_spikes(Series& series, const std::vector<std::uint32_t>& places,
+                       const SpikeLimit& limit) {
+  bool found = false;
   std::size_t earlier = none;
   auto block = std::chrono::sys_seconds::min();
   for (std::size_t k = 0; k < places.size(); ++k) {
@@ -73,12 +76,14 @@ void find_wrong_spikes(Series& series, const std::vector<std::uint32_t>& places,
     }
     const Judged* before = earlier == none ? nullptr : &series[earlier];
     const Judged* after = k + 1 < places.size() ? &series[places[k + 1]] : nullptr;
-    if (spike_marks(value, before, after, limit_of) == mark_spike_wrong) {
+    if (spike_marks(value, before, after, limit) == mark_spike_wrong) {
       value.marks |= mark_spike_wrong;
+      found = true;
     } else {
       earlier = places[k];
     }
   }
+  return found;
 }
 
 /// The humidity of a sample that reports a dew point. Nothing where its temperature is unusable.
@@ -117,17 +122,17 @@ std::optional<double> humidity_spike_limit(Seconds apart) {
   return std::nullopt;
 }
 
-void judge_spikes(Series& series, SpikeLimit limit_of) {
-  const auto before = standing_places(series);
-  find_wrong_spikes(series, before, limit_of);
+void judge_spikes(Series& series, const SpikeLimit& limit) {
+  auto before = standing_places(series);
+  const bool found = find_wrong_spikes(series, before, limit);
   // Second pass, among those that stand after the first: a wild neighbour that came later is out
   // of the way now too.
-  const auto places = standing_places(series);
+  const auto places = found ? standing_places(series) : std::move(before);
   for (std::size_t k = 0; k < places.size(); ++k) {
     Judged& value = series[places[k]];
     const Judged* earlier = k > 0 ? &series[places[k - 1]] : nullptr;
     const Judged* later = k + 1 < places.size() ? &series[places[k + 1]] : nullptr;
-    value.marks |= spike_marks(value, earlier, later, limit_of);
+    value.marks |= spike_marks(value, earlier, later, limit);
   }
 }
 
@@ -144,7 +149,7 @@ Series judge_temperature(std::span<const Sample> samples) {
     if (!temperature_range.holds(judged.value)) judged.marks = mark_out_of_range;
     series.push_back(judged);
   }
-  judge_spikes(series, temperature_spike_limit);
+  judge_spikes(series, {3.0, temperature_spike_limit});
   return series;
 }
 
@@ -171,7 +176,7 @@ Series judge_humidity(std::span<const Sample> samples, const Series& temperature
     judged->sample = static_cast<std::uint32_t>(i);
     series.push_back(*judged);
   }
-  judge_spikes(series, humidity_spike_limit);
+  judge_spikes(series, {15.0, humidity_spike_limit});
   return series;
 }
 

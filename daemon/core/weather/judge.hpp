@@ -59,7 +59,10 @@ constexpr double saturation_doubt = 102.0;  // %: above it the value is suspect
 constexpr double dew_rounding = 0.5;        // °C that a dew point may be above the air
 
 /// Spike limit of one element by the time between two values; nothing where there is no test.
-using SpikeLimit = std::optional<double> (*)(Seconds apart);
+struct SpikeLimit {
+  double least;  // of all its limits: what differs by no more needs no look at the clock
+  std::optional<double> (*by_time)(Seconds apart);
+};
 std::optional<double> temperature_spike_limit(Seconds apart);  // °C
 std::optional<double> humidity_spike_limit(Seconds apart);     // %
 
@@ -75,7 +78,7 @@ Series judge_humidity(std::span<const Sample> samples, const Series& temperature
 /// wrong, both ways the same sign, each by more than the limit of its own time apart; wrong where
 /// both differences exceed twice their limits. A jump from the earlier neighbour with no later one
 /// near enough to test against is unconfirmed.
-void judge_spikes(Series& series, SpikeLimit limit_of);
+void judge_spikes(Series& series, const SpikeLimit& limit);
 
 /// Marks values that end a stretch in which the sensor did not move (science §3, "stuck"): those
 /// from the fulfilment of the 6, 12 or 24 hours on, not the ones that led to it.

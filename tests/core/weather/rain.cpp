@@ -86,6 +86,17 @@ TEST_CASE("a silence beyond 30 h starts a counter anew") {
   CHECK(rain_at(list, 60h) == 0.0);
 }
 
+TEST_CASE("the longest silence of a counter lies within the stated reach") {
+  auto readings = drops({{0s, 10.0}, {29h + 30min, 14.0}});
+  const auto before = all_hours(readings, gauge(RainMeaning::counter));
+  readings[0].rain = Millimetre(11.0);
+  const auto after = all_hours(readings, gauge(RainMeaning::counter));
+  CHECK(rain_at(before, 29h) == 4.0);
+  CHECK(rain_at(after, 29h) == 3.0);
+  CHECK(hour_of(start + hours_touched_after) >= hour_of(start + 29h));
+  CHECK(hour_of(start + 29h) - context_before < start);
+}
+
 TEST_CASE("a counter that leaps beyond any rain books nothing") {
   const auto list =
       all_hours(drops({{0s, 10.0}, {15min, 6500.0}, {30min, 6500.2}}), gauge(RainMeaning::counter));
