@@ -9,7 +9,7 @@ std::string irrigation_csv() {
 north bench,2026-06-02 08:00,2026-06-02 11:00,overhead,0.4 in,1
 north bench,2026-06-10 08:00,2026-06-10 11:00,overhead,0.4 in,1
 north bench,2026-06-18 08:00,2026-06-18 11:00,overhead,0.5 in,1
-north bench,2026-06-28 08:00,2026-06-28 11:00,overhead,0.5 in,1
+north bench,2026-06-27 08:00,2026-06-27 11:00,overhead,0.5 in,1
 north bench,2026-07-04 08:00,2026-07-04 11:00,overhead,0.5 in,1
 north bench,2026-07-09 20:00,2026-07-09 23:00,overhead,0.3 in,1
 north bench,2026-07-10 20:00,2026-07-10 23:00,overhead,0.3 in,1
@@ -18,15 +18,17 @@ north bench,2026-07-12 20:00,2026-07-12 23:00,overhead,0.3 in,1
 north bench,2026-07-13 20:00,2026-07-13 23:00,overhead,0.3 in,1
 north bench,2026-07-22 08:00,2026-07-22 11:00,overhead,0.5 in,1
 north bench,2026-07-29 08:00,2026-07-29 11:00,overhead,0.5 in,1
+north bench,2026-08-05 08:00,2026-08-05 11:00,overhead,0.4 in,1
 creek field,2026-06-05 06:00,2026-06-05 18:00,drip,0.5 in,0
 creek field,2026-06-13 06:00,2026-06-13 18:00,drip,0.5 in,0
 creek field,2026-06-19 06:00,2026-06-19 18:00,drip,0.5 in,0
-creek field,2026-06-28 06:00,2026-06-28 18:00,drip,0.5 in,0
+creek field,2026-06-27 06:00,2026-06-27 18:00,drip,0.5 in,0
 creek field,2026-07-05 06:00,2026-07-05 18:00,drip,0.6 in,0
 creek field,2026-07-11 06:00,2026-07-11 18:00,drip,0.6 in,0
 creek field,2026-07-17 06:00,2026-07-17 18:00,drip,0.6 in,0
 creek field,2026-07-24 06:00,2026-07-24 18:00,drip,0.6 in,0
 creek field,2026-07-31 06:00,2026-07-31 18:00,drip,0.6 in,0
+creek field,2026-08-07 06:00,2026-08-07 18:00,drip,0.5 in,0
 )";
 }
 

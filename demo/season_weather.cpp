@@ -258,7 +258,9 @@ std::vector<Weather> creek_weather(const std::vector<Weather>& bench) {
     const double light = std::min(1.0, w.solar_wm2 / 400.0);
     const double vapour = saturation(w.temperature) * w.humidity / 100.0 * 1.03;
     w.temperature -= 1.6 - 0.3 * light;
-    w.humidity = std::min(100.0, 100.0 * vapour / saturation(w.temperature));
+    // even in fog the instrument moves a little: only the bench's is ever stuck
+    const double most = 70.0 + 0.3 * w.humidity;
+    w.humidity = std::min(most, 100.0 * vapour / saturation(w.temperature));
     w.wind_ms *= 0.7;
     w.rain_mm = rain;
     rain = 0.0;
