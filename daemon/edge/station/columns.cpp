@@ -42,7 +42,7 @@ class Search {
       ++found_;
       return found.front();
     }
-    const std::string shown = "'" + visible(name, 60) + "' (" + what + ")";
+    const std::string shown = quoted(name, 60) + " (" + what + ")";
     (found.empty() ? lacking_ : doubled_) +=
         (found.empty() ? lacking_ : doubled_).empty() ? shown : ", " + shown;
     return 0;

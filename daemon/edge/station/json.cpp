@@ -112,7 +112,7 @@ class Answered {
     const auto check = [&](const std::string& pointer) -> std::optional<Failure> {
       const auto fault = pointer_fault(pointer);
       if (!fault) return std::nullopt;
-      return no_answer(url_, "'" + visible(pointer, 60) + "': " + *fault,
+      return no_answer(url_, quoted(pointer, 60) + ": " + *fault,
                        "write pointers like \"/obs/t\" (RFC 6901)");
     };
     if (!form_.time.arrival) {
@@ -146,7 +146,8 @@ class Answered {
                              visible(pointer, 60),
                          "the answer was not used");
       }
-      text += (text.empty() ? "" : " ") + text_of(*node);
+      if (!text.empty()) text += ' ';
+      text += text_of(*node);
     }
     std::string reason;
     const auto at = reader->read(trim(text), reason);

@@ -67,7 +67,7 @@ std::optional<Failure> Recipe::add(Element element, const char* word, const Valu
     measures_.push_back(Measure{element, word, form.at, scale});
     return std::nullopt;
   }
-  return unusable(word, "the unit '" + visible(form.unit, 20) + "' does not measure it",
+  return unusable(word, "the unit " + quoted(form.unit, 20) + " does not measure it",
                   "allowed: " + allowed);
 }
 
@@ -81,8 +81,7 @@ Result<Recipe> Recipe::make(const RecordForm& form) {
   if (form.wet_when) {
     const std::string& sign = form.wet_when->comparison;
     if (sign != ">=" && sign != ">" && sign != "<=" && sign != "<") {
-      return unusable("wet_when", "'" + visible(sign, 20) + "' compares nothing",
-                      "write it like \">= 7\"");
+      return unusable("wet_when", quoted(sign, 20) + " compares nothing", "write it like \">= 7\"");
     }
   }
   const std::pair<const std::optional<ValueForm>&, std::pair<Element, const char*>> wanted[] = {

@@ -76,6 +76,13 @@ std::string visible(std::string_view text, std::size_t most) {
   return shown;
 }
 
+std::string quoted(std::string_view text, std::size_t most) {
+  std::string shown(1, '\'');
+  shown += visible(text, most);
+  shown += '\'';
+  return shown;
+}
+
 NumberFault read_number(std::string_view text, bool decimal_comma, double& number) {
   char buffer[limits::number_bytes];
   if (text.size() > sizeof buffer || text.empty()) return NumberFault::not_a_number;
@@ -104,17 +111,17 @@ NumberFault read_number(std::string_view text, bool decimal_comma, double& numbe
 }
 
 std::string say(NumberFault fault, std::string_view text) {
-  const std::string quoted = "'" + visible(text, 40) + "'";
+  const std::string shown = quoted(text, 40);
   switch (fault) {
     case NumberFault::not_finite:
-      return quoted + " is not a finite number";
+      return shown + " is not a finite number";
     case NumberFault::too_large:
-      return quoted + " is beyond any value that can be measured";
+      return shown + " is beyond any value that can be measured";
     case NumberFault::not_a_number:
     case NumberFault::none:
       break;
   }
-  return quoted + " is not a number";
+  return shown + " is not a number";
 }
 
 std::string hash_hex(std::string_view bytes) {

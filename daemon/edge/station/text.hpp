@@ -20,6 +20,9 @@ bool equal_fold(std::string_view a, std::string_view b);
 /// that are no UTF-8 are shown as \xNN, never cut inside a character.
 std::string visible(std::string_view text, std::size_t most = limits::refused_text_bytes);
 
+/// The same between single quotes.
+std::string quoted(std::string_view text, std::size_t most);
+
 enum class NumberFault { none, not_a_number, not_finite, too_large };
 
 /// The whole text as one finite number of magnitude ≤ limits::largest_value; a leading + is read.

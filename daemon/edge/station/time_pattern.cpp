@@ -245,8 +245,7 @@ bool TimeReader::read_pattern(std::string_view text, Clock& clock, std::string& 
     ++at;
   }
   if (at != end) {
-    reason = "'" + visible(std::string_view(at, static_cast<std::size_t>(end - at)), 20) +
-             "' is left over";
+    reason = quoted(std::string_view(at, static_cast<std::size_t>(end - at)), 20) + " is left over";
     return false;
   }
   return true;

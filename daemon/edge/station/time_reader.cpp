@@ -65,7 +65,7 @@ std::optional<Instant> TimeReader::read_unix(std::string_view text, std::string&
     while (at != end && *at >= '0' && *at <= '9') ++at;
   }
   if (!good || at != end) {
-    reason = "'" + visible(text, 40) + "' is no Unix time";
+    reason = quoted(text, 40) + " is no Unix time";
     return std::nullopt;
   }
   const std::int64_t seconds = form_ == Form::unix_ms ? number / 1000 : number;
@@ -74,7 +74,7 @@ std::optional<Instant> TimeReader::read_unix(std::string_view text, std::string&
            value < limits::end_instant.time_since_epoch().count();
   };
   if (!century(seconds)) {
-    reason = "'" + visible(text, 40) + "' is outside the years 2000 to 2099";
+    reason = quoted(text, 40) + " is outside the years 2000 to 2099";
     if (form_ == Form::unix_s && century(number / 1000))
       reason += " (in milliseconds: \"unix_ms\")";
     return std::nullopt;
