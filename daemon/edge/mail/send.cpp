@@ -179,9 +179,11 @@ bool is_loopback(const std::string& host) {
 }
 
 Transport transport_of_certificate(CURL* handle) {
-  long verdict = 0;  // OpenSSL's numbers: 9 not yet valid, 10 expired, 0 sound but another name's
+  // OpenSSL's numbers: 9 not yet valid, 10 expired. A chain that is sound but bears another name
+  // never gets as far as a number: it stays at 0, or at the 1 that libcurl begins with.
+  long verdict = 0;
   curl_easy_getinfo(handle, CURLINFO_SSL_VERIFYRESULT, &verdict);
-  if (verdict == 0) return Transport::wrong_name;
+  if (verdict == 0 || verdict == 1) return Transport::wrong_name;
   if (verdict == 9) return Transport::certificate_not_yet;
   if (verdict == 10) return Transport::certificate_expired;
   return Transport::unknown_authority;
