@@ -21,7 +21,8 @@ std::string field_line(const FieldStatus& status, const Words& words) {
     said.push_back("no temperature today");
   }
   if (today.hours_35) {
-    said.push_back(std::to_string(*today.hours_35) + glue + "h at " +
+    said.push_back((*today.hours_35 == 0 ? std::string("no hour at ")
+                                         : std::to_string(*today.hours_35) + glue + "h at ") +
                    words.threshold(rules.severe) + " or more");
   }
   said.push_back("heat " + level_word(today.level));
@@ -31,7 +32,9 @@ std::string field_line(const FieldStatus& status, const Words& words) {
     said.push_back("sprinklers before " + std::to_string(status.humid.night_sets_last_five) +
                    " of 5 mornings");
   }
-  said.push_back(status.data.hours_missing_24 == 0
+  const std::string unseen = unseen_since(status, words);
+  said.push_back(!unseen.empty() ? unseen
+                 : status.data.hours_missing_24 == 0
                      ? "data complete"
                      : count(status.data.hours_missing_24, "hour") + " of 24 missing");
   std::string text = plain(status.field) + ": " + flower_state(status) + "; ";
@@ -45,6 +48,7 @@ std::string short_line(const FieldStatus& status, const Words& words) {
   text += today.t_max ? words.temperature_number(*today.t_max, words.heat_rules(status.field)) +
                             (words.desk().units == Units::us ? "F" : "C")
                       : "no data";
+  if (!unseen_since(status, words).empty()) text += " (old)";
   return text + " heat " + level_word(today.level) + " mildew " +
          level_word(status.humid.last ? status.humid.last->level : Level::none);
 }

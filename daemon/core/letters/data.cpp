@@ -70,14 +70,24 @@ std::string flag_words(const weather::Flag& flag) {
   return element_words(flag.element) + " " + reason_words(flag.reason) + " (" + used + ")";
 }
 
+std::string unseen_since(const FieldStatus& status, const Words& words) {
+  constexpr Seconds stale{2 * 3600};
+  const auto& last = status.data.last_reading;
+  if (!last) return "nothing seen yet";
+  return words.desk().now - *last < stale ? "" : "nothing seen since " + words.closing(*last);
+}
+
 std::string data_paragraph(const FieldStatus& status, const Words& words, bool heat) {
   const season::DataStatus& data = status.data;
   std::vector<std::string> said;
   const std::string station = plain(data.station);
+  const std::string unseen = unseen_since(status, words);
+  if (!unseen.empty()) said.push_back(capital(unseen) + ".");
   if (data.hours_missing_24 > 0) {
-    said.push_back(count(data.hours_missing_24, "hour") +
+    said.push_back((station.empty() ? "" : "Station " + station + ", ") +
+                   count(data.hours_missing_24, "hour") +
                    " of the last 24 missing: what happened then is not known.");
-  } else if (!station.empty()) {
+  } else if (!station.empty() && unseen.empty()) {
     said.push_back("Station " + station + ", the last 24 h complete.");
   }
   said.push_back(flags_sentence(data.flags_24));

@@ -111,6 +111,14 @@ std::string flower_state(const FieldStatus& status) {
   return flower_tag(status);
 }
 
+Section flower_section(const FieldStatus& status, const Words& words) {
+  Section section{"FLOWER", flower_paragraph(status, words), {}, true, {}};
+  if (status.watch == Watch::watched && !status.flower.known) {
+    section.commands = {scout_command(status.field, "--stage first-anthers")};
+  }
+  return section;
+}
+
 std::string flower_paragraph(const FieldStatus& status, const Words& words) {
   const FlowerStatus& flower = status.flower;
   if (status.watch != Watch::watched) return "The field is not watched now.";

@@ -9,18 +9,6 @@ namespace {
 
 using season::HeatDay;
 
-std::string saying_tag(const Telling& telling) {
-  switch (telling.saying) {
-    case Saying::reminder:
-      return " reminder";
-    case Saying::eased:
-    case Saying::ended:
-      return " eased";
-    default:
-      return "";
-  }
-}
-
 /// "97 °F by 4 pm".
 std::string figure_and_time(const Telling& telling, const Words& words) {
   const std::string by = "by " + words.closing(telling.about);
@@ -95,6 +83,10 @@ std::string heat_so_far(const Telling& telling, const FieldStatus& status, const
       said.push_back("What makes it " + level_word(day->weather_level) + ": " + why + ".");
     }
     said.push_back(shoulder_words(*day, status));
+    if (day->level < telling.level && telling.saying == Saying::reminder) {
+      said.push_back("Today by itself is " + level_word(day->level) +
+                     " so far; the warning falls at the day's end.");
+    }
   }
   said.push_back(yesterday_words(status, words, told));
   return join(said);
@@ -122,11 +114,8 @@ std::string harm(const FieldStatus& status, const Words& words) {
   std::vector<std::string> said{
       "Somewhere from little to heavy; trials disagree, also between "
       "varieties."};
-  const std::string limit = words.threshold(words.heat_rules(status.field).severe);
   if (status.flower.known && status.heat.exposed_share > 0) {
-    said.push_back("Exposed: " + in_hundred(status.heat.exposed_share) +
-                   " of the season's flowers opened on days with an hour at " + limit +
-                   " or more.");
+    said.push_back("Exposed so far: " + exposed_words(status, words) + ".");
   }
   if (status.flower.known && status.heat.today.flower_share > 0) {
     said.push_back("Today's share of the season's flowers: " +
@@ -151,7 +140,7 @@ Section look(const FieldStatus& status) {
   }
   section.text =
       "Tomorrow before 9 am, in the cool: are yellow anthers out, are they plump or "
-      "dried up? In 10 days, open clusters on 20 heads: how many hold a swelling "
+      "dried up? In 10 to 14 days, open clusters on 20 heads: how many hold a swelling "
       "seed? Note both.";
   section.commands = {scout_command(status.field, "--stage full-flower"),
                       scout_command(status.field, "--seed-set 14/20")};
@@ -183,14 +172,12 @@ std::string decided_still(const Telling& telling, const Words& words) {
 
 void eased_sections(Part& part, const Telling& telling, const FieldStatus& status,
                     const Words& words) {
-  const std::string limit = words.threshold(words.heat_rules(status.field).severe);
   std::vector<std::string> harm_said{
       "Easing does not undo what open flowers met: somewhere from "
       "little to heavy; trials disagree."};
   if (status.flower.known && status.heat.exposed_share > 0) {
-    harm_said.push_back("Exposed so far: " + in_hundred(status.heat.exposed_share) +
-                        " of the season's flowers opened on days with an hour at " + limit +
-                        " or more (" + count(status.heat.hot_days, "day") + ").");
+    harm_said.push_back("Exposed so far: " + exposed_words(status, words) + " (" +
+                        count(status.heat.hot_days, "day") + ").");
   }
   part.sections = {
       {"HEAT",
@@ -198,7 +185,7 @@ void eased_sections(Part& part, const Telling& telling, const FieldStatus& statu
            yesterday_words(status, words, CivilDay{}),
        {},
        true},
-      {"FLOWER", flower_paragraph(status, words), {}, true},
+      flower_section(status, words),
       {"HARM", join(harm_said), {}, true},
       {"MILDEW", mildew_side(status, words), {}, true},
       {"WATER", water_in_heat(status, words), {}, true},
@@ -226,8 +213,8 @@ Part heat_part(const Telling& telling, const Words& words) {
   if (status == nullptr) {
     part = unknown_field(telling, words);
   } else if (eased) {
-    part.rest = "since " + words.closing(telling.about) + ", " + flower_tag(*status);
-    part.first = plain(telling.subject) + ": " + flower_state(*status) + ", heat eased " +
+    part.rest = "by " + words.closing(telling.about) + ", " + flower_tag(*status);
+    part.first = plain(telling.subject) + ": " + flower_state(*status) + ", heat eased by " +
                  words.closing(telling.about) + ".";
     part.tonight = tonight_and_mildew(*status);
     eased_sections(part, telling, *status, words);
@@ -235,11 +222,13 @@ Part heat_part(const Telling& telling, const Words& words) {
   } else {
     part.rest = figure_and_time(telling, words) + ", " + flower_tag(*status);
     part.first = plain(telling.subject) + ": " + flower_state(*status) + ", " +
-                 figure_and_time(telling, words) + ". Heat " + level_word(telling.level) + ".";
+                 figure_and_time(telling, words) + ". Heat " +
+                 (telling.saying == Saying::reminder ? "still " : "") + level_word(telling.level) +
+                 ".";
     part.tonight = tonight_and_mildew(*status);
     part.sections = {
         {"HEAT", heat_so_far(telling, *status, words), {}, true},
-        {"FLOWER", flower_paragraph(*status, words), {}, true},
+        flower_section(*status, words),
         {"HARM", harm(*status, words), {}, true},
         {"MILDEW", mildew_side(*status, words), {}, true},
         {"WATER", water_in_heat(*status, words), {}, true},
@@ -251,9 +240,9 @@ Part heat_part(const Telling& telling, const Words& words) {
          true}};
     part.brief = tonight_in_brief(*status) + " Look in the cool.";
   }
-  part.lead = "Heat " + (eased ? level_word(telling.peak) : severity_word(telling.severity)) +
-              saying_tag(telling);
-  if (eased) part.lead = "Heat eased";
+  part.lead = eased                                ? "Heat eased from " + level_word(telling.peak)
+              : telling.saying == Saying::reminder ? "Heat still " + severity_word(telling.severity)
+                                                   : "Heat " + severity_word(telling.severity);
   part.name = plain(telling.subject);
   part.next = next_words(telling, words);
   part.still = decided_still(telling, words);
@@ -281,7 +270,7 @@ Part heat_ahead_part(const Telling& telling, const Words& words) {
                       "from a forecast. The afternoon may turn out cooler or hotter.",
                       {},
                       true},
-                     {"FLOWER", flower_paragraph(*status, words), {}, true},
+                     flower_section(*status, words),
                      {"MILDEW", mildew_side(*status, words), {}, true},
                      {"WATER", water_in_heat(*status, words), {}, true},
                      look(*status),

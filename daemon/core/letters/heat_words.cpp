@@ -10,6 +10,14 @@ const season::HeatDay* heat_day_at(const FieldStatus& status, CivilDay day) {
   return nullptr;
 }
 
+std::string exposed_words(const FieldStatus& status, const Words& words) {
+  const std::string at =
+      "an hour at " + words.threshold(words.heat_rules(status.field).severe) + " or more";
+  if (status.heat.exposed_share <= 0) return "no day in flower has had " + at;
+  return in_hundred(status.heat.exposed_share) + " of the season's flowers opened on days with " +
+         at;
+}
+
 std::string hot_hours(const season::HeatDay& day, const risk::HeatRules& rules,
                       const Words& words) {
   if (!day.hours_32 || !day.hours_35 || !day.hours_38) return "hot hours not measured";

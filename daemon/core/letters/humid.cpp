@@ -13,10 +13,6 @@ bool eased(const Telling& telling) {
   return telling.saying == Saying::eased || telling.saying == Saying::ended;
 }
 
-std::string saying_tag(const Telling& telling) {
-  return telling.saying == Saying::reminder ? " reminder" : "";
-}
-
 /// "score 3.5 by 6 pm".
 std::string figure_and_time(const Telling& telling, const Words& words) {
   const std::string by = "by " + words.closing(telling.about);
@@ -32,7 +28,7 @@ std::string day_words(const HumidDay& day, const Words& words) {
   if (!favourable) {
     text += "not wet enough for long enough";
   } else if (day.water.value_or(false)) {
-    text += day.night_set ? "wet from sprinklers" : "wet from water";
+    text += day.night_set ? "wet from sprinklers" : "wet from rain or watering";
   } else {
     text += "wet from dew or fog";
   }
@@ -48,6 +44,21 @@ int without_dry_out(const FieldStatus& status) {
   return days;
 }
 
+/// Why the level stands where the score alone would not put it (science §8).
+std::string besides_the_score(const Telling& telling, const FieldStatus& status) {
+  const double r = telling.figure.value_or(0);
+  const double needed[] = {0, 2, 3, 4.5};
+  if (r >= needed[static_cast<int>(telling.level)]) return "";
+  if (telling.level == Level::moderate && status.humid.night_sets_last_five >= 4) {
+    return "Sprinklers before 4 of 5 mornings are enough for Moderate, whatever was measured.";
+  }
+  if (telling.level == Level::moderate && without_dry_out(status) >= 3) {
+    return "Three days without drying out are enough for Moderate.";
+  }
+  if (!status.humid.last || status.humid.last->own_level >= telling.level) return "";
+  return "The level falls one step for each day that dries out, so it stands above its score.";
+}
+
 std::string mildew_so_far(const Telling& telling, const FieldStatus& status, const Words& words) {
   std::vector<std::string> said;
   if (telling.saying == Saying::reminder) {
@@ -61,6 +72,7 @@ std::string mildew_so_far(const Telling& telling, const FieldStatus& status, con
                    " (from 2 Moderate, from 3 Severe, from 4.5 Extreme, with further "
                    "conditions).");
   }
+  said.push_back(besides_the_score(telling, status));
   const int wet = without_dry_out(status);
   if (wet > 0) said.push_back(count(wet, "day") + " in a row without drying out.");
   if (status.humid.night_sets_last_five > 0) {
@@ -116,12 +128,12 @@ Section look(const Telling& telling, const FieldStatus& status, const Words& wor
 
 std::string sure(const FieldStatus& status, const Words& words) {
   return join({data_paragraph(status, words, false),
-               "The numbers behind this are surrogates from relatives of this mildew: none are "
-               "published for it."});
+               "No wetness figures are published for this mildew: the ones used are surrogates "
+               "from its relatives."});
 }
 
 std::string tonight(const FieldStatus& status) {
-  if (status.irrigation == field::Method::none) {
+  if (status.irrigation == field::Method::none && status.humid.night_sets_last_five == 0) {
     return "Tonight: no irrigation here to decide on; look for mildew in the morning.";
   }
   return tonight_and_mildew(status);
@@ -135,7 +147,8 @@ std::string next_words(const Telling& telling, const Words& words) {
   if (telling.level == Level::extreme) {
     return "It cannot rise further. Next: " + reminder + ", and word when it eases.";
   }
-  return "Wet days are judged once a day, toward 6 pm. A letter at once if it rises above " +
+  return "Wet days are judged once a day, early in the evening. A letter at once if it rises "
+         "above " +
          level_word(telling.level) + "; " + reminder +
          (telling.peak >= Level::severe ? "; word when it eases." : ".");
 }
@@ -152,7 +165,7 @@ void open_sections(Part& part, const Telling& telling, const FieldStatus& status
                    const Words& words) {
   part.sections.push_back({"MILDEW", mildew_so_far(telling, status, words), {}, true});
   part.sections.push_back({"DAYS", "", {}, true, days_listed(status, words)});
-  part.sections.push_back({"FLOWER", flower_paragraph(status, words), {}, true});
+  part.sections.push_back(flower_section(status, words));
   part.sections.push_back({"HARM", harm(status), {}, true});
   part.sections.push_back({"HEAT", heat_side(status, words), {}, true});
   part.sections.push_back({"WATER", water_in_humid(status, words), {}, true});
@@ -170,7 +183,7 @@ void eased_sections(Part& part, const Telling& telling, const FieldStatus& statu
                            {},
                            true,
                            days_listed(status, words)});
-  part.sections.push_back({"FLOWER", flower_paragraph(status, words), {}, true});
+  part.sections.push_back(flower_section(status, words));
   part.sections.push_back({"HEAT", heat_side(status, words), {}, true});
   part.sections.push_back({"WATER", water_in_humid(status, words), {}, true});
   part.sections.push_back(look(telling, status, words));
@@ -196,7 +209,7 @@ Part humid_part(const Telling& telling, const Words& words) {
     part = unknown_field(telling, words);
   } else {
     const std::string what =
-        eased(telling) ? "since " + words.closing(telling.about) : figure_and_time(telling, words);
+        eased(telling) ? "by " + words.closing(telling.about) : figure_and_time(telling, words);
     part.rest = what + ", " + flower_tag(*status);
     part.first = plain(telling.subject) + ": " + flower_state(*status) + ", mildew " +
                  (eased(telling) ? "eased " + what : level_word(telling.level) + ", " + what) + ".";
@@ -210,8 +223,10 @@ Part humid_part(const Telling& telling, const Words& words) {
     part.brief = tonight_in_brief(*status) + " Heat today " + level_word(today.level) +
                  ". Look in the morning.";
   }
-  part.lead = eased(telling) ? "Mildew eased"
-                             : "Mildew " + severity_word(telling.severity) + saying_tag(telling);
+  part.lead = eased(telling) ? "Mildew eased from " + level_word(telling.peak)
+              : telling.saying == Saying::reminder
+                  ? "Mildew still " + severity_word(telling.severity)
+                  : "Mildew " + severity_word(telling.severity);
   part.name = plain(telling.subject);
   part.next = next_words(telling, words);
   part.still = decided_still(telling, words);

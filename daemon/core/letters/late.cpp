@@ -25,7 +25,7 @@ std::string phase_words(const alerts::Change& change) {
     case alerts::Phase::lowered:
       return "fell to " + level_word(change.level);
     case alerts::Phase::closed:
-      return "ended";
+      return change.detail == alerts::season_over ? "closed with the season" : "ended";
   }
   return "";
 }
@@ -87,6 +87,14 @@ std::vector<Section> as_it_stands(const std::vector<Telling>& tellings, const Wo
   return sections;
 }
 
+/// When the gravest of the changes was decided.
+Instant gravest_moment(const Telling& telling) {
+  for (const alerts::Change& change : telling.changes) {
+    if (change.level == telling.level && change.phase != alerts::Phase::lowered) return change.at;
+  }
+  return telling.about;
+}
+
 }  // namespace
 
 Part late_part(const std::vector<Telling>& tellings, const Words& words) {
@@ -96,15 +104,16 @@ Part late_part(const std::vector<Telling>& tellings, const Words& words) {
   const std::string what = worst.saying == Saying::notice
                                ? notice_words(worst)
                                : kind_words(worst.kind) + " " + level_word(worst.level);
-  part.lead = "Learned late: " + what;
+  part.lead = "Learned late, " + what;
   if (worst.saying != Saying::notice && worst.level == Level::none) {
-    part.lead = "Learned late: " + kind_words(worst.kind) + " ended";
+    part.lead = "Learned late, " + kind_words(worst.kind) + " ended";
   }
   part.name = plain(worst.subject);
   const std::string figure =
       worst.figure ? figure_words(worst.kind, *worst.figure, worst.subject, words) : "";
-  const std::string at = date_and_time(worst.about, words);
-  part.rest = (figure.empty() ? "" : figure + ", ") + at +
+  const Instant when = gravest_moment(worst);
+  const std::string at = date_and_time(when, words);
+  part.rest = (figure.empty() ? "" : figure + " ") + at.substr(at.find(glue) + 1) +
               (status == nullptr ? "" : ", " + flower_tag(*status));
   part.first = part.name + ": " + (status == nullptr ? "" : flower_state(*status) + ", ") +
                "learned late: " + what + (figure.empty() ? "" : ", " + figure) + ", " + at + ".";

@@ -41,11 +41,11 @@ Section both_sides(const FieldStatus* status) {
 void window_near(Part& part, const Telling& telling, const FieldStatus* status,
                  const Words& words) {
   const std::string opens =
-      telling.day ? words.about(*telling.day, spread_of(status)) : "in about 10 days";
+      telling.day ? words.about(*telling.day, spread_of(status)) : std::string("10 days from now");
   part.lead = "Flower window near";
-  part.rest = (telling.day ? "opens about " : "opens ") + opens + ", " + tag_of(status);
-  part.first = part.name + ": " + state_of(status) + ", window " +
-               part.rest.substr(0, part.rest.find(", ")) + ".";
+  part.rest = opens + ", " + tag_of(status);
+  part.first =
+      part.name + ": " + state_of(status) + ", flowering window opens about " + opens + ".";
   part.tonight =
       "Tonight: bring the water log up to date, and check the station's shield and "
       "power.";
@@ -87,9 +87,7 @@ void window_opens(Part& part, const Telling& telling, const FieldStatus* status,
         scout_command(telling.subject, "--stage buds")},
        true},
       both_sides(status)};
-  part.next =
-      "From now a daily line in the evening, and a letter at once when heat or wet leaves "
-      "call for it.";
+  part.next = "A letter at once when heat or wet leaves call for it.";
   part.brief = "Look for yellow anthers and note the date.";
   part.still = "The window had opened when this was decided.";
 }
@@ -183,9 +181,11 @@ void diary_gap(Part& part, const Telling& telling, const FieldStatus* status, co
   part.rest = "no entry for " + length + " by " + told_at(telling, words) + ", " + tag_of(status);
   part.first =
       part.name + ": " + state_of(status) + ", no entry in the water log for " + length + ".";
-  part.tonight = "Tonight: enter what ran, if anything did; mildew is judged by it.";
   const bool overhead = status == nullptr || waters_leaves(*status);
-  const std::string end = words.iso(words.today());
+  part.tonight = std::string("Tonight: enter what ran, if anything did; ") +
+                 (overhead ? "mildew is judged by it." : "the water in the soil is counted by it.");
+  const std::string day = words.iso(words.today() - std::chrono::days{1});
+  const std::string depth = words.desk().units == Units::us ? "0.5 in" : "12 mm";
   part.sections = {
       {"WHY",
        overhead ? "Sprinklers that are not logged wet the leaves all the same: the mildew watch "
@@ -196,23 +196,25 @@ void diary_gap(Part& part, const Telling& telling, const FieldStatus* status, co
        true},
       {"NOTE IT",
        "",
-       {water_command(telling.subject, "--start \"" + end + " 18:00\" --end \"" + end + " 20:00\""),
+       {water_command(telling.subject, "--start \"" + day + " 06:00\" --end \"" + day +
+                                           " 08:00\" --depth \"" + depth + "\""),
         water_command(telling.subject, "--list")},
        true},
       both_sides(status)};
   part.next = "Not repeated until the log has had an entry and another gap.";
-  part.brief = "Enter what ran: antherd water. Mildew is judged by it.";
+  part.brief = "Enter what ran: antherd water.";
   part.still = "The log had no newer entry when this was decided.";
 }
 
-void season_end(Part& part, const Telling& telling, const FieldStatus* status, const Words& words) {
+void season_end(Part& part, const Telling& telling, const Words& words) {
   const bool ripe = telling.key == "ripe";
   part.lead = "Not watched";
   part.rest =
       std::string(ripe ? "ripe by the estimate" : "sown long ago") + ", " + told_at(telling, words);
   part.first = part.name + ": no longer watched, " +
                (ripe ? "ripe by the estimate" : "more than 240 days from sowing") + ".";
-  part.tonight = "Tonight: nothing. No letter about heat or mildew comes for this field any more.";
+  part.tonight =
+      "Tonight: nothing to decide. No letter about heat or mildew comes for this field any more.";
   part.sections = {
       {"WHY",
        ripe ? "The warmth since sowing says ripe. If it still flowers, note full-flower; if "

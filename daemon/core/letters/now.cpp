@@ -52,25 +52,39 @@ std::string stage_line(const FieldStatus& status, const Words& words) {
   return text;
 }
 
+/// Levels on the screen, where room is short.
+std::string level_short(Level level) { return level == Level::none ? "none" : level_word(level); }
+
+std::string hours_short(const season::HeatDay& day, const risk::HeatRules& rules,
+                        const Words& words) {
+  if (!day.hours_32 || !day.hours_35 || !day.hours_38) return "";
+  const auto bare = [&](Celsius limit) {
+    const std::string text = words.threshold(limit);
+    return text.substr(0, text.find(glue));
+  };
+  return "; h at " + bare(rules.sustained) + ", " + bare(rules.severe) + ", " +
+         words.threshold(rules.extreme) + ": " + std::to_string(*day.hours_32) + ", " +
+         std::to_string(*day.hours_35) + ", " + std::to_string(*day.hours_38);
+}
+
 std::string heat_line(const FieldStatus& status, const Words& words) {
   const season::HeatDay& today = status.heat.today;
   const risk::HeatRules& rules = words.heat_rules(status.field);
   if (!today.t_max) return "nothing measured today";
-  std::string text = "at most " + words.temperature(*today.t_max, rules) + ", " +
-                     hot_hours(today, rules, words) + ": " + level_word(today.level);
-  if (status.temperature)
-    text = "now " + words.temperature(*status.temperature, rules) + ", " + text;
-  return text;
+  std::string text =
+      level_short(today.level) + "; at most " + words.temperature(*today.t_max, rules);
+  if (status.temperature) text += ", now " + words.temperature(*status.temperature, rules);
+  return text + hours_short(today, rules, words);
 }
 
 std::string mildew_line(const FieldStatus& status) {
   if (!status.humid.last) return "no humid day judged yet";
-  std::string text = level_word(status.humid.last->level);
+  std::string text = level_short(status.humid.last->level);
   if (!status.humid.last->judged) text += ", last day not judged (data missing)";
   if (status.humid.last->r) text += ", score " + number(*status.humid.last->r, 1);
   if (waters_leaves(status)) {
-    text += "; watered tonight " + level_word(status.humid.if_watered_tonight) + ", if not " +
-            level_word(status.humid.if_not_watered);
+    text += "; overhead tonight " + level_short(status.humid.if_watered_tonight) + ", if not " +
+            level_short(status.humid.if_not_watered);
   }
   return text;
 }
@@ -79,8 +93,7 @@ std::string water_line(const FieldStatus& status, const Words& words) {
   std::string text;
   switch (status.irrigation) {
     case field::Method::overhead:
-      text = "overhead, before " + std::to_string(status.humid.night_sets_last_five) +
-             " of the last 5 mornings";
+      text = "sprinklers " + std::to_string(status.humid.night_sets_last_five) + " of 5 mornings";
       break;
     case field::Method::drip:
       text = "drip, wets no leaf";
@@ -91,7 +104,7 @@ std::string water_line(const FieldStatus& status, const Words& words) {
     case field::Method::none:
       return "no irrigation";
   }
-  text += status.last_irrigation_end ? "; last ended " + words.when(*status.last_irrigation_end)
+  text += status.last_irrigation_end ? "; last " + words.when(*status.last_irrigation_end)
                                      : "; none in the log";
   if (status.days_to_stress) {
     text += "; " + std::to_string(std::max(0, *status.days_to_stress)) + " d to stress";
@@ -102,8 +115,8 @@ std::string water_line(const FieldStatus& status, const Words& words) {
 std::string data_line(const FieldStatus& status, const Words& words) {
   const season::DataStatus& data = status.data;
   std::string text = data.station.empty() ? "no station" : plain(data.station);
-  text += data.last_reading ? ", last hour to " + words.closing(*data.last_reading)
-                            : ", no reading yet";
+  const std::string unseen = unseen_since(status, words);
+  text += ", " + (unseen.empty() ? "seen to " + words.closing(*data.last_reading) : unseen);
   if (data.hours_missing_24 > 0) {
     text += ", " + std::to_string(data.hours_missing_24) + " h of 24 missing";
   }

@@ -7,9 +7,9 @@
 namespace antherd::letters {
 namespace {
 
-constexpr std::size_t in_short = 6;     // other fields told with their paragraphs
-constexpr std::size_t in_lines = 100;   // further ones by their first line: a letter stays < 32 KiB
-constexpr std::size_t least_name = 10;  // of a name in a subject
+constexpr std::size_t in_short = 6;    // other fields told with their paragraphs
+constexpr std::size_t in_lines = 100;  // further ones by their first line: a letter stays < 32 KiB
+constexpr std::size_t least_name = 8;  // of a name in a subject
 
 std::string lines_of(const std::vector<std::string>& lines) {
   std::string text;
@@ -101,20 +101,27 @@ std::string section_text(const Section& section) {
 
 std::string subject_line(const Part& part, const std::string& before, const std::string& after) {
   std::string rest = unglued(part.rest);
-  while (true) {
-    const std::string around = before + part.lead + ": " + " " + rest + after;
-    const std::size_t taken = columns(around);
+  std::string end = after;
+  const std::string start = before + part.lead + ": ";
+  const auto fits = [&](std::size_t name) {
+    return columns(start) + std::min(columns(part.name), name) + 1 + columns(rest) + columns(end) <=
+           subject_width;
+  };
+  const auto line = [&] {
+    const std::size_t taken = columns(start) + 1 + columns(rest) + columns(end);
     const std::size_t room = taken < subject_width ? subject_width - taken : 0;
-    const std::size_t needed = std::min(columns(part.name), least_name);
-    if (room >= needed) {
-      return unglued(before + part.lead + ": " + clip(part.name, room) + " " + rest + after);
-    }
+    return clip(unglued(start + clip(part.name, std::max(room, least_name)) + " " + rest + end),
+                subject_width);
+  };
+  if (fits(columns(part.name))) return line();
+  if (const std::size_t by = rest.find(" by "); by != std::string::npos) rest.erase(by, 3);
+  if (end.ends_with(" more")) end.erase(end.size() - 5);
+  while (!fits(least_name)) {
     const std::size_t comma = rest.rfind(", ");
     if (comma == std::string::npos) break;
     rest.erase(comma);
   }
-  return clip(unglued(before + part.lead + ": " + clip(part.name, least_name) + " " + rest + after),
-              subject_width);
+  return line();
 }
 
 std::string body_of(const Part& worst, const std::vector<Part>& others, const std::string& next,

@@ -26,6 +26,9 @@ struct Section {
   std::vector<std::string> lines{};  // one below the other, before the text
 };
 
+/// "about 12 in 100 of the season's flowers opened on days with an hour at 95 °F or more".
+std::string exposed_words(const FieldStatus& status, const Words& words);
+
 /// One telling in words.
 struct Part {
   std::string lead;     // of the subject: "Heat Severe"
@@ -59,6 +62,8 @@ std::string flower_tag(const FieldStatus& status);
 std::string flower_state(const FieldStatus& status);
 /// Day of how many, window, how sure.
 std::string flower_paragraph(const FieldStatus& status, const Words& words);
+/// FLOWER, with the command that settles it where flowering is not known.
+Section flower_section(const FieldStatus& status, const Words& words);
 /// ± days of the middle estimate of flowers done: the start's, and a quarter of the length.
 double flower_last_days(const season::FlowerStatus& flower);
 
@@ -83,6 +88,9 @@ std::string hot_hours(const season::HeatDay& day, const risk::HeatRules& rules, 
 // Data (data.cpp).
 /// How far the measurements can be trusted: hours missing, doubtful values, shield, whole degrees.
 std::string data_paragraph(const FieldStatus& status, const Words& words, bool heat);
+/// "nothing seen since 1 pm" where the last reading is 2 h old or more, else nothing: old figures
+/// must not pass for new ones.
+std::string unseen_since(const FieldStatus& status, const Words& words);
 std::string flag_words(const weather::Flag& flag);
 std::string element_words(weather::Element element);
 

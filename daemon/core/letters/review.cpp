@@ -153,8 +153,8 @@ std::string compose_review(const Review& review, const Desk& desk) {
   std::string text = head(review, words);
   if (quiet(review)) {
     text += "\n" + paragraph(
-                       "Nothing was decided and nothing told in this time. The watch was on; "
-                       "what it saw, and what it did not see, stands below.");
+                       "Nothing was decided and nothing told in this time. What was seen, and "
+                       "what was not, stands below.");
   }
   for (const FieldReview& field : review.fields) text += field_chapter(field, words);
   text += stations(review, words) + letters_paragraph(review) + troubles(review) + next(words);

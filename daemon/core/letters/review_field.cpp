@@ -67,21 +67,20 @@ Section flower(const FieldReview& field, const Words& words) {
                       std::to_string(*note.seed_looked));
     }
     if (!note.note.empty()) parts.push_back(plain(note.note));
-    section.lines.push_back(words.day(note.date) + ": noted " + list(parts));
+    std::string line;
+    for (const std::string& part : parts) line += (line.empty() ? "" : ", ") + part;
+    section.lines.push_back(words.day(note.date) + ": " + line);
   }
   return section;
 }
 
 Section exposure(const FieldReview& field, const Words& words) {
   const FieldStatus& status = field.status;
-  const risk::HeatRules& rules = words.heat_rules(status.field);
   std::vector<std::string> said;
   if (!status.flower.known) {
     said.push_back("Flowers met by heat: not known while flowering is not known.");
   } else {
-    said.push_back("Exposed this season: " + in_hundred(status.heat.exposed_share) +
-                   " flowers opened on days with an hour at " + words.threshold(rules.severe) +
-                   " or more.");
+    said.push_back("Exposed this season: " + exposed_words(status, words) + ".");
     if (field.affected_high > 0) {
       said.push_back("Affected: " + in_hundred(field.affected_low) + " to " +
                      in_hundred(field.affected_high) +

@@ -38,9 +38,9 @@ std::string flower_end(const Words& words, const StationStory* story) {
   return status == nullptr ? "" : ", " + flower_tag(*status);
 }
 
-std::string each_field(const Words& words, const StationStory* story) {
-  if (story == nullptr) return "";
-  std::vector<std::string> said;
+Section each_field(const Words& words, const StationStory* story, bool blind) {
+  Section section{"FIELDS", "", {}, true, {}};
+  if (story == nullptr) return section;
   for (const std::string& field : story->fields) {
     const FieldStatus* status = status_of(words.desk(), field);
     if (status == nullptr) continue;
@@ -51,11 +51,11 @@ std::string each_field(const Words& words, const StationStory* story) {
     if (status->humid.episode && status->humid.episode->open()) {
       held.push_back("mildew warning open at " + level_word(status->humid.episode->level));
     }
-    if (held.empty()) held.push_back("no warning was open");
-    said.push_back(plain(field) + ": " + flower_state(*status) + "; when last seen, " + list(held) +
-                   ".");
+    if (held.empty()) held.push_back("no warning open");
+    section.lines.push_back(plain(field) + ": " + flower_state(*status) +
+                            (blind ? "; when last seen, " : "; ") + list(held));
   }
-  return join(said);
+  return section;
 }
 
 std::string what_to_check(const StationStory* story) {
@@ -85,7 +85,7 @@ Part no_data_open(const Telling& telling, const Words& words) {
   const std::string fields = story == nullptr ? "" : names_of_fields(story->fields);
   const bool reminder = telling.saying == Saying::reminder;
   Part part;
-  part.lead = "No data " + severity_word(telling.severity) + (reminder ? " reminder" : "");
+  part.lead = (reminder ? "Still no data " : "No data ") + severity_word(telling.severity);
   part.rest = "silent " + length + " since " + words.when(since) + flower_end(words, story);
   part.first =
       plain(telling.subject) + ": no reading since " + words.when(since) + " (" + length + ").";
@@ -100,14 +100,15 @@ Part no_data_open(const Telling& telling, const Words& words) {
     silent.push_back("In their flowering window: " + names_of_fields(story->fields_in_window) +
                      ".");
   }
-  part.sections = {{"SILENT", join(silent), {}, true},
-                   {"FIELDS", each_field(words, story), {}, true},
-                   {"CHECK", what_to_check(story), {}, true},
-                   {"LOOK",
-                    "A thermometer in the shade at midday, leaves by touch at 10 am. Readings that "
-                    "were kept by the station and arrive later are counted then.",
-                    {},
-                    false}};
+  part.sections = {
+      {"SILENT", join(silent), {}, true},
+      each_field(words, story, true),
+      {"CHECK", what_to_check(story), {}, true},
+      {"LOOK",
+       "A max-min thermometer in the shade, read in the evening; leaves by touch about "
+       "9 am. Readings that the station kept and that arrive later are counted then.",
+       {},
+       false}};
   part.next = "Word when readings are back; a reminder after " +
               duration(words.desk().remind_after) + " while it lasts.";
   part.brief = (fields.empty() ? "Its fields" : capital(fields)) +
@@ -153,7 +154,7 @@ Part no_data_ended(const Telling& telling, const Words& words) {
                     "Silent from " + words.when(telling.start) + ". " + unseen(words, story),
                     {},
                     true},
-                   {"FIELDS", each_field(words, story), {}, true}};
+                   each_field(words, story, false)};
   part.next = "Letters about heat and mildew come again as usual.";
   part.brief = "Missing hours stay unknown.";
   part.still = "Readings were back when this was decided.";
@@ -181,14 +182,14 @@ Part doubtful(const Telling& telling, const Words& words) {
     part.first = plain(telling.subject) + ": readings pass the checks again since " +
                  words.closing(telling.about) + ".";
     part.tonight = "Tonight: the watch relies on it again; the doubtful hours stay doubtful.";
-    part.sections = {{"FIELDS", each_field(words, story), {}, true}};
+    part.sections = {each_field(words, story, false)};
     part.next = "If the checks fail again, a new letter comes.";
     part.brief = "Doubtful hours stay doubtful.";
     part.still = "The sensor passed its checks when this was decided.";
     return part;
   }
-  part.lead = "Doubtful sensor " + severity_word(telling.severity) +
-              (telling.saying == Saying::reminder ? " reminder" : "");
+  part.lead = (telling.saying == Saying::reminder ? "Sensor still doubtful " : "Doubtful sensor ") +
+              severity_word(telling.severity);
   part.rest = fault + ", " + words.closing(telling.about) + flower_end(words, story);
   part.first = plain(telling.subject) + ": " + fault + ", since " + words.when(telling.start) + ".";
   part.tonight = "Tonight: trust your own thermometer and your own eyes over this station.";
@@ -202,12 +203,16 @@ Part doubtful(const Telling& telling, const Words& words) {
   }
   part.sections = {
       {"SENSOR",
-       "A check has failed for 6 h or more. Warnings that rest on this sensor may come late, not "
-       "at all, or without cause." +
+       (telling.saying == Saying::reminder
+            ? "A reminder: this has been open since " + words.when(telling.start) + ". "
+            : std::string()) +
+           "A check has failed for 6 h or more. Warnings that rest on this sensor may come late, "
+           "not "
+           "at all, or without cause." +
            (named.empty() ? "" : " Last 24 h: " + list(named) + "."),
        {},
        true},
-      {"FIELDS", each_field(words, story), {}, true},
+      each_field(words, story, false),
       {"CHECK",
        "Hold a second thermometer in the shade beside it. Is the shield clean, the fan turning, "
        "the plug dry? Is the column or unit in the settings right?",

@@ -25,20 +25,41 @@ std::string method_noun(Method method) {
   }
 }
 
+std::string noun_in_sentence(std::string noun) {
+  if (!noun.empty()) noun[0] = static_cast<char>(noun[0] - 'A' + 'a');
+  return noun;
+}
+
 /// Two outcomes side by side, as a sentence that promises neither.
 std::string two_ways(const HumidStatus& humid) {
   const Level wet = humid.if_watered_tonight;
   const Level dry = humid.if_not_watered;
+  if (!humid.last)
+    return "overhead water keeps leaves wet till morning; its effect is not known yet.";
   if (wet != dry) {
-    return "overhead water tonight would put mildew at " + level_word(wet) +
-           " by tomorrow evening; without it, " + level_word(dry) + " (if tomorrow is like today).";
+    return "with overhead water mildew would be " + level_word(wet) +
+           " by the evening after; without it, " + level_word(dry) +
+           " (if tomorrow is like today).";
   }
   if (wet == Level::none) {
-    return "one overhead set would leave the mildew level below Moderate; several evenings in a "
-           "row are what raises it.";
+    return "one overhead set would leave mildew below Moderate (if tomorrow is like today); "
+           "several evenings in a row raise it.";
   }
-  return "with or without overhead water, mildew would stand at " + level_word(wet) +
-         " tomorrow evening (if tomorrow is like today).";
+  return "with or without overhead water, mildew would be " + level_word(wet) +
+         " by the evening after (if tomorrow is like today).";
+}
+
+/// The same in short, where the second line has already told it in full.
+std::string two_ways_again(const HumidStatus& humid) {
+  if (!humid.last) return "";
+  return "Overhead water tonight: " + level_word(humid.if_watered_tonight) +
+         ". Leaves left dry: " + level_word(humid.if_not_watered) + ".";
+}
+
+/// Sprinkler sets in the log of a field whose settings name another method, or none.
+bool logged_against_settings(const FieldStatus& status) {
+  return !waters_leaves(status) &&
+         (status.humid.night_sets_last_five > 0 || status.humid.streak > 0);
 }
 
 std::string sprinkler_nights(const FieldStatus& status) {
@@ -71,17 +92,19 @@ std::string sunset_limit(const FieldStatus& status) {
 bool waters_leaves(const FieldStatus& status) { return status.irrigation == Method::overhead; }
 
 std::string tonight_and_mildew(const FieldStatus& status) {
-  switch (status.irrigation) {
-    case Method::overhead:
-      return "Tonight: " + two_ways(status.humid);
-    case Method::drip:
-      return "Tonight: drip wets no leaf, so it neither feeds nor starves mildew.";
-    case Method::furrow:
-      return "Tonight: furrow water wets no leaf, so it neither feeds nor starves mildew.";
-    case Method::none:
-      break;
+  if (waters_leaves(status)) return "Tonight: " + two_ways(status.humid);
+  const std::string noun = method_noun(status.irrigation);
+  if (logged_against_settings(status)) {
+    return "Tonight: a night without sprinklers lets leaves dry" +
+           (status.irrigation == Method::none ? std::string("; is the log right that some ran?")
+                                              : "; " + noun_in_sentence(noun) + " wets no leaf.");
   }
-  return "Tonight: no irrigation here to decide on; look at the flowers tomorrow in the cool.";
+  if (status.irrigation == Method::none) {
+    return "Tonight: no irrigation here to decide on; look at the flowers tomorrow in the cool.";
+  }
+  return "Tonight: " + noun_in_sentence(noun) +
+         " wets no leaf, so it neither feeds nor starves "
+         "mildew.";
 }
 
 std::string tonight_in_brief(const FieldStatus& status) {
@@ -97,6 +120,7 @@ std::string tonight_in_brief(const FieldStatus& status) {
   }
   const Level wet = status.humid.if_watered_tonight;
   const Level dry = status.humid.if_not_watered;
+  if (!status.humid.last) return "Overhead water feeds mildew.";
   if (wet == dry) return "Overhead water or not tonight: mildew " + level_word(wet) + ".";
   return "Overhead water tonight: mildew " + level_word(wet) + ", without " + level_word(dry) + ".";
 }
@@ -105,17 +129,20 @@ std::string mildew_side(const FieldStatus& status, const Words&) {
   std::vector<std::string> said{sprinkler_nights(status), level_now(status)};
   switch (status.irrigation) {
     case Method::overhead:
-      said.push_back(capital(two_ways(status.humid)));
+      said.push_back(two_ways_again(status.humid));
       said.push_back("A hot day slows mildew; wet leaves all night bring it back.");
       said.push_back(sunset_limit(status));
       break;
     case Method::drip:
     case Method::furrow:
-      said.push_back(method_noun(status.irrigation) +
-                     " wets no leaf: only dew, fog and rain count here.");
+      said.push_back(method_noun(status.irrigation) + " wets no leaf" +
+                     (logged_against_settings(status) ? "; the sprinkler sets are from your log."
+                                                      : ": only dew, fog and rain count here."));
       break;
     case Method::none:
-      said.push_back("Only dew, fog and rain wet this field.");
+      said.push_back(logged_against_settings(status)
+                         ? "The settings know no irrigation here: check the log."
+                         : "Only dew, fog and rain wet this field.");
       break;
   }
   return join(said);
@@ -140,10 +167,8 @@ std::string heat_side(const FieldStatus& status, const Words& words) {
         "mildew.");
     if (!waters_leaves(status)) said.pop_back();
   }
-  if (status.heat.hot_days > 0) {
-    said.push_back("This season " + in_hundred(status.heat.exposed_share) +
-                   " flowers opened on days with an hour at " + words.threshold(rules.severe) +
-                   " or more.");
+  if (status.heat.hot_days > 0 && status.flower.known) {
+    said.push_back("Exposed so far: " + exposed_words(status, words) + ".");
   }
   return join(said);
 }

@@ -58,12 +58,33 @@ std::size_t bytes_of(std::string_view text, std::size_t points) {
   return at;
 }
 
+/// A figure and the unit after it stay on one line, also where a sentence was written out.
+bool belong_together(std::string_view figure, std::string_view unit) {
+  if (figure.empty() || figure.find_first_not_of("0123456789.:") != std::string_view::npos) {
+    return false;
+  }
+  while (!unit.empty() && (unit.back() == '.' || unit.back() == ',' || unit.back() == ';')) {
+    unit.remove_suffix(1);
+  }
+  for (const std::string_view known : {"h", "d", "am", "pm", "mm", "°F", "°C", "min"}) {
+    if (unit == known) return true;
+  }
+  return false;
+}
+
 std::vector<std::string> words_of(std::string_view text) {
   std::vector<std::string> words;
   std::size_t at = 0;
   while (at < text.size()) {
     const std::size_t end = std::min(text.find(' ', at), text.size());
-    if (end > at) words.push_back(unglued(text.substr(at, end - at)));
+    if (end > at) {
+      const std::string word = unglued(text.substr(at, end - at));
+      if (!words.empty() && belong_together(words.back(), word)) {
+        words.back() += " " + word;
+      } else {
+        words.push_back(word);
+      }
+    }
     at = end + 1;
   }
   return words;
