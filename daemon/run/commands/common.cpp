@@ -1,0 +1,258 @@
+// See common.hpp.
+#include "run/commands/common.hpp"
+
+#include <algorithm>
+#include <cmath>
+#include <cstdio>
+#include <iostream>
+
+#include "core/weather/hour.hpp"
+#include "edge/station/readings.hpp"
+#include "run/service/farm.hpp"
+#include "run/service/intake.hpp"
+
+namespace antherd::commands {
+namespace {
+
+/// Settings without the stations that gave no file, and without fields that then have none.
+SettingsPointer only_with(const SettingsPointer& settings,
+                          const std::map<std::string, std::vector<weather::Hour>>& hours) {
+  settings::Settings kept = *settings;
+  std::erase_if(kept.stations, [&](const auto& s) { return !hours.contains(s.station.name); });
+  for (auto& plan : kept.fields) {
+    std::erase_if(plan.field.stations, [&](const auto& name) { return !hours.contains(name); });
+  }
+  std::erase_if(kept.fields, [](const auto& plan) {
+    if (!plan.field.stations.empty()) return false;
+    std::cerr << "antherd: " << plan.field.name
+              << " is left out: no file of its station was given\n";
+    return true;
+  });
+  return std::make_shared<const settings::Settings>(std::move(kept));
+}
+
+void add_hours(Past& past, const settings::Station& station,
+               const std::vector<weather::Sample>& samples) {
+  const std::string& name = station.station.name;
+  if (samples.empty()) {
+    past.hours[name];
+    return;
+  }
+  const HourStart from = hour_of(samples.front().time - one_hour);
+  const HourStart to = hour_of(samples.back().time) + std::chrono::hours{1};
+  past.hours[name] = weather::gather(samples, station.station, from, to);
+  auto& times = past.times[name];
+  for (const auto& sample : samples) times.push_back(sample.time);
+}
+
+}  // namespace
+
+SettingsPointer read_settings(const Invocation& call) {
+  const std::string file = settings::choose_file(call.settings);
+  settings::Reading reading = settings::read_file(file);
+  for (const auto& complaint : reading.complaints) std::cerr << complaint.sentence() << "\n";
+  if (!reading.settings) {
+    std::cerr << "antherd: the settings have " << reading.complaints.size()
+              << (reading.complaints.size() == 1 ? " fault" : " faults")
+              << "; nothing was done. \"antherd check --settings " << file
+              << "\" reads them again.\n";
+    return nullptr;
+  }
+  return std::make_shared<const settings::Settings>(std::move(*reading.settings));
+}
+
+Exit say(const Failure& failure) {
+  std::cerr << "antherd: " << failure.sentence() << "\n";
+  return Exit::failed;
+}
+
+const settings::FieldPlan* read_field(const settings::Settings& settings, const Invocation& call) {
+  const auto field = settings.field_by_beginning(call.field);
+  if (field) return *field;
+  std::cerr << "antherd: " << field.failure().sentence() << "\n";
+  return nullptr;
+}
+
+std::optional<Instant> Past::last() const {
+  std::optional<Instant> newest;
+  for (const auto& [name, list] : times) {
+    if (!list.empty() && (!newest || list.back() > *newest)) newest = list.back();
+  }
+  return newest;
+}
+
+void add_samples(Past& past, const settings::Station& station,
+                 std::vector<weather::Sample> samples) {
+  add_hours(past, station, weather::standing(std::move(samples)));
+}
+
+Result<Past> past_from_files(const SettingsPointer& settings,
+                             const std::vector<std::string>& station_files) {
+  std::map<std::string, std::vector<weather::Sample>> samples;
+  for (const std::string& pair : station_files) {
+    const auto equals = pair.find('=');
+    const std::string name = pair.substr(0, equals);
+    const settings::Station* station = settings->station(name);
+    const bool fits = equals != std::string::npos && station != nullptr && station->drop;
+    if (!fits) {
+      return Failure{"read a station's file", pair,
+                     "it is not STATION=FILE with a station of the settings that has a "
+                     "[station.drop] table",
+                     "nothing was run"};
+    }
+    const std::string file = pair.substr(equals + 1);
+    auto readings = station::read_csv_file(file, station->drop->record, std::nullopt);
+    if (!readings) return readings.failure();
+    for (std::size_t i = 0; i < readings->refused.size() && i < 5; ++i) {
+      const auto& row = readings->refused[i];
+      std::cerr << "antherd: " << row.file << ":" << row.line << ": " << row.reason
+                << "; the row was not used\n";
+    }
+    if (readings->refused.size() > 5) {
+      std::cerr << "antherd: " << file << ": " << readings->refused.size() - 5
+                << " more rows were not used\n";
+    }
+    auto& list = samples[name];
+    list.insert(list.end(), readings->samples.begin(), readings->samples.end());
+  }
+  Past past;
+  for (auto& [name, list] : samples) {
+    add_hours(past, *settings->station(name), weather::standing(std::move(list)));
+  }
+  past.settings = only_with(settings, past.hours);
+  const service::DiaryFiles diary = service::read_diary_files(*settings);
+  for (const auto& row : diary.refused) {
+    std::cerr << "antherd: " << row.file << ":" << row.line << ": " << row.reason
+              << "; the line was not used\n";
+  }
+  for (const auto& trouble : diary.troubles) std::cerr << "antherd: " << trouble.sentence() << "\n";
+  for (const auto& entry : diary.diary.irrigations) {
+    past.diaries[entry.field].irrigations.push_back(entry);
+  }
+  for (const auto& note : diary.diary.notes) past.diaries[note.field].notes.push_back(note);
+  return past;
+}
+
+Result<Past> past_from_store(const SettingsPointer& settings, const store::Store& store,
+                             Instant now) {
+  Past past;
+  past.settings = settings;
+  auto said = store.said(now - std::chrono::days{400});
+  if (!said) return said.failure();
+  past.said = std::move(*said);
+  CivilDay sown = settings->calendar.day_of(now);
+  for (const auto& plan : settings->fields) {
+    sown = std::min(sown, plan.field.sown);
+    auto diary = store.diary(plan.field.name);
+    if (!diary) return diary.failure();
+    past.diaries[plan.field.name] = std::move(*diary);
+  }
+  const Instant from = settings->calendar.start_of(sown) - std::chrono::days{3};
+  for (const auto& station : settings->stations) {
+    const std::string& name = station.station.name;
+    auto hours = store.hours(name, hour_of(from), HourStart::max());
+    if (!hours) return hours.failure();
+    // The newest hours are not stored before they are closed: they are made from the samples.
+    const HourStart fresh_from = hour_of(now - std::chrono::days{3});
+    auto samples = store.samples(name, fresh_from - weather::context_before, Instant::max());
+    if (!samples) return samples.failure();
+    std::erase_if(*hours, [&](const auto& hour) { return hour.start >= fresh_from; });
+    const auto fresh = weather::gather(*samples, station.station, fresh_from,
+                                       hour_of(now + std::chrono::hours{2}));
+    hours->insert(hours->end(), fresh.begin(), fresh.end());
+    past.hours[name] = std::move(*hours);
+    auto recent = store.samples(name, now - std::chrono::days{12}, Instant::max());
+    if (!recent) return recent.failure();
+    for (const auto& sample : *recent) past.times[name].push_back(sample.time);
+    if (past.times[name].empty()) {
+      auto last = store.last_sample(name);
+      if (last && *last) past.times[name].push_back(**last);
+    }
+  }
+  return past;
+}
+
+Result<Past> read_past(const SettingsPointer& settings, const Invocation& call, Instant now) {
+  if (!call.station_files.empty()) return past_from_files(settings, call.station_files);
+  auto store = open_to_read(*settings);
+  if (!store) {
+    Failure failure = store.failure();
+    failure.what_next += "; or read files with --station NAME=FILE.csv";
+    return failure;
+  }
+  return past_from_store(settings, *store, now);
+}
+
+Result<store::Store> open_to_read(const settings::Settings& settings) {
+  store::Store::Options options;
+  options.folder = settings.store_folder;
+  options.read_only = true;
+  return store::Store::open(options);
+}
+
+Result<store::Store> open_to_write(const settings::Settings& settings) {
+  store::Store::Options options;
+  options.folder = settings.store_folder;
+  return store::Store::open(options);
+}
+
+service::Lookout lookout_over(const Past& past) {
+  service::Lookout lookout(past.settings);
+  for (const auto& [name, hours] : past.hours) {
+    lookout.replace_hours(name, HourStart::min(), HourStart::max(), hours);
+  }
+  for (const auto& [name, times] : past.times) lookout.add_sample_times(name, times);
+  for (const auto& plan : past.settings->fields) {
+    const auto diary = past.diaries.find(plan.field.name);
+    if (diary != past.diaries.end()) lookout.set_diary(plan.field.name, diary->second);
+  }
+  lookout.set_ledger(past.said);
+  lookout.set_first_start(past.first_start);
+  return lookout;
+}
+
+service::Closed closed_at(const Past& past, Instant now) {
+  service::Closed closed;
+  for (const auto& station : past.settings->stations) {
+    const auto times = past.times.find(station.station.name);
+    std::optional<Instant> last;
+    if (times != past.times.end() && !times->second.empty()) last = times->second.back();
+    closed[station.station.name] = service::closed_before(station.station, last, now);
+  }
+  return closed;
+}
+
+std::string day_text(CivilDay day) {
+  const CivilDate date{day};
+  char text[40];
+  std::snprintf(text, sizeof text, "%04d-%02u-%02u", static_cast<int>(date.year()),
+                static_cast<unsigned>(date.month()), static_cast<unsigned>(date.day()));
+  return text;
+}
+
+std::string utc_text(Instant at) {
+  const auto day = std::chrono::floor<std::chrono::days>(at);
+  const std::chrono::hh_mm_ss time{at - day};
+  char text[32];
+  std::snprintf(text, sizeof text, "T%02d:%02d:%02dZ", static_cast<int>(time.hours().count()),
+                static_cast<int>(time.minutes().count()), static_cast<int>(time.seconds().count()));
+  return day_text(CivilDay{day.time_since_epoch()}) + text;
+}
+
+std::string farm_text(const Calendar& calendar, Instant at) {
+  const CivilTime civil = calendar.civil(at);
+  const auto day = std::chrono::floor<std::chrono::days>(civil);
+  const std::chrono::hh_mm_ss time{civil - day};
+  char text[32];
+  std::snprintf(text, sizeof text, " %02d:%02d", static_cast<int>(time.hours().count()),
+                static_cast<int>(time.minutes().count()));
+  return day_text(day) + text;
+}
+
+double rounded(double value, int decimals) {
+  const double scale = std::pow(10.0, decimals);
+  const double result = std::nearbyint(value * scale) / scale;  // the default mode: half to even
+  return result == 0.0 ? 0.0 : result;                          // never −0
+}
+
+}  // namespace antherd::commands

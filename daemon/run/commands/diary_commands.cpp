@@ -1,0 +1,250 @@
+// antherd water and antherd scout: what the grower did and saw.
+#include <iostream>
+
+#include "core/risk/rules.hpp"
+#include "edge/clock/clock.hpp"
+#include "run/commands/common.hpp"
+#include "run/service/intake.hpp"
+#include "run/settings/quantities.hpp"
+
+namespace antherd::commands {
+namespace {
+
+Exit wrong(const std::string& what, const std::string& why, const std::string& example) {
+  std::cerr << "antherd: " << what << ": " << why << "; nothing was written. Example: " << example
+            << "\n";
+  return Exit::usage;
+}
+
+/// "2026-07-14 23:00", or "23:00" on the day of `like`.
+Result<CivilTime> reading_of(const std::string& text, std::optional<CivilTime> like) {
+  if (like) {
+    if (const auto clock = settings::parse_clock(text)) {
+      const CivilDay day = std::chrono::floor<std::chrono::days>(*like);
+      const CivilTime same_day = CivilTime(day) + std::chrono::minutes{*clock};
+      return same_day > *like ? same_day : same_day + std::chrono::days{1};
+    }
+  }
+  return settings::parse_civil_time(text);
+}
+
+std::string depth_text(const std::optional<Millimetre>& depth) {
+  if (!depth) return "depth unknown";
+  std::string text = std::to_string(rounded(depth->value, 1));
+  return text.substr(0, text.find('.') + 2) + " mm";
+}
+
+std::string sentence_of(const field::Irrigation& irrigation, const Calendar& calendar) {
+  std::string text = farm_text(calendar, irrigation.start) + " to " +
+                     farm_text(calendar, irrigation.end) + ", " +
+                     field::name_of(irrigation.method) + ", " + depth_text(irrigation.depth);
+  if (irrigation.set > 0) text += ", set " + std::to_string(irrigation.set);
+  return text;
+}
+
+Result<field::Irrigation> irrigation_of(const settings::Settings& settings,
+                                        const settings::FieldPlan& plan, const Invocation& call) {
+  const auto refuse = [](const std::string& option, const std::string& why) {
+    return Failure{"read " + option, "", why, "nothing was written"};
+  };
+  field::Irrigation irrigation;
+  irrigation.field = plan.field.name;
+  if (call.start.empty() || call.end.empty()) {
+    return refuse("--start and --end", "both are needed: --start \"2026-07-14 20:00\" --end 23:00");
+  }
+  const auto start = reading_of(call.start, std::nullopt);
+  if (!start) return refuse("--start", start.failure().why);
+  const auto end = reading_of(call.end, *start);
+  if (!end) return refuse("--end", end.failure().why);
+  const auto from = service::farm_instant(settings, *start);
+  if (!from) return refuse("--start", from.failure().why);
+  const auto to = service::farm_instant(settings, *end);
+  if (!to) return refuse("--end", to.failure().why);
+  if (*to <= *from) return refuse("--end", "it is not after --start");
+  if (*to - *from > std::chrono::hours{96}) return refuse("--end", "more than 96 h after --start");
+  irrigation.start = *from;
+  irrigation.end = *to;
+  irrigation.method = plan.field.irrigation;
+  if (!call.method.empty() || irrigation.method == field::Method::none) {
+    if (call.method == "overhead") {
+      irrigation.method = field::Method::overhead;
+    } else if (call.method == "drip") {
+      irrigation.method = field::Method::drip;
+    } else if (call.method == "furrow") {
+      irrigation.method = field::Method::furrow;
+    } else {
+      return refuse("--method", "'" + call.method + "' is none of overhead, drip, furrow");
+    }
+  }
+  if (!call.depth.empty() && call.depth != "unknown") {
+    const auto depth = settings::parse_depth(call.depth);
+    if (!depth) return refuse("--depth", depth.failure().why);
+    irrigation.depth = *depth;
+  }
+  irrigation.set = call.set;
+  return irrigation;
+}
+
+/// The humid level tomorrow with and without it, where the store knows enough.
+void say_what_it_does(const SettingsPointer& settings, const field::Irrigation& irrigation) {
+  if (irrigation.method != field::Method::overhead) {
+    std::cout << field::name_of(irrigation.method)
+              << " wets no leaf: no part of the mildew watch.\n";
+    return;
+  }
+  const Instant now = clock::wall_now();
+  const auto store = open_to_read(*settings);
+  if (!store) return;
+  const auto past = past_from_store(settings, *store, now);
+  if (!past) return;
+  Past with = *past;
+  with.diaries[irrigation.field].irrigations.push_back(irrigation);
+  const auto level_in = [&](const Past& facts) {
+    service::Lookout lookout = lookout_over(facts);
+    lookout.turn(now, closed_at(facts, now));
+    return lookout.desk(now).fields.at(irrigation.field).humid;
+  };
+  const auto before = level_in(*past), after = level_in(with);
+  std::cout << "Sprinkler nights of the last five: " << after.night_sets_last_five
+            << " (without it " << before.night_sets_last_five
+            << "). Were tomorrow like today, the humid spell would "
+            << "stand at " << risk::name_of(after.if_not_watered) << " (without it "
+            << risk::name_of(before.if_not_watered) << "). An estimate: scout before acting.\n";
+}
+
+Exit list_water(const settings::Settings& settings, const store::Store& store,
+                const std::string& field) {
+  const auto diary = store.diary(field);
+  if (!diary) return say(diary.failure());
+  for (const auto& irrigation : diary->irrigations) {
+    std::cout << irrigation.id << "  " << sentence_of(irrigation, settings.calendar) << "\n";
+  }
+  if (diary->irrigations.empty()) std::cout << field << ": nothing is logged.\n";
+  return Exit::done;
+}
+
+Result<field::Scouting> note_of(const settings::Settings& settings, const settings::FieldPlan& plan,
+                                const Invocation& call) {
+  const auto refuse = [](const std::string& option, const std::string& why) {
+    return Failure{"read " + option, "", why, "nothing was written"};
+  };
+  field::Scouting note;
+  note.field = plan.field.name;
+  note.date = settings.calendar.day_of(clock::wall_now());
+  if (!call.date.empty()) {
+    const auto date = settings::parse_day(call.date);
+    if (!date) return refuse("--date", date.failure().why);
+    if (*date > note.date) return refuse("--date", "it lies in the future");
+    if (*date < plan.field.sown) return refuse("--date", "it lies before sowing");
+    note.date = *date;
+  }
+  if (!call.stage.empty()) {
+    note.stage = field::stage_from_word(call.stage);
+    if (!note.stage) {
+      return refuse("--stage", "'" + call.stage +
+                                   "' is none of emerged, buds, first-anthers, full-flower, "
+                                   "flowers-done, milk, dough, ripe, nor a BBCH code from 9 to 99");
+    }
+  }
+  note.began = call.began || note.stage == field::stage::first_anthers;
+  if (!call.disease.empty()) {
+    if (call.disease != "yes" && call.disease != "no") return refuse("--disease", "yes or no");
+    note.disease = call.disease == "yes";
+  }
+  if (!call.seed_set.empty()) {
+    const auto slash = call.seed_set.find('/');
+    const auto held = settings::parse_number(call.seed_set.substr(0, slash));
+    const auto looked =
+        settings::parse_number(slash == std::string::npos ? "" : call.seed_set.substr(slash + 1));
+    if (!held || !looked || *held < 0 || *looked < 1 || *held > *looked || *looked > 1000) {
+      return refuse("--seed-set", "'" + call.seed_set + "' is not like 14/20");
+    }
+    note.seed_set = static_cast<int>(*held);
+    note.seed_looked = static_cast<int>(*looked);
+  }
+  note.note = call.note;
+  if (!note.stage && !note.disease && !note.seed_set && note.note.empty()) {
+    return refuse("the note", "it says nothing; give --stage, --disease, --seed-set or --note");
+  }
+  return note;
+}
+
+Exit list_notes(const store::Store& store, const std::string& field) {
+  const auto diary = store.diary(field);
+  if (!diary) return say(diary.failure());
+  for (const auto& note : diary->notes) {
+    std::cout << note.id << "  " << day_text(note.date);
+    if (note.stage) std::cout << "  " << field::word_for_stage(*note.stage);
+    if (note.began) std::cout << ", began that day";
+    if (note.disease) std::cout << ", disease " << (*note.disease ? "seen" : "not seen");
+    if (note.seed_set) std::cout << ", seed set " << *note.seed_set << "/" << *note.seed_looked;
+    if (!note.note.empty()) std::cout << ", " << note.note;
+    std::cout << "\n";
+  }
+  if (diary->notes.empty()) std::cout << field << ": no notes.\n";
+  return Exit::done;
+}
+
+}  // namespace
+
+Exit water(const Invocation& call) {
+  const SettingsPointer settings = read_settings(call);
+  if (!settings) return Exit::usage;
+  const settings::FieldPlan* plan = read_field(*settings, call);
+  if (!plan) return Exit::usage;
+  if (call.list || call.undo) {
+    auto store = call.list ? open_to_read(*settings) : open_to_write(*settings);
+    if (!store) return say(store.failure());
+    if (call.list) return list_water(*settings, *store, plan->field.name);
+    if (auto done = store->remove_irrigation(*call.undo); !done) return say(done.failure());
+    std::cout << "Entry " << *call.undo << " is taken back.\n";
+    return Exit::done;
+  }
+  const auto irrigation = irrigation_of(*settings, *plan, call);
+  if (!irrigation) {
+    return wrong(irrigation.failure().what, irrigation.failure().why,
+                 "antherd water north --start \"2026-07-14 20:00\" --end 23:00 --depth \"0.5 in\"");
+  }
+  const std::string sentence = sentence_of(*irrigation, settings->calendar);
+  if (call.try_only) {
+    std::cout << "Tried, not written: " << plan->field.name << ", " << sentence << ".\n";
+  } else {
+    auto store = open_to_write(*settings);
+    if (!store) return say(store.failure());
+    const auto id = store->add(*irrigation);
+    if (!id) return say(id.failure());
+    std::cout << "Written as entry " << *id << ": " << plan->field.name << ", " << sentence
+              << ".\n";
+  }
+  say_what_it_does(settings, *irrigation);
+  return Exit::done;
+}
+
+Exit scout(const Invocation& call) {
+  const SettingsPointer settings = read_settings(call);
+  if (!settings) return Exit::usage;
+  const settings::FieldPlan* plan = read_field(*settings, call);
+  if (!plan) return Exit::usage;
+  if (call.list || call.undo) {
+    auto store = call.list ? open_to_read(*settings) : open_to_write(*settings);
+    if (!store) return say(store.failure());
+    if (call.list) return list_notes(*store, plan->field.name);
+    if (auto done = store->remove_scouting(*call.undo); !done) return say(done.failure());
+    std::cout << "Note " << *call.undo << " is taken back.\n";
+    return Exit::done;
+  }
+  const auto note = note_of(*settings, *plan, call);
+  if (!note) {
+    return wrong(note.failure().what, note.failure().why,
+                 "antherd scout north --date 2026-07-01 --stage first-anthers");
+  }
+  auto store = open_to_write(*settings);
+  if (!store) return say(store.failure());
+  const auto id = store->add(*note);
+  if (!id) return say(id.failure());
+  std::cout << "Written as note " << *id << ": " << plan->field.name << ", " << day_text(note->date)
+            << (note->stage ? ", " + field::word_for_stage(*note->stage) : "") << ".\n";
+  return Exit::done;
+}
+
+}  // namespace antherd::commands

@@ -1,0 +1,160 @@
+// antherd now and antherd review: what a person reads.
+#include <algorithm>
+#include <iostream>
+
+#include "edge/clock/clock.hpp"
+#include "run/commands/common.hpp"
+#include "run/service/review.hpp"
+
+namespace antherd::commands {
+namespace {
+
+constexpr auto letter_waits_long = std::chrono::hours{6};
+
+/// What needs a person: one sentence each.
+std::vector<std::string> attention_of(const service::Lookout& lookout, const store::Store& store,
+                                      Instant now) {
+  std::vector<std::string> sentences;
+  for (const alerts::Episode& episode : lookout.episodes()) {
+    if (!episode.open()) continue;
+    if (episode.kind == alerts::Kind::no_data) {
+      const auto last = lookout.last_sample(episode.subject);
+      sentences.push_back("Station " + episode.subject + " is silent" +
+                          (last ? " since " + farm_text(lookout.settings().calendar, *last) : "") +
+                          ": its fields are not watched.");
+    } else if (episode.kind == alerts::Kind::doubtful_sensor) {
+      sentences.push_back("Station " + episode.subject + " reports doubtful values.");
+    }
+  }
+  const auto open = store.letters_open();
+  if (!open) {
+    sentences.push_back(open.failure().sentence());
+    return sentences;
+  }
+  const auto old = std::count_if(open->begin(), open->end(), [&](const outbox::Item& item) {
+    return now - item.letter.decided > letter_waits_long;
+  });
+  if (old > 0) {
+    sentences.push_back(std::to_string(old) +
+                        " letters have waited more than 6 h: see antherd "
+                        "letters.");
+  }
+  if (const auto line = store.line(); line && !line->trouble.empty()) {
+    sentences.push_back("Mail: " + line->trouble);
+  }
+  if (const auto recent = store.letters_since(now - std::chrono::days{7})) {
+    const auto parked = std::count_if(recent->begin(), recent->end(), [](const auto& item) {
+      return item.state == outbox::State::parked;
+    });
+    if (parked > 0) {
+      sentences.push_back(std::to_string(parked) +
+                          " letters of the last 7 days are parked: see "
+                          "antherd letters.");
+    }
+  }
+  return sentences;
+}
+
+/// What was last said of each episode that is still open.
+std::vector<alerts::Said> unclosed_of(const service::Lookout& lookout) {
+  std::vector<alerts::Said> unclosed;
+  for (const alerts::Episode& episode : lookout.episodes()) {
+    if (!episode.open()) continue;
+    const alerts::Said* last = nullptr;
+    for (const alerts::Said& said : lookout.ledger()) {
+      if (said.kind == episode.kind && said.subject == episode.subject &&
+          said.at >= episode.start) {
+        last = &said;
+      }
+    }
+    if (last != nullptr) unclosed.push_back(*last);
+  }
+  return unclosed;
+}
+
+struct View {
+  store::Store store;
+  service::Lookout lookout;
+};
+
+Result<View> view_of(const SettingsPointer& settings, Instant now) {
+  auto store = open_to_read(*settings);
+  if (!store) return store.failure();
+  const auto past = past_from_store(settings, *store, now);
+  if (!past) return past.failure();
+  View view{std::move(*store), lookout_over(*past)};
+  view.lookout.turn(now, closed_at(*past, now));
+  // The ledger is what was really said, not what this look would have said.
+  view.lookout.set_ledger(past->said);
+  return view;
+}
+
+/// In an exercise the clock of the readings is not the wall's.
+Instant time_of(const settings::Settings& settings, const Result<store::Store>& store) {
+  const Instant now = clock::wall_now();
+  if (!settings.exercise || !store) return now;
+  std::optional<Instant> newest;
+  for (const auto& station : settings.stations) {
+    const auto last = store->last_sample(station.station.name);
+    if (last && *last && (!newest || **last > *newest)) newest = **last;
+  }
+  return newest.value_or(now);
+}
+
+}  // namespace
+
+Exit now(const Invocation& call) {
+  const SettingsPointer settings = read_settings(call);
+  if (!settings) return Exit::usage;
+  const Instant time = time_of(*settings, open_to_read(*settings));
+  auto view = view_of(settings, time);
+  if (!view) return say(view.failure());
+  const auto attention = attention_of(view->lookout, view->store, time);
+  const auto unclosed = unclosed_of(view->lookout);
+  std::cout << letters::compose_now(view->lookout.desk(time), unclosed, attention);
+  return attention.empty() ? Exit::done : Exit::attention;
+}
+
+Exit review(const Invocation& call) {
+  const SettingsPointer settings = read_settings(call);
+  if (!settings) return Exit::usage;
+  const Instant time = time_of(*settings, open_to_read(*settings));
+  service::Period period = service::week_before(settings->calendar, time);
+  if (call.season) {
+    period = service::season_of(*settings, time);
+  } else if (!call.week.empty()) {
+    const auto week = service::iso_week(call.week);
+    if (!week) {
+      std::cerr << "antherd: --week '" << call.week
+                << "' is no ISO 8601 week such as 2026-W28; nothing was done\n";
+      return Exit::usage;
+    }
+    period = *week;
+  }
+  auto view = view_of(settings, time);
+  if (!view) return say(view.failure());
+  const letters::Desk desk = view->lookout.desk(time);
+  const letters::Review facts = service::make_review(view->lookout, view->store, period, time);
+  std::cout << letters::compose_review(facts, desk);
+  if (call.mail) {
+    if (!settings->mail) {
+      return say(Failure{"mail the review", settings->path, "there is no [mail] table",
+                         "it was only printed"});
+    }
+    auto store = open_to_write(*settings);
+    if (!store) return say(store.failure());
+    store::Decision decision;
+    for (const auto& letter : letters::compose_weekly(facts, settings->recipients, desk)) {
+      outbox::Item item;
+      item.letter = letter;
+      item.next_try = time;
+      decision.letters.push_back(std::move(item));
+    }
+    if (auto done = store->save(decision); !done) return say(done.failure());
+    std::cout << decision.letters.size() << " letters were put into the outbox; the service "
+              << "carries them.\n";
+  }
+  return facts.letters_parked > 0 ? Exit::attention : Exit::done;
+}
+
+}  // namespace antherd::commands

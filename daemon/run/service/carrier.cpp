@@ -1,0 +1,172 @@
+// See carrier.hpp.
+#include "run/service/carrier.hpp"
+
+#include <algorithm>
+
+namespace antherd::service {
+namespace {
+
+outbox::Ending ending_of(mail::How how) {
+  switch (how) {
+    case mail::How::accepted:
+      return outbox::Ending::accepted;
+    case mail::How::wait:
+      return outbox::Ending::wait;
+    case mail::How::refused:
+      return outbox::Ending::parked;
+    case mail::How::in_doubt:
+      return outbox::Ending::in_doubt;
+    case mail::How::settings_trouble:
+      return outbox::Ending::settings_trouble;
+  }
+  return outbox::Ending::wait;
+}
+
+outbox::Concern concern_of(mail::About about) {
+  switch (about) {
+    case mail::About::server:
+      return outbox::Concern::server;
+    case mail::About::recipient:
+      return outbox::Concern::recipient;
+    case mail::About::letter:
+      return outbox::Concern::letter;
+  }
+  return outbox::Concern::server;
+}
+
+outbox::Receipt receipt_of(std::int64_t item, const mail::Spoken& spoken, Instant now) {
+  outbox::Receipt receipt;
+  receipt.item = item;
+  receipt.ending = ending_of(spoken.how);
+  receipt.concern = concern_of(spoken.about);
+  receipt.code = spoken.code;
+  receipt.sentence = spoken.sentence;
+  receipt.at = now;
+  return receipt;
+}
+
+bool is_open(outbox::State state) {
+  return state != outbox::State::sent && state != outbox::State::parked;
+}
+
+}  // namespace
+
+Carrier::Carrier(std::shared_ptr<const settings::Settings> settings, store::Store& store, Send send)
+    : settings_(std::move(settings)), store_(store), send_(std::move(send)) {}
+
+Outcome Carrier::load(Instant now) {
+  auto line = store_.line();
+  if (!line) return line.failure();
+  line_ = outbox::reopen(*line);
+  auto items = store_.letters_open();
+  if (!items) return items.failure();
+  for (const outbox::Item& item : *items) {
+    if (auto done = store_.update(outbox::recover(item, now), line_); !done) return done;
+  }
+  return refresh();
+}
+
+Outcome Carrier::refresh() {
+  auto items = store_.letters_open();
+  if (!items) return items.failure();
+  // What is in the worker's hands is known better here than there.
+  const outbox::Item* mine = in_hand_ != 0 ? find(in_hand_) : nullptr;
+  const std::optional<outbox::Item> kept = mine ? std::optional(*mine) : std::nullopt;
+  items_ = std::move(*items);
+  if (kept) {
+    if (outbox::Item* item = find(in_hand_)) *item = *kept;
+  }
+  return Done{};
+}
+
+outbox::Item* Carrier::find(std::int64_t id) {
+  const auto item =
+      std::find_if(items_.begin(), items_.end(), [&](const outbox::Item& i) { return i.id == id; });
+  return item == items_.end() ? nullptr : &*item;
+}
+
+Outcome Carrier::keep(const outbox::Item& item) {
+  if (auto done = store_.update(item, line_); !done) return done;
+  if (outbox::Item* known = find(item.id)) *known = item;
+  std::erase_if(items_, [](const outbox::Item& i) { return !is_open(i.state); });
+  return Done{};
+}
+
+std::vector<std::string> Carrier::carry(Instant now) {
+  std::vector<std::string> said;
+  if (!settings_->mail || in_hand_ != 0) return said;
+  // A folder takes everything that is due at once, a server one letter at a time.
+  for (bool more = true; more && in_hand_ == 0;) {
+    more = false;
+    const outbox::Plan plan = outbox::plan(items_, line_, now);
+    for (const std::int64_t id : plan.expired) {
+      const outbox::Item expired = outbox::expire(*find(id), now);
+      if (auto done = keep(expired); !done) return said.push_back(done.failure().sentence()), said;
+      said.push_back("a letter to " + expired.letter.recipient + " was parked: " + expired.answer);
+    }
+    if (!plan.send) break;
+    const outbox::Item item = outbox::take(*find(*plan.send), now);
+    if (auto done = keep(item); !done) {
+      said.push_back(done.failure().sentence());
+      break;
+    }
+    if (settings_->mail->server) {
+      in_hand_ = item.id;
+      send_(*settings_->mail->server, item.id, outbox::as_sent(item, now));
+    } else {
+      said.push_back(write_file(item, now));
+      more = line_.failures == 0;
+    }
+  }
+  return said;
+}
+
+std::string Carrier::write_file(outbox::Item item, Instant now) {
+  const auto letter = outbox::as_sent(item, now);
+  const auto path = mail::write_eml(settings_->mail->folder, settings_->mail->from, letter);
+  mail::Spoken spoken;
+  spoken.how = path ? mail::How::accepted : mail::How::wait;
+  spoken.sentence = path ? "written to " + *path : path.failure().sentence();
+  return received(item.id, spoken, now);
+}
+
+bool Carrier::before_dot(std::int64_t item, Instant now) {
+  const outbox::Item* known = find(item);
+  if (known == nullptr || item != in_hand_) return false;
+  return static_cast<bool>(keep(outbox::doubt(*known, now)));
+}
+
+std::string Carrier::received(std::int64_t item, const mail::Spoken& spoken, Instant now) {
+  if (item == in_hand_) in_hand_ = 0;
+  const outbox::Item* known = find(item);
+  if (known == nullptr) return {};
+  const outbox::Receipt receipt = receipt_of(item, spoken, now);
+  const outbox::Item next = outbox::receive(*known, receipt);
+  line_ = outbox::receive(line_, receipt, jitter());
+  const std::string sentence = "letter to " + next.letter.recipient + " \"" + next.letter.subject +
+                               "\" is " + outbox::name_of(next.state) + ": " + spoken.sentence;
+  if (auto done = keep(next); !done) return sentence + "; " + done.failure().sentence();
+  return sentence;
+}
+
+std::optional<Instant> Carrier::look_again(Instant now) const {
+  if (!settings_->mail || in_hand_ != 0) return std::nullopt;
+  const outbox::Plan plan = outbox::plan(items_, line_, now);
+  return plan.send ? std::optional(now) : plan.look_again;
+}
+
+std::optional<Instant> Carrier::oldest_waiting() const {
+  std::optional<Instant> oldest;
+  for (const outbox::Item& item : items_) {
+    if (!oldest || item.letter.decided < *oldest) oldest = item.letter.decided;
+  }
+  return oldest;
+}
+
+/// Spreads retries: a fixed sequence will do (multiplicative congruence, Knuth), no randomness.
+double Carrier::jitter() {
+  draws_ = draws_ * 6364136223846793005ULL + 1442695040888963407ULL;
+  return static_cast<double>(draws_ >> 11) / 9007199254740992.0;
+}
+
+}  // namespace antherd::service

@@ -1,0 +1,290 @@
+// See desk_work.hpp.
+#include "run/service/desk_work.hpp"
+
+#include <algorithm>
+#include <utility>
+
+#include "run/service/log.hpp"
+
+namespace antherd::service {
+namespace {
+
+constexpr Seconds scan_every{60};
+
+std::string age_text(Seconds age) {
+  const auto minutes = age.count() / 60;
+  if (minutes < 120) return std::to_string(std::max<long>(0, minutes)) + " min";
+  return std::to_string(minutes / 60) + " h";
+}
+
+}  // namespace
+
+DeskWork::DeskWork(std::shared_ptr<const settings::Settings> settings, store::Store store)
+    : settings_(std::move(settings)), store_(std::move(store)) {}
+
+Result<std::unique_ptr<DeskWork>> DeskWork::open(std::shared_ptr<const settings::Settings> settings,
+                                                 Instant now) {
+  store::Store::Options options;
+  options.folder = settings->store_folder;
+  options.service = true;
+  options.now = now;
+  auto store = store::Store::open(options);
+  if (!store) return store.failure();
+  std::unique_ptr<DeskWork> work(new DeskWork(std::move(settings), std::move(*store)));
+  if (const auto aside = work->store_.set_aside()) {
+    log_error("the store was damaged; it was put aside as " + *aside +
+              " and a new one was begun: files in the drop folder are read again");
+  }
+  if (auto done = work->begin(now); !done) return done.failure();
+  return work;
+}
+
+Outcome DeskWork::begin(Instant now) {
+  keeper_ = std::make_unique<Keeper>(settings_, store_);
+  carrier_ = std::make_unique<Carrier>(
+      settings_, store_, [this](mail::Server server, std::int64_t item, letters::Letter letter) {
+        if (send_) send_(std::move(server), item, std::move(letter));
+      });
+  if (auto done = keeper_->load(now); !done) return done;
+  if (auto done = carrier_->load(now); !done) return done;
+  sources_.clear();
+  for (const auto& station : settings_->stations) {
+    Source& source = sources_[station.station.name];
+    auto notes = store_.notes_with_prefix(bookmark_prefix(station.station.name));
+    if (!notes) return notes.failure();
+    for (const auto& [key, text] : *notes) {
+      auto bookmark = bookmark_of(text);
+      if (bookmark) source.bookmarks.push_back(std::move(*bookmark));
+    }
+    source.next_poll = now;
+  }
+  diary_version_ = "unread";
+  next_look_ = now;
+  return Done{};
+}
+
+Instant DeskWork::turn(Instant now, bool clock_set) {
+  const bool scan = look_due_ || now >= next_look_ || next_look_ - now > scan_every;
+  look_due_ = false;
+  if (scan) {
+    next_look_ = now + scan_every;
+    look(now);
+  }
+  ask_stations(now);
+  const Kept kept = keeper_->step(now, clock_set);
+  log_kept(kept);
+  if (kept.letters > 0) {
+    if (auto done = carrier_->refresh(); !done) log_once("outbox", done.failure().sentence());
+  }
+  for (const std::string& sentence : carrier_->carry(now)) log_info(sentence);
+
+  Instant wake = std::min(now + scan_every, std::max(now, next_look_));
+  if (look_due_) wake = now;
+  wake = std::min(wake, keeper_->next_wake(now));
+  for (const auto& station : settings_->stations) {
+    const Source& source = sources_.at(station.station.name);
+    if (station.http && !source.asked) wake = std::min(wake, std::max(now, source.next_poll));
+  }
+  if (const auto again = carrier_->look_again(now)) wake = std::min(wake, std::max(now, *again));
+  return wake;
+}
+
+void DeskWork::look(Instant now) {
+  for (const auto& station : settings_->stations) {
+    if (!station.drop) continue;
+    if (look_into_drop(station, sources_.at(station.station.name), now)) look_due_ = true;
+  }
+  look_into_diary(now);
+}
+
+bool DeskWork::look_into_drop(const settings::Station& station, Source& source, Instant now) {
+  const std::string& name = station.station.name;
+  const station::Look look = station::look_into(*station.drop, source.bookmarks, now);
+  store::Notes notes;
+  for (const station::Bookmark& bookmark : look.bookmarks) {
+    const auto known =
+        std::find_if(source.bookmarks.begin(), source.bookmarks.end(),
+                     [&](const station::Bookmark& b) { return b.path == bookmark.path; });
+    if (known == source.bookmarks.end()) {
+      source.bookmarks.push_back(bookmark);
+    } else {
+      *known = bookmark;
+    }
+    notes.insert(note_of(name, bookmark));
+  }
+  for (const Failure& trouble : look.troubles) note_trouble(name, trouble.sentence());
+  take_readings(name, look.readings, notes, now);
+  return look.more;
+}
+
+void DeskWork::look_into_diary(Instant now) {
+  if (settings_->diary_folder.empty()) return;
+  const std::string version = diary_files_version(*settings_);
+  if (version == diary_version_) return;
+  const DiaryFiles files = read_diary_files(*settings_);
+  for (const Failure& trouble : files.troubles) log_once("diary", trouble.sentence());
+  if (auto done = write_refused(settings_->store_folder, "diary", now, files.refused); !done) {
+    log_once("refused", done.failure().sentence());
+  }
+  for (const auto& row : files.refused) {
+    log_warning("diary: " + row.file + ":" + std::to_string(row.line) + ": " + row.reason +
+                "; the line was not used");
+  }
+  if (auto done = keeper_->take_diary(files.diary); !done) {
+    log_once("diary", done.failure().sentence());
+    return;
+  }
+  diary_version_ = version;
+}
+
+void DeskWork::ask_stations(Instant now) {
+  for (const auto& station : settings_->stations) {
+    Source& source = sources_.at(station.station.name);
+    if (!station.http || source.asked || now < source.next_poll || !ask_) continue;
+    source.asked = true;
+    ask_(station.station.name, *station.http, source.memory);
+  }
+}
+
+void DeskWork::poll_answered(const std::string& name, const station::Answer& answer, Instant now) {
+  const auto found = sources_.find(name);
+  const settings::Station* station = settings_->station(name);
+  if (found == sources_.end() || station == nullptr || !station->http) return;  // settings changed
+  Source& source = found->second;
+  source.asked = false;
+  source.memory = answer.memory;
+  // Every station has its own place in the spread: they do not all ask in the same second.
+  const double place = static_cast<double>(std::hash<std::string>{}(name) % 1000) / 1000.0;
+  source.next_poll = now + station::poll_delay(*station->http, answer.memory, place);
+  if (answer.trouble) {
+    note_trouble(name, answer.trouble->sentence());
+  } else {
+    source.last_trouble.clear();
+    logged_.erase("source " + name);
+  }
+  take_readings(name, answer.readings, {}, now);
+}
+
+void DeskWork::take_readings(const std::string& station, const station::Readings& readings,
+                             const store::Notes& notes, Instant now) {
+  keeper_->take(station, readings.samples, notes, now);
+  if (!readings.refused.empty()) {
+    Source& source = sources_.at(station);
+    source.refused[settings_->calendar.day_of(now)] += static_cast<int>(readings.refused.size());
+    while (source.refused.size() > 2) source.refused.erase(source.refused.begin());
+    auto done = write_refused(settings_->store_folder, station, now, readings.refused);
+    if (!done) log_once("refused", done.failure().sentence());
+    const auto& first = readings.refused.front();
+    log_warning(station + ": " + std::to_string(readings.refused.size()) +
+                " rows refused, the first: " + first.file + ":" + std::to_string(first.line) +
+                ": " + first.reason + "; all stand in refused.csv, the rest is used");
+  }
+  tell_news(station, now);
+}
+
+void DeskWork::note_trouble(const std::string& station, const std::string& sentence) {
+  sources_.at(station).last_trouble = sentence;
+  log_once("source " + station, station + ": " + sentence);
+}
+
+void DeskWork::tell_news(const std::string& station, Instant now) {
+  const Source& source = sources_.at(station);
+  SourceNews news;
+  news.last_trouble = source.last_trouble;
+  const CivilDay yesterday = settings_->calendar.day_of(now) - std::chrono::days{1};
+  for (const auto& [day, count] : source.refused) {
+    if (day >= yesterday) news.refused_rows_24 += count;
+  }
+  keeper_->lookout().set_source_news(station, std::move(news));
+}
+
+void DeskWork::mail_spoken(std::int64_t item, const mail::Spoken& spoken, Instant now) {
+  const std::string sentence = carrier_->received(item, spoken, now);
+  if (spoken.how == mail::How::accepted) {
+    log_info(sentence);
+  } else {
+    log_warning(sentence);
+  }
+  if (reload_wanted_) reload(now);
+}
+
+void DeskWork::reload(Instant now) {
+  reload_wanted_ = carrier_->busy();
+  if (reload_wanted_) return;
+  settings::Reading reading = settings::read_file(settings_->path);
+  for (const auto& complaint : reading.complaints) log_error(complaint.sentence());
+  if (!reading.settings) {
+    log_error("the settings were read again and have faults: the old ones stay in force");
+    return;
+  }
+  if (reading.settings->store_folder != settings_->store_folder) {
+    log_error(
+        "[store] folder cannot change while the service runs: the old settings stay in "
+        "force; restart the service to move the store");
+    return;
+  }
+  if (auto done = keeper_->flush(now); !done) {
+    log_error(done.failure().sentence() + "; the old settings stay in force");
+    return;
+  }
+  const auto old = settings_;
+  settings_ = std::make_shared<const settings::Settings>(std::move(*reading.settings));
+  auto done = begin(now);
+  if (done) done = open_log(settings_->log);
+  if (!done) {
+    log_error(done.failure().sentence() + "; the old settings stay in force");
+    settings_ = old;
+    if (auto back = begin(now); !back) log_error(back.failure().sentence());
+    return;
+  }
+  look_due_ = true;
+  log_info("the settings were read again and are in force");
+}
+
+void DeskWork::finish(Instant now) {
+  if (auto done = keeper_->flush(now); !done) log_error(done.failure().sentence());
+}
+
+std::vector<std::string> DeskWork::folders() const {
+  std::vector<std::string> folders;
+  for (const auto& station : settings_->stations) {
+    if (station.drop) folders.push_back(station.drop->folder);
+  }
+  if (!settings_->diary_folder.empty()) folders.push_back(settings_->diary_folder);
+  return folders;
+}
+
+std::string DeskWork::status_line(Instant now) const {
+  std::string line;
+  for (const auto& station : settings_->stations) {
+    const auto last = keeper_->lookout().last_sample(station.station.name);
+    line += station.station.name + ": " +
+            (last ? "read " + age_text(now - *last) + " ago" : "no data yet") + "; ";
+  }
+  const outbox::Line& mail = carrier_->line();
+  line += std::to_string(carrier_->waiting()) + " letters waiting";
+  if (mail.last_success) line += ", last mail " + age_text(now - *mail.last_success) + " ago";
+  if (!mail.trouble.empty()) line += ", mail: " + mail.trouble;
+  return line;
+}
+
+void DeskWork::log_kept(const Kept& kept) {
+  for (const alerts::Telling& telling : kept.tellings) {
+    std::string sentence = std::string(alerts::name_of(telling.kind)) + " of " + telling.subject +
+                           ", " + alerts::name_of(telling.severity);
+    if (telling.figure) sentence += ", figure " + std::to_string(*telling.figure).substr(0, 5);
+    if (!telling.key.empty()) sentence += ", " + telling.key;
+    log_warning("alert: " + sentence);
+  }
+  for (const Failure& trouble : kept.troubles) log_once("store", trouble.sentence());
+  if (kept.troubles.empty()) logged_.erase("store");
+}
+
+/// The same trouble is said once, until it changes or passes.
+void DeskWork::log_once(const std::string& what, const std::string& sentence) {
+  if (logged_[what] == sentence) return;
+  logged_[what] = sentence;
+  log_warning(sentence);
+}
+
+}  // namespace antherd::service

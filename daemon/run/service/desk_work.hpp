@@ -1,0 +1,89 @@
+// The owner's work of one turn, without sockets, threads or a clock of its own: look at the
+// sources, keep what came, decide, carry. Tests drive it with any time they like.
+#pragma once
+
+#include <functional>
+#include <map>
+#include <memory>
+#include <string>
+#include <vector>
+
+#include "edge/station/poll.hpp"
+#include "edge/store/store.hpp"
+#include "run/service/carrier.hpp"
+#include "run/service/intake.hpp"
+#include "run/service/keeper.hpp"
+#include "run/settings/settings.hpp"
+
+namespace antherd::service {
+
+class DeskWork {
+ public:
+  using Ask = std::function<void(const std::string& station, const station::HttpForm&,
+                                 const station::PollMemory&)>;
+
+  /// Opens the store as the one service of its folder and reads everything back.
+  static Result<std::unique_ptr<DeskWork>> open(std::shared_ptr<const settings::Settings> settings,
+                                                Instant now);
+
+  void on_send(Carrier::Send send) { send_ = std::move(send); }
+  void on_poll(Ask ask) { ask_ = std::move(ask); }
+
+  /// One turn. @return when to turn again, at most 60 s later
+  Instant turn(Instant now, bool clock_set);
+  /// The drop folders are looked into at the next turn, not only every 60 s.
+  void look_soon() { look_due_ = true; }
+
+  void poll_answered(const std::string& station, const station::Answer& answer, Instant now);
+  bool before_dot(std::int64_t item, Instant now) { return carrier_->before_dot(item, now); }
+  void mail_spoken(std::int64_t item, const mail::Spoken& spoken, Instant now);
+
+  /// Reads the settings file again: whole or not at all; complaints go to the log.
+  void reload(Instant now);
+  /// Stores what is in memory.
+  void finish(Instant now);
+
+  std::vector<std::string> folders() const;
+  std::string status_line(Instant now) const;
+  const Keeper& keeper() const { return *keeper_; }
+  Keeper& keeper() { return *keeper_; }
+  store::Store& store() { return store_; }
+
+ private:
+  struct Source {
+    std::vector<station::Bookmark> bookmarks;  // of a drop folder
+    station::PollMemory memory;                // of a polled station
+    Instant next_poll;
+    bool asked = false;
+    std::map<CivilDay, int> refused;  // rows by day
+    std::string last_trouble;
+  };
+
+  DeskWork(std::shared_ptr<const settings::Settings> settings, store::Store store);
+  Outcome begin(Instant now);
+  void look(Instant now);
+  bool look_into_drop(const settings::Station& station, Source& source, Instant now);
+  void look_into_diary(Instant now);
+  void ask_stations(Instant now);
+  void take_readings(const std::string& station, const station::Readings& readings,
+                     const store::Notes& notes, Instant now);
+  void note_trouble(const std::string& station, const std::string& sentence);
+  void tell_news(const std::string& station, Instant now);
+  void log_kept(const Kept& kept);
+  void log_once(const std::string& what, const std::string& sentence);
+
+  std::shared_ptr<const settings::Settings> settings_;
+  store::Store store_;
+  std::unique_ptr<Keeper> keeper_;
+  std::unique_ptr<Carrier> carrier_;
+  Carrier::Send send_;
+  Ask ask_;
+  std::map<std::string, Source> sources_;
+  std::map<std::string, std::string> logged_;  // the last sentence of each kind of trouble
+  std::string diary_version_ = "unread";
+  Instant next_look_{};
+  bool look_due_ = true;
+  bool reload_wanted_ = false;  // put off until the letter under way has ended
+};
+
+}  // namespace antherd::service

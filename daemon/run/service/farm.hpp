@@ -1,0 +1,23 @@
+// From settings to what the core needs: a plan per field. It must not know facts nor time.
+#pragma once
+
+#include <string>
+#include <vector>
+
+#include "core/season/plan.hpp"
+#include "run/settings/settings.hpp"
+
+namespace antherd::service {
+
+/// A field's plan with its stations in the field's order.
+season::Plan plan_of(const settings::Settings& settings, const settings::FieldPlan& field);
+
+/// The names of the fields that a station gives data to.
+std::vector<std::string> fields_of(const settings::Settings& settings, const std::string& station);
+
+/// When hours are no longer taken for running: hours before the result are closed (science §3).
+/// @param last_sample  newest accepted sample of the station, nothing for none yet
+HourStart closed_before(const weather::Station& station, std::optional<Instant> last_sample,
+                        Instant now);
+
+}  // namespace antherd::service

@@ -1,0 +1,216 @@
+// See lookout.hpp.
+#include "run/service/lookout.hpp"
+
+#include <algorithm>
+#include <utility>
+
+#include "run/service/farm.hpp"
+
+namespace antherd::service {
+namespace {
+
+constexpr auto sample_times_kept = std::chrono::days{10};
+
+}  // namespace
+
+Lookout::Lookout(std::shared_ptr<const settings::Settings> settings)
+    : settings_(std::move(settings)), policy_(settings_->policy) {
+  for (const settings::Station& station : settings_->stations) {
+    stations_[station.station.name].station = station.station;
+  }
+  for (const settings::FieldPlan& field : settings_->fields) {
+    fields_[field.field.name].plan = plan_of(*settings_, field);
+  }
+}
+
+void Lookout::replace_hours(const std::string& station, HourStart from, HourStart to,
+                            std::vector<weather::Hour> fresh) {
+  StationMemory& memory = stations_.at(station);
+  auto& hours = memory.hours;
+  const auto before = [](const weather::Hour& hour, HourStart start) { return hour.start < start; };
+  const auto first = std::lower_bound(hours.begin(), hours.end(), from, before);
+  const auto last = std::lower_bound(first, hours.end(), to, before);
+  const bool same = std::equal(first, last, fresh.begin(), fresh.end());
+  if (same) return;
+  std::optional<HourStart> changed;  // the first hour that is not as it was
+  auto old_hour = first;
+  auto new_hour = fresh.begin();
+  for (; old_hour != last && new_hour != fresh.end() && *old_hour == *new_hour;
+       ++old_hour, ++new_hour) {
+  }
+  if (old_hour != last) changed = old_hour->start;
+  if (new_hour != fresh.end()) {
+    changed = changed ? std::min(*changed, new_hour->start) : new_hour->start;
+  }
+  const auto at = hours.erase(first, last);
+  hours.insert(at, std::make_move_iterator(fresh.begin()), std::make_move_iterator(fresh.end()));
+  for (auto& [name, field] : fields_) {
+    const auto& used = field.plan.field.stations;
+    if (std::find(used.begin(), used.end(), station) == used.end()) continue;
+    if (*changed < field.folded_until) field.stale = true;
+  }
+}
+
+void Lookout::set_diary(const std::string& field, field::Diary diary) {
+  FieldMemory& memory = fields_.at(field);
+  memory.diary = season::DiaryView(std::move(diary), memory.plan.place());
+  memory.stale = true;
+}
+
+void Lookout::add_sample_times(const std::string& station, const std::vector<Instant>& times) {
+  if (times.empty()) return;
+  auto& kept = stations_.at(station).times;
+  kept.insert(kept.end(), times.begin(), times.end());
+  std::sort(kept.begin(), kept.end());
+  kept.erase(std::unique(kept.begin(), kept.end()), kept.end());
+  const Instant oldest = kept.back() - sample_times_kept;
+  kept.erase(kept.begin(), std::lower_bound(kept.begin(), kept.end(), oldest));
+}
+
+void Lookout::set_ledger(std::vector<alerts::Said> said) { said_ = std::move(said); }
+
+void Lookout::set_source_news(const std::string& station, SourceNews news) {
+  stations_.at(station).news = std::move(news);
+}
+
+void Lookout::fold_field(FieldMemory& field, const Closed& closed) {
+  HourStart until = HourStart::max();
+  for (const std::string& station : field.plan.field.stations) {
+    until = std::min(until, closed.at(station));
+  }
+  if (field.plan.field.harvested) {
+    const Instant end =
+        settings_->calendar.start_of(*field.plan.field.harvested + std::chrono::days{2});
+    until = std::min(until, antherd::hour_of(end));
+  }
+  season::StationHours hours;
+  for (const std::string& station : field.plan.field.stations) {
+    hours.emplace_back(stations_.at(station).hours);
+  }
+  if (field.stale || field.folded_until == HourStart{}) {
+    field.state = season::fold(field.plan, field.diary, hours, until);
+    field.folded_until = std::max(until, field.plan.first_hour());
+    field.stale = false;
+    return;
+  }
+  season::HourPicker picker(hours);
+  for (; field.folded_until < until; field.folded_until += std::chrono::hours{1}) {
+    const auto picked = picker.pick(field.folded_until);
+    season::advance(
+        field.state, field.plan, field.diary,
+        season::air_at_field(field.plan, field.folded_until, picked.hour, picked.station));
+  }
+}
+
+Turn Lookout::turn(Instant now, const Closed& closed, bool clock_set) {
+  clock_set_ = clock_set;
+  episodes_.clear();
+  std::vector<alerts::Notice> notices;
+  for (auto& [name, field] : fields_) {
+    fold_field(field, closed);
+    episodes_.insert(episodes_.end(), field.state.episodes.begin(), field.state.episodes.end());
+    notices.insert(notices.end(), field.state.notices.begin(), field.state.notices.end());
+  }
+  for (const auto& [name, station] : stations_) gather_station_episodes(station, now);
+
+  Turn turn;
+  turn.tellings = alerts::decide(episodes_, notices, said_, policy_, now);
+  if (turn.tellings.empty()) return turn;
+  for (const alerts::Telling& telling : turn.tellings) {
+    turn.said.push_back(alerts::record_of(telling, now));
+  }
+  turn.letters = letters::compose(turn.tellings, settings_->recipients, desk(now));
+  said_.insert(said_.end(), turn.said.begin(), turn.said.end());
+  return turn;
+}
+
+letters::StationStory Lookout::story_of(const StationMemory& station, Instant now) const {
+  letters::StationStory story;
+  story.station = station.station.name;
+  story.last_reading = last_sample(station.station.name);
+  story.fields = fields_of(*settings_, station.station.name);
+  for (const std::string& name : story.fields) {
+    if (fields_.at(name).state.crop.part == season::Part::window) {
+      story.fields_in_window.push_back(name);
+    }
+  }
+  const settings::Station* setting = settings_->station(station.station.name);
+  if (setting != nullptr) story.source = setting->source();
+  story.refused_rows = station.news.refused_rows_24;
+  story.last_trouble = station.news.last_trouble;
+  const Instant since = now - std::chrono::days{1};
+  for (auto hour = station.hours.rbegin(); hour != station.hours.rend(); ++hour) {
+    if (Instant(hour->start) < since) break;
+    if (Instant(hour->start) > now) continue;
+    story.flags_24.insert(story.flags_24.end(), hour->flags.begin(), hour->flags.end());
+  }
+  return story;
+}
+
+letters::Desk Lookout::desk(Instant now) const {
+  letters::Desk desk;
+  desk.farm = settings_->farm;
+  desk.calendar = &settings_->calendar;
+  desk.now = now;
+  desk.units = settings_->units;
+  desk.clock_set = clock_set_;
+  desk.remind_after = policy_.remind_after;
+  desk.exercise = settings_->exercise;
+  bool in_window = false;
+  for (const auto& [name, field] : fields_) {
+    desk.fields[name] = season::status(field.state, field.plan, field.diary);
+    in_window = in_window || field.state.crop.part == season::Part::window;
+  }
+  for (const auto& [name, station] : stations_) desk.stations[name] = story_of(station, now);
+  if (settings_->mail) {
+    if (in_window) desk.next_daily = next_daily(*settings_, now);
+    desk.next_weekly = next_weekly(*settings_, now);
+  }
+  return desk;
+}
+
+const season::State& Lookout::state(const std::string& field) const {
+  return fields_.at(field).state;
+}
+const season::Plan& Lookout::plan(const std::string& field) const { return fields_.at(field).plan; }
+const season::DiaryView& Lookout::diary(const std::string& field) const {
+  return fields_.at(field).diary;
+}
+const std::vector<weather::Hour>& Lookout::station_hours(const std::string& station) const {
+  return stations_.at(station).hours;
+}
+
+season::StationHours Lookout::hours_of(const std::string& field) const {
+  season::StationHours hours;
+  for (const std::string& station : fields_.at(field).plan.field.stations) {
+    hours.emplace_back(stations_.at(station).hours);
+  }
+  return hours;
+}
+
+std::optional<Instant> Lookout::last_sample(const std::string& station) const {
+  const auto& times = stations_.at(station).times;
+  return times.empty() ? std::nullopt : std::optional(times.back());
+}
+
+Instant next_daily(const settings::Settings& settings, Instant now) {
+  const CivilDay today = settings.calendar.day_of(now);
+  const std::chrono::minutes clock{settings.mail->daily_minute};
+  const Instant due = settings.calendar.at(CivilTime(today) + clock);
+  return due > now ? due : settings.calendar.at(CivilTime(today + std::chrono::days{1}) + clock);
+}
+
+Instant next_weekly(const settings::Settings& settings, Instant now) {
+  const CivilDay today = settings.calendar.day_of(now);
+  const std::chrono::minutes clock{settings.mail->weekly.minute};
+  for (int ahead = 0; ahead <= 7; ++ahead) {
+    const CivilDay day = today + std::chrono::days{ahead};
+    const auto weekday = std::chrono::weekday{std::chrono::sys_days{day.time_since_epoch()}};
+    if (weekday.iso_encoding() != static_cast<unsigned>(settings.mail->weekly.weekday)) continue;
+    const Instant due = settings.calendar.at(CivilTime(day) + clock);
+    if (due > now) return due;
+  }
+  return settings.calendar.at(CivilTime(today + std::chrono::days{7}) + clock);
+}
+
+}  // namespace antherd::service

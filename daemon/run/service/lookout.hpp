@@ -1,0 +1,98 @@
+// The lookout: hours, diary and ledger in memory, one fold a field, and one turn that says what is
+// to be told now. The service and `replay` turn the same lookout; it must not know the store, the
+// network, files or what time it is. Everything here may be lost: it is made anew from facts.
+#pragma once
+
+#include <map>
+#include <memory>
+#include <optional>
+#include <string>
+#include <vector>
+
+#include "core/alerts/decide.hpp"
+#include "core/letters/compose.hpp"
+#include "core/season/fold.hpp"
+#include "run/settings/settings.hpp"
+
+namespace antherd::service {
+
+/// By station: hours before this are closed.
+using Closed = std::map<std::string, HourStart>;
+
+/// What a source said of itself lately; for letters about stations.
+struct SourceNews {
+  int refused_rows_24 = 0;
+  std::string last_trouble;
+};
+
+/// One turn's outcome: what to save together.
+struct Turn {
+  std::vector<alerts::Telling> tellings;
+  std::vector<alerts::Said> said;
+  std::vector<letters::Letter> letters;
+};
+
+class Lookout {
+ public:
+  explicit Lookout(std::shared_ptr<const settings::Settings> settings);
+
+  // Facts. Hours are in time order, one an hour; replacing a past hour folds again from sowing.
+  void replace_hours(const std::string& station, HourStart from, HourStart to,
+                     std::vector<weather::Hour> fresh);
+  void set_diary(const std::string& field, field::Diary diary);
+  /// Times of accepted samples, any order, repeats allowed; the last 10 days are kept.
+  void add_sample_times(const std::string& station, const std::vector<Instant>& times);
+  void set_ledger(std::vector<alerts::Said> said);
+  void set_first_start(std::optional<Instant> at) { policy_.first_start = at; }
+  void set_source_news(const std::string& station, SourceNews news);
+
+  /// Folds every field up to its closed hours and decides what to say.
+  Turn turn(Instant now, const Closed& closed, bool clock_set = true);
+
+  // For screens and reviews.
+  letters::Desk desk(Instant now) const;
+  const settings::Settings& settings() const { return *settings_; }
+  const season::State& state(const std::string& field) const;
+  const season::Plan& plan(const std::string& field) const;
+  const season::DiaryView& diary(const std::string& field) const;
+  season::StationHours hours_of(const std::string& field) const;
+  const std::vector<weather::Hour>& station_hours(const std::string& station) const;
+  std::optional<Instant> last_sample(const std::string& station) const;
+  const std::vector<alerts::Said>& ledger() const { return said_; }
+  /// Episodes of fields and stations as they stood at the last turn.
+  const std::vector<alerts::Episode>& episodes() const { return episodes_; }
+  void set_clock(bool set) { clock_set_ = set; }
+
+ private:
+  struct FieldMemory {
+    season::Plan plan;
+    season::DiaryView diary;
+    season::State state;
+    HourStart folded_until{};  // hours before it are folded
+    bool stale = true;         // a fact of the past changed: fold again from sowing
+  };
+  struct StationMemory {
+    weather::Station station;
+    std::vector<weather::Hour> hours;
+    std::vector<Instant> times;
+    SourceNews news;
+  };
+
+  void fold_field(FieldMemory& field, const Closed& closed);
+  void gather_station_episodes(const StationMemory& station, Instant now);
+  letters::StationStory story_of(const StationMemory& station, Instant now) const;
+
+  std::shared_ptr<const settings::Settings> settings_;
+  alerts::Policy policy_;
+  std::map<std::string, FieldMemory> fields_;
+  std::map<std::string, StationMemory> stations_;
+  std::vector<alerts::Said> said_;
+  std::vector<alerts::Episode> episodes_;
+  bool clock_set_ = true;
+};
+
+/// The next time the daily or weekly letter is due after `now`.
+Instant next_daily(const settings::Settings& settings, Instant now);
+Instant next_weekly(const settings::Settings& settings, Instant now);
+
+}  // namespace antherd::service

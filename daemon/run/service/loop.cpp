@@ -1,0 +1,175 @@
+// See loop.hpp.
+#include "run/service/loop.hpp"
+
+#include <boost/asio.hpp>
+#include <utility>
+
+#include "run/service/desk_work.hpp"
+#include "run/service/log.hpp"
+#include "run/service/mail_worker.hpp"
+#include "run/service/manager.hpp"
+#include "run/service/poll_worker.hpp"
+#include "run/service/watch_folders.hpp"
+
+namespace antherd::service {
+namespace {
+
+namespace asio = boost::asio;
+
+class Loop {
+ public:
+  Loop(std::unique_ptr<DeskWork> work, const RunOptions& options)
+      : work_(std::move(work)),
+        options_(options),
+        signals_(io_, SIGTERM, SIGINT, SIGHUP),
+        timer_(io_),
+        end_(io_),
+        notifier_(io_),
+        mail_([this](auto item, auto permission) { ask_before_dot(item, permission); },
+              [this](auto item, auto spoken) { report_mail(item, std::move(spoken)); }),
+        polls_([this](auto name, auto answer) { report_poll(std::move(name), std::move(answer)); },
+               [time = options.time] { return time.now(); }) {
+    work_->on_send([this](mail::Server server, std::int64_t item, letters::Letter letter) {
+      mail_.send(std::move(server), item, std::move(letter));
+    });
+    work_->on_poll([this](const std::string& name, const station::HttpForm& form,
+                          const station::PollMemory& memory) { polls_.ask(name, form, memory); });
+  }
+
+  void run() {
+    wait_for_signal();
+    watch_folders();
+    if (options_.stop_after) {
+      end_.expires_after(*options_.stop_after);
+      end_.async_wait([this](const boost::system::error_code& error) {
+        if (!error) stop("the exercise is over");
+      });
+    }
+    turn();
+    tell_ready();
+    io_.run();
+    finish();
+  }
+
+ private:
+  Instant now() const { return options_.time.now(); }
+
+  void turn() {
+    if (stopping_) return;
+    const Instant wake = work_->turn(now(), options_.time.set());
+    tell_alive();
+    tell_status(work_->status_line(now()));
+    timer_.expires_after(options_.time.wait_until(wake));
+    timer_.async_wait([this](const boost::system::error_code& error) {
+      if (!error) turn();
+    });
+  }
+
+  /// Something happened: look now instead of at the next due moment.
+  void hurry() {
+    if (stopping_) return;
+    timer_.cancel();
+    asio::post(io_, [this] { turn(); });
+  }
+
+  void wait_for_signal() {
+    signals_.async_wait([this](const boost::system::error_code& error, int number) {
+      if (error) return;
+      if (number == SIGHUP) {
+        reload();
+        wait_for_signal();
+      } else {
+        stop(number == SIGTERM ? "told to stop" : "interrupted");
+      }
+    });
+  }
+
+  void reload() {
+    tell_reloading();
+    work_->reload(now());
+    watch_folders();
+    tell_ready();
+    hurry();
+  }
+
+  void watch_folders() {
+    if (notifier_.is_open()) notifier_.release();
+    if (!folders_.watch(work_->folders())) return;  // no inotify: the scan every 60 s remains
+    notifier_.assign(folders_.descriptor());
+    await_folder();
+  }
+
+  void await_folder() {
+    notifier_.async_wait(asio::posix::stream_descriptor::wait_read,
+                         [this](const boost::system::error_code& error) {
+                           if (error || stopping_) return;
+                           folders_.drain();
+                           work_->look_soon();
+                           hurry();
+                           await_folder();
+                         });
+  }
+
+  // Called in the workers' threads: they only post.
+  void ask_before_dot(std::int64_t item, std::shared_ptr<Permission> permission) {
+    asio::post(io_, [this, item, permission] { permission->give(work_->before_dot(item, now())); });
+  }
+  void report_mail(std::int64_t item, mail::Spoken spoken) {
+    asio::post(io_, [this, item, spoken = std::move(spoken)] {
+      mail_.rest();
+      work_->mail_spoken(item, spoken, now());
+      hurry();
+    });
+  }
+  void report_poll(std::string name, station::Answer answer) {
+    asio::post(io_, [this, name = std::move(name), answer = std::move(answer)] {
+      work_->poll_answered(name, answer, now());
+      hurry();
+    });
+  }
+
+  void stop(const std::string& why) {
+    if (stopping_) return;
+    stopping_ = true;
+    tell_stopping();
+    log_info("stopping: " + why);
+    io_.stop();
+  }
+
+  /// Workers end within 0.2 s; what they still report is written down before the store closes.
+  void finish() {
+    mail_.stop();
+    polls_.stop();
+    boost::system::error_code ignored;
+    signals_.cancel(ignored);
+    timer_.cancel();
+    end_.cancel();
+    if (notifier_.is_open()) notifier_.release();
+    io_.restart();
+    io_.poll();
+    work_->finish(now());
+  }
+
+  std::unique_ptr<DeskWork> work_;
+  RunOptions options_;
+  asio::io_context io_;
+  asio::signal_set signals_;
+  asio::steady_timer timer_, end_;
+  FolderWatch folders_;
+  asio::posix::stream_descriptor notifier_;
+  bool stopping_ = false;
+  MailWorker mail_;
+  PollWorker polls_;
+};
+
+}  // namespace
+
+Outcome run(std::shared_ptr<const settings::Settings> settings, const RunOptions& options) {
+  auto work = DeskWork::open(std::move(settings), options.time.now());
+  if (!work) return work.failure();
+  Loop loop(std::move(*work), options);
+  loop.run();
+  return Done{};
+}
+
+}  // namespace antherd::service

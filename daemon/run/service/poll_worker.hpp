@@ -1,0 +1,46 @@
+// One thread that asks the HTTP stations, one after the other. A slow station delays the others by
+// at most its 20 s; the loop is never delayed.
+#pragma once
+
+#include <atomic>
+#include <condition_variable>
+#include <deque>
+#include <functional>
+#include <mutex>
+#include <string>
+#include <thread>
+
+#include "edge/station/poll.hpp"
+
+namespace antherd::service {
+
+class PollWorker {
+ public:
+  using Report = std::function<void(std::string station, station::Answer)>;
+
+  /// @param report  called in the worker's thread; must only post to the owner
+  /// @param now  the service's time, for stations without their own
+  PollWorker(Report report, std::function<Instant()> now);
+  ~PollWorker();
+
+  void ask(std::string name, station::HttpForm form, station::PollMemory memory);
+  void stop();
+
+ private:
+  struct Job {
+    std::string name;
+    station::HttpForm form;
+    station::PollMemory memory;
+  };
+  void work();
+
+  Report report_;
+  std::function<Instant()> now_;
+  std::atomic<bool> stop_{false};
+  std::mutex mutex_;
+  std::condition_variable wake_;
+  std::deque<Job> jobs_;
+  std::thread thread_;
+};
+
+}  // namespace antherd::service

@@ -1,0 +1,157 @@
+// See review.hpp.
+#include "run/service/review.hpp"
+
+#include <algorithm>
+#include <cstdio>
+
+namespace antherd::service {
+namespace {
+
+using std::chrono::days;
+
+/// ISO 8601 week date of a civil day: year and week.
+std::pair<int, int> iso_week_of(CivilDay day) {
+  const std::chrono::sys_days sys{day.time_since_epoch()};
+  const auto weekday = static_cast<int>(std::chrono::weekday{sys}.iso_encoding());
+  const auto thursday = sys + days{4 - weekday};
+  const auto year = std::chrono::year_month_day{thursday}.year();
+  const auto first = std::chrono::sys_days{year / std::chrono::January / 1};
+  return {static_cast<int>(year), static_cast<int>((thursday - first).count() / 7) + 1};
+}
+
+std::string week_title(std::pair<int, int> week) {
+  const std::string number = std::to_string(week.second);
+  return "Week " + std::to_string(week.first) + "-W" + (number.size() < 2 ? "0" : "") + number;
+}
+
+template <class Record>
+std::vector<Record> within(const std::vector<Record>& records, const Period& period) {
+  std::vector<Record> found;
+  std::copy_if(records.begin(), records.end(), std::back_inserter(found),
+               [&](const Record& r) { return r.date >= period.first && r.date <= period.last; });
+  return found;
+}
+
+struct Span {
+  Instant from, to;
+};
+
+letters::FieldReview review_field(const Lookout& lookout, const std::string& name,
+                                  const Period& period, const Span& span) {
+  const season::Plan& plan = lookout.plan(name);
+  const season::DiaryView& diary = lookout.diary(name);
+  season::Chronicle chronicle;
+  letters::FieldReview review;
+  int warm_before = 0;
+  const auto& now_state = lookout.state(name);
+  const HourStart known_until =
+      now_state.last ? *now_state.last + std::chrono::hours{1} : plan.first_hour();
+  const HourStart until = std::min(hour_of(span.to), known_until);
+  const season::State state =
+      season::fold(plan, diary, lookout.hours_of(name), until, &chronicle,
+                   [&](const season::State& so_far, const season::Step& step) {
+                     if (Instant(step.hour.air.start) < span.from) {
+                       warm_before = so_far.heat.warm_nights;
+                       return;
+                     }
+                     if (step.hour.air.valid()) ++review.hours_valid;
+                   });
+  review.status = season::status(state, plan, diary);
+  review.days = within(chronicle.days, period);
+  review.humid_days = within(chronicle.humid_days, period);
+  const HourStart expected_from = std::max(hour_of(span.from), plan.first_hour());
+  review.hours_expected =
+      static_cast<int>(std::max<long>(0, (hour_of(span.to) - expected_from).count()));
+  review.warm_nights = state.heat.warm_nights - warm_before;
+  review.affected_low = state.heat.affected_low;
+  review.affected_high = state.heat.affected_high;
+  for (const auto& episode : state.episodes) {
+    const bool touches =
+        episode.start < span.to && (!episode.closed || *episode.closed > span.from);
+    if (touches) review.episodes.push_back(episode);
+  }
+  for (const auto& irrigation : diary.irrigations) {
+    if (irrigation.start >= span.from && irrigation.start < span.to) {
+      review.irrigations.push_back(irrigation);
+    }
+  }
+  review.notes = within(diary.notes, period);
+  return review;
+}
+
+void add_letters(letters::Review& review, const store::Store& store, const Span& span) {
+  const auto letters = store.letters_since(span.from);
+  if (!letters) {
+    review.troubles.push_back(letters.failure().sentence());
+    return;
+  }
+  for (const outbox::Item& item : *letters) {
+    if (item.state == outbox::State::sent) {
+      ++review.letters_sent;
+    } else if (item.state == outbox::State::parked) {
+      ++review.letters_parked;
+      review.parked.push_back(item.letter.recipient + ": " + item.letter.subject + " — " +
+                              item.answer);
+    } else {
+      ++review.letters_waiting;
+    }
+  }
+  const auto line = store.line();
+  if (line && !line->trouble.empty()) review.troubles.push_back(line->trouble);
+}
+
+}  // namespace
+
+Period week_before(const Calendar& calendar, Instant now) {
+  const CivilDay today = calendar.day_of(now);
+  return Period{week_title(iso_week_of(today - days{7})), today - days{7}, today - days{1}};
+}
+
+std::optional<Period> iso_week(const std::string& text) {
+  int year = 0, week = 0, used = 0;
+  const int fields = std::sscanf(text.c_str(), "%4d-W%2d%n", &year, &week, &used);
+  if (fields != 2 || used != static_cast<int>(text.size()) || week < 1 || week > 53) {
+    return std::nullopt;
+  }
+  using namespace std::chrono;
+  const auto fourth = sys_days{std::chrono::year{year} / January / 4};
+  const auto monday = fourth - days{static_cast<int>(weekday{fourth}.iso_encoding()) - 1};
+  const CivilDay first{(monday + days{7 * (week - 1)}).time_since_epoch()};
+  if (iso_week_of(first) != std::pair{year, week}) return std::nullopt;
+  return Period{week_title({year, week}), first, first + days{6}};
+}
+
+Period season_of(const settings::Settings& settings, Instant now) {
+  Period period;
+  period.last = settings.calendar.day_of(now);
+  period.first = period.last;
+  for (const auto& field : settings.fields) {
+    period.first = std::min(period.first, field.field.sown);
+  }
+  period.title = "Season " + std::to_string(static_cast<int>(CivilDate{period.first}.year()));
+  return period;
+}
+
+letters::Review make_review(const Lookout& lookout, const store::Store& store, const Period& period,
+                            Instant now) {
+  const settings::Settings& settings = lookout.settings();
+  letters::Review review;
+  review.title = period.title;
+  review.first = period.first;
+  review.last = period.last;
+  const Span span{settings.calendar.start_of(period.first),
+                  std::min(now, settings.calendar.start_of(period.last + days{1}))};
+  for (const auto& field : settings.fields) {
+    review.fields.push_back(review_field(lookout, field.field.name, period, span));
+  }
+  for (const alerts::Said& said : lookout.ledger()) {
+    if (said.at < span.from || said.at >= span.to) continue;
+    const auto field = std::find_if(review.fields.begin(), review.fields.end(),
+                                    [&](const auto& f) { return f.status.field == said.subject; });
+    (field == review.fields.end() ? review.said_of_stations : field->said).push_back(said);
+  }
+  add_letters(review, store, span);
+  return review;
+}
+
+}  // namespace antherd::service

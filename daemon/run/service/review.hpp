@@ -1,0 +1,28 @@
+// The review's facts: a week or a season of every field, folded once more with its days kept.
+#pragma once
+
+#include <string>
+
+#include "core/letters/compose.hpp"
+#include "edge/store/store.hpp"
+#include "run/service/lookout.hpp"
+
+namespace antherd::service {
+
+struct Period {
+  std::string title;         // "Week 2026-W28"
+  CivilDay first{}, last{};  // both included
+};
+
+/// The seven whole days before the day of `now`, named after the ISO 8601 week of the first.
+Period week_before(const Calendar& calendar, Instant now);
+/// The ISO 8601 week of "2026-W28"; nothing for another text or a week that does not exist.
+std::optional<Period> iso_week(const std::string& text);
+/// From the earliest sowing to the day of `now`.
+Period season_of(const settings::Settings& settings, Instant now);
+
+/// @param store  for letters and the ledger; what it cannot say is named among the troubles
+letters::Review make_review(const Lookout& lookout, const store::Store& store, const Period& period,
+                            Instant now);
+
+}  // namespace antherd::service

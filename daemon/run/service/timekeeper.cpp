@@ -1,0 +1,27 @@
+// See timekeeper.hpp.
+#include "run/service/timekeeper.hpp"
+
+#include <algorithm>
+
+#include "edge/clock/clock.hpp"
+
+namespace antherd::service {
+
+Timekeeper::Timekeeper(Instant from, double pace)
+    : from_(from), started_(clock::wall_now()), pace_(pace) {}
+
+Instant Timekeeper::now() const {
+  const Instant wall = clock::wall_now();
+  if (!from_) return wall;
+  const double passed = static_cast<double>((wall - started_).count()) * pace_;
+  return *from_ + Seconds{static_cast<long long>(passed)};
+}
+
+bool Timekeeper::set() const { return from_ || clock::wall_clock_set(); }
+
+std::chrono::milliseconds Timekeeper::wait_until(Instant wake) const {
+  const double seconds = static_cast<double>((wake - now()).count()) / pace_;
+  return std::chrono::milliseconds{std::max(20L, static_cast<long>(seconds * 1000.0))};
+}
+
+}  // namespace antherd::service
