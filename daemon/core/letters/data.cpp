@@ -29,17 +29,6 @@ std::string reason_words(weather::Reason reason) {
   return "in doubt";
 }
 
-std::string flags_sentence(const std::vector<weather::Flag>& flags) {
-  std::vector<std::string> named;
-  for (const weather::Flag& flag : flags) {
-    if (flag.verdict == weather::Verdict::good) continue;
-    if (named.size() == 3) break;
-    named.push_back(flag_words(flag));
-  }
-  if (named.empty()) return "";
-  return "Doubtful in the last 24 h: " + list(named) + ".";
-}
-
 }  // namespace
 
 std::string element_words(weather::Element element) {
@@ -62,12 +51,30 @@ std::string element_words(weather::Element element) {
   return "a value";
 }
 
+std::string flags_named(const std::vector<weather::Flag>& flags) {
+  constexpr std::size_t most = 4;
+  std::vector<std::string> named;
+  for (const weather::Flag& flag : flags) {
+    if (flag.verdict == weather::Verdict::good || named.size() == most) continue;
+    const std::string words = flag_words(flag);
+    if (std::find(named.begin(), named.end(), words) == named.end()) named.push_back(words);
+  }
+  return list(named);
+}
+
+std::string fault_words(const weather::Flag& flag) {
+  return flag.reason == weather::Reason::dew_above_temperature ||
+                 flag.reason == weather::Reason::rain_in_dry_air
+             ? reason_words(flag.reason)
+             : element_words(flag.element) + " " + reason_words(flag.reason);
+}
+
 std::string flag_words(const weather::Flag& flag) {
   const std::string used =
       flag.verdict == weather::Verdict::wrong || flag.reason == weather::Reason::unconfirmed
           ? "left out"
           : "used";
-  return element_words(flag.element) + " " + reason_words(flag.reason) + " (" + used + ")";
+  return fault_words(flag) + " (" + used + ")";
 }
 
 std::string unseen_since(const FieldStatus& status, const Words& words) {
@@ -90,7 +97,8 @@ std::string data_paragraph(const FieldStatus& status, const Words& words, bool h
   } else if (!station.empty() && unseen.empty()) {
     said.push_back("Station " + station + ", the last 24 h complete.");
   }
-  said.push_back(flags_sentence(data.flags_24));
+  const std::string doubtful = flags_named(data.flags_24);
+  if (!doubtful.empty()) said.push_back("Doubtful in the last 24 h: " + doubtful + ".");
   if (heat && data.shield_may_read_high) {
     said.push_back(
         "The thermometer has no fan and the hot hours were sunny and still: it may read "

@@ -99,6 +99,10 @@ std::string flower_tag(const FieldStatus& status) {
   if (status.watch != Watch::watched) return "not watched";
   if (seen_in_flower(status)) return "in flower";
   if (status.flower.known) {
+    const FlowerStatus& flower = status.flower;
+    const bool noted_over = flower.scouted && flower.last_note_stage &&
+                            *flower.last_note_stage >= field::stage::flowers_done;
+    if (flower.part == SeasonPart::window && noted_over) return "past flower";
     if (status.flower.part == SeasonPart::shoulder_before) return "before flower";
     if (status.flower.part == SeasonPart::shoulder_after) return "seed fill";
     if (status.flower.part == SeasonPart::after) return "past flower";

@@ -127,7 +127,7 @@ std::string harm(const FieldStatus& status, const Words& words) {
 Section look(const FieldStatus& status) {
   Section section{"LOOK", "", {}, false};
   if (flower_tag(status) == "before flower") {
-    section.text = "Tomorrow before 9 am, in the cool: are yellow anthers out? Note the date.";
+    section.text = "Next morning before 9 am, in the cool: are yellow anthers out? Note the date.";
     section.commands = {scout_command(status.field, "--stage first-anthers")};
     return section;
   }
@@ -139,7 +139,7 @@ Section look(const FieldStatus& status) {
     return section;
   }
   section.text =
-      "Tomorrow before 9 am, in the cool: are yellow anthers out, are they plump or "
+      "Next morning before 9 am, in the cool: are yellow anthers out, are they plump or "
       "dried up? In 10 to 14 days, open clusters on 20 heads: how many hold a swelling "
       "seed? Note both.";
   section.commands = {scout_command(status.field, "--stage full-flower"),

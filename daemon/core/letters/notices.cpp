@@ -77,7 +77,7 @@ void window_opens(Part& part, const Telling& telling, const FieldStatus* status,
   part.first = part.name + ": " + state_of(status) + ", flowering window open from " +
                words.past_or_about(opened, spread_of(status)) + ".";
   part.tonight =
-      "Tonight: nothing to switch. Tomorrow in the cool: look for yellow anthers and "
+      "Tonight: nothing to switch. In the cool of a morning: look for yellow anthers and "
       "note the date.";
   part.sections = {
       {"FLOWER", flowers_of(status, words), {}, true},
@@ -100,15 +100,15 @@ void window_closes(Part& part, const Telling& telling, const FieldStatus* status
   part.rest = closes + ", " + tag_of(status);
   part.first = part.name + ": " + state_of(status) + ", flowering window closes " + closes + ".";
   part.tonight = "Still yellow anthers? Note full-flower and the watch goes on.";
-  part.sections = {
-      {"FLOWER", flowers_of(status, words), {}, true},
-      {"LOOK",
-       "Tomorrow in the cool. If flowers are over, note that instead, with --began if this is "
-       "the day.",
-       {scout_command(telling.subject, "--stage full-flower"),
-        scout_command(telling.subject, "--stage flowers-done")},
-       true},
-      both_sides(status)};
+  part.sections = {{"FLOWER", flowers_of(status, words), {}, true},
+                   {"LOOK",
+                    "In the cool of the morning. If flowers are over, note that instead, with "
+                    "--began if this is "
+                    "the day.",
+                    {scout_command(telling.subject, "--stage full-flower"),
+                     scout_command(telling.subject, "--stage flowers-done")},
+                    true},
+                   both_sides(status)};
   part.next =
       "After it closes heat counts one level lower (seed fill). Mildew is watched until "
       "the seed is at dough.";

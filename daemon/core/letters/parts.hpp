@@ -91,7 +91,11 @@ std::string data_paragraph(const FieldStatus& status, const Words& words, bool h
 /// "nothing seen since 1 pm" where the last reading is 2 h old or more, else nothing: old figures
 /// must not pass for new ones.
 std::string unseen_since(const FieldStatus& status, const Words& words);
+/// "temperature stuck (used)"; `fault_words` without what became of the value.
 std::string flag_words(const weather::Flag& flag);
+std::string fault_words(const weather::Flag& flag);
+/// "temperature stuck (used) and rain in dry air (used)": at most four, each once; empty for none.
+std::string flags_named(const std::vector<weather::Flag>& flags);
 std::string element_words(weather::Element element);
 
 /// A field's name for a command line, quoted for a shell where needed.

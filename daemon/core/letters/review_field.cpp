@@ -45,13 +45,8 @@ Section seen(const FieldReview& field) {
     said.push_back(count(static_cast<int>(not_judged), "humid day") +
                    " not judged for want of data.");
   }
-  std::vector<std::string> doubtful;
-  for (const weather::Flag& flag : field.status.data.flags_24) {
-    if (flag.verdict != weather::Verdict::good && doubtful.size() < 4) {
-      doubtful.push_back(flag_words(flag));
-    }
-  }
-  if (!doubtful.empty()) said.push_back("Doubtful in the last 24 h: " + list(doubtful) + ".");
+  const std::string doubtful = flags_named(field.status.data.flags_24);
+  if (!doubtful.empty()) said.push_back("Doubtful in the last 24 h: " + doubtful + ".");
   if (!field.status.data.rain_measured) said.push_back("Rain is not measured.");
   return {"SEEN", join(said), {}, true, {}};
 }

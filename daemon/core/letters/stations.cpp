@@ -87,8 +87,10 @@ Part no_data_open(const Telling& telling, const Words& words) {
   Part part;
   part.lead = (reminder ? "Still no data " : "No data ") + severity_word(telling.severity);
   part.rest = "silent " + length + " since " + words.when(since) + flower_end(words, story);
-  part.first =
-      plain(telling.subject) + ": no reading since " + words.when(since) + " (" + length + ").";
+  const bool never = story != nullptr && !story->last_reading;
+  part.first = plain(telling.subject) +
+               (never ? ": no reading has ever come; expected since " : ": no reading since ") +
+               words.when(since) + " (" + length + ").";
   part.tonight = "Tonight: nobody is watching " + (fields.empty() ? "its fields" : fields) +
                  "; go by your own thermometer.";
   std::vector<std::string> silent;
@@ -161,19 +163,22 @@ Part no_data_ended(const Telling& telling, const Words& words) {
   return part;
 }
 
-std::string fault_words(const Telling& telling, const StationStory* story) {
-  if (!telling.detail.empty()) return plain(telling.detail);
+/// The check that fails, with what it is about where the flags tell.
+std::string failing_check(const Telling& telling, const StationStory* story) {
   if (story != nullptr) {
     for (const weather::Flag& flag : story->flags_24) {
-      if (flag.verdict != weather::Verdict::good) return flag_words(flag);
+      if (flag.verdict == weather::Verdict::good) continue;
+      if (telling.detail.empty() || weather::describe(flag) == telling.detail) {
+        return fault_words(flag);
+      }
     }
   }
-  return "a quality check keeps failing";
+  return telling.detail.empty() ? "a quality check keeps failing" : plain(telling.detail);
 }
 
 Part doubtful(const Telling& telling, const Words& words) {
   const StationStory* story = story_of(words, telling.subject);
-  const std::string fault = fault_words(telling, story);
+  const std::string fault = failing_check(telling, story);
   const bool over = telling.saying == Saying::ended || telling.saying == Saying::eased;
   Part part;
   if (over) {
@@ -193,14 +198,7 @@ Part doubtful(const Telling& telling, const Words& words) {
   part.rest = fault + ", " + words.closing(telling.about) + flower_end(words, story);
   part.first = plain(telling.subject) + ": " + fault + ", since " + words.when(telling.start) + ".";
   part.tonight = "Tonight: trust your own thermometer and your own eyes over this station.";
-  std::vector<std::string> named;
-  if (story != nullptr) {
-    for (const weather::Flag& flag : story->flags_24) {
-      if (flag.verdict != weather::Verdict::good && named.size() < 4) {
-        named.push_back(flag_words(flag));
-      }
-    }
-  }
+  const std::string named = story == nullptr ? "" : flags_named(story->flags_24);
   part.sections = {
       {"SENSOR",
        (telling.saying == Saying::reminder
@@ -209,7 +207,7 @@ Part doubtful(const Telling& telling, const Words& words) {
            "A check has failed for 6 h or more. Warnings that rest on this sensor may come late, "
            "not "
            "at all, or without cause." +
-           (named.empty() ? "" : " Last 24 h: " + list(named) + "."),
+           (named.empty() ? "" : " Last 24 h: " + named + "."),
        {},
        true},
       each_field(words, story, false),

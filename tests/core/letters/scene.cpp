@@ -225,7 +225,7 @@ alerts::Telling doubtful() {
   telling.start = at(14, 10);
   telling.level = Level::moderate;
   telling.severity = alerts::Severity::moderate;
-  telling.detail = "temperature stuck";
+  telling.detail = "stuck for 6 h or more";
   telling.figure.reset();
   return telling;
 }
