@@ -39,7 +39,7 @@ ctest --test-dir ".build/$preset" --output-on-failure --no-tests=error --timeout
 # failed if ctest saw it fail, else passed.
 read -r passed failed < <(awk '
   function close_program() { if (open && !told) { if (fine) passed++; else failed++ } }
-  / Testing: / && /^[0-9]+\/[0-9]+ / { close_program(); open = 1; told = 0; fine = 0 }
+  / Testing: / && /^[0-9]+\/[0-9]+ / { close_program(); open = 1; told = fine = absent = 0 }
   /^All tests passed \(/ { passed += $(NF - 2); told = 1 }
   /^test cases: / {
     told = 1
@@ -48,7 +48,8 @@ read -r passed failed < <(awk '
       if ($(i + 1) == "failed") failed += $i
     }
   }
-  /^Test Passed\.$/ { fine = 1 }
+  /^Command: ""$/ { absent = 1 }
+  /^Test Passed\.$/ { fine = !absent }
   END { close_program(); printf "%d %d\n", passed, failed }
 ' ".build/$preset/Testing/Temporary/LastTest.log")
 if [ "$status" -ne 0 ] && [ "$failed" -eq 0 ]; then failed=1; fi

@@ -72,6 +72,7 @@ Complaints check_includes(const File& file, const RoomTable& table) {
   const std::vector<std::string> lines = lines_of(file.text);
   for (std::size_t i = 0; i < lines.size(); ++i) {
     std::smatch parts;
+    if (lines[i].find('#') == std::string::npos) continue;
     if (!std::regex_match(lines[i], parts, include)) continue;
     const std::string path = parts[1];
     bool allowed = starts_with_room(path, room);

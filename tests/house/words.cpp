@@ -9,64 +9,55 @@ namespace house {
 namespace {
 
 struct Banned {
-  std::regex form;
+  std::string hint;  // lower case, part of every hit: most files are done after one search
+  std::string form;  // regular expression, in any case
   std::string why;
-  std::string but_in = "/\n";  // not where the path holds this
+  std::vector<std::string> but_in = {};  // not in paths that begin with one of these
 };
 
 /// Written in pieces, so that this file may be read by its own rule.
-const std::vector<Banned>& banned() {
-  static const std::vector<Banned> list = {
-      {std::regex("seed "
-                  "document",
-                  std::regex::icase),
-       "tells of the workshop"},
-      {std::regex("\\btrans"
-                  "cripts?\\b",
-                  std::regex::icase),
-       "tells of the workshop", "mail"},  // of a conversation with a mail server
-      {std::regex("(^|[^a-zA-Z0-9_.])/wo"
-                  "rk/"),
-       "is a path of one machine"},
-      {std::regex("/tm"
-                  "p/b-"),
-       "is a path of one machine"},
-      {std::regex("\\.\\./sha"
-                  "red\\b"),
-       "is a path of one machine"},
-      {std::regex("\\bsess"
-                  "ions?\\b"),
-       "tells of the workshop"},
-      {std::regex("\\bissue"
-                  "s? #?[0-9]",
-                  std::regex::icase),
-       "tells of the workshop"},
-      {std::regex("deb\\.deb"
-                  "ian\\.org|registry\\.npm"
-                  "js"),
-       "names one registry's host"},
-      {std::regex("\\b(TO"
-                  "DO|FIX"
-                  "ME|XX"
-                  "X)\\b"),
-       "is work left undone"},
-  };
-  return list;
+// clang-format off
+const std::vector<Banned> banned = {
+    {"seed " "document", "seed " "document", "tells of the workshop"},
+    {"trans" "cript", "\\btrans" "cripts?\\b", "tells of the workshop",
+     {"daemon/", "tests/"}},  // there it is a conversation with a mail server
+    {"/wo" "rk/", "(^|[^a-zA-Z0-9_.])/wo" "rk/", "is a path of one machine"},
+    {"/tm" "p/b-", "/tm" "p/b-", "is a path of one machine"},
+    {"../sha" "red", "\\.\\./sha" "red\\b", "is a path of one machine"},
+    {"sess" "ion", "\\bsess" "ions?\\b", "tells of the workshop"},
+    {"iss" "ue", "\\biss" "ues? #?[0-9]", "tells of the workshop"},
+    {"deb.deb" "ian.org", "deb\\.deb" "ian\\.org", "names one registry's host"},
+    {"registry.npm" "js", "registry\\.npm" "js", "names one registry's host"},
+    {"to" "do", "\\bTO" "DO\\b", "is work left undone"},
+    {"fix" "me", "\\bFIX" "ME\\b", "is work left undone"},
+};
+// clang-format on
+
+std::string lower(std::string text) {
+  for (char& c : text) c = c >= 'A' && c <= 'Z' ? static_cast<char>(c - 'A' + 'a') : c;
+  return text;
 }
 
 }  // namespace
 
 Complaints check_words(const File& file) {
   Complaints complaints;
-  const std::vector<std::string> lines = lines_of(file.text);
-  for (std::size_t i = 0; i < lines.size(); ++i)
-    for (const Banned& word : banned()) {
+  const std::string text = lower(file.text);
+  for (const Banned& word : banned) {
+    if (text.find(word.hint) == std::string::npos) continue;
+    if (std::any_of(word.but_in.begin(), word.but_in.end(),
+                    [&](const std::string& folder) { return file.path.starts_with(folder); }))
+      continue;
+    const std::regex form(word.form, std::regex::icase);
+    const std::vector<std::string> lines = lines_of(file.text);
+    for (std::size_t i = 0; i < lines.size(); ++i) {
       std::smatch found;
-      if (file.path.find(word.but_in) != std::string::npos) continue;
-      if (std::regex_search(lines[i], found, word.form))
+      // Catch2 has a class of that name
+      if (std::regex_search(lines[i], found, form) && lines[i].find("Catch::") == std::string::npos)
         complaints.push_back(file.path + ":" + std::to_string(i + 1) + ": '" + found.str() + "' " +
                              word.why);
     }
+  }
   return complaints;
 }
 
