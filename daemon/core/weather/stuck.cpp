@@ -1,6 +1,7 @@
 // Sensors that do not move; see judge_stuck in judge.hpp.
 // This file must not know hours.
 #include <algorithm>
+#include <cmath>
 #include <cstddef>
 
 #include "core/weather/judge.hpp"
@@ -57,7 +58,9 @@ class FlatStretch {
       : series_(series), move_(move), hole_(hole) {}
 
   void add(std::size_t place) {
-    if (least_.empty() || series_[place].time - series_[newest_].time > hole_) {
+    const bool anew = least_.empty() || series_[place].time - series_[newest_].time > hole_ ||
+                      std::abs(series_[place].value - series_[newest_].value) >= move_ - hair;
+    if (anew) {
       least_.clear();
       most_.clear();
       start_ = place;

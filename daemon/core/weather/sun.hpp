@@ -18,10 +18,11 @@ struct SunPosition {
 /// 1992-10-13 0h TD: declination −7.78507°, right ascension 198.38083° (from memory of ex. 25.a).
 SunPosition sun_position(Instant at);
 
-/// True altitude of the sun's centre, no refraction, −90…90°.
+/// True altitude of the sun's centre, no refraction, −90…90°. Good to about 0.02°.
+/// Source: Meeus eq. 13.6, mean sidereal time by eq. 12.4.
 Degree sun_altitude(Instant at, const Place& place);
 
-/// Up means above −0.833° (rise and set with refraction and radius).
+/// Up means above −0.833°. Source: Meeus ch. 15 (refraction 34', radius 16').
 bool sun_is_up(Instant at, const Place& place);
 
 struct SunDay {
@@ -29,7 +30,8 @@ struct SunDay {
   std::optional<Instant> set;
 };
 
-/// Rise and set nearest to the solar noon of a mean local solar day.
+/// Rise and set nearest to the solar noon of a mean local solar day: the first second at which the
+/// sun is up and the first at which it is down again. Source: Meeus ch. 15, by bisection.
 /// @param solar_day  the day in UTC + longitude / 15 h
 SunDay sun_day(CivilDay solar_day, const Place& place);
 
@@ -38,7 +40,8 @@ CivilTime solar_time(Instant at, Degree longitude);
 /// The instant of a mean local solar time.
 Instant from_solar_time(CivilTime reading, Degree longitude);
 
-/// Day length in hours by the same rise and set; 24 or 0 where there is none.
+/// Day length in hours by the same rise and set; 24 or 0 where there is none. On the day of an
+/// equinox at the equator 12.11 h, not 12: the disc is seen before it is there.
 double day_length_hours(CivilDay solar_day, const Place& place);
 
 }  // namespace antherd::weather

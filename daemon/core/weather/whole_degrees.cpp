@@ -26,9 +26,15 @@ bool WholeDegrees::in(HourStart hour) {
     const Judged& judged = series_[next_];
     if ((judged.marks & mark_out_of_range) != 0) continue;
     ++values_;
+    // Windows begin with an hour: one broken value an hour is enough to know.
     const Instant time = judged.time - shift_;
-    if (broken_part(judged.value) > celsius_slack) last_broken_celsius_ = time;
-    if (broken_part(judged.value * 1.8 + 32.0) >= fahrenheit_slack) last_broken_fahrenheit_ = time;
+    if (last_broken_celsius_ < Instant(hour) && broken_part(judged.value) > celsius_slack) {
+      last_broken_celsius_ = time;
+    }
+    if (last_broken_fahrenheit_ < Instant(hour) &&
+        broken_part(judged.value * 1.8 + 32.0) >= fahrenheit_slack) {
+      last_broken_fahrenheit_ = time;
+    }
   }
   for (; oldest_ < next_ && series_[oldest_].time - shift_ < since; ++oldest_) {
     if ((series_[oldest_].marks & mark_out_of_range) == 0) --values_;

@@ -63,6 +63,8 @@ TEST_CASE("an hour without a sample is a gap, one without a usable sample is a r
   CHECK_FALSE(list[1].valid());
   CHECK(list[1].humidity->value == 50.0);
   CHECK(gather({}, station_every(300s), hour_of(start), hour_of(start + 48h)).empty());
+  // All time may be asked for.
+  CHECK(gather(samples, station_every(3600s), HourStart::min(), HourStart::max()) == list);
 }
 
 TEST_CASE("a humidity that is missing leaves the temperature standing") {
