@@ -112,6 +112,22 @@ Node node_of(const toml::node& value) {
 
 }  // namespace
 
+bool steers(char32_t code) {
+  return code < 0x20 || (code >= 0x7F && code <= 0x9F) || code == 0x200E || code == 0x200F ||
+         (code >= 0x2028 && code <= 0x202E) || (code >= 0x2066 && code <= 0x2069) || code == 0xFEFF;
+}
+
+char32_t take_character(std::string_view& text) {
+  const auto first = static_cast<unsigned char>(text.front());
+  const std::size_t length = first < 0x80 ? 1 : first < 0xE0 ? 2 : first < 0xF0 ? 3 : 4;
+  char32_t code = length == 1 ? first : first & (0x7FU >> length);
+  for (std::size_t i = 1; i < length && i < text.size(); ++i) {
+    code = (code << 6) | (static_cast<unsigned char>(text[i]) & 0x3FU);
+  }
+  text.remove_prefix(std::min(length, text.size()));
+  return code;
+}
+
 const Node* Node::find(std::string_view name) const {
   for (std::size_t i = 0; i < keys.size(); ++i) {
     if (keys[i].name == name) return &items[i];
@@ -130,33 +146,30 @@ std::variant<Node, Unreadable> read_document(std::string_view text) {
     node.line = 1;
     return node;
   } catch (const toml::parse_error& error) {
-    return Unreadable{line_of(error.source()), std::string(error.description())};
+    return Unreadable{line_of(error.source()), visible(error.description(), 200)};
   }
 }
 
-std::string in_quotes(std::string_view text) {
-  constexpr std::size_t longest = 60;
-  std::string safe = "\"";
-  for (const char letter : text.substr(0, longest)) {
-    const auto byte = static_cast<unsigned char>(letter);
-    if (byte < 0x20 || byte == 0x7F) {
-      char hex[8];
-      std::snprintf(hex, sizeof hex, "\\x%02X", static_cast<unsigned>(byte));
+std::string visible(std::string_view text, std::size_t longest) {
+  std::string safe;
+  std::size_t length = 0;
+  while (!text.empty()) {
+    if (length++ == longest) return safe + "…";
+    const std::string_view before = text;
+    const char32_t code = take_character(text);
+    if (steers(code)) {
+      char hex[16];
+      std::snprintf(hex, sizeof hex, code < 0x80 ? "\\x%02X" : "\\u%04X",
+                    static_cast<unsigned>(code));
       safe += hex;
     } else {
-      safe += letter;
+      safe += before.substr(0, before.size() - text.size());
     }
   }
-  if (text.size() > longest) {
-    // Do not cut a character of several bytes in two.
-    while (!safe.empty() && (static_cast<unsigned char>(safe.back()) & 0xC0) == 0x80) {
-      safe.pop_back();
-    }
-    if (!safe.empty() && static_cast<unsigned char>(safe.back()) >= 0xC0) safe.pop_back();
-    safe += "…";
-  }
-  return safe + "\"";
+  return safe;
 }
+
+std::string in_quotes(std::string_view text) { return "\"" + visible(text, 60) + "\""; }
 
 std::string shown(const Node& node) {
   switch (node.kind) {

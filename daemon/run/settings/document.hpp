@@ -43,6 +43,12 @@ std::variant<Node, Unreadable> read_document(std::string_view text);
 /// A value as a complaint shows it: "95 F" in quotes, `the number 780`, `a table`; at most 60
 /// characters, control characters made visible.
 std::string shown(const Node& node);
+/// A text of at most `longest` characters, control characters as \x0A or \u202E.
+std::string visible(std::string_view text, std::size_t longest);
+/// Characters that steer a terminal, a header or the direction of a text instead of being read.
+bool steers(char32_t code);
+/// The next character of a UTF-8 text, which is shortened by it; the text must not be empty.
+char32_t take_character(std::string_view& text);
 /// A text in quotes, likewise.
 std::string in_quotes(std::string_view text);
 

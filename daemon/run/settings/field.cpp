@@ -36,6 +36,7 @@ std::vector<std::string> read_stations_of(const Work& work, const Table& table) 
     return {};
   }
   const std::string key = table.has("station") ? "station" : "stations";
+  if (known.empty()) return {};  // that there is no station is told elsewhere
   if (!table.has(key)) {
     if (known.size() == 1) return known;
     table.miss(key, wanted);

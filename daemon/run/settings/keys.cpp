@@ -5,15 +5,16 @@
 
 #include "core/failures/result.hpp"
 #include "edge/clock/nearest.hpp"
+#include "run/settings/table.hpp"
 
 namespace antherd::settings {
 namespace {
 
-using Words = std::vector<std::string>;
+using Names = std::vector<std::string>;
 
 std::vector<KnownTable> make_tables() {
-  const Words values{"temperature", "humidity", "dew_point", "rain", "wind", "solar", "wetness"};
-  const auto with = [](Words words, const Words& more) {
+  const Names values{"temperature", "humidity", "dew_point", "rain", "wind", "solar", "wetness"};
+  const auto with = [](Names words, const Names& more) {
     words.insert(words.end(), more.begin(), more.end());
     return words;
   };
@@ -56,7 +57,7 @@ std::vector<KnownTable> make_tables() {
   for (const std::string form : {"drop", "http"}) {
     const std::string at = form == "drop" ? "column" : "at";
     for (const std::string& value : values) {
-      Words keys{at, "unit"};
+      Names keys{at, "unit"};
       if (value == "rain") keys.push_back("meaning");
       if (value == "wind") keys.push_back("height");
       if (value == "wetness") keys.insert(keys.end(), {"wet_when", "interval"});
@@ -66,34 +67,36 @@ std::vector<KnownTable> make_tables() {
   return tables;
 }
 
-/// The tables that hold a key, for a sentence: "[[station]] or [[field]]". Tables of one value
-/// are left out while a plain table holds the key too.
-std::string homes_of(std::string_view key) {
-  Words homes;
-  for (const bool inner : {false, true}) {
-    for (const KnownTable& table : known_tables()) {
-      const bool is_inner = table.name.find("] ") != std::string::npos;
-      const bool holds = std::find(table.keys.begin(), table.keys.end(), key) != table.keys.end();
-      if (is_inner == inner && holds && table.name != "the file") homes.push_back(table.name);
-    }
-    if (!homes.empty()) break;
+Names tables_with(std::string_view key, bool inner) {
+  Names names;
+  for (const KnownTable& table : known_tables()) {
+    const bool is_inner = table.name.find("] ") != std::string::npos;
+    const bool holds = std::find(table.keys.begin(), table.keys.end(), key) != table.keys.end();
+    if (is_inner == inner && holds && table.name != "the file") names.push_back(table.name);
   }
-  if (homes.size() > 3) homes.resize(3);
-  std::string text;
-  for (std::size_t i = 0; i < homes.size(); ++i) {
-    text += (i == 0 ? "" : i + 1 == homes.size() ? " or " : ", ") + homes[i];
-  }
-  return text;
+  return names;
 }
 
-std::string listed(const Words& words) {
+/// The tables that hold a key, for a sentence: "[[station]] or [[field]]"; of the small tables of
+/// one value only while no other table holds it, and in short where they are many.
+std::string homes_of(std::string_view key) {
+  Names homes = tables_with(key, false);
+  if (!homes.empty()) return either(homes);
+  homes = tables_with(key, true);
+  if (homes.size() <= 2) return either(homes);
+  for (std::string& home : homes) home = "the values of " + home.substr(0, home.find("] ") + 1);
+  homes.erase(std::unique(homes.begin(), homes.end()), homes.end());
+  return either(homes);
+}
+
+std::string listed(const Names& words) {
   std::string text;
   for (const std::string& word : words) text += (text.empty() ? "" : ", ") + word;
   return text;
 }
 
-Words all_keys() {
-  Words keys;
+Names all_keys() {
+  Names keys;
   for (const KnownTable& table : known_tables()) {
     keys.insert(keys.end(), table.keys.begin(), table.keys.end());
   }
@@ -109,7 +112,7 @@ std::span<const KnownTable> known_tables() {
   return tables;
 }
 
-const Words& keys_of(std::string_view table) {
+const Names& keys_of(std::string_view table) {
   const auto tables = known_tables();
   const auto found = std::find_if(tables.begin(), tables.end(),
                                   [&](const KnownTable& known) { return known.name == table; });
@@ -118,16 +121,16 @@ const Words& keys_of(std::string_view table) {
 }
 
 std::string advice_on(std::string_view key, std::string_view table) {
-  const Words& here = keys_of(table);
+  const Names& here = keys_of(table);
   const std::string home = homes_of(key);
-  const Words near = clock::nearest_to(key, here);
-  if (!home.empty() && !near.empty()) {
+  const Names near = clock::nearest_to(key, here);
+  if (!tables_with(key, false).empty() && !near.empty()) {
     return "did you mean \"" + near.front() + "\"? (\"" + std::string(key) + "\" belongs to " +
            home + ")";
   }
-  if (!home.empty()) return "it belongs to " + home;
   if (!near.empty()) return "did you mean \"" + near.front() + "\"?";
-  const Words far = clock::nearest_to(key, all_keys());
+  if (!home.empty()) return "it belongs to " + home;
+  const Names far = clock::nearest_to(key, all_keys());
   if (!far.empty() && !homes_of(far.front()).empty()) {
     return "did you mean \"" + far.front() + "\" of " + homes_of(far.front()) + "?";
   }

@@ -59,7 +59,10 @@ std::vector<std::string> names_of(const Work& work, const std::string& table) {
   if (list == nullptr || list->kind != Node::Kind::list) return names;
   for (const Node& item : list->items) {
     const Node* const name = item.find("name");
-    if (name != nullptr && name->kind == Node::Kind::text) names.push_back(name->text);
+    if (name == nullptr || name->kind != Node::Kind::text) continue;
+    if (std::find(names.begin(), names.end(), name->text) == names.end()) {
+      names.push_back(name->text);
+    }
   }
   return names;
 }
@@ -95,7 +98,7 @@ std::optional<std::string> path_of(const Work& work, const Table& table, const s
   const bool file = key != "folder";
   const Wanted wanted{std::string("the path of a ") + (file ? "file" : "folder") +
                           "; a relative one hangs from the settings file",
-                      key + (file ? " = \"mail-password\"" : " = \"drop\"")};
+                      key + (file ? " = \"mail-password\"" : " = \"readings\"")};
   const auto path = table.name(key, longest_path, wanted, required);
   if (!path) return {};
   return hung(work, *path);

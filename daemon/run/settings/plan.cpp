@@ -60,9 +60,9 @@ std::string mail_text(const Settings& settings) {
   }
   static constexpr const char* days[] = {"Monday", "Tuesday",  "Wednesday", "Thursday",
                                          "Friday", "Saturday", "Sunday"};
-  text += "\n  weekly review on " + std::string(days[(mail.weekly.weekday + 6) % 7]) + " at " +
+  text += "\n    weekly review on " + std::string(days[(mail.weekly.weekday + 6) % 7]) + " at " +
           clock_text(mail.weekly.minute) + "; daily line in flower at " +
-          clock_text(mail.daily_minute) + "; at most " + std::to_string(mail.at_most_per_day) +
+          clock_text(mail.daily_minute) + "\n    at most " + std::to_string(mail.at_most_per_day) +
           " letters a day for each recipient\n";
   return text;
 }
@@ -103,17 +103,19 @@ const char* name_of(weather::RainMeaning meaning) {
 
 std::string time_text(const station::TimeForm& form) {
   if (form.arrival) return "the moment of arrival";
-  return joined(form.at) + " as " + form.form + ", zone " + form.zone.name() +
-         " where the text names none";
+  const bool counted = form.form.starts_with("unix");
+  return joined(form.at) + " as " + form.form + (counted ? "" : ", zone " + form.zone.name());
 }
 
-std::string values_text(const station::RecordForm& record, const weather::Station& station) {
-  std::string text;
+/// "temp_f (degF)", one for each value that the station gives.
+std::vector<std::string> values_of(const station::RecordForm& record,
+                                   const weather::Station& station) {
+  std::vector<std::string> values;
   const auto add = [&](const char* what, const std::optional<station::ValueForm>& form,
                        const std::string& extra = "") {
     if (!form) return;
-    text += (text.empty() ? "" : "; ") + std::string(what) + " from " + form->at + " in " +
-            (form->unit == "1" ? "parts of 1" : form->unit) + extra;
+    const std::string unit = form->unit == "1" ? "as a part of 1" : form->unit;
+    values.push_back(std::string(what) + ": " + form->at + " (" + unit + extra + ")");
   };
   add("temperature", record.temperature);
   add("humidity", record.humidity);
@@ -121,13 +123,13 @@ std::string values_text(const station::RecordForm& record, const weather::Statio
   add("rain", record.rain, std::string(", ") + name_of(station.rain_meaning));
   add("wind", record.wind, formatted(", %.1f m above ground", station.wind_height.value));
   add("solar", record.solar);
-  if (record.wet_when) {
-    text += "; leaf wetness from " + record.wetness->at + ", wet when " +
-            record.wet_when->comparison + formatted(" %g", record.wet_when->threshold);
+  if (record.wet_when && record.wetness) {
+    values.push_back("leaf wetness: " + record.wetness->at + " (wet when " +
+                     record.wet_when->comparison + formatted(" %g)", record.wet_when->threshold));
   } else {
-    add("leaf wetness", record.wetness);
+    add("leaf wetness", record.wetness, ", every " + duration_text(record.wetness_interval));
   }
-  return text;
+  return values;
 }
 
 std::string missing_text(const weather::Station& station) {
@@ -182,11 +184,12 @@ std::string describe(const Station& entry, Units units) {
   }
   text += "; silent after " + duration_text(station.silent_after) + "\n";
   const station::RecordForm& record = entry.drop ? entry.drop->record : entry.http->record;
-  text += "    time: " + time_text(record.time) + "; it is " + name_of(station.stamp) + "\n";
+  text += "    time: " + time_text(record.time) + "; it says " + name_of(station.stamp) + "\n";
   if (record.where) {
     text += "    only rows whose " + record.where->first + " is " + record.where->second + "\n";
   }
-  return text + "    " + values_text(record, station) + "\n" + missing_text(station);
+  for (const std::string& value : values_of(record, station)) text += "    " + value + "\n";
+  return text + missing_text(station);
 }
 
 std::string describe(const FieldPlan& plan, Units units) {
@@ -194,7 +197,9 @@ std::string describe(const FieldPlan& plan, Units units) {
   std::string text = "field " + field.name + ": " +
                      place_text(field.latitude, field.longitude, field.elevation, units) +
                      ", watched by " + joined(field.stations) + "\n";
-  text += "    sown " + day_text(field.sown) + ", crop type " + field.crop_type;
+  text +=
+      "    sown " + day_text(field.sown) + ", crop type " + field.crop_type +
+      formatted(" (first anthers at %.0f °C·d from sowing)", plan.traits.needs.first_anthers.value);
   if (field.harvested) text += ", harvested " + day_text(*field.harvested);
   text += field.photoperiod ? ", day length counts\n" : "\n";
   text += std::string("    irrigation: ") + field::name_of(field.irrigation);

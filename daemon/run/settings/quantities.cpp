@@ -213,7 +213,7 @@ Result<int> parse_clock(std::string_view text) {
   std::string_view rest = trimmed(text);
   const auto minutes = take_clock(rest);
   if (minutes && rest.empty()) return *minutes;
-  return failure("clock time", text, "it is not a time from 00:00 to 23:59",
+  return failure("clock time", text, "it is no clock time of 24 hours",
                  "write it like \"06:00\" or \"19:30\"");
 }
 

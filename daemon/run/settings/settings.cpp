@@ -28,6 +28,7 @@ std::string understood(const std::string& why) {
   if (has("parsing time")) return why + " (clock times stand in quotes: daily = \"19:00\")";
   if (has("utf-8")) return why + " (save the file as UTF-8)";
   if (has("existing array")) return why + " (repeated tables have double brackets: [[station]])";
+  if (has("control characters")) return why + " (a closing quote may be missing)";
   if (has("cannot redefine")) return why + " (it stands there twice)";
   return why;
 }

@@ -108,8 +108,10 @@ void read_http(Work& work, const Table& table, Station& station) {
       form.url = *written;
     } else {
       const std::string why = url ? "" : " (" + url.failure().why + ")";
-      // An address may hold a secret: it is not repeated.
-      table.complain("url", "another text", {address.allowed + why, address.example});
+      // An address may hold a secret: such a one is not repeated.
+      const bool secret = written->find_first_of("@?") != std::string::npos;
+      table.complain("url", secret ? "another text" : in_quotes(*written),
+                     {address.allowed + why, address.example});
     }
   }
   const std::string form_name = table.text("form", {"json", "form = \"json\""}).value_or("json");

@@ -3,7 +3,6 @@
 
 #include <algorithm>
 #include <cmath>
-#include <cstdint>
 
 #include "run/settings/keys.hpp"
 
@@ -12,24 +11,6 @@ namespace {
 
 char small(char letter) {
   return letter >= 'A' && letter <= 'Z' ? static_cast<char>(letter - 'A' + 'a') : letter;
-}
-
-/// Characters that steer a terminal, a header or the direction of a text instead of being read.
-bool steers(std::uint32_t code) {
-  return code < 0x20 || (code >= 0x7F && code <= 0x9F) || code == 0x200E || code == 0x200F ||
-         (code >= 0x2028 && code <= 0x202E) || (code >= 0x2066 && code <= 0x2069) || code == 0xFEFF;
-}
-
-/// The next character of a UTF-8 text (TOML texts are valid UTF-8), which is shortened by it.
-std::uint32_t take_character(std::string_view& text) {
-  const auto first = static_cast<unsigned char>(text.front());
-  const std::size_t length = first < 0x80 ? 1 : first < 0xE0 ? 2 : first < 0xF0 ? 3 : 4;
-  std::uint32_t code = length == 1 ? first : first & (0x7FU >> length);
-  for (std::size_t i = 1; i < length && i < text.size(); ++i) {
-    code = (code << 6) | (static_cast<unsigned char>(text[i]) & 0x3FU);
-  }
-  text.remove_prefix(std::min(length, text.size()));
-  return code;
 }
 
 }  // namespace
