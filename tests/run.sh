@@ -27,7 +27,9 @@ while [ "$#" -gt 0 ]; do
 done
 
 started=$SECONDS
-packages_install build test
+purposes=(build)
+[ "${CI:-}" != true ] || purposes+=(mail)
+packages_install "${purposes[@]}"
 build_preset "$preset"
 echo "built in $((SECONDS - started)) s"
 
