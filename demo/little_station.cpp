@@ -1,12 +1,14 @@
 // A little weather station for the demo, on loopback only: serves the creek's newest reading as
 // JSON and lets the bench's drop file grow, both by a clock that runs at a pace. The clock starts
-// with the first question, so that it never runs ahead of the service that asks. It ends by itself.
+// a second after the first question, so that it never runs ahead of the service that asks. It ends
+// by itself.
 #include <arpa/inet.h>
 #include <netinet/in.h>
 #include <poll.h>
 #include <sys/socket.h>
 #include <unistd.h>
 
+#include <algorithm>
 #include <charconv>
 #include <chrono>
 #include <cstdio>
@@ -21,6 +23,7 @@ namespace {
 
 using namespace demo;
 using Steady = std::chrono::steady_clock;
+constexpr std::chrono::seconds one_second_behind{1};
 
 const char* const help =
     "demo_little_station --season FOLDER --live FOLDER [--clock-from \"2026-07-14 13:58\"]\n"
@@ -147,7 +150,8 @@ void serve(const Options& options) {
   std::optional<Steady::time_point> first_question;
   const auto clock = [&] {
     if (!first_question) return start;
-    const auto lived = Steady::now() - *first_question;
+    const auto lived =
+        std::max(Steady::now() - *first_question - one_second_behind, Steady::duration::zero());
     return start + std::chrono::floor<std::chrono::seconds>(lived * options.pace);
   };
   while (Steady::now() < end) {
