@@ -3,7 +3,6 @@
 
 #include <algorithm>
 #include <cstring>
-#include <optional>
 
 #include "edge/station/text.hpp"
 
@@ -138,17 +137,21 @@ Quotes quotes_of(std::string_view text, char separator, Cells& scratch) {
 
 Result<Columns> Columns::find(std::string_view header, const RecordForm& form, const Recipe& recipe,
                               const std::string& file) {
-  std::optional<Search> best;
+  std::string why;
+  std::size_t found = 0;
+  std::size_t count = 0;
   for (const char separator : {',', ';', '\t'}) {
     Search search(trim(header), separator);
     search.look_up(form, recipe);
     if (search.fits()) return search.columns();
-    const bool better =
-        !best || search.found() > best->found() ||
-        (search.found() == best->found() && search.columns().count > best->columns().count);
-    if (better) best.emplace(std::move(search));
+    // The complaint is of the separator that found most names, else of that with most columns.
+    const bool better = search.found() > found || search.columns().count > count;
+    if (!why.empty() && (search.found() < found || !better)) continue;
+    why = search.why();
+    found = search.found();
+    count = search.columns().count;
   }
-  return Failure{"read the station's file", file, best->why(),
+  return Failure{"read the station's file", file, why,
                  "name the columns in the settings as the file has them"};
 }
 

@@ -17,6 +17,10 @@ namespace antherd::station {
 /// The cells of one row at a time; keeps its memory between rows.
 class Cells {
  public:
+  Cells() = default;
+  Cells(Cells&&) noexcept {}  // the cells are views into the old place: a moved one starts empty
+  Cells& operator=(Cells&&) = delete;
+
   /// Cuts a row (without its line end). Cells are trimmed; a quoted cell is unquoted, "" in it is
   /// one quote. Quotes inside an unquoted cell stand for themselves.
   /// @return nullptr, or what is wrong with the row
