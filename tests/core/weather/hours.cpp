@@ -241,6 +241,26 @@ TEST_CASE("a window with its context gives the same hours as the whole record") 
   }
 }
 
+TEST_CASE("wild values without end do not make an hour depend on all the past") {
+  // Every value differs from both neighbours: which are wrong hangs on where one begins.
+  std::vector<Sample> samples;
+  for (int i = 0; i < 400; ++i) {
+    samples.push_back(reading(start + i * 20min, i % 2 == 0 ? 20.0 : 35.0));
+  }
+  const Station station = station_every(1200s);
+  const auto whole = all_hours(samples, station);
+  CHECK(flagged(whole, Element::temperature, Verdict::wrong, Reason::spike) >= 190);
+  for (int skipped = 1; skipped < 8; ++skipped) {
+    const std::span<const Sample> later(samples.begin() + skipped, samples.end());
+    const HourStart from = hour_of(later.front().time + context_before) + hours{1};
+    const auto part = gather(later, station, from, hour_of(start + 120h));
+    REQUIRE(!part.empty());
+    const auto first = std::find(whole.begin(), whole.end(), part.front());
+    REQUIRE(whole.end() - first >= static_cast<std::ptrdiff_t>(part.size()));
+    CHECK(std::equal(part.begin(), part.end(), first));
+  }
+}
+
 TEST_CASE("a changed sample changes no hour beyond the stated reach") {
   for (unsigned seed = 1; seed <= 8; ++seed) {
     const Seconds interval = seed % 2 == 0 ? 1200s : 3600s;

@@ -60,6 +60,14 @@ TEST_CASE("a tenth of a degree is movement") {
   CHECK(stuck(all_hours(series(144, creeping), station_every(ten)), Element::temperature) == 108);
 }
 
+TEST_CASE("two small steps add up to movement") {
+  // 21.30, 21.35, 21.40: the last minus the first is 0.1 in decimal, a hair less in binary.
+  const auto drifting = [](int i) {
+    return reading(start, (2130 + 5 * (i / 18)) / 100.0, moving_humidity(i));
+  };
+  CHECK(stuck(all_hours(series(54, drifting), station_every(ten)), Element::temperature) == 0);
+}
+
 TEST_CASE("a frozen hygrometer is suspect from 12 h on") {
   const auto frozen = [](int i) { return reading(start, 15.0 + 5.0 * std::sin(i * 0.04), 67.0); };
   CHECK(stuck(all_hours(series(72, frozen), station_every(ten)), Element::humidity) == 0);
