@@ -73,8 +73,9 @@ struct Policy {
   std::optional<Instant> first_start;   // what is older than the first start is not told
 };
 
-/// @param episodes  all episodes of the season so far, of any subjects
-/// @param said      the ledger of those subjects
+/// @param episodes  all episodes of the season so far, of any subjects; of stations at least the
+///                  last 8 days (an earlier end would look like a gap that was filled)
+/// @param said      the ledger of those subjects, at least as far back
 /// @return tellings in order of severity, then subject
 std::vector<Telling> decide(std::span<const Episode> episodes, std::span<const Notice> notices,
                             std::span<const Said> said, const Policy& policy, Instant now);
