@@ -41,8 +41,8 @@ int depth_of(std::string_view text) {
   return deepest;
 }
 
-/// One reference token with ~1 and ~0 undone, in that order (RFC 6901 §4); nothing where a ~ stands
-/// before anything else.
+/// One reference token with ~1 and ~0 undone (RFC 6901 §4); nothing where a ~ stands before
+/// anything else.
 std::optional<std::string> unescaped(std::string_view token) {
   std::string plain;
   for (std::size_t i = 0; i < token.size(); ++i) {

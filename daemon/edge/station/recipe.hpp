@@ -15,7 +15,7 @@ namespace antherd::station {
 
 enum class Element { temperature, humidity, dew_point, rain, wind, solar, wetness };
 
-/// Trade unit to the core's: (x − minus) · times / divide, so that 95 °F is 35 °C to the last bit.
+/// Trade unit to the core's: (x - minus) * times / divide, so that 95 °F is 35 °C exactly.
 struct Scale {
   double minus = 0, times = 1, divide = 1;
   double apply(double x) const { return (x - minus) * times / divide; }

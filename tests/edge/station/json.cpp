@@ -50,7 +50,8 @@ TEST_CASE("pointers follow RFC 6901") {
   form.humidity.reset();
   // the document and pointers of RFC 6901 §5
   const std::string document =
-      R"({"foo":["bar","baz"],"":0,"a/b":1,"c%d":2,"e^f":3,"g|h":4,"i\\j":5,"k\"l":6," ":7,"m~n":8})";
+      R"({"foo":["bar","baz"],"":0,"a/b":1,"c%d":2,"e^f":3,"g|h":4,"i\\j":5,)"
+      R"("k\"l":6," ":7,"m~n":8})";
   const std::pair<const char*, double> expected[] = {{"/", 0},     {"/a~1b", 1}, {"/c%d", 2},
                                                      {"/e^f", 3},  {"/g|h", 4},  {"/i\\j", 5},
                                                      {"/k\"l", 6}, {"/ ", 7},    {"/m~0n", 8}};

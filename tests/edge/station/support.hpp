@@ -20,7 +20,7 @@ inline Instant utc(int year, unsigned month, unsigned day, int hour = 0, int min
          Seconds{hour * 3600 + minute * 60 + second};
 }
 
-/// America/New_York in 2013: −5 h, −4 h from 10 March 07:00 UTC, −5 h from 3 November 06:00 UTC
+/// America/New_York in 2013: −5 h; −4 h from 10 March 07:00, −5 h from 3 November 06:00 UTC
 /// (IANA tz database, file northamerica, rule US from 2007).
 inline Calendar new_york() {
   return Calendar("America/New_York", {{utc(2012, 11, 4, 6), Seconds{-5 * 3600}},
