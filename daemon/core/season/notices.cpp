@@ -98,7 +98,7 @@ void give_notices(State& state, const Plan& plan, const DiaryView& diary, const 
   const CivilTime to = plan.calendar.civil(end_of(hour.air.start));
   if (!(from - CivilTime(hour.day) < morning && to - CivilTime(hour.day) >= morning)) return;
   if (state.watch == Watch::ripe) give(state, hour, Kind::season, "ripe", state.ripe_since);
-  if (state.watch == Watch::sown_long_ago) {
+  if (state.watch == Watch::sown_long_ago && !state.ripe_since) {
     give(state, hour, Kind::season, "sown-long-ago", plan.field.sown);
   }
   if (!hour.watched) return;

@@ -5,7 +5,6 @@
 
 #include "core/season/fold.hpp"
 #include "edge/clock/clock.hpp"
-#include "edge/station/readings.hpp"
 #include "run/commands/common.hpp"
 #include "run/settings/plan.hpp"
 
@@ -77,41 +76,6 @@ void print_windows(const service::Lookout& lookout, const settings::FieldPlan& f
              "or the station\n";
     }
   }
-}
-
-/// What the drop folders hold now, for a farm whose service has not run yet.
-Past past_from_folders(const SettingsPointer& settings, Instant now) {
-  Past past;
-  past.settings = settings;
-  constexpr int looks_at_most = 200;
-  for (const auto& station : settings->stations) {
-    if (!station.drop) continue;
-    std::vector<weather::Sample> samples;
-    std::vector<station::Bookmark> bookmarks;
-    int refused = 0;
-    for (int i = 0; i < looks_at_most; ++i) {
-      const station::Look look = station::look_into(*station.drop, bookmarks, now);
-      if (i == 0) {
-        for (const auto& trouble : look.troubles) {
-          std::cout << "  " << station.station.name << ": " << trouble.sentence() << "\n";
-        }
-      }
-      for (const auto& row : look.readings.refused) {
-        if (++refused <= 3) {
-          std::cout << "  " << station.station.name << ": " << row.file << ":" << row.line << ": "
-                    << row.reason << "\n";
-        }
-      }
-      samples.insert(samples.end(), look.readings.samples.begin(), look.readings.samples.end());
-      for (const auto& bookmark : look.bookmarks) {
-        std::erase_if(bookmarks, [&](const auto& b) { return b.path == bookmark.path; });
-        bookmarks.push_back(bookmark);
-      }
-      if (!look.more) break;
-    }
-    add_samples(past, station, std::move(samples));
-  }
-  return past;
 }
 
 }  // namespace

@@ -45,6 +45,19 @@ void add_hours(Past& past, const settings::Station& station,
   for (const auto& sample : samples) times.push_back(sample.time);
 }
 
+void take_diary_files(Past& past) {
+  const service::DiaryFiles diary = service::read_diary_files(*past.settings);
+  for (const auto& row : diary.refused) {
+    std::cerr << "antherd: " << row.file << ":" << row.line << ": " << row.reason
+              << "; the line was not used\n";
+  }
+  for (const auto& trouble : diary.troubles) std::cerr << "antherd: " << trouble.sentence() << "\n";
+  for (const auto& entry : diary.diary.irrigations) {
+    past.diaries[entry.field].irrigations.push_back(entry);
+  }
+  for (const auto& note : diary.diary.notes) past.diaries[note.field].notes.push_back(note);
+}
+
 }  // namespace
 
 SettingsPointer read_settings(const Invocation& call) {
@@ -120,16 +133,43 @@ Result<Past> past_from_files(const SettingsPointer& settings,
     add_hours(past, *settings->station(name), weather::standing(std::move(list)));
   }
   past.settings = only_with(settings, past.hours);
-  const service::DiaryFiles diary = service::read_diary_files(*settings);
-  for (const auto& row : diary.refused) {
-    std::cerr << "antherd: " << row.file << ":" << row.line << ": " << row.reason
-              << "; the line was not used\n";
+  take_diary_files(past);
+  return past;
+}
+
+/// What the drop folders hold now, for a farm whose service has not run yet.
+Past past_from_folders(const SettingsPointer& settings, Instant now) {
+  Past past;
+  past.settings = settings;
+  constexpr int looks_at_most = 200;
+  for (const auto& station : settings->stations) {
+    if (!station.drop) continue;
+    std::vector<weather::Sample> samples;
+    std::vector<station::Bookmark> bookmarks;
+    int refused = 0;
+    for (int i = 0; i < looks_at_most; ++i) {
+      const station::Look look = station::look_into(*station.drop, bookmarks, now);
+      if (i == 0) {
+        for (const auto& trouble : look.troubles) {
+          std::cerr << "antherd: " << station.station.name << ": " << trouble.sentence() << "\n";
+        }
+      }
+      for (const auto& row : look.readings.refused) {
+        if (++refused <= 3) {
+          std::cerr << "antherd: " << station.station.name << ": " << row.file << ":" << row.line
+                    << ": " << row.reason << "\n";
+        }
+      }
+      samples.insert(samples.end(), look.readings.samples.begin(), look.readings.samples.end());
+      for (const auto& bookmark : look.bookmarks) {
+        std::erase_if(bookmarks, [&](const auto& b) { return b.path == bookmark.path; });
+        bookmarks.push_back(bookmark);
+      }
+      if (!look.more) break;
+    }
+    add_samples(past, station, std::move(samples));
   }
-  for (const auto& trouble : diary.troubles) std::cerr << "antherd: " << trouble.sentence() << "\n";
-  for (const auto& entry : diary.diary.irrigations) {
-    past.diaries[entry.field].irrigations.push_back(entry);
-  }
-  for (const auto& note : diary.diary.notes) past.diaries[note.field].notes.push_back(note);
+  take_diary_files(past);
   return past;
 }
 
@@ -176,8 +216,12 @@ Result<Past> read_past(const SettingsPointer& settings, const Invocation& call, 
   if (!call.station_files.empty()) return past_from_files(settings, call.station_files);
   auto store = open_to_read(*settings);
   if (!store) {
+    Past past = past_from_folders(settings, now);
+    if (past.last()) return past;  // no service has run here: the files speak for themselves
     Failure failure = store.failure();
-    failure.what_next += "; or read files with --station NAME=FILE.csv";
+    failure.what_next +=
+        "; the drop folders hold no reading either; name files with --station "
+        "NAME=FILE.csv";
     return failure;
   }
   return past_from_store(settings, *store, now);

@@ -41,13 +41,15 @@ struct Past {
 /// From files, by each station's own table; the diary from the diary folder.
 Result<Past> past_from_files(const SettingsPointer& settings,
                              const std::vector<std::string>& station_files);
+/// From what the drop folders hold now, for a farm whose service has not run yet.
+Past past_from_folders(const SettingsPointer& settings, Instant now);
 /// From the store; the running hour is made from its samples.
 Result<Past> past_from_store(const SettingsPointer& settings, const store::Store& store,
                              Instant now);
 /// Puts a station's samples, in any order and with repeats, into a past.
 void add_samples(Past& past, const settings::Station& station,
                  std::vector<weather::Sample> samples);
-/// Files when there are any, else the store.
+/// Files when there are any, else the store, else the drop folders.
 Result<Past> read_past(const SettingsPointer& settings, const Invocation& call, Instant now);
 
 Result<store::Store> open_to_read(const settings::Settings& settings);

@@ -6,6 +6,7 @@
 #include <nlohmann/json.hpp>
 #include <set>
 
+#include "core/alerts/stations.hpp"
 #include "core/season/fold.hpp"
 #include "edge/clock/clock.hpp"
 #include "run/commands/common.hpp"
@@ -146,23 +147,45 @@ class Turner {
     for (const auto& plan : past_.settings->fields) {
       from = std::min(from, lookout_.plan(plan.field.name).first_hour());
     }
+    std::set<Instant> moments = silences_begin();
     for (HourStart h = from + std::chrono::hours{1}; h <= until_; h += std::chrono::hours{1}) {
+      moments.insert(h);
+    }
+    for (const Instant moment : moments) {
+      if (moment <= Instant(from) || moment > Instant(until_)) continue;
       service::Closed closed;
       for (const auto& station : past_.settings->stations) {
-        closed[station.station.name] = h;
-        feed(station.station.name, h);
+        closed[station.station.name] = hour_of(moment);
+        feed(station.station.name, moment);
       }
-      look(Instant(h), lookout_.turn(h, closed), lookout_);
+      look(moment, lookout_.turn(moment, closed), lookout_);
     }
   }
 
  private:
-  void feed(const std::string& station, HourStart until) {
+  /// A silence shorter than an hour must be noticed in time too.
+  std::set<Instant> silences_begin() const {
+    std::set<Instant> moments;
+    for (const auto& station : past_.settings->stations) {
+      const weather::Station& s = station.station;
+      const alerts::StationWatch watch{s.name, s.interval, s.silent_after, s.arrives_every,
+                                       &past_.settings->calendar};
+      const auto times = past_.times.find(s.name);
+      if (times == past_.times.end()) continue;
+      const Seconds patience = alerts::patience_of(watch);
+      for (const auto& gap : alerts::silences_from(times->second, patience)) {
+        moments.insert(gap.last + patience);
+      }
+    }
+    return moments;
+  }
+
+  void feed(const std::string& station, Instant until) {
     const auto times = past_.times.find(station);
     if (times == past_.times.end()) return;
     auto& fed = fed_[station];
     std::vector<Instant> fresh;
-    for (; fed < times->second.size() && times->second[fed] <= Instant(until); ++fed) {
+    for (; fed < times->second.size() && times->second[fed] <= until; ++fed) {
       fresh.push_back(times->second[fed]);
     }
     lookout_.add_sample_times(station, fresh);

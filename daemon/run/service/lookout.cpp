@@ -115,6 +115,14 @@ Turn Lookout::turn(Instant now, const Closed& closed, bool clock_set) {
 
   Turn turn;
   turn.tellings = alerts::decide(episodes_, notices, said_, policy_, now);
+  // "Still hot" is said on a hot afternoon, not in the cool morning after it: a reminder of heat
+  // waits until today has a level of its own.
+  std::erase_if(turn.tellings, [&](const alerts::Telling& telling) {
+    const bool reminder =
+        telling.kind == alerts::Kind::heat && telling.saying == alerts::Saying::reminder;
+    return reminder &&
+           season::day_so_far(fields_.at(telling.subject).state.heat).level == risk::Level::none;
+  });
   if (turn.tellings.empty()) return turn;
   for (const alerts::Telling& telling : turn.tellings) {
     turn.said.push_back(alerts::record_of(telling, now));

@@ -126,7 +126,7 @@ void read_time(const Table& table, const std::string& at, const Calendar& farm_z
       "how the time is written: %Y %m %d %H %M %S and their kin, iso, unix or "
       "unix_ms",
       "form = \"%Y-%m-%d %H:%M\""};
-  if (const auto written = time->text("form", form_wanted, true)) {
+  if (const auto written = time->name("form", longest_place, form_wanted, true)) {
     if (const auto fault = fault_of_time_form(*written)) {
       time->refuse("form", {form_wanted.allowed + " (" + *fault + ")", form_wanted.example});
     }
@@ -207,7 +207,7 @@ void read_where(const Table& table, station::RecordForm& record) {
   const auto where = table.table("where", "[station.drop] where", wanted);
   if (!where) return;
   const auto column = where->name("column", longest_place, wanted, true);
-  const auto equals = where->text("equals", wanted, true);
+  const auto equals = where->name("equals", longest_place, wanted, true);
   if (column && equals) record.where = {*column, *equals};
 }
 
