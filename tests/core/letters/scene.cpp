@@ -243,6 +243,58 @@ alerts::Telling notice(Kind kind, const std::string& key) {
   return telling;
 }
 
+namespace {
+
+void add_episodes(letters::FieldReview& field) {
+  alerts::Episode hot;
+  hot.kind = Kind::heat;
+  hot.subject = "north bench";
+  hot.start = at(8, 13);
+  hot.peak = Level::extreme;
+  hot.closed = at(12, 0);
+  alerts::Episode wet = hot;
+  wet.kind = Kind::humid_spell;
+  wet.start = at(8, 22);
+  wet.peak = wet.level = Level::severe;
+  wet.closed.reset();
+  field.episodes = {hot, wet};
+  for (const auto& [saying, level, hour] :
+       {std::tuple{Saying::opened, Level::moderate, at(8, 16)},
+        std::tuple{Saying::raised, Level::severe, at(9, 15)},
+        std::tuple{Saying::raised, Level::extreme, at(10, 16)}}) {
+    alerts::Said said;
+    said.kind = Kind::heat;
+    said.subject = "north bench";
+    said.saying = saying;
+    said.level = level;
+    said.at = hour;
+    field.said.push_back(said);
+  }
+}
+
+void add_diary(letters::FieldReview& field) {
+  field::Irrigation water;
+  water.field = "north bench";
+  water.start = at(9, 20);
+  water.end = at(9, 23);
+  water.depth = Millimetre(12.7);
+  water.set = 1;
+  field.irrigations = {water};
+  water.start = at(10, 22);
+  water.end = at(11, 1, 30);
+  water.depth.reset();
+  field.irrigations.push_back(water);
+  field::Scouting note;
+  note.field = "north bench";
+  note.date = july(8);
+  note.stage = 60;
+  note.disease = false;
+  note.note = "west side ahead";
+  field.notes = {note};
+}
+
+}  // namespace
+
 letters::Review review() {
   letters::Review made;
   made.title = "Week 2026-W28";
@@ -269,48 +321,8 @@ letters::Review review() {
                       season::HumidDay{}};
   field.humid_days.back().date = july(12);
   field.humid_days.back().level = Level::severe;
-  alerts::Episode hot;
-  hot.kind = Kind::heat;
-  hot.subject = "north bench";
-  hot.start = at(8, 13);
-  hot.peak = Level::extreme;
-  hot.closed = at(12, 0);
-  alerts::Episode wet = hot;
-  wet.kind = Kind::humid_spell;
-  wet.start = at(8, 22);
-  wet.peak = wet.level = Level::severe;
-  wet.closed.reset();
-  field.episodes = {hot, wet};
-  for (const auto& [saying, level, hour] :
-       {std::tuple{Saying::opened, Level::moderate, at(8, 16)},
-        std::tuple{Saying::raised, Level::severe, at(9, 15)},
-        std::tuple{Saying::raised, Level::extreme, at(10, 16)}}) {
-    alerts::Said said;
-    said.kind = Kind::heat;
-    said.subject = "north bench";
-    said.saying = saying;
-    said.level = level;
-    said.at = hour;
-    field.said.push_back(said);
-  }
-  field::Irrigation water;
-  water.field = "north bench";
-  water.start = at(9, 20);
-  water.end = at(9, 23);
-  water.depth = Millimetre(12.7);
-  water.set = 1;
-  field.irrigations = {water};
-  water.start = at(10, 22);
-  water.end = at(11, 1, 30);
-  water.depth.reset();
-  field.irrigations.push_back(water);
-  field::Scouting note;
-  note.field = "north bench";
-  note.date = july(8);
-  note.stage = 60;
-  note.disease = false;
-  note.note = "west side ahead";
-  field.notes = {note};
+  add_episodes(field);
+  add_diary(field);
   field.hours_expected = 168;
   field.hours_valid = 144;
   field.warm_nights = 2;
