@@ -7,7 +7,7 @@ namespace {
 
 using outbox::Item;
 
-#define ANTHERD_LETTER_COLUMNS                                                                   \
+#define ANTHERD_LETTER_COLUMNS                                                                  \
   "id, identity, recipient, subject, body, kind, severity, decided, valid_until, still, rise, " \
   "state, attempts, doubts, next_try, first_try, ended, answer"
 
