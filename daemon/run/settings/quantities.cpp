@@ -9,6 +9,8 @@
 #include <string>
 #include <utility>
 
+#include "run/settings/document.hpp"
+
 namespace antherd::settings {
 namespace {
 
@@ -22,7 +24,7 @@ std::string_view trimmed(std::string_view text) {
 }
 
 Failure failure(const char* what, std::string_view text, std::string why, std::string next) {
-  return Failure{std::string("read the ") + what, std::string(text.substr(0, 60)), std::move(why),
+  return Failure{std::string("read the ") + what, visible(text, 60), std::move(why),
                  std::move(next)};
 }
 
@@ -81,8 +83,7 @@ Result<Parsed> parse_one(std::string_view whole, std::span<const Unit> units, co
   for (const Unit& known : units) {
     if (known.name == unit) return Parsed{*number * known.factor + known.shift, unit};
   }
-  return failure(what, whole, "the unit \"" + std::string(unit.substr(0, 20)) + "\" is not known",
-                 form);
+  return failure(what, whole, "the unit \"" + visible(unit, 20) + "\" is not known", form);
 }
 
 /// Exactly `digits` digits at the beginning of `text`, which is shortened by them.
@@ -193,10 +194,10 @@ Result<Seconds> parse_duration(std::string_view whole) {
     std::size_t found = 0;
     while (found < units.size() && units[found].name != unit) ++found;
     if (found == units.size()) {
-      return failure("duration", whole,
-                     "the unit \"" + std::string(unit.substr(0, 20)) +
-                         "\" is not known, or comes after a smaller one",
-                     form);
+      return failure(
+          "duration", whole,
+          "the unit \"" + visible(unit, 20) + "\" is not known, or comes after a smaller one",
+          form);
     }
     seconds += *number * units[found].factor;
     units = units.subspan(found + 1);

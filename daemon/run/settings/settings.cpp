@@ -16,6 +16,7 @@ namespace antherd::settings {
 namespace {
 
 constexpr const char* system_file = "/etc/antherd/antherd.toml";
+constexpr std::size_t longest_sentence = 4000;     // none of ours comes near it
 constexpr std::size_t largest_file = 1024 * 1024;  // read_document() refuses far smaller ones
 
 /// A TOML library's reason with what usually stands behind it.
@@ -103,7 +104,8 @@ std::string Complaint::sentence() const {
   } else {
     text += "got " + got + "; allowed: " + allowed;
   }
-  return example.empty() ? text : text + "; for example: " + example;
+  if (!example.empty()) text += "; for example: " + example;
+  return visible(text, longest_sentence);
 }
 
 std::string choose_file(const std::string& option) {

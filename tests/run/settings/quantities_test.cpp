@@ -136,6 +136,14 @@ TEST_CASE("a failure says what is wrong and how to write it") {
         "the unit \"minutes\" is not known, or comes after a smaller one");
 }
 
+TEST_CASE("a failure holds no control character of the text it refuses") {
+  const std::string text("5 m\0in\x1B[2J", 10);
+  CHECK(parse_duration(text).failure().sentence() ==
+        "could not read the duration (5 m\\x00in\\x1B[2J): the unit \"m\\x00in\\x1B[\" is not "
+        "known, or comes after a smaller one; write it like \"5 min\", \"24 h\" or \"1 h 30 min\"");
+  CHECK(parse_length("5 \n").failure().why == "the unit \"\\x0A\" is not known");
+}
+
 TEST_CASE("the machine's locale changes nothing") {
   const std::string before = std::setlocale(LC_ALL, nullptr);
   for (const char* locale : {"de_DE.UTF-8", "C.UTF-8"}) {
