@@ -68,6 +68,7 @@ TEST_CASE("house: a clock outside the clock's room is found") {
   const std::string code = "auto t = std::chrono::system_clock::now();\n";
   CHECK(check_clock({"daemon/run/service/a.cpp", code}).size() == 1);
   CHECK(check_clock({"daemon/edge/clock/clock.cpp", code}) == Complaints{});
+  CHECK(check_clock({"daemon/run/a.cpp", "Instant Keeper::now() const {\n"}) == Complaints{});
 }
 
 TEST_CASE("house: long files, lines and functions are found") {
