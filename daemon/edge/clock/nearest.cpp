@@ -43,6 +43,7 @@ std::vector<std::string> nearest_to(std::string_view word, std::span<const std::
   std::vector<std::pair<std::size_t, std::string>> near;
   for (const std::string& name : known) {
     if (name.size() > longest_word) continue;
+    if (std::max(name.size(), word.size()) - std::min(name.size(), word.size()) > allowed) continue;
     const std::size_t distance = distance_between(word, name);
     if (distance <= allowed && distance < name.size()) near.emplace_back(distance, name);
   }

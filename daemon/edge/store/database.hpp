@@ -3,6 +3,7 @@
 // leaves it: the store's functions turn it into a Failure. It must not know what the tables mean.
 #pragma once
 
+#include <algorithm>
 #include <sqlite3.h>
 
 #include <chrono>
@@ -82,7 +83,13 @@ class Statement {
   void put(const char* text) { put(std::string_view(text)); }
   void put(std::nullopt_t);
   void put(Instant at) { put_integer(at.time_since_epoch().count()); }
-  void put(HourStart hour) { put(Instant(hour)); }
+  /// HourStart::min() and max() stand for "from ever" and "for ever": as seconds they would
+  /// overflow, so they are cut to what the file's whole numbers hold.
+  void put(HourStart hour) {
+    constexpr HourStart first = std::chrono::ceil<std::chrono::hours>(Instant::min());
+    constexpr HourStart last = std::chrono::floor<std::chrono::hours>(Instant::max());
+    put(Instant(std::clamp(hour, first, last)));
+  }
   void put(Celsius point) { put(point.value); }
   template <class Unit>
   void put(Quantity<Unit> quantity) {

@@ -96,9 +96,9 @@ Outcome Store::update(const outbox::Item& item, const outbox::Line& line) {
     database
         .use(
             "UPDATE letter SET state = ?, attempts = ?, doubts = ?, next_try = ?, first_try = ?, "
-            "ended = ?, answer = ? WHERE id = ?")
+            "ended = ?, answer = ?, valid_until = ? WHERE id = ?")
         .bind(word_of(state_words, item.state), item.attempts, item.doubts, item.next_try,
-              item.first_try, item.ended, item.answer, item.id)
+              item.first_try, item.ended, item.answer, item.letter.valid_until, item.id)
         .run();
     if (database.changes() != 1) {
       throw Trouble{SQLITE_NOTFOUND, "there is no letter " + std::to_string(item.id),

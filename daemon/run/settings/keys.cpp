@@ -130,7 +130,8 @@ std::string advice_on(std::string_view key, std::string_view table) {
   }
   if (!near.empty()) return "did you mean \"" + near.front() + "\"?";
   if (!home.empty()) return "it belongs to " + home;
-  const Names far = clock::nearest_to(key, all_keys());
+  static const Names everything = all_keys();
+  const Names far = clock::nearest_to(key, everything);
   if (!far.empty() && !homes_of(far.front()).empty()) {
     return "did you mean \"" + far.front() + "\" of " + homes_of(far.front()) + "?";
   }

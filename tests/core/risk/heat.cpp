@@ -56,7 +56,7 @@ TEST_CASE("Severe is one hour at 35.0, 20 °C·h, or 40 over three days") {
 TEST_CASE("Extreme is one hour at 38.0, 50 °C·h, or 100 over five days") {
   CHECK(level_of({37.9}) == Level::severe);
   CHECK(level_of({38.0}) == Level::extreme);
-  CHECK(heat_level(day_of({32.3}), 0, 99.9) == Level::extreme);
+  CHECK(heat_level(day_of({32.3}), 0, 100.0) == Level::extreme);
   CHECK(heat_level(day_of({32.3}), 0, 99.7) == Level::none);
 }
 

@@ -15,7 +15,7 @@ struct Case {
 };
 
 std::vector<Case> cases() {
-  std::ifstream file(ANTHERD_SOURCE "/tests/run/settings/broken.txt");
+  std::ifstream file(ANTHERD_SOURCE "/tests/settings/broken.txt");
   std::vector<Case> all(1);
   for (std::string line; std::getline(file, line);) {
     Case& current = all.back();
