@@ -7,6 +7,8 @@ namespace antherd::clock {
 
 Instant wall_now() { return std::chrono::floor<Seconds>(std::chrono::system_clock::now()); }
 
+std::chrono::steady_clock::time_point steady_now() { return std::chrono::steady_clock::now(); }
+
 bool wall_clock_set() {
   constexpr long unsynchronised_us = 16'000'000;  // the kernel's own bound (NTP_PHASE_LIMIT)
   timex state{};

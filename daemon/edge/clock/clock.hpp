@@ -1,6 +1,7 @@
 // The only place that asks what time it is, and the only one that reads the zone database.
 #pragma once
 
+#include <chrono>
 #include <string>
 
 #include "core/failures/result.hpp"
@@ -10,6 +11,9 @@ namespace antherd::clock {
 
 /// The wall clock, UTC, to the second.
 Instant wall_now();
+
+/// A clock that only moves forward, for intervals; not comparable with the wall's.
+std::chrono::steady_clock::time_point steady_now();
 
 /// Whether the kernel holds the wall clock for synchronised (adjtimex: maximum error < 16 s).
 bool wall_clock_set();
