@@ -89,6 +89,16 @@ TEST_CASE("texts that are no TOML get one complaint with a line") {
   CHECK(only("x = " + std::string(5000, '[')).starts_with("farm.toml:1: "));
 }
 
+TEST_CASE("values inside values inside values are refused, not followed for ever") {
+  std::string deep = "farm = ";
+  for (int i = 0; i < 100; ++i) deep += "[{a.b.c.d.e = ";
+  deep += "1";
+  for (int i = 0; i < 100; ++i) deep += "}]";
+  const auto sentences = test::complaints_of(deep);
+  REQUIRE_FALSE(sentences.empty());
+  CHECK(sentences.front().starts_with("farm.toml:1: [farm]: got a list; allowed: one table"));
+}
+
 TEST_CASE("an empty text misses the farm, the station and the field") {
   const std::vector<std::string> expected{
       "farm.toml:1: [farm]: missing: a table with the farm's name and time zone; for example: "

@@ -13,7 +13,8 @@ namespace antherd::settings {
 namespace {
 
 constexpr std::size_t largest_text = 256 * 1024;  // a farm of 1,000 fields needs about 200 KiB
-constexpr int most_key_parts = 8;  // ours have three; a long chain would nest without bound
+constexpr int most_key_parts = 6;  // ours have four; a long chain would nest without bound
+constexpr int deepest = 16;        // ours nest four deep; each level costs stack
 
 int line_of(const toml::source_region& region) { return static_cast<int>(region.begin.line); }
 
@@ -46,14 +47,14 @@ std::optional<int> overlong_key(std::string_view text) {
   return {};
 }
 
-Node node_of(const toml::node& value);
+Node node_of(const toml::node& value, int depth);
 
-Node table_of(const toml::table& table) {
+Node table_of(const toml::table& table, int depth) {
   Node node;
   for (const auto& [key, value] : table) {
     const int line = line_of(key.source());
     node.keys.push_back({std::string(key.str()), line});
-    node.items.push_back(node_of(value));
+    node.items.push_back(node_of(value, depth + 1));
     if (node.items.back().line == 0) node.items.back().line = line;
   }
   return node;
@@ -68,10 +69,10 @@ Node date_of(const toml::date& date) {
   return node;
 }
 
-Node list_of(const toml::array& list) {
+Node list_of(const toml::array& list, int depth) {
   Node node;
   node.kind = Node::Kind::list;
-  for (const toml::node& item : list) node.items.push_back(node_of(item));
+  for (const toml::node& item : list) node.items.push_back(node_of(item, depth + 1));
   return node;
 }
 
@@ -83,13 +84,15 @@ Node plain(Node::Kind kind, std::string text, double number = 0) {
   return node;
 }
 
-Node node_of(const toml::node& value) {
+Node node_of(const toml::node& value, int depth) {
   using Kind = Node::Kind;
   Node node;
-  if (const auto* table = value.as_table()) {
-    node = table_of(*table);
+  if (depth > deepest) {
+    node = plain(Kind::other, "a value inside too many others");
+  } else if (const auto* table = value.as_table()) {
+    node = table_of(*table, depth);
   } else if (const auto* list = value.as_array()) {
-    node = list_of(*list);
+    node = list_of(*list, depth);
   } else if (const auto* text = value.as_string()) {
     node = plain(Kind::text, text->get());
   } else if (const auto* whole = value.as_integer()) {
@@ -142,7 +145,7 @@ std::variant<Node, Unreadable> read_document(std::string_view text) {
   }
   try {
     const toml::table table = toml::parse(text);
-    Node node = table_of(table);
+    Node node = table_of(table, 0);
     node.line = 1;
     return node;
   } catch (const toml::parse_error& error) {
