@@ -38,7 +38,8 @@ bool was_said(const Notice& notice, std::span<const Said> said, bool late) {
     if (!same_matter(notice, entry)) return false;
     if (notice.kind != Kind::stage || !notice.day || !entry.until) return true;
     const auto move = std::chrono::abs(*entry.until - Instant(day_of(notice)));
-    if (notice.key.starts_with("note-held")) return move == Seconds{0};  // each note is its own matter
+    if (notice.key.starts_with("note-held"))
+      return move == Seconds{0};       // each note is its own matter
     return late || move < small_move;  // a move that is learned late is no longer news
   });
 }

@@ -25,7 +25,9 @@ double FlowerOdds::over(ThermalTime time) const {
 double FlowerOdds::in_flower(ThermalTime time) const {
   return std::max(0.0, begun(time) - over(time));
 }
-ThermalTime FlowerOdds::opens() const { return ThermalTime(begins + five_percent_point * sd_begin); }
+ThermalTime FlowerOdds::opens() const {
+  return ThermalTime(begins + five_percent_point * sd_begin);
+}
 ThermalTime FlowerOdds::closes() const {
   return ThermalTime(begins + lasts - five_percent_point * sd_end);
 }

@@ -18,10 +18,10 @@ double normal_probability(double z);
 
 /// Where flowering is likely to be, as thresholds on thermal time. All °C·d.
 struct FlowerOdds {
-  double begins = 0;      // req60 m
-  double lasts = 0;       // L = req69 − req60
-  double sd_begin = 0;    // s0 = req60 σ
-  double sd_end = 0;      // s1 = √(s0² + (0.25 L)²)
+  double begins = 0;    // req60 m
+  double lasts = 0;     // L = req69 − req60
+  double sd_begin = 0;  // s0 = req60 σ
+  double sd_end = 0;    // s1 = √(s0² + (0.25 L)²)
 
   /// P_begun = Φ((TT − req60 m)/s0). Source: science §5.
   double begun(ThermalTime time) const;
@@ -41,9 +41,9 @@ FlowerOdds odds(const Requirements& needs, const Belief& belief, double filled_s
 
 /// What a scouting note says of k.
 struct Observation {
-  double factor = 1.0;    // k_obs = TT / r
-  double sd = 0.02;       // σ_obs
-  ThermalTime reached;    // r
+  double factor = 1.0;  // k_obs = TT / r
+  double sd = 0.02;     // σ_obs
+  ThermalTime reached;  // r
 };
 
 /// Reads a note: stage 51…69, whether it began that day, TT at noon, mean daily units of the last

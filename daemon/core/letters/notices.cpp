@@ -72,8 +72,7 @@ void window_opens(Part& part, const Telling& telling, const FieldStatus* status,
                   const Words& words) {
   const CivilDay opened = telling.day.value_or(words.day_of_end(telling.about));
   part.lead = "Flower window opens";
-  part.rest = words.past_or_about(opened, spread_of(status)) + " " + told_at(telling, words) +
-              ", " + tag_of(status);
+  part.rest = words.past_or_about(opened, spread_of(status)) + ", " + tag_of(status);
   part.first = part.name + ": " + state_of(status) + ", flowering window open from " +
                words.past_or_about(opened, spread_of(status)) + ".";
   part.tonight =

@@ -12,8 +12,8 @@ namespace antherd::risk {
 
 /// A civil day so far. Only hours with data enter; `gap` marks one without.
 struct HeatTally {
-  int hours = 0;                       // with data
-  std::optional<Celsius> t_max;        // highest hourly mean
+  int hours = 0;                 // with data
+  std::optional<Celsius> t_max;  // highest hourly mean
   std::optional<HourStart> t_max_hour;
   std::optional<HourStart> first_hot;  // first hour at or above the sustained threshold
   int hours_sustained = 0;             // ≥ 32.2 °C

@@ -23,9 +23,8 @@ int strong_of_last_three(const Days& days) {
 
 /// The last three days, today included, were judged and none dried out.
 bool three_without_dry_out(const Days& days) {
-  return days.size() >= 3 && std::all_of(days.end() - 3, days.end(), [](const ScoredDay& d) {
-           return d.judged && !d.dry_out;
-         });
+  return days.size() >= 3 && std::all_of(days.end() - 3, days.end(),
+                                         [](const ScoredDay& d) { return d.judged && !d.dry_out; });
 }
 
 bool mild_and_favourable(const Days& days) {
@@ -36,8 +35,8 @@ bool mild_and_favourable(const Days& days) {
 
 /// Sets before four of the last five mornings, this one included: it needs no measurement.
 bool watered_often(const Days& days) {
-  return std::count_if(days.begin(), days.end(),
-                       [](const ScoredDay& d) { return d.night_set; }) >= 4;
+  return std::count_if(days.begin(), days.end(), [](const ScoredDay& d) { return d.night_set; }) >=
+         4;
 }
 
 Level level_by_scores(const Days& days, double r, int f3) {

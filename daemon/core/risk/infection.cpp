@@ -109,8 +109,8 @@ DayWetness evaluate_day(const std::vector<DayHour>& hours, std::optional<Instant
 }
 
 CivilDay humid_day_of(HourStart hour, Degree longitude) {
-  return std::chrono::floor<std::chrono::days>(
-      weather::solar_time(middle_of(hour), longitude) + 6 * one_hour);
+  return std::chrono::floor<std::chrono::days>(weather::solar_time(middle_of(hour), longitude) +
+                                               6 * one_hour);
 }
 
 bool ends_humid_day(HourStart hour, Degree longitude) {

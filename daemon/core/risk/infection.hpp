@@ -25,7 +25,7 @@ struct DayHour {
   double temperature = 0;  // °C
   double humidity = 0;     // %
   bool wet = false;
-  bool water = false;      // wet by water
+  bool water = false;  // wet by water
 };
 
 struct DayWetness {
@@ -35,7 +35,7 @@ struct DayWetness {
   double infection = 0;         // I, largest of the day's periods
   bool water = false;           // that period held water
   bool dry_out = false;
-  bool hot = false;             // sunrise to 18:00 solar: heat that kills spores
+  bool hot = false;  // sunrise to 18:00 solar: heat that kills spores
 };
 
 /// Evaluates one humid day, 18:00→18:00 mean solar time, from its hours in time order.

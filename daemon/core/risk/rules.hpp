@@ -15,9 +15,9 @@ struct HeatRules {
 };
 
 struct HumidRules {
-  double film_humidity = 95.0;         // % alone
-  double film_humidity_calm = 90.0;    // % while drying < 0.1 mm/h
-  bool dew_point_film = false;         // use dew-point depression instead (2.0 on, 3.8 off)
+  double film_humidity = 95.0;       // % alone
+  double film_humidity_calm = 90.0;  // % while drying < 0.1 mm/h
+  bool dew_point_film = false;       // use dew-point depression instead (2.0 on, 3.8 off)
   double bucket_mm = 0.2;
   double t_min = 3.0, t_best = 15.0, t_max = 26.0;  // °C, infection
   double w_min = 4.0, w_max = 12.0;                 // h

@@ -19,33 +19,34 @@ struct LeafHour {
   Celsius temperature;
   Percent humidity;
   Celsius dew_point;
-  Millimetre drying;                      // potential, of the hour
-  Millimetre rain{0};                     // for wetness
-  std::optional<double> sensor_minutes;   // leaf wetness sensor
+  Millimetre drying;                     // potential, of the hour
+  Millimetre rain{0};                    // for wetness
+  std::optional<double> sensor_minutes;  // leaf wetness sensor
 };
 
 /// What overhead irrigation brings to an hour, whether it has data or not.
 struct Watering {
-  bool overlaps = false;         // any overlap with an overhead irrigation
-  bool unknown_depth = false;    // fills the water film
-  Millimetre depth{0};           // known depth falling in this hour
-  bool night_set = false;        // a night set keeps the leaves wet in this hour
+  bool overlaps = false;       // any overlap with an overhead irrigation
+  bool unknown_depth = false;  // fills the water film
+  Millimetre depth{0};         // known depth falling in this hour
+  bool night_set = false;      // a night set keeps the leaves wet in this hour
 };
 
 struct Wet {
   bool wet = false;
-  bool water = false;            // by water film, night set, rain or irrigation
+  bool water = false;  // by water film, night set, rain or irrigation
 };
 
 /// Carried from hour to hour.
 struct LeafState {
-  double film_mm = 0;            // water film
-  bool humid_film = false;       // for the dew-point option's hysteresis
+  double film_mm = 0;       // water film
+  bool humid_film = false;  // for the dew-point option's hysteresis
 };
 
 /// One hour with data. Source: science §7; constant-RH film Sentelhas et al. 2008; dew-point
 /// option Huber & Gillespie 1992 (from memory); bucket and night sets are judgements.
-Wet wet_hour(LeafState& state, const LeafHour& hour, const Watering& water, const HumidRules& rules);
+Wet wet_hour(LeafState& state, const LeafHour& hour, const Watering& water,
+             const HumidRules& rules);
 /// An hour without data: the film starts empty after it.
 void after_gap(LeafState& state);
 
@@ -56,8 +57,8 @@ struct NightSet {
   Instant end;
   Instant sunset;
   Instant sunrise;
-  bool enough = true;              // ≥ 1 mm or unknown; otherwise it only counts as an evening
-  bool close_to_limit = false;     // had it ended an hour earlier it would not have counted
+  bool enough = true;           // ≥ 1 mm or unknown; otherwise it only counts as an evening
+  bool close_to_limit = false;  // had it ended an hour earlier it would not have counted
 };
 
 /// All evening and night irrigations of a diary, by end. Source: science §7, "Night sets".

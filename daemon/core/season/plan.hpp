@@ -31,20 +31,20 @@ struct Plan {
 /// One hour of weather on the field (science §4). What was not measured is nothing.
 struct Air {
   HourStart start;
-  int station = -1;                     // index into the plan's stations; −1: a gap
+  int station = -1;                         // index into the plan's stations; −1: a gap
   const weather::Hour* measured = nullptr;  // as measured there; lives as long as the hours do
-  std::optional<Celsius> temperature;   // at the field, rounded to 1e-6
+  std::optional<Celsius> temperature;       // at the field, rounded to 1e-6
   std::optional<Percent> humidity;
   std::optional<Celsius> dew_point;
   std::optional<Kilopascal> vpd;
-  std::optional<MetrePerSecond> wind;   // at 2 m
-  std::optional<double> solar;          // measured, W/m²
+  std::optional<MetrePerSecond> wind;  // at 2 m
+  std::optional<double> solar;         // measured, W/m²
   std::optional<Millimetre> rain;
   Millimetre rain_for_wetness{0};
   std::optional<double> wet_minutes;
   bool whole_degrees = false;
-  bool daylight = false;                // sun up at the hour's middle
-  double extraterrestrial = 0;          // Ra, MJ m⁻² h⁻¹
+  bool daylight = false;        // sun up at the hour's middle
+  double extraterrestrial = 0;  // Ra, MJ m⁻² h⁻¹
 
   bool valid() const { return temperature && humidity; }
 };

@@ -18,8 +18,12 @@ struct Quantity {
   constexpr auto operator<=>(const Quantity&) const = default;
   constexpr Quantity& operator+=(Quantity other) { return value += other.value, *this; }
   constexpr Quantity& operator-=(Quantity other) { return value -= other.value, *this; }
-  friend constexpr Quantity operator+(Quantity a, Quantity b) { return Quantity(a.value + b.value); }
-  friend constexpr Quantity operator-(Quantity a, Quantity b) { return Quantity(a.value - b.value); }
+  friend constexpr Quantity operator+(Quantity a, Quantity b) {
+    return Quantity(a.value + b.value);
+  }
+  friend constexpr Quantity operator-(Quantity a, Quantity b) {
+    return Quantity(a.value - b.value);
+  }
   friend constexpr Quantity operator-(Quantity a) { return Quantity(-a.value); }
   friend constexpr Quantity operator*(Quantity a, double k) { return Quantity(a.value * k); }
   friend constexpr Quantity operator*(double k, Quantity a) { return Quantity(a.value * k); }
@@ -27,16 +31,16 @@ struct Quantity {
   friend constexpr double operator/(Quantity a, Quantity b) { return a.value / b.value; }
 };
 
-using CelsiusDifference = Quantity<struct CelsiusDifferenceUnit>;  // K
-using Percent = Quantity<struct PercentUnit>;                      // relative humidity, %
-using Kilopascal = Quantity<struct KilopascalUnit>;                // vapour pressure, kPa
-using Millimetre = Quantity<struct MillimetreUnit>;                // water, mm
-using Metre = Quantity<struct MetreUnit>;                          // elevation, height, m
-using MetrePerSecond = Quantity<struct MetrePerSecondUnit>;        // wind, m/s
+using CelsiusDifference = Quantity<struct CelsiusDifferenceUnit>;    // K
+using Percent = Quantity<struct PercentUnit>;                        // relative humidity, %
+using Kilopascal = Quantity<struct KilopascalUnit>;                  // vapour pressure, kPa
+using Millimetre = Quantity<struct MillimetreUnit>;                  // water, mm
+using Metre = Quantity<struct MetreUnit>;                            // elevation, height, m
+using MetrePerSecond = Quantity<struct MetrePerSecondUnit>;          // wind, m/s
 using WattPerSquareMetre = Quantity<struct WattPerSquareMetreUnit>;  // solar radiation, W/m²
-using Degree = Quantity<struct DegreeUnit>;                // latitude north, longitude east, °
-using ThermalTime = Quantity<struct ThermalTimeUnit>;      // development, °C·d
-using DegreeHour = Quantity<struct DegreeHourUnit>;        // heat above a threshold, °C·h
+using Degree = Quantity<struct DegreeUnit>;            // latitude north, longitude east, °
+using ThermalTime = Quantity<struct ThermalTimeUnit>;  // development, °C·d
+using DegreeHour = Quantity<struct DegreeHourUnit>;    // heat above a threshold, °C·h
 
 /// Air temperature, °C. A point on a scale: two of them subtract to a difference, they do not add.
 struct Celsius {

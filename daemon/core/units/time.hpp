@@ -12,10 +12,10 @@
 namespace antherd {
 
 using Seconds = std::chrono::seconds;
-using Instant = std::chrono::sys_seconds;                         // UTC
-using HourStart = std::chrono::sys_time<std::chrono::hours>;      // UTC, an hour is its start
-using CivilDay = std::chrono::local_days;                         // a day in some zone
-using CivilTime = std::chrono::local_seconds;                     // a clock reading in some zone
+using Instant = std::chrono::sys_seconds;                     // UTC
+using HourStart = std::chrono::sys_time<std::chrono::hours>;  // UTC, an hour is its start
+using CivilDay = std::chrono::local_days;                     // a day in some zone
+using CivilTime = std::chrono::local_seconds;                 // a clock reading in some zone
 using CivilDate = std::chrono::year_month_day;
 
 constexpr Seconds one_hour{3600};

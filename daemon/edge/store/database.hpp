@@ -3,9 +3,9 @@
 // leaves it: the store's functions turn it into a Failure. It must not know what the tables mean.
 #pragma once
 
-#include <algorithm>
 #include <sqlite3.h>
 
+#include <algorithm>
 #include <chrono>
 #include <cstdint>
 #include <memory>

@@ -7,6 +7,7 @@
 #include <iostream>
 
 #include "core/weather/hour.hpp"
+#include "edge/clock/clock.hpp"
 #include "edge/station/readings.hpp"
 #include "run/service/farm.hpp"
 #include "run/service/intake.hpp"
@@ -212,11 +213,12 @@ Result<Past> past_from_store(const SettingsPointer& settings, const store::Store
   return past;
 }
 
-Result<Past> read_past(const SettingsPointer& settings, const Invocation& call, Instant now) {
+Result<Past> read_past(const SettingsPointer& settings, const Invocation& call) {
   if (!call.station_files.empty()) return past_from_files(settings, call.station_files);
   auto store = open_to_read(*settings);
   if (!store) {
-    Past past = past_from_folders(settings, now);
+    // A past season is read whatever the clock says: no row is too far ahead.
+    Past past = past_from_folders(settings, Instant{});
     if (past.last()) return past;  // no service has run here: the files speak for themselves
     Failure failure = store.failure();
     failure.what_next +=
@@ -224,7 +226,7 @@ Result<Past> read_past(const SettingsPointer& settings, const Invocation& call, 
         "NAME=FILE.csv";
     return failure;
   }
-  return past_from_store(settings, *store, now);
+  return past_from_store(settings, *store, present(*settings, store));
 }
 
 Result<store::Store> open_to_read(const settings::Settings& settings) {
@@ -238,6 +240,17 @@ Result<store::Store> open_to_write(const settings::Settings& settings) {
   store::Store::Options options;
   options.folder = settings.store_folder;
   return store::Store::open(options);
+}
+
+Instant present(const settings::Settings& settings, const Result<store::Store>& store) {
+  const Instant now = clock::wall_now();
+  if (!settings.exercise || !store) return now;
+  std::optional<Instant> newest;
+  for (const auto& station : settings.stations) {
+    const auto last = store->last_sample(station.station.name);
+    if (last && *last && (!newest || **last > *newest)) newest = **last;
+  }
+  return newest.value_or(now);
 }
 
 service::Lookout lookout_over(const Past& past) {

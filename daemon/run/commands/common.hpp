@@ -50,7 +50,10 @@ Result<Past> past_from_store(const SettingsPointer& settings, const store::Store
 void add_samples(Past& past, const settings::Station& station,
                  std::vector<weather::Sample> samples);
 /// Files when there are any, else the store, else the drop folders.
-Result<Past> read_past(const SettingsPointer& settings, const Invocation& call, Instant now);
+Result<Past> read_past(const SettingsPointer& settings, const Invocation& call);
+
+/// Now by the wall clock; in an exercise, whose clock is not the wall's, the newest reading.
+Instant present(const settings::Settings& settings, const Result<store::Store>& store);
 
 Result<store::Store> open_to_read(const settings::Settings& settings);
 Result<store::Store> open_to_write(const settings::Settings& settings);

@@ -4,7 +4,6 @@
 #include <nlohmann/json.hpp>
 
 #include "core/season/fold.hpp"
-#include "edge/clock/clock.hpp"
 #include "run/commands/common.hpp"
 #include "run/commands/tables.hpp"
 #include "run/settings/quantities.hpp"
@@ -112,7 +111,7 @@ Exit hours(const Invocation& call) {
   if (!settings) return Exit::usage;
   const settings::FieldPlan* wanted = read_field(*settings, call);
   if (!wanted) return Exit::usage;
-  const auto past = read_past(settings, call, clock::wall_now());
+  const auto past = read_past(settings, call);
   if (!past) return say(past.failure());
   const auto window = window_of(*settings, call, *past);
   if (!window) {

@@ -59,9 +59,17 @@ Exit mark_seen(store::Store& store, std::int64_t id) {
   const letters::Letter& letter = (*item)->letter;
   const auto said = store.said(letter.decided - std::chrono::days{1});
   if (!said) return say(said.failure());
+  // A letter was made when its entries were, or some hours before it might go (quiet hours).
+  const auto speaks_of = [&](const alerts::Said& entry) {
+    return entry.at <= letter.decided && alerts::name_of(entry.kind) == letter.kind;
+  };
+  Instant moment{};
+  for (const alerts::Said& entry : *said) {
+    if (speaks_of(entry)) moment = std::max(moment, entry.at);
+  }
   int marked = 0;
   for (const alerts::Said& entry : *said) {
-    if (entry.at != letter.decided || alerts::name_of(entry.kind) != letter.kind) continue;
+    if (entry.at != moment || !speaks_of(entry)) continue;
     if (auto done = store.mark_seen(entry.episode, entry.level); !done) return say(done.failure());
     ++marked;
   }

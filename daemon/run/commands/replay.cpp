@@ -8,7 +8,6 @@
 
 #include "core/alerts/stations.hpp"
 #include "core/season/fold.hpp"
-#include "edge/clock/clock.hpp"
 #include "run/commands/common.hpp"
 
 namespace antherd::commands {
@@ -256,7 +255,7 @@ void print_letters(const Past& past, HourStart until, bool full) {
 Exit replay(const Invocation& call) {
   const SettingsPointer settings = read_settings(call);
   if (!settings) return Exit::usage;
-  auto past = read_past(settings, call, clock::wall_now());
+  auto past = read_past(settings, call);
   if (!past) return say(past.failure());
   const auto last = past->last();
   if (!last || past->settings->fields.empty()) {

@@ -89,24 +89,12 @@ Result<View> view_of(const SettingsPointer& settings, Instant now) {
   return view;
 }
 
-/// In an exercise the clock of the readings is not the wall's.
-Instant time_of(const settings::Settings& settings, const Result<store::Store>& store) {
-  const Instant now = clock::wall_now();
-  if (!settings.exercise || !store) return now;
-  std::optional<Instant> newest;
-  for (const auto& station : settings.stations) {
-    const auto last = store->last_sample(station.station.name);
-    if (last && *last && (!newest || **last > *newest)) newest = **last;
-  }
-  return newest.value_or(now);
-}
-
 }  // namespace
 
 Exit now(const Invocation& call) {
   const SettingsPointer settings = read_settings(call);
   if (!settings) return Exit::usage;
-  const Instant time = time_of(*settings, open_to_read(*settings));
+  const Instant time = present(*settings, open_to_read(*settings));
   auto view = view_of(settings, time);
   if (!view) return say(view.failure());
   const auto attention = attention_of(view->lookout, view->store, time);
@@ -118,7 +106,7 @@ Exit now(const Invocation& call) {
 Exit review(const Invocation& call) {
   const SettingsPointer settings = read_settings(call);
   if (!settings) return Exit::usage;
-  const Instant time = time_of(*settings, open_to_read(*settings));
+  const Instant time = present(*settings, open_to_read(*settings));
   service::Period period = service::week_before(settings->calendar, time);
   if (call.season) {
     period = service::season_of(*settings, time);

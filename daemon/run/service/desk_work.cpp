@@ -10,6 +10,26 @@ namespace antherd::service {
 namespace {
 
 constexpr Seconds scan_every{60};
+constexpr Seconds settles_within{90};  // after a start; a poll takes 20 s at most
+
+/// How a drop folder's files are read, as one text: another form reads the files anew.
+std::string form_text(const station::DropForm& drop) {
+  const station::RecordForm& record = drop.record;
+  std::string text = drop.folder + '|' + drop.files + '|' + record.time.form + '|' +
+                     record.time.zone.name() + '|' +
+                     std::to_string(record.wetness_interval.count());
+  for (const std::string& column : record.time.at) text += '|' + column;
+  if (record.where) text += '|' + record.where->first + '=' + record.where->second;
+  for (const auto* value : {&record.temperature, &record.humidity, &record.dew_point, &record.rain,
+                            &record.wind, &record.solar, &record.wetness}) {
+    text += '|' + (*value ? (*value)->at + ' ' + (*value)->unit : std::string("-"));
+  }
+  if (record.wet_when) {
+    text += '|' + record.wet_when->comparison + std::to_string(record.wet_when->threshold);
+  }
+  for (const std::string& word : record.missing) text += '|' + word;
+  return text;
+}
 
 std::string age_text(Seconds age) {
   const auto minutes = age.count() / 60;
@@ -48,6 +68,7 @@ Outcome DeskWork::begin(Instant now) {
   if (auto done = keeper_->load(now); !done) return done;
   if (auto done = carrier_->load(now); !done) return done;
   sources_.clear();
+  store::Notes forms;
   for (const auto& station : settings_->stations) {
     Source& source = sources_[station.station.name];
     auto notes = store_.notes_with_prefix(bookmark_prefix(station.station.name));
@@ -56,8 +77,13 @@ Outcome DeskWork::begin(Instant now) {
       auto bookmark = bookmark_of(text);
       if (bookmark) source.bookmarks.push_back(std::move(*bookmark));
     }
+    if (station.drop) forget_bookmarks_of_another_form(station, source, forms);
     source.next_poll = now;
   }
+  if (!forms.empty()) {
+    if (auto done = store_.put_notes(forms); !done) return done;
+  }
+  settling_since_ = now;
   diary_version_ = "unread";
   next_look_ = now;
   return Done{};
@@ -71,7 +97,13 @@ Instant DeskWork::turn(Instant now, bool clock_set) {
     look(now);
   }
   ask_stations(now);
-  const Kept kept = keeper_->step(now, clock_set);
+  Kept kept;
+  if (settled(now)) {
+    kept = keeper_->step(now, clock_set);
+    for (Failure& trouble : keeper_->tidy(now)) kept.troubles.push_back(std::move(trouble));
+  } else if (auto done = keeper_->flush(now); !done) {
+    kept.troubles.push_back(done.failure());
+  }
   log_kept(kept);
   if (kept.letters > 0) {
     if (auto done = carrier_->refresh(); !done) log_once("outbox", done.failure().sentence());
@@ -87,6 +119,30 @@ Instant DeskWork::turn(Instant now, bool clock_set) {
   }
   if (const auto again = carrier_->look_again(now)) wake = std::min(wake, std::max(now, *again));
   return wake;
+}
+
+/// Nothing is decided before every source was looked at: after a pause of the service a station
+/// would seem silent, and a season's files would be told of piece by piece.
+bool DeskWork::settled(Instant now) {
+  if (!settling_since_) return true;
+  const bool unheard = std::any_of(sources_.begin(), sources_.end(), [&](const auto& source) {
+    const settings::Station* station = settings_->station(source.first);
+    return station != nullptr && station->http && !source.second.answered;
+  });
+  const bool late = now - *settling_since_ > settles_within || now < *settling_since_;
+  if (look_due_ || (unheard && ask_ && !late)) return false;
+  settling_since_.reset();
+  return true;
+}
+
+void DeskWork::forget_bookmarks_of_another_form(const settings::Station& station, Source& source,
+                                                store::Notes& notes) {
+  const std::string key = "form/" + station.station.name;
+  const std::string form = form_text(*station.drop);
+  const auto known = store_.note(key);
+  if (known && *known && **known == form) return;
+  if (known && *known) source.bookmarks.clear();
+  notes[key] = form;
 }
 
 void DeskWork::look(Instant now) {
@@ -152,6 +208,7 @@ void DeskWork::poll_answered(const std::string& name, const station::Answer& ans
   if (found == sources_.end() || station == nullptr || !station->http) return;  // settings changed
   Source& source = found->second;
   source.asked = false;
+  source.answered = true;
   source.memory = answer.memory;
   // Every station has its own place in the spread: they do not all ask in the same second.
   const double place = static_cast<double>(std::hash<std::string>{}(name) % 1000) / 1000.0;

@@ -54,7 +54,7 @@ class DeskWork {
     std::vector<station::Bookmark> bookmarks;  // of a drop folder
     station::PollMemory memory;                // of a polled station
     Instant next_poll;
-    bool asked = false;
+    bool asked = false, answered = false;
     std::map<CivilDay, int> refused;  // rows by day
     std::string last_trouble;
   };
@@ -65,6 +65,9 @@ class DeskWork {
   bool look_into_drop(const settings::Station& station, Source& source, Instant now);
   void look_into_diary(Instant now);
   void ask_stations(Instant now);
+  bool settled(Instant now);
+  void forget_bookmarks_of_another_form(const settings::Station& station, Source& source,
+                                        store::Notes& notes);
   void take_readings(const std::string& station, const station::Readings& readings,
                      const store::Notes& notes, Instant now);
   void note_trouble(const std::string& station, const std::string& sentence);
@@ -83,7 +86,8 @@ class DeskWork {
   std::string diary_version_ = "unread";
   Instant next_look_{};
   bool look_due_ = true;
-  bool reload_wanted_ = false;  // put off until the letter under way has ended
+  std::optional<Instant> settling_since_;  // until every source was looked at once
+  bool reload_wanted_ = false;             // put off until the letter under way has ended
 };
 
 }  // namespace antherd::service

@@ -212,13 +212,37 @@ Kept Keeper::step(Instant now, bool clock_set) {
   const bool nothing = pending_.hours.empty() && pending_.hours_gone.empty() &&
                        pending_.said.empty() && pending_.letters.empty() && pending_.notes.empty();
   if (nothing) return kept;
-  if (auto done = store_.save(pending_); !done) {
+  if (auto done = save_pending(); !done) {
     kept.troubles.push_back(done.failure());
     return kept;
   }
   kept.letters = pending_.letters.size();
   pending_ = store::Decision{};
   return kept;
+}
+
+/// Decisions must find room on a full disk: the ballast is let go for them.
+Outcome Keeper::save_pending() {
+  auto done = store_.save(pending_);
+  if (done || !store_.out_of_space()) return done;
+  if (auto released = store_.release_ballast(); !released) return done;
+  return store_.save(pending_);
+}
+
+std::vector<Failure> Keeper::tidy(Instant now) {
+  std::vector<Failure> troubles;
+  const CivilDay today = settings_->calendar.day_of(now);
+  if (tidied_ == today) return troubles;
+  const auto note = [&](const Outcome& done) {
+    if (!done) troubles.push_back(done.failure());
+  };
+  note(store_.drop_samples_before(now - settings_->keep_samples));
+  note(store_.keep_ballast());
+  const auto weekday =
+      std::chrono::weekday{std::chrono::sys_days{today.time_since_epoch()}}.iso_encoding();
+  if (tidied_ && weekday == 1) note(store_.copy_without_samples(now));
+  tidied_ = today;
+  return troubles;
 }
 
 void Keeper::add_timed_letters(Instant now, store::Decision& decision,

@@ -41,6 +41,10 @@ class Keeper {
   /// Takes diary entries that came as files; what is there already changes nothing.
   Outcome take_diary(const field::Diary& diary);
 
+  /// Housekeeping of a day: samples past their time go, the ballast is put back; each week a copy
+  /// of the store without samples. @return what did not work
+  std::vector<Failure> tidy(Instant now);
+
   /// Stores what is due, turns the lookout, adds daily and weekly letters, saves.
   Kept step(Instant now, bool clock_set);
   /// Stores what is still in memory, whatever its age.
@@ -60,6 +64,7 @@ class Keeper {
 
   Outcome store_batch(const std::string& station, Batch& batch);
   Outcome remake_hours(const std::string& station, Instant earliest, Instant latest);
+  Outcome save_pending();
   void collect_hours(store::Decision& decision, const Closed& closed);
   Closed closed_at(Instant now) const;
   bool batch_due(const std::string& station, const Batch& batch, Instant now) const;
@@ -75,6 +80,7 @@ class Keeper {
   store::Decision pending_;                                   // decided, not yet stored
   std::int64_t diary_version_ = -1;
   std::optional<Instant> last_daily_, last_weekly_;
+  std::optional<CivilDay> tidied_;
   SentToday sent_today_;
   CivilDay sent_day_{};
 };

@@ -166,6 +166,7 @@ letters::Desk Lookout::desk(Instant now) const {
   desk.exercise = settings_->exercise;
   bool in_window = false;
   for (const auto& [name, field] : fields_) {
+    desk.heat_rules[name] = field.plan.rules.heat;
     desk.fields[name] = season::status(field.state, field.plan, field.diary);
     in_window = in_window || field.state.crop.part == season::Part::window;
   }

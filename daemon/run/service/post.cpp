@@ -45,6 +45,8 @@ std::vector<outbox::Item> to_items(const std::vector<letters::Letter>& letters,
       const Instant morning = settings.calendar.at(CivilTime(tomorrow) + std::chrono::hours{6});
       item.next_try = std::max(item.next_try, morning);
     }
+    // A letter that was held back on purpose is not "delayed": it speaks from when it may go.
+    item.letter.decided = std::max(item.letter.decided, item.next_try);
     items.push_back(std::move(item));
   }
   return items;

@@ -55,6 +55,11 @@ letters::FieldReview review_field(const Lookout& lookout, const std::string& nam
                        return;
                      }
                      if (step.hour.air.valid()) ++review.hours_valid;
+                     if (!step.hour.air.temperature) return;
+                     const auto [coldest, first] =
+                         review.coolest.emplace(so_far.day, *step.hour.air.temperature);
+                     if (!first)
+                       coldest->second = std::min(coldest->second, *step.hour.air.temperature);
                    });
   review.status = season::status(state, plan, diary);
   review.days = within(chronicle.days, period);

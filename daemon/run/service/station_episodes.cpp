@@ -12,7 +12,7 @@ namespace {
 using std::chrono::days;
 
 constexpr auto season_lasts_after_ripe = days{30};
-constexpr auto doubt_looks_back = days{10};
+constexpr auto doubt_looks_back = days{60};  // longer, and its start would slide
 
 /// When the fields of a station need it.
 struct Need {

@@ -8,12 +8,12 @@
 namespace antherd::service {
 
 Timekeeper::Timekeeper(Instant from, double pace)
-    : from_(from), started_(clock::wall_now()), pace_(pace) {}
+    : from_(from), started_(clock::steady_now()), pace_(pace) {}
 
 Instant Timekeeper::now() const {
-  const Instant wall = clock::wall_now();
-  if (!from_) return wall;
-  const double passed = static_cast<double>((wall - started_).count()) * pace_;
+  if (!from_) return clock::wall_now();
+  const std::chrono::duration<double> real = clock::steady_now() - started_;
+  const double passed = real.count() * pace_;
   return *from_ + Seconds{static_cast<long long>(passed)};
 }
 

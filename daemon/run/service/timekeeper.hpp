@@ -25,7 +25,7 @@ class Timekeeper {
 
  private:
   std::optional<Instant> from_;
-  Instant started_{};
+  std::chrono::steady_clock::time_point started_{};
   double pace_ = 1.0;
 };
 
