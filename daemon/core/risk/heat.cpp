@@ -6,6 +6,13 @@
 
 namespace antherd::risk {
 
+namespace {
+
+/// Sums of readings in tenths are compared as tenths: 2.4 + 2.6 reaches 5 (science §0).
+double rounded(double degree_hours) { return std::round(degree_hours * 1e6) / 1e6; }
+
+}  // namespace
+
 void add_hour(HeatTally& day, HourStart hour, Celsius mean, bool whole_degrees,
               const HeatRules& rules) {
   ++day.hours;
@@ -30,11 +37,12 @@ void add_gap(HeatTally& day) { day.run = 0; }
 
 Level heat_level(const HeatTally& day, double before_2, double before_4) {
   const bool hot_today = day.hours_sustained > 0;
-  const double sum_3 = hot_today ? before_2 + day.degree_hours : 0.0;
-  const double sum_5 = hot_today ? before_4 + day.degree_hours : 0.0;
-  if (day.hours_extreme >= 1 || day.degree_hours >= 50 || sum_5 >= 100) return Level::extreme;
-  if (day.severe_reading || day.degree_hours >= 20 || sum_3 >= 40) return Level::severe;
-  if (day.longest_run >= 3 || day.degree_hours >= 5) return Level::moderate;
+  const double sum_1 = rounded(day.degree_hours);
+  const double sum_3 = hot_today ? rounded(before_2 + day.degree_hours) : 0.0;
+  const double sum_5 = hot_today ? rounded(before_4 + day.degree_hours) : 0.0;
+  if (day.hours_extreme >= 1 || sum_1 >= 50 || sum_5 >= 100) return Level::extreme;
+  if (day.severe_reading || sum_1 >= 20 || sum_3 >= 40) return Level::severe;
+  if (day.longest_run >= 3 || sum_1 >= 5) return Level::moderate;
   return Level::none;
 }
 

@@ -24,6 +24,8 @@ int solar_minute(HourStart hour, Degree longitude) {
 
 void close(Period& period, DayWetness& day) {
   if (!period.open) return;
+  // Twelve hours of a twelfth each are one: the sum is compared as a number of six decimals.
+  period.infection = std::round(period.infection * 1e6) / 1e6;
   const bool larger = period.infection > day.infection;
   const bool equal = period.infection == day.infection;
   if (larger || (equal && period.water)) day.water = period.water;

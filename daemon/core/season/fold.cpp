@@ -16,8 +16,8 @@ double solar_of(const State& state, const Plan& plan, const Air& air) {
   if (air.solar) return *air.solar * watt_to_megajoule_hour;
   std::optional<CelsiusDifference> range;
   if (state.temperatures.size() == day_of_hours) {
-    const auto [low, high] = std::minmax_element(state.temperatures.begin(),
-                                                 state.temperatures.end());
+    const auto [low, high] =
+        std::minmax_element(state.temperatures.begin(), state.temperatures.end());
     range = CelsiusDifference(*high - *low);
   }
   const auto station = static_cast<std::size_t>(std::max(0, air.station));
@@ -68,11 +68,19 @@ void enter_day(State& state, const Plan& plan, HourStart start) {
   state.next_day = plan.calendar.start_of(state.day + std::chrono::days{1});
 }
 
+/// Past stage 89 by the estimate and, while a note is held against it, by that note too: a grower
+/// who has just seen open flowers is not left alone.
+bool is_ripe(const Phenology& crop, const Plan& plan) {
+  if (!crop.known()) return false;
+  const double held = crop.held ? crop.held->with.mean : 0.0;
+  return crop.time.value >= plan.traits.needs.ripe.value * std::max(crop.belief.mean, held) &&
+         (!crop.held || crop.part != Part::window);
+}
+
 /// A field past ripe, or sown long ago, or harvested is not watched.
 void update_watch(State& state, const Plan& plan) {
   constexpr auto sown_long_ago = std::chrono::days{240};
-  const bool ripe = state.crop.known() &&
-                    state.crop.time.value >= plan.traits.needs.ripe.value * state.crop.belief.mean;
+  const bool ripe = is_ripe(state.crop, plan);
   if (!ripe) {
     state.ripe_since.reset();
   } else if (!state.ripe_since) {
@@ -98,12 +106,17 @@ Step advance(State& state, const Plan& plan, const DiaryView& diary, const Air& 
   const PhenologyHour grown = advance(state.crop, plan, diary, air, state.day);
   update_watch(state, plan);
 
-  const HourContext hour{plan,      diary,
-                         air,       state.crop,
-                         state.day, end_of(air.start) >= state.next_day,
+  const HourContext hour{plan,
+                         diary,
+                         air,
+                         state.crop,
+                         state.day,
+                         end_of(air.start) >= state.next_day,
                          state.watch == Watch::watched};
   step.day = advance(state.heat, state.episodes, hour, grown.flower_share);
   step.humid_day = advance(state.humid, state.episodes, hour, record.drying, record.wet);
+  advance(state.water, hour, record.eto);
+  if (step.day) step.day->ks = state.water.ks;
   give_notices(state, plan, diary, hour, grown.note_was_held);
   remember_temperature(state, air);
   remember_hour(state, air);
@@ -124,8 +137,8 @@ State fold(const Plan& plan, const DiaryView& diary, const StationHours& hours, 
   HourPicker picker(hours);
   for (HourStart start = plan.first_hour(); start < until; start += std::chrono::hours{1}) {
     const auto picked = picker.pick(start);
-    const Step step = advance(state, plan, diary,
-                              air_at_field(plan, start, picked.hour, picked.station));
+    const Step step =
+        advance(state, plan, diary, air_at_field(plan, start, picked.hour, picked.station));
     if (chronicle != nullptr) {
       if (step.day) chronicle->days.push_back(*step.day);
       if (step.humid_day) chronicle->humid_days.push_back(*step.humid_day);

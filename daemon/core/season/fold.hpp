@@ -14,6 +14,7 @@
 #include "core/season/phenology.hpp"
 #include "core/season/plan.hpp"
 #include "core/season/status.hpp"
+#include "core/season/water_balance.hpp"
 
 namespace antherd::season {
 
@@ -27,6 +28,7 @@ struct State {
   Phenology crop;
   HeatHazard heat;
   HumidHazard humid;
+  WaterBalance water;
   std::vector<double> temperatures;          // of the last 24 hours in a row, °C
   std::vector<alerts::Episode> episodes;
   std::vector<alerts::Notice> notices;

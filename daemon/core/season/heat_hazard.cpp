@@ -12,7 +12,8 @@ namespace {
 constexpr int whole_day = 20;  // valid hours from which a day may close an episode
 constexpr std::array<double, 3> shifts{0.0, -1.0, 1.0};
 
-risk::Standing standing_of(Part part) {
+risk::Standing standing_of(Part part, bool watched) {
+  if (!watched) return risk::Standing::outside;
   if (part == Part::window) return risk::Standing::window;
   const bool shoulder = part == Part::shoulder_before || part == Part::shoulder_after;
   return shoulder ? risk::Standing::shoulder : risk::Standing::outside;
@@ -30,7 +31,8 @@ void add_to_track(HeatTrack& track, const HourContext& hour, double shift) {
   const double before_4 = before_2 + track.before[2] + track.before[3];
   const Level level = risk::heat_level(track.tally, before_2, before_4);
   track.weather_level = std::max(track.weather_level, level);
-  track.level = std::max(track.level, risk::placed(level, standing_of(hour.crop.part)));
+  track.level =
+      std::max(track.level, risk::placed(level, standing_of(hour.crop.part, hour.watched)));
 }
 
 /// Begins a civil day; days that never came (the fold has none, but a jump would) count 0.
@@ -118,7 +120,8 @@ HeatDay end_day(HeatHazard& heat, const HourContext& hour) {
   add_affected(heat, hour);
   const HeatDay day = day_so_far(heat);
   if (day.hours_35.value_or(0) >= 1) {
-    heat.exposed_share += day.flower_share;
+    // A note may move the estimate back, and flowers counted before would open again.
+    heat.exposed_share = std::min(1.0, heat.exposed_share + day.flower_share);
     if (day.in_window) ++heat.hot_days;
   }
   heat.yesterday = day;
@@ -165,9 +168,8 @@ std::optional<HeatDay> advance(HeatHazard& heat, std::vector<alerts::Episode>& e
   const std::string& name = hour.plan.field.name;
   const Certainty certainty = certainty_of(hour.crop, hour.plan);
   const HeatTrack& measured = heat.tracks[0];
-  const auto figure = measured.tally.t_max
-                          ? std::optional<double>(measured.tally.t_max->value)
-                          : std::nullopt;
+  const auto figure =
+      measured.tally.t_max ? std::optional<double>(measured.tally.t_max->value) : std::nullopt;
   const bool over = !hour.watched || hour.crop.part == Part::after;
   if (over) {
     move_episode(episodes, heat.episode, alerts::Kind::heat, name, hour.air.start, Level::none,

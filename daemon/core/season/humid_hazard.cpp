@@ -11,12 +11,11 @@ namespace {
 
 bool disease_was_seen(const HourContext& hour) {
   const Instant now = end_of(hour.air.start);
-  return std::any_of(hour.diary.notes.begin(), hour.diary.notes.end(),
-                     [&](const field::Scouting& note) {
-                       return note.disease.value_or(false) &&
-                              hour.plan.calendar.at(CivilTime(note.date) +
-                                                    std::chrono::hours{12}) <= now;
-                     });
+  return std::any_of(
+      hour.diary.notes.begin(), hour.diary.notes.end(), [&](const field::Scouting& note) {
+        return note.disease.value_or(false) && note.date >= hour.plan.field.sown &&
+               hour.plan.calendar.at(CivilTime(note.date) + std::chrono::hours{12}) <= now;
+      });
 }
 
 /// While the stage is unknown the days since sowing must do (science §5, "Stage unknown").
@@ -92,10 +91,9 @@ HumidDay end_humid_day(HumidHazard& humid, const HourContext& hour, CivilDay dat
   risk::DayContext context;
   context.date = date;
   context.after_hot_day = humid.yesterday_hot;
-  context.night_set =
-      std::any_of(hour.diary.sets.begin(), hour.diary.sets.end(), [&](const risk::NightSet& set) {
-        return set.enough && sunrise && set.sunrise == *sunrise;
-      });
+  context.night_set = std::any_of(
+      hour.diary.sets.begin(), hour.diary.sets.end(),
+      [&](const risk::NightSet& set) { return set.enough && sunrise && set.sunrise == *sunrise; });
   context.disease_seen = disease_was_seen(hour);
   place_in_season(context, hour);
   context.in_season = context.in_season && hour.watched;
@@ -113,8 +111,7 @@ std::optional<HumidDay> advance(HumidHazard& humid, std::vector<alerts::Episode>
   humid.hours.push_back(day_hour(hour.air, wet));
   const Degree longitude = hour.plan.field.longitude;
   if (!risk::ends_humid_day(hour.air.start, longitude)) return std::nullopt;
-  const HumidDay day =
-      end_humid_day(humid, hour, risk::humid_day_of(hour.air.start, longitude));
+  const HumidDay day = end_humid_day(humid, hour, risk::humid_day_of(hour.air.start, longitude));
   humid.last_five.push_back(day);
   if (humid.last_five.size() > 5) humid.last_five.erase(humid.last_five.begin());
   std::optional<double> figure = day.r;

@@ -14,10 +14,8 @@ using std::chrono::days;
 constexpr auto morning = std::chrono::hours{7};  // day-based notices are given at 7 in the morning
 constexpr int streak_told_from = 3, diary_gap_days = 10, near_days = 10, closing_days = 2;
 
-void give(State& state, const HourContext& hour, Kind kind, std::string key,
-          std::optional<CivilDay> day = {}, double figure = 0) {
-  const auto told = [&](const Notice& n) { return n.kind == kind && n.key == key; };
-  if (std::any_of(state.notices.begin(), state.notices.end(), told)) return;
+void add(State& state, const HourContext& hour, Kind kind, std::string key,
+         std::optional<CivilDay> day, double figure = 0) {
   Notice notice;
   notice.kind = kind;
   notice.subject = hour.plan.field.name;
@@ -26,6 +24,28 @@ void give(State& state, const HourContext& hour, Kind kind, std::string key,
   notice.day = day;
   notice.figure = figure;
   state.notices.push_back(std::move(notice));
+}
+
+/// Once a season.
+void give(State& state, const HourContext& hour, Kind kind, std::string key,
+          std::optional<CivilDay> day = {}, double figure = 0) {
+  const auto told = [&](const Notice& n) { return n.kind == kind && n.key == key; };
+  if (std::any_of(state.notices.begin(), state.notices.end(), told)) return;
+  add(state, hour, kind, std::move(key), day, figure);
+}
+
+/// The close is told again when it has moved, by a note that the watch should go on or by cool
+/// weather: the window never closes silently (science §5).
+void give_close(State& state, const HourContext& hour, std::optional<CivilDay> closes) {
+  constexpr auto small_move = days{3};
+  const auto told = std::find_if(state.notices.rbegin(), state.notices.rend(), [](const Notice& n) {
+    return n.kind == Kind::stage && n.key == "window-closes";
+  });
+  if (told != state.notices.rend()) {
+    const bool moved = closes && told->day && *closes - *told->day >= small_move;
+    if (!moved) return;
+  }
+  add(state, hour, Kind::stage, "window-closes", closes);
 }
 
 std::string date_key(CivilDay day) {
@@ -39,6 +59,7 @@ void follow_streak(State& state, const DiaryView& diary, const HourContext& hour
   for (; state.next_set < diary.sets.size(); ++state.next_set) {
     const risk::NightSet& set = diary.sets[state.next_set];
     if (set.end > end_of(hour.air.start)) return;
+    if (set.end <= Instant(hour.plan.first_hour())) continue;  // another season's
     const CivilDay night = hour.plan.calendar.day_of(set.sunrise);
     if (state.streak_last == night) continue;
     const bool follows = state.streak_last && night - *state.streak_last == days{1};
@@ -80,7 +101,7 @@ void look_at_window(State& state, const HourContext& hour) {
   if (state.crop.part == Part::window) {
     give(state, hour, Kind::stage, "window-opens", state.crop.window_first);
     if (enough && time + closing_days * daily >= edges.closes.value) {
-      give(state, hour, Kind::stage, "window-closes", expected_day(state, edges.closes.value));
+      give_close(state, hour, expected_day(state, edges.closes.value));
     }
   }
 }

@@ -52,8 +52,8 @@ bool take_note(Phenology& crop, const Plan& plan, const field::Scouting& note) {
   if (stage == field::stage::flowers_done && began) crop.done = note.date;
   const bool flowering = stage >= field::stage::first_anthers && stage < field::stage::flowers_done;
   if (flowering) crop.done.reset();
-  const auto seen = crop::observe(stage, began, crop.time, crop.units.mean_10_days(),
-                                  plan.traits.needs);
+  const auto seen =
+      crop::observe(stage, began, crop.time, crop.units.mean_10_days(), plan.traits.needs);
   crop.scouted = true;
   if (!crop.known()) {
     anchor(crop, seen);
@@ -67,11 +67,10 @@ bool take_notes(Phenology& crop, const Plan& plan, const DiaryView& diary, HourS
   for (; crop.next_note < diary.notes.size(); ++crop.next_note) {
     const field::Scouting& note = diary.notes[crop.next_note];
     if (noon_of(plan, note.date) > Instant(now)) break;
-    if (!note.stage) continue;
-    const auto later = std::find_if(diary.notes.begin() + static_cast<long>(crop.next_note) + 1,
-                                    diary.notes.end(), [&](const field::Scouting& other) {
-                                      return other.date == note.date && other.stage;
-                                    });
+    if (!note.stage || note.date < plan.field.sown) continue;  // another season's
+    const auto later = std::find_if(
+        diary.notes.begin() + static_cast<long>(crop.next_note) + 1, diary.notes.end(),
+        [&](const field::Scouting& other) { return other.date == note.date && other.stage; });
     if (later != diary.notes.end()) continue;  // of several on one day the last entered stands
     held = take_note(crop, plan, note) || held;
   }

@@ -36,8 +36,8 @@ FlowerStatus flower_status(const State& state, const Plan& plan) {
   if (!flower.window_last) flower.window_last = expected_day(state, edges.closes.value);
   if (crop.done) flower.window_last = crop.done;
   flower.flower_first = crop.reached[2] ? crop.reached[2] : expected_day(state, odds.begins);
-  flower.flower_last = crop.reached[4] ? crop.reached[4]
-                                       : expected_day(state, odds.begins + odds.lasts);
+  flower.flower_last =
+      crop.reached[4] ? crop.reached[4] : expected_day(state, odds.begins + odds.lasts);
   const double daily = crop.units.mean_14_days();
   if (daily > 0) flower.flower_first_days = odds.sd_begin / daily;
   if (crop.part == Part::window && crop.window_first) {
@@ -144,13 +144,13 @@ HumidStatus humid_status(const State& state, const Plan& plan, const DiaryView& 
     humid.streak = static_cast<int>((*state.streak_last - *state.streak_first).count()) + 1;
   }
   for (const field::Scouting& note : diary.notes) {
-    humid.disease_seen = humid.disease_seen || (note.disease.value_or(false) && note.date <= today);
+    const bool this_season = note.date >= plan.field.sown && note.date <= today;
+    humid.disease_seen = humid.disease_seen || (note.disease.value_or(false) && this_season);
   }
   humid.episode = recent_episode(state, alerts::Kind::humid_spell);
   if (plan.field.irrigation == field::Method::overhead && state.last_day.size() == 24) {
     const Tonight night = tonight(state, plan);
-    humid.if_watered_tonight =
-        level_after(state, plan, watered(night, plan, diary), night.morning);
+    humid.if_watered_tonight = level_after(state, plan, watered(night, plan, diary), night.morning);
     humid.if_not_watered = level_after(state, plan, diary, night.morning);
   }
   return humid;
@@ -212,12 +212,17 @@ FieldStatus status(const State& state, const Plan& plan, const DiaryView& diary)
     result.humidity = state.last_day.back().humidity;
   }
   for (const field::Irrigation& irrigation : diary.irrigations) {
-    if (irrigation.start < result.as_of) result.last_irrigation_end = irrigation.end;
+    const bool this_season = irrigation.end > Instant(plan.first_hour());
+    if (this_season && irrigation.start < result.as_of) {
+      result.last_irrigation_end = irrigation.end;
+    }
   }
   result.flower = flower_status(state, plan);
   result.heat = heat_status(state);
   result.humid = humid_status(state, plan, diary);
   result.data = data_status(state, plan);
+  result.water_stress = state.water.ks;
+  if (state.water.ks) result.days_to_stress = risk::days_to_stress(*state.water.account);
   return result;
 }
 

@@ -55,6 +55,7 @@ struct HeatDay {
   bool in_window = false;
   double flower_share = 0;  // flowers opened this day, of the season's
   int valid_hours = 0;
+  std::optional<double> ks;  // water stress of the day, 1 none … 0 full (science §9)
 };
 
 /// One humid day, 18:00→18:00 solar, bearing the date on which it ends (science §8).

@@ -81,6 +81,7 @@ void print_windows(const service::Lookout& lookout, const settings::FieldPlan& f
 }  // namespace
 
 Exit check(const Invocation& call) {
+  if (!call.sample.empty()) return check_sample(call);
   const std::string file = settings::choose_file(call.settings);
   const settings::Reading reading = settings::read_file(file);
   for (const auto& complaint : reading.complaints) std::cout << complaint.sentence() << "\n";

@@ -43,8 +43,11 @@ void add_service(CLI::App& app, Invocation& call) {
       ->check(CLI::Range(1.0, 3600.0));
   run->add_option("--stop-after", call.stop_after, "exercise only: stop after so many seconds")
       ->check(CLI::Range(1, 86400));
-  add(app, "check", "read the settings, name every fault, print the plan that was understood",
-      "antherd check --settings config/antherd.toml");
+  CLI::App* check =
+      add(app, "check", "read the settings, name every fault, print the plan that was understood",
+          "antherd check --settings config/antherd.toml");
+  check->add_option("--sample", call.sample,
+                    "look at a station's CSV file and print a settings block that reads it");
   add(app, "mailtest", "send one letter to each recipient and explain what fails",
       "antherd mailtest --settings /etc/antherd/antherd.toml");
 }

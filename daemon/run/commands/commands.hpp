@@ -18,6 +18,8 @@ struct Invocation {
   std::string settings;
   std::string field;
   bool lines = false, csv = false;
+  // check
+  std::string sample;
   // hours, replay
   std::vector<std::string> station_files;  // "bench=FILE.csv"
   std::string from, to;                    // farm days, both included
@@ -43,6 +45,7 @@ struct Invocation {
 
 Exit run(const Invocation& call);
 Exit check(const Invocation& call);
+Exit check_sample(const Invocation& call);  // check --sample FILE
 Exit now(const Invocation& call);
 Exit water(const Invocation& call);
 Exit scout(const Invocation& call);

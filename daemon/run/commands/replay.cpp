@@ -45,7 +45,7 @@ void add_days(Events& events, const season::Plan& plan, const season::Chronicle&
     line["heat_level"] = static_cast<int>(day.level);
     line["in_window"] = day.in_window;
     line["flower_share"] = rounded(day.flower_share, 6);
-    line["ks"] = nullptr;  // no water balance is kept yet
+    line["ks"] = number(day.ks);
     events.push_back({plan.calendar.start_of(day.date + std::chrono::days{1}), 2, line});
   }
   for (const season::HumidDay& day : chronicle.humid_days) {

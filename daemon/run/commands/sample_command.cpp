@@ -1,0 +1,104 @@
+// antherd check --sample FILE; see sample.hpp.
+#include <algorithm>
+#include <fstream>
+#include <iostream>
+
+#include "edge/station/readings.hpp"
+#include "run/commands/common.hpp"
+#include "run/commands/sample.hpp"
+
+namespace antherd::commands {
+namespace {
+
+constexpr std::size_t bytes_looked_at = 256 * 1024;
+
+std::string block_of(const SampleGuess& guess, const std::string& interval) {
+  std::string block =
+      "[[station]]\nname = \"station\"\nlatitude = 0.0            # yours, degrees north\n"
+      "longitude = 0.0           # yours, degrees east: west of Greenwich is negative\n"
+      "elevation = \"0 m\"         # yours\ninterval = \"" +
+      interval + "\"\n\n[station.drop]\nfolder = \"drop\"           # where the files arrive\n";
+  for (const std::string& line : guess.lines) block += line + "\n";
+  return block;
+}
+
+/// The same block in the shortest settings around it, so that the real reader judges it.
+std::string settings_of(const std::string& block) {
+  return "[farm]\nname = \"sample\"\ntime_zone = \"UTC\"\n[store]\nfolder = \"store\"\n" + block +
+         "[[field]]\nname = \"field\"\nstation = \"station\"\nsown = 2026-04-20\n"
+         "crop_type = \"coastal\"\nirrigation = \"none\"\n";
+}
+
+std::string interval_of(const std::vector<weather::Sample>& samples) {
+  std::vector<long> steps;
+  for (std::size_t i = 1; i < samples.size(); ++i) {
+    const auto step = (samples[i].time - samples[i - 1].time).count();
+    if (step > 0) steps.push_back(step);
+  }
+  if (steps.empty()) return "5 min";
+  std::nth_element(steps.begin(), steps.begin() + static_cast<long>(steps.size() / 2), steps.end());
+  return std::to_string(std::clamp(steps[steps.size() / 2] / 60, 1L, 60L)) + " min";
+}
+
+void print_what_it_reads(const std::vector<weather::Sample>& samples, std::size_t refused) {
+  std::cout << "# Read with it: " << samples.size() << " readings, " << refused
+            << " rows refused; from " << utc_text(samples.front().time) << " to "
+            << utc_text(samples.back().time) << "\n";
+  std::optional<double> coldest, warmest;
+  for (const auto& sample : samples) {
+    if (!sample.temperature) continue;
+    coldest = std::min(coldest.value_or(1e9), sample.temperature->value);
+    warmest = std::max(warmest.value_or(-1e9), sample.temperature->value);
+  }
+  if (coldest) {
+    std::cout << "# Temperature " << rounded(*coldest, 1) << " to " << rounded(*warmest, 1)
+              << " °C. If that is not your weather, the unit is wrong.\n";
+  }
+}
+
+}  // namespace
+
+Exit check_sample(const Invocation& call) {
+  std::ifstream file(call.sample, std::ios::binary);
+  std::string text(bytes_looked_at, '\0');
+  file.read(text.data(), static_cast<std::streamsize>(text.size()));
+  text.resize(static_cast<std::size_t>(file.gcount()));
+  if (text.empty()) {
+    return say(Failure{"look at a station's file", call.sample, "it cannot be read or is empty",
+                       "nothing was written"});
+  }
+  if (const auto end = text.rfind('\n'); end != std::string::npos) text.resize(end + 1);
+  const SampleText sample = split_sample(text);
+  const SampleGuess guess = guess_form(sample);
+  std::string block = block_of(guess, "5 min");
+  const auto reading = settings::read_text(settings_of(block), "sample.toml", false);
+  std::vector<weather::Sample> samples;
+  std::size_t refused = 0;
+  if (reading.settings) {
+    const auto& drop = *reading.settings->stations.front().drop;
+    if (auto read = station::read_csv(text, call.sample, drop.record, std::nullopt)) {
+      samples = std::move(read->samples);
+      refused = read->refused.size();
+      block = block_of(guess, interval_of(samples));
+    }
+  }
+  std::cout << "# A settings block for " << call.sample
+            << ". Every line is a guess: look at each.\n"
+            << block;
+  for (const std::string& doubt : guess.doubts) std::cout << "# Look at " << doubt << ".\n";
+  if (!guess.missing.empty()) {
+    std::cout << "# Not found: ";
+    for (const std::string& key : guess.missing) std::cout << key << " ";
+    std::cout << "\n# The columns are: ";
+    for (const std::string& name : sample.header) std::cout << name << " | ";
+    std::cout << "\n";
+  }
+  if (samples.empty()) {
+    std::cout << "# No row could be read with it: mend the lines above, then run antherd check.\n";
+    return Exit::attention;
+  }
+  print_what_it_reads(samples, refused);
+  return guess.missing.empty() ? Exit::done : Exit::attention;
+}
+
+}  // namespace antherd::commands
