@@ -91,3 +91,9 @@ TEST_CASE("sterile share is a logistic with slope 0.6") {
   CHECK(sterile_share(Celsius(40), Celsius(35)) == Approx(1 / (1 + std::exp(-3.0))));
   CHECK(sterile_share(Celsius(20), Celsius(40)) < 1e-5);
 }
+
+TEST_CASE("sums of tenths reach their threshold") {
+  // 2.4 + 2.6 = 5 °C·h by hand; as binary fractions the sum falls short by 7e-15.
+  CHECK(level_of({34.6, 34.8}) == Level::moderate);
+  CHECK(level_of({34.6, 34.7}) == Level::none);  // 4.9
+}

@@ -326,3 +326,15 @@ TEST_CASE("before buds the level is cut, out of season it is nothing") {
   over.in_season = false;
   CHECK(next(spell, wetness(3, true, false), over).level == Level::none);
 }
+
+TEST_CASE("twelve hours of a twelfth each are favourable") {
+  // W(25.5) is cut to Wmax = 12 h: twelve water-wet hours make I = 1, eleven do not.
+  const auto wet_for = [](int count) {
+    return evaluated(humid_day([count](int clock, DayHour& h) {
+      h.temperature = 25.5;
+      h.wet = h.water = clock < count;
+    }));
+  };
+  CHECK(wet_for(12).infection >= 1);
+  CHECK(wet_for(11).infection < 1);
+}

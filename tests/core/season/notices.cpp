@@ -1,0 +1,100 @@
+// The notices of a season: when each is given, and that it is given once. At 10 °C·d a day the
+// window opens at 527.29 °C·d on day 52 and closes at 1175.32 on day 117 (flowering.cpp).
+#include "scene.hpp"
+#include "support/catch.hpp"
+
+using namespace antherd;
+using namespace antherd::season;
+using namespace antherd::season::scene;
+
+namespace {
+
+Instant seven(const Plan& plan, int day) {
+  return Instant(plan.first_hour()) + one_hour * (day * 24 + 7);
+}
+
+}  // namespace
+
+TEST_CASE("the window is told ten days ahead, at its opening and two days before its close") {
+  const Plan plan = plan_at_greenwich();
+  const Told told = tell(plan, 125 * 24, cool);
+  const auto near = told.notices("window-near");
+  REQUIRE(near.size() == 1);
+  // 427.29 °C·d is passed at 07:00 of day 43 (432.9), not of day 42 (422.9)
+  CHECK(near[0].at == seven(plan, 43));
+  CHECK(near[0].day == plan.field.sown + days{53});  // 94.4 °C·d to go: ten days, rounded up
+  const auto opens = told.notices("window-opens");
+  REQUIRE(opens.size() == 1);
+  CHECK(opens[0].at == seven(plan, 53));
+  CHECK(opens[0].day == plan.field.sown + days{52});
+  const auto closes = told.notices("window-closes");
+  REQUIRE(closes.size() == 1);
+  CHECK(closes[0].at == seven(plan, 116));  // 1162.9 + 20 ≥ 1175.32; 1152.9 + 20 is not
+}
+
+TEST_CASE("the window that a note keeps open does not close silently later") {
+  const Plan plan = plan_at_greenwich();
+  // Full flower at 1165 °C·d, the middle of 810 and 970: k = 1.309, m = 1.24 or so.
+  const Told told = tell(plan, 150 * 24, cool, {{}, {note(plan, 116, 65, false)}});
+  const auto closes = told.notices("window-closes");
+  REQUIRE(closes.size() == 2);
+  CHECK(closes[0].at == seven(plan, 116));
+  REQUIRE(told.state.crop.window_last);
+  const auto ahead = *told.state.crop.window_last - plan.calendar.day_of(closes[1].at);
+  CHECK(ahead >= days{1});
+  CHECK(ahead <= days{2});
+}
+
+TEST_CASE("three evenings of sprinklers are told once, two are not, a break begins anew") {
+  const Plan plan = plan_at_greenwich();
+  const auto streaks = [&](std::vector<int> evenings) {
+    field::Diary diary;
+    for (const int day : evenings) diary.irrigations.push_back(set_on(plan, day));
+    std::vector<alerts::Notice> found;
+    for (const auto& notice : tell(plan, 40 * 24, cool, diary).state.notices) {
+      if (notice.kind == alerts::Kind::sprinkler_streak) found.push_back(notice);
+    }
+    return found;
+  };
+  CHECK(streaks({20, 21}).empty());
+  CHECK(streaks({20, 21, 23, 24}).empty());
+  const auto told = streaks({20, 21, 22, 23, 24});
+  REQUIRE(told.size() == 1);
+  CHECK(told[0].at == Instant(plan.first_hour()) + one_hour * (22 * 24 + 22));  // the third's end
+  CHECK(told[0].figure == 3);
+  CHECK(streaks({20, 21, 22, 24, 25, 26}).size() == 2);
+  CHECK(streaks({-3, -2, -1}).empty());  // before sowing
+}
+
+TEST_CASE("ten days without a log entry after buds are told, on an irrigated field only") {
+  Plan plan = plan_at_greenwich();  // buds at 400 °C·d: the last hour of day 39
+  const auto gaps = [&](const field::Diary& diary) {
+    std::vector<alerts::Notice> found;
+    for (const auto& notice : tell(plan, 65 * 24, cool, diary).state.notices) {
+      if (notice.kind == alerts::Kind::diary_gap) found.push_back(notice);
+    }
+    return found;
+  };
+  const auto told = gaps({});
+  REQUIRE(told.size() == 1);
+  CHECK(told[0].at == seven(plan, 49));
+  CHECK(told[0].figure == 10);
+  const auto after = gaps({{set_on(plan, 45)}, {}});
+  REQUIRE(after.size() == 1);
+  CHECK(after[0].at == seven(plan, 55));
+  plan.field.irrigation = field::Method::none;
+  CHECK(gaps({}).empty());
+}
+
+TEST_CASE("ripe and sown long ago are told once each, and then the field is quiet") {
+  const Plan plan = plan_at_greenwich();
+  const Told ripe = tell(plan, 135 * 24, cool);  // 1300 °C·d: the last hour of day 129
+  REQUIRE(ripe.notices("ripe").size() == 1);
+  CHECK(ripe.notices("ripe")[0].at == seven(plan, 130));
+  const auto frozen = [](int) { return std::optional<Weather>(Weather{2, 50}); };
+  const Told old = tell(plan, 245 * 24, frozen);
+  REQUIRE(old.notices("sown-long-ago").size() == 1);
+  CHECK(old.notices("sown-long-ago")[0].at == seven(plan, 241));
+  CHECK(old.state.watch == Watch::sown_long_ago);
+  CHECK(old.notices("ripe").empty());
+}
