@@ -19,16 +19,16 @@ north bench,2026-07-13 20:00,2026-07-13 23:00,overhead,0.3 in,1
 north bench,2026-07-22 08:00,2026-07-22 11:00,overhead,0.5 in,1
 north bench,2026-07-29 08:00,2026-07-29 11:00,overhead,0.5 in,1
 north bench,2026-08-05 08:00,2026-08-05 11:00,overhead,0.4 in,1
-creek field,2026-06-05 06:00,2026-06-05 18:00,drip,0.5 in,0
-creek field,2026-06-13 06:00,2026-06-13 18:00,drip,0.5 in,0
-creek field,2026-06-19 06:00,2026-06-19 18:00,drip,0.5 in,0
-creek field,2026-06-27 06:00,2026-06-27 18:00,drip,0.5 in,0
-creek field,2026-07-05 06:00,2026-07-05 18:00,drip,0.6 in,0
-creek field,2026-07-11 06:00,2026-07-11 18:00,drip,0.6 in,0
-creek field,2026-07-17 06:00,2026-07-17 18:00,drip,0.6 in,0
-creek field,2026-07-24 06:00,2026-07-24 18:00,drip,0.6 in,0
-creek field,2026-07-31 06:00,2026-07-31 18:00,drip,0.6 in,0
-creek field,2026-08-07 06:00,2026-08-07 18:00,drip,0.5 in,0
+creek field,2026-06-05 06:00,2026-06-05 18:00,drip,1.2 in,0
+creek field,2026-06-13 06:00,2026-06-13 18:00,drip,1.2 in,0
+creek field,2026-06-19 06:00,2026-06-19 18:00,drip,1.2 in,0
+creek field,2026-06-27 06:00,2026-06-27 18:00,drip,1.2 in,0
+creek field,2026-07-05 06:00,2026-07-05 18:00,drip,1.4 in,0
+creek field,2026-07-11 06:00,2026-07-11 18:00,drip,1.4 in,0
+creek field,2026-07-17 06:00,2026-07-17 18:00,drip,1.4 in,0
+creek field,2026-07-24 06:00,2026-07-24 18:00,drip,1.4 in,0
+creek field,2026-07-31 06:00,2026-07-31 18:00,drip,1.4 in,0
+creek field,2026-08-07 06:00,2026-08-07 18:00,drip,1.2 in,0
 )";
 }
 
@@ -142,6 +142,7 @@ sown = 2026-04-20
 crop_type = "coastal"
 irrigation = "drip"
 soil = "silt loam"
+soil_water_at_sowing = "full"
 )";
 
 }  // namespace

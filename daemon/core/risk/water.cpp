@@ -71,12 +71,15 @@ double stress(Millimetre depletion, Millimetre total, double share) {
 }
 
 bool WaterAccount::known() const {
-  return total().value > 0 && std::abs((depletion_dry - depletion).value) <= total().value / 20.0;
+  const double all = total().value;
+  if (all <= 0 || std::abs((depletion_dry - depletion).value) > all / 20.0) return false;
+  return !unknown_start || depletion.value <= 0.9 * all;
 }
 
 WaterAccount open_account(double water_per_metre, std::optional<double> held_at_sowing) {
   WaterAccount account;
   account.water_per_metre = water_per_metre;
+  account.unknown_start = !held_at_sowing;
   account.initial_share = held_at_sowing.value_or(1.0);
   account.initial_share_dry = held_at_sowing.value_or(0.0);
   return account;

@@ -57,9 +57,11 @@ struct WaterAccount {
   Millimetre depletion_dry{0};  // dry account
   double crop_use = 0;          // ETc of the last days, mm/d, running mean
   int days = 0;
+  bool unknown_start = false;
 
   Millimetre total() const { return Millimetre(water_per_metre * roots.value); }
-  /// Both accounts within a twentieth of the total: the depletion is known.
+  /// Both accounts within a twentieth of the total: the depletion is known. Of an unknown start two
+  /// accounts that met by running dry know nothing: a crop that lives has had water not logged.
   bool known() const;
 };
 

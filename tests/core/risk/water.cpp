@@ -84,6 +84,18 @@ TEST_CASE("an unknown start stays unknown until water fills the root zone") {
   CHECK_FALSE(book_day(account, day));
 }
 
+TEST_CASE("an unknown start that only runs dry stays unknown, a known one is stressed") {
+  WaterAccount unknown = open_account(160, std::nullopt);
+  WaterAccount full = open_account(160, 1.0);
+  const WaterDay day{65, Millimetre(6), {}, {}, false};
+  for (int i = 0; i < 80; ++i) {
+    book_day(unknown, day);
+    book_day(full, day);
+  }
+  CHECK_FALSE(book_day(unknown, day));
+  CHECK(*book_day(full, day) < 0.1);
+}
+
 TEST_CASE("soil that roots reach later brings what it held at sowing") {
   WaterAccount half = open_account(100, 0.5);
   WaterDay day;
