@@ -23,7 +23,7 @@ struct HourAir {
 /// Ra = 4.92 dr sin(altitude), not below 0, MJ m⁻² h⁻¹ (science §7; dr by FAO-56 eq. 23).
 double extraterrestrial_radiation(HourStart hour, const Place& place);
 
-/// Rso = (0.75 + 2e-5 z) Ra (FAO-56 eq. 37), MJ m⁻² h⁻¹.
+/// Rso = (0.75 + 2e-5 z) Ra, MJ m⁻² h⁻¹. Source: FAO-56 eq. 37.
 double clear_sky_radiation(double extraterrestrial, Metre elevation);
 
 /// Rs without a sensor: kRs √range Ra; without 24 h of range 0.75 Ra (science §7; FAO-56 eq. 50).

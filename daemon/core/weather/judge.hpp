@@ -63,8 +63,10 @@ struct SpikeLimit {
   double least;  // of all its limits: what differs by no more needs no look at the clock
   std::optional<double> (*by_time)(Seconds apart);
 };
-std::optional<double> temperature_spike_limit(Seconds apart);  // °C
-std::optional<double> humidity_spike_limit(Seconds apart);     // %
+/// Temperature, °C. Source: science §3, after WMO practice (Zahumenský 2004).
+std::optional<double> temperature_spike_limit(Seconds apart);
+/// Humidity, %. Source: science §3.
+std::optional<double> humidity_spike_limit(Seconds apart);
 
 /// Temperatures with range and spike marks.
 Series judge_temperature(std::span<const Sample> samples);
