@@ -2,6 +2,7 @@
 #include "core/risk/wetness.hpp"
 
 #include <algorithm>
+#include <cmath>
 
 #include "core/weather/sun.hpp"
 
@@ -10,7 +11,8 @@ namespace {
 
 bool humid_film(LeafState& state, const LeafHour& hour, const HumidRules& rules) {
   if (rules.dew_point_film) {
-    const double depression = (hour.temperature - hour.dew_point).value;
+    // The dew point comes back from a humidity of six decimals: exactly 2.0 must not hang on noise.
+    const double depression = std::round((hour.temperature - hour.dew_point).value * 1e4) / 1e4;
     if (depression <= 2.0) state.humid_film = true;
     if (depression >= 3.8) state.humid_film = false;
     return state.humid_film;

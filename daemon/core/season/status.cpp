@@ -78,7 +78,10 @@ HeatStatus heat_status(const State& state) {
   return heat;
 }
 
-/// When a grower would water tonight, and the morning that follows.
+constexpr Seconds length_of_set = 2 * one_hour;  // of the what-if
+
+/// When a grower would water tonight, while a set still fits before sunrise, and the morning that
+/// follows.
 struct Tonight {
   Instant start;
   CivilDay morning{};  // the humid day that holds the night bears this date
@@ -88,10 +91,13 @@ Tonight tonight(const State& state, const Plan& plan) {
   const Instant now = end_of(*state.last);
   const CivilDay today = std::chrono::floor<days>(weather::solar_time(now, plan.field.longitude));
   Tonight night{now, today + days{1}};
-  for (const CivilDay day : {today, today + days{1}}) {
+  for (const CivilDay day : {today - days{1}, today, today + days{1}}) {
     const auto sunset = weather::sun_day(day, plan.place()).set;
-    if (!sunset || *sunset + one_hour < now) continue;
-    night.start = std::max(now, *sunset);
+    const auto sunrise = weather::sun_day(day + days{1}, plan.place()).rise;
+    if (!sunset || !sunrise) continue;
+    const Instant start = std::max(now, *sunset);
+    if (start + length_of_set > *sunrise) continue;  // this night is over
+    night.start = start;
     night.morning = day + days{1};
     break;
   }
@@ -117,7 +123,7 @@ DiaryView watered(const Tonight& night, const Plan& plan, const DiaryView& diary
   field::Irrigation set;
   set.field = plan.field.name;
   set.start = night.start;
-  set.end = night.start + 2 * one_hour;
+  set.end = night.start + length_of_set;
   set.method = field::Method::overhead;
   changed.irrigations.push_back(set);
   return DiaryView(std::move(changed), plan.place());

@@ -327,6 +327,25 @@ TEST_CASE("before buds the level is cut, out of season it is nothing") {
   CHECK(next(spell, wetness(3, true, false), over).level == Level::none);
 }
 
+TEST_CASE("the dew-point film switches at exactly 2.0 and 3.8 degrees, noise or not") {
+  HumidRules by_dew_point;
+  by_dew_point.dew_point_film = true;
+  const auto film_after = [&](bool before, double depression) {
+    LeafState leaf;
+    leaf.humid_film = before;
+    LeafHour hour;
+    hour.temperature = Celsius(17);
+    hour.dew_point = Celsius(17 - depression);
+    hour.humidity = Percent(85);
+    hour.drying = Millimetre(0.3);
+    return wet_hour(leaf, hour, {}, by_dew_point).wet;
+  };
+  CHECK(film_after(false, 2.0 + 2e-7));  // as read back from a humidity rounded to 1e-6
+  CHECK_FALSE(film_after(false, 2.1));
+  CHECK(film_after(true, 3.7));
+  CHECK_FALSE(film_after(true, 3.8 - 2e-7));
+}
+
 TEST_CASE("twelve hours of a twelfth each are favourable") {
   // W(25.5) is cut to Wmax = 12 h: twelve water-wet hours make I = 1, eleven do not.
   const auto wet_for = [](int count) {

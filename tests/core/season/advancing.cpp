@@ -109,7 +109,10 @@ TEST_CASE("the what-if of watering tonight comes true when the weather repeats i
     return clock >= 10 && clock < 18 ? Weather{24, 40} : Weather{13, 60};
   };
   field::Diary diary{{set_on(plan, 55), set_on(plan, 56)}, {}};
-  constexpr int now = 57 * 24 + 18;  // after the third humid day's close, before the evening
+  // After the second watered morning: before the evening, late in it, and in the small hours.
+  const auto [now, clock] = GENERATE(std::pair(57 * 24 + 18, 20), std::pair(57 * 24 + 22, 22),
+                                     std::pair(58 * 24 + 1, 25));
+  CAPTURE(now);
   const Told told = tell(plan, now, repeated, diary);
   const FieldStatus seen = status(told.state, plan, DiaryView(diary, plan.place()));
   const auto level_on_58 = [&](const field::Diary& with) {
@@ -117,7 +120,7 @@ TEST_CASE("the what-if of watering tonight comes true when the weather repeats i
   };
   CHECK(seen.humid.night_sets_last_five == 2);
   CHECK(seen.humid.if_not_watered == level_on_58(diary));
-  diary.irrigations.push_back(set_on(plan, 57));
+  diary.irrigations.push_back(set_on(plan, 57, clock));
   CHECK(seen.humid.if_watered_tonight == level_on_58(diary));
   CHECK(seen.humid.if_watered_tonight == risk::Level::severe);  // the third watered morning (§11)
   CHECK(seen.humid.if_not_watered == risk::Level::moderate);    // R = 2 of the two before
