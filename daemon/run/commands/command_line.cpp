@@ -135,6 +135,16 @@ int main(int argc, char** argv) {
   add_tables_of_hours(app, call);
   try {
     app.parse(argc, argv);
+  } catch (const CLI::RequiredError& error) {
+    // The library only misses a command; people want to read which word was none.
+    const auto unread = app.remaining();
+    if (app.get_subcommands().empty() && !unread.empty()) {
+      std::cerr << "antherd: '" << unread.front() << "' names no command; nothing was done. "
+                << "\"antherd --help\" lists them.\n";
+      return Exit::usage;
+    }
+    app.exit(error);
+    return Exit::usage;
   } catch (const CLI::ParseError& error) {
     return app.exit(error) == 0 ? Exit::done : Exit::usage;
   }

@@ -1,4 +1,6 @@
 // antherd water and antherd scout: what the grower did and saw.
+#include <algorithm>
+#include <cmath>
 #include <iostream>
 
 #include "core/risk/rules.hpp"
@@ -14,6 +16,17 @@ Exit wrong(const std::string& what, const std::string& why, const std::string& e
   std::cerr << "antherd: " << what << ": " << why << "; nothing was written. Example: " << example
             << "\n";
   return Exit::usage;
+}
+
+template <class Entries>
+bool holds(const Entries& entries, std::int64_t id) {
+  return std::any_of(entries.begin(), entries.end(), [&](const auto& e) { return e.id == id; });
+}
+
+Exit not_there(std::int64_t id, const std::string& field) {
+  return say(Failure{"take back entry " + std::to_string(id), field,
+                     "this field has no entry of this number",
+                     "nothing was changed; --list shows the numbers"});
 }
 
 /// "2026-07-14 23:00", or "23:00" on the day of `like`.
@@ -52,14 +65,16 @@ Result<field::Irrigation> irrigation_of(const settings::Settings& settings,
   if (call.start.empty() || call.end.empty()) {
     return refuse("--start and --end", "both are needed: --start \"2026-07-14 20:00\" --end 23:00");
   }
+  const std::string start_given = "--start '" + call.start + "'";
+  const std::string end_given = "--end '" + call.end + "'";
   const auto start = reading_of(call.start, std::nullopt);
-  if (!start) return refuse("--start", start.failure().why);
+  if (!start) return refuse(start_given, start.failure().why);
   const auto end = reading_of(call.end, *start);
-  if (!end) return refuse("--end", end.failure().why);
+  if (!end) return refuse(end_given, end.failure().why);
   const auto from = service::farm_instant(settings, *start);
-  if (!from) return refuse("--start", from.failure().why);
+  if (!from) return refuse(start_given, from.failure().why);
   const auto to = service::farm_instant(settings, *end);
-  if (!to) return refuse("--end", to.failure().why);
+  if (!to) return refuse(end_given, to.failure().why);
   if (*to <= *from) return refuse("--end", "it is not after --start");
   if (*to - *from > std::chrono::hours{96}) return refuse("--end", "more than 96 h after --start");
   irrigation.start = *from;
@@ -78,7 +93,7 @@ Result<field::Irrigation> irrigation_of(const settings::Settings& settings,
   }
   if (!call.depth.empty() && call.depth != "unknown") {
     const auto depth = settings::parse_depth(call.depth);
-    if (!depth) return refuse("--depth", depth.failure().why);
+    if (!depth) return refuse("--depth '" + call.depth + "'", depth.failure().why);
     irrigation.depth = *depth;
   }
   irrigation.set = call.set;
@@ -133,9 +148,10 @@ Result<field::Scouting> note_of(const settings::Settings& settings, const settin
   note.date = settings.calendar.day_of(clock::wall_now());
   if (!call.date.empty()) {
     const auto date = settings::parse_day(call.date);
-    if (!date) return refuse("--date", date.failure().why);
-    if (*date > note.date) return refuse("--date", "it lies in the future");
-    if (*date < plan.field.sown) return refuse("--date", "it lies before sowing");
+    const std::string given = "--date '" + call.date + "'";
+    if (!date) return refuse(given, date.failure().why);
+    if (*date > note.date) return refuse(given, "it lies in the future");
+    if (*date < plan.field.sown) return refuse(given, "it lies before sowing");
     note.date = *date;
   }
   if (!call.stage.empty()) {
@@ -146,9 +162,12 @@ Result<field::Scouting> note_of(const settings::Settings& settings, const settin
                                    "flowers-done, milk, dough, ripe, nor a BBCH code from 9 to 99");
     }
   }
+  if (call.began && !note.stage) return refuse("--began", "it needs a --stage that began");
   note.began = call.began || note.stage == field::stage::first_anthers;
   if (!call.disease.empty()) {
-    if (call.disease != "yes" && call.disease != "no") return refuse("--disease", "yes or no");
+    if (call.disease != "yes" && call.disease != "no") {
+      return refuse("--disease", "'" + call.disease + "' is neither yes nor no");
+    }
     note.disease = call.disease == "yes";
   }
   if (!call.seed_set.empty()) {
@@ -156,12 +175,20 @@ Result<field::Scouting> note_of(const settings::Settings& settings, const settin
     const auto held = settings::parse_number(call.seed_set.substr(0, slash));
     const auto looked =
         settings::parse_number(slash == std::string::npos ? "" : call.seed_set.substr(slash + 1));
-    if (!held || !looked || *held < 0 || *looked < 1 || *held > *looked || *looked > 1000) {
+    const auto whole = [](double value) { return value == std::floor(value); };
+    const bool fits = held && looked && whole(*held) && whole(*looked) && *held >= 0 &&
+                      *looked >= 1 && *held <= *looked && *looked <= 1000;
+    if (!fits) {
       return refuse("--seed-set", "'" + call.seed_set + "' is not like 14/20");
     }
     note.seed_set = static_cast<int>(*held);
     note.seed_looked = static_cast<int>(*looked);
   }
+  // A note is printed and mailed: it is one line of text and nothing else.
+  const bool plain = std::none_of(call.note.begin(), call.note.end(), [](char c) {
+    return static_cast<unsigned char>(c) < 0x20 || c == 0x7f;
+  });
+  if (!plain) return refuse("--note", "it holds a control character or more than one line");
   note.note = call.note;
   if (!note.stage && !note.disease && !note.seed_set && note.note.empty()) {
     return refuse("the note", "it says nothing; give --stage, --disease, --seed-set or --note");
@@ -196,6 +223,9 @@ Exit water(const Invocation& call) {
     auto store = call.list ? open_to_read(*settings) : open_to_write(*settings);
     if (!store) return say(store.failure());
     if (call.list) return list_water(*settings, *store, plan->field.name);
+    const auto diary = store->diary(plan->field.name);
+    if (!diary) return say(diary.failure());
+    if (!holds(diary->irrigations, *call.undo)) return not_there(*call.undo, plan->field.name);
     if (auto done = store->remove_irrigation(*call.undo); !done) return say(done.failure());
     std::cout << "Entry " << *call.undo << " is taken back.\n";
     return Exit::done;
@@ -229,6 +259,9 @@ Exit scout(const Invocation& call) {
     auto store = call.list ? open_to_read(*settings) : open_to_write(*settings);
     if (!store) return say(store.failure());
     if (call.list) return list_notes(*store, plan->field.name);
+    const auto diary = store->diary(plan->field.name);
+    if (!diary) return say(diary.failure());
+    if (!holds(diary->notes, *call.undo)) return not_there(*call.undo, plan->field.name);
     if (auto done = store->remove_scouting(*call.undo); !done) return say(done.failure());
     std::cout << "Note " << *call.undo << " is taken back.\n";
     return Exit::done;

@@ -121,7 +121,8 @@ Exit mailtest(const Invocation& call) {
   bool all_well = true;
   for (const antherd::letters::Recipient& recipient : settings->recipients) {
     antherd::letters::Letter letter;
-    letter.id = "mailtest-" + std::to_string(time.time_since_epoch().count());
+    letter.id = "mailtest-" + std::to_string(time.time_since_epoch().count()) + "-" +
+                std::to_string(&recipient - settings->recipients.data());
     letter.recipient = recipient.address;
     letter.subject = "Test: the watch of " + settings->farm + " can reach you";
     letter.body = "This is a test that somebody at " + settings->farm +

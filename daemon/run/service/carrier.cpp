@@ -6,6 +6,8 @@
 namespace antherd::service {
 namespace {
 
+constexpr Seconds unkept_tried_again{60};
+
 outbox::Ending ending_of(mail::How how) {
   switch (how) {
     case mail::How::accepted:
@@ -76,6 +78,10 @@ Outcome Carrier::refresh() {
   if (kept) {
     if (outbox::Item* item = find(in_hand_)) *item = *kept;
   }
+  for (const auto& [id, ended] : unkept_) {
+    if (outbox::Item* item = find(id)) *item = ended;
+  }
+  drop_closed();
   return Done{};
 }
 
@@ -88,13 +94,28 @@ outbox::Item* Carrier::find(std::int64_t id) {
 Outcome Carrier::keep(const outbox::Item& item) {
   if (auto done = store_.update(item, line_); !done) return done;
   if (outbox::Item* known = find(item.id)) *known = item;
+  drop_closed();
+  return Done{};
+}
+
+void Carrier::drop_closed() {
   std::erase_if(items_, [](const outbox::Item& i) { return !is_open(i.state); });
+}
+
+Outcome Carrier::keep_unkept() {
+  while (!unkept_.empty()) {
+    const auto first = unkept_.begin();
+    if (auto done = store_.update(first->second, line_); !done) return done;
+    unkept_.erase(first);
+  }
   return Done{};
 }
 
 std::vector<std::string> Carrier::carry(Instant now) {
   std::vector<std::string> said;
   if (!settings_->mail || in_hand_ != 0) return said;
+  // Nothing goes out while the store cannot take down what becomes of it.
+  if (auto done = keep_unkept(); !done) return said.push_back(done.failure().sentence()), said;
   // A folder takes everything that is due at once, a server one letter at a time.
   for (bool more = true; more && in_hand_ == 0;) {
     more = false;
@@ -145,12 +166,19 @@ std::string Carrier::received(std::int64_t item, const mail::Spoken& spoken, Ins
   line_ = outbox::receive(line_, receipt, jitter());
   const std::string sentence = "letter to " + next.letter.recipient + " \"" + next.letter.subject +
                                "\" is " + outbox::name_of(next.state) + ": " + spoken.sentence;
-  if (auto done = keep(next); !done) return sentence + "; " + done.failure().sentence();
-  return sentence;
+  const Outcome kept = keep(next);
+  if (kept) return sentence;
+  // The end of a conversation is a fact even when the store does not take it now: were it left
+  // `sending`, no other letter would ever go.
+  unkept_[item] = next;
+  *find(item) = next;
+  drop_closed();
+  return sentence + "; " + kept.failure().sentence();
 }
 
 std::optional<Instant> Carrier::look_again(Instant now) const {
   if (!settings_->mail || in_hand_ != 0) return std::nullopt;
+  if (!unkept_.empty()) return now + unkept_tried_again;
   const outbox::Plan plan = outbox::plan(items_, line_, now);
   return plan.send ? std::optional(now) : plan.look_again;
 }

@@ -4,6 +4,7 @@
 #pragma once
 
 #include <functional>
+#include <map>
 #include <memory>
 #include <string>
 #include <vector>
@@ -43,6 +44,9 @@ class Carrier {
  private:
   outbox::Item* find(std::int64_t id);
   Outcome keep(const outbox::Item& item);
+  void drop_closed();
+  /// Writes down the ends of conversations that the store did not take at their time.
+  Outcome keep_unkept();
   std::string write_file(outbox::Item item, Instant now);
   double jitter();
 
@@ -51,7 +55,8 @@ class Carrier {
   Send send_;
   std::vector<outbox::Item> items_;  // waiting, sending, in doubt
   outbox::Line line_;
-  std::int64_t in_hand_ = 0;  // at the worker, 0 for none
+  std::int64_t in_hand_ = 0;                     // at the worker, 0 for none
+  std::map<std::int64_t, outbox::Item> unkept_;  // ended, not yet stored, by id
   std::uint64_t draws_ = 0;
 };
 

@@ -84,6 +84,8 @@ Outcome DeskWork::begin(Instant now) {
     if (auto done = store_.put_notes(forms); !done) return done;
   }
   settling_since_ = now;
+  // A page that cannot be shown must not keep the watch from starting.
+  if (auto done = front_page_.open(*settings_); !done) log_error(done.failure().sentence());
   diary_version_ = "unread";
   next_look_ = now;
   return Done{};
@@ -109,6 +111,7 @@ Instant DeskWork::turn(Instant now, bool clock_set) {
     if (auto done = carrier_->refresh(); !done) log_once("outbox", done.failure().sentence());
   }
   for (const std::string& sentence : carrier_->carry(now)) log_info(sentence);
+  if (!settling_since_) front_page_.refresh(keeper_->lookout(), store_, now);
 
   Instant wake = std::min(now + scan_every, std::max(now, next_look_));
   if (look_due_) wake = now;
@@ -333,8 +336,12 @@ void DeskWork::log_kept(const Kept& kept) {
     if (!telling.key.empty()) sentence += ", " + telling.key;
     log_warning("alert: " + sentence);
   }
-  for (const Failure& trouble : kept.troubles) log_once("store", trouble.sentence());
-  if (kept.troubles.empty()) logged_.erase("store");
+  for (const Failure& trouble : kept.troubles) {
+    log_once("store " + trouble.what, trouble.sentence());
+  }
+  if (kept.troubles.empty()) {
+    std::erase_if(logged_, [](const auto& said) { return said.first.rfind("store ", 0) == 0; });
+  }
 }
 
 /// The same trouble is said once, until it changes or passes.

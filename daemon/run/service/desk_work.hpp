@@ -11,6 +11,7 @@
 #include "edge/station/poll.hpp"
 #include "edge/store/store.hpp"
 #include "run/service/carrier.hpp"
+#include "run/service/front_page.hpp"
 #include "run/service/intake.hpp"
 #include "run/service/keeper.hpp"
 #include "run/settings/settings.hpp"
@@ -79,6 +80,7 @@ class DeskWork {
   store::Store store_;
   std::unique_ptr<Keeper> keeper_;
   std::unique_ptr<Carrier> carrier_;
+  FrontPage front_page_;
   Carrier::Send send_;
   Ask ask_;
   std::map<std::string, Source> sources_;

@@ -2,8 +2,10 @@
 #include <sys/stat.h>
 
 #include <algorithm>
+#include <cmath>
 #include <fstream>
 #include <functional>
+#include <istream>
 #include <map>
 #include <sstream>
 
@@ -15,8 +17,15 @@ namespace antherd::service {
 namespace {
 
 constexpr std::streamsize largest_diary = 4 * 1024 * 1024;  // a season has a few hundred lines
+constexpr Seconds longest_irrigation{96 * 3600};
 
 using Row = std::map<std::string, std::string>;  // by column name
+using Names = std::vector<std::string>;
+
+/// The columns that a diary file may have; the first ones it must have.
+struct Columns {
+  Names needed, others;
+};
 
 /// Cells of one CSV line (RFC 4180; no line ends inside cells here).
 std::vector<std::string> cells_of(const std::string& line) {
@@ -79,15 +88,21 @@ std::string at_or_empty(const Row& row, const char* column) {
 
 Result<Instant> instant_from(const settings::Settings& settings, const Row& row,
                              const char* column) {
-  auto reading = settings::parse_civil_time(at_or_empty(row, column));
+  const std::string text = at_or_empty(row, column);
+  auto reading = settings::parse_civil_time(text);
   if (!reading) return Failure{"", "", std::string(column) + ": " + reading.failure().why, ""};
-  return farm_instant(settings, *reading);
+  auto instant = farm_instant(settings, *reading);
+  if (instant) return instant;
+  return Failure{"", "", std::string(column) + " '" + text + "': " + instant.failure().why, ""};
 }
 
 Result<std::string> field_from(const settings::Settings& settings, const Row& row) {
-  const auto field = settings.field_by_beginning(at_or_empty(row, "field"));
-  if (!field) return field.failure();
-  return (*field)->field.name;
+  const std::string name = at_or_empty(row, "field");
+  if (name.empty()) return Failure{"", "", "field: no field is named", ""};
+  const auto field = settings.field_by_beginning(name);
+  if (field) return (*field)->field.name;
+  const Failure& failure = field.failure();
+  return Failure{"", "", "field '" + name + "': " + failure.why + "; " + failure.what_next, ""};
 }
 
 Result<field::Irrigation> irrigation_from(const settings::Settings& settings, const Row& row) {
@@ -100,6 +115,9 @@ Result<field::Irrigation> irrigation_from(const settings::Settings& settings, co
   auto end = instant_from(settings, row, "end");
   if (!end) return end.failure();
   if (*end <= *start) return Failure{"", "", "end is not after start", ""};
+  if (*end - *start > longest_irrigation) {
+    return Failure{"", "", "end is more than 96 h after start", ""};
+  }
   irrigation.start = *start;
   irrigation.end = *end;
   auto method =
@@ -154,44 +172,103 @@ Result<field::Scouting> scouting_from(const settings::Settings& settings, const 
     const auto looked =
         slash == std::string::npos ? held : settings::parse_number(seeds.substr(slash + 1));
     const bool fits = slash != std::string::npos && held && looked && *held >= 0 &&
-                      *looked >= *held && *looked >= 1 && *looked <= 1000;
+                      *looked >= *held && *looked >= 1 && *looked <= 1000 &&
+                      *held == std::floor(*held) && *looked == std::floor(*looked);
     if (!fits) return Failure{"", "", "seed_set '" + seeds + "' is not like 14/20", ""};
     note.seed_set = static_cast<int>(*held);
     note.seed_looked = static_cast<int>(*looked);
   }
   note.note = at_or_empty(row, "note");
+  if (!note.stage && !note.disease && !note.seed_set && note.note.empty()) {
+    return Failure{"", "", "the note says nothing: no stage, disease, seed_set or note", ""};
+  }
   return note;
 }
 
 using TakeRow = std::function<Outcome(const Row&)>;
 
-void read_file(const std::string& path, DiaryFiles& result, const TakeRow& take) {
+bool has(const Names& names, const std::string& name) {
+  return std::find(names.begin(), names.end(), name) != names.end();
+}
+
+/// What is wrong with a header: a needed column that is missing, a column that nobody reads.
+Outcome fits(const Names& header, const Columns& columns) {
+  std::string all, why;
+  for (const Names* names : {&columns.needed, &columns.others}) {
+    for (const std::string& name : *names) all += (all.empty() ? "" : ", ") + name;
+  }
+  for (const std::string& name : columns.needed) {
+    if (!has(header, name)) why += (why.empty() ? "" : ", ") + ("column " + name + " is missing");
+  }
+  for (const std::string& name : header) {
+    if (has(columns.needed, name) || has(columns.others, name)) continue;
+    why += (why.empty() ? "" : ", ") + ("column '" + station::visible(name) + "' is unknown");
+  }
+  if (why.empty()) return Done{};
+  return Failure{"", "", "the first line: " + why + "; the columns are " + all, ""};
+}
+
+bool has_control_character(const std::string& line) {
+  return std::any_of(line.begin(), line.end(), [](char c) {
+    const auto code = static_cast<unsigned char>(c);
+    return (code < 0x20 && c != '\t' && c != '\r') || code == 0x7f;
+  });
+}
+
+/// Lines of an open diary file.
+void read_lines(std::istream& file, const std::string& path, DiaryFiles& result,
+                const Columns& columns, const TakeRow& take) {
+  std::string line;
+  Names header;
+  for (std::int64_t number = 1; std::getline(file, line); ++number) {
+    if (number == 1 && line.rfind("\xEF\xBB\xBF", 0) == 0) line.erase(0, 3);
+    if (file.eof()) {  // somebody may be writing it just now
+      result.troubles.push_back(Failure{"read the diary", path + ":" + std::to_string(number),
+                                        "the last line has no line end",
+                                        "it waits until it has one; the rest is used"});
+      return;
+    }
+    if (station::trim(line).empty()) continue;
+    const auto refuse = [&](const std::string& why) {
+      result.refused.push_back({path, number, why, station::visible(line)});
+    };
+    const Names cells = cells_of(line);
+    if (header.empty()) {
+      header = cells;
+      if (const Outcome outcome = fits(header, columns); !outcome)
+        return refuse(outcome.failure().why);
+      continue;
+    }
+    if (has_control_character(line)) {
+      refuse("a control character is in it");
+      continue;
+    }
+    if (cells.size() > header.size()) {
+      refuse("it has " + std::to_string(cells.size()) + " cells, the first line " +
+             std::to_string(header.size()) + "; a text with a comma needs quotes");
+      continue;
+    }
+    Row row;
+    for (std::size_t i = 0; i < cells.size(); ++i) row[header[i]] = cells[i];
+    if (const Outcome outcome = take(row); !outcome) refuse(outcome.failure().why);
+  }
+}
+
+void read_file(const std::string& path, DiaryFiles& result, const Columns& columns,
+               const TakeRow& take) {
   struct stat status {};
   if (stat(path.c_str(), &status) != 0) return;  // there need not be one
-  std::ifstream file(path, std::ios::binary);
-  if (!file || !S_ISREG(status.st_mode) || status.st_size > largest_diary) {
+  // A FIFO must not be opened: that would wait for somebody who writes.
+  const bool usable = S_ISREG(status.st_mode) && status.st_size <= largest_diary;
+  std::ifstream file;
+  if (usable) file.open(path, std::ios::binary);
+  if (!usable || !file) {
     result.troubles.push_back(Failure{"read the diary", path,
                                       "it is no readable file of at most 4 MiB",
                                       "the diary is used as it was"});
     return;
   }
-  std::string line;
-  std::vector<std::string> header;
-  for (std::int64_t number = 1; std::getline(file, line); ++number) {
-    if (number == 1 && line.rfind("\xEF\xBB\xBF", 0) == 0) line.erase(0, 3);
-    if (file.eof()) break;  // a half line waits for its end
-    if (station::trim(line).empty()) continue;
-    const auto cells = cells_of(line);
-    if (header.empty()) {
-      header = cells;
-      continue;
-    }
-    Row row;
-    for (std::size_t i = 0; i < header.size() && i < cells.size(); ++i) row[header[i]] = cells[i];
-    if (const Outcome outcome = take(row); !outcome) {
-      result.refused.push_back({path, number, outcome.failure().why, station::visible(line)});
-    }
-  }
+  read_lines(file, path, result, columns, take);
 }
 
 }  // namespace
@@ -213,18 +290,24 @@ Result<Instant> farm_instant(const settings::Settings& settings, CivilTime readi
 DiaryFiles read_diary_files(const settings::Settings& settings) {
   DiaryFiles result;
   if (settings.diary_folder.empty()) return result;
-  read_file(settings.diary_folder + "/irrigation.csv", result, [&](const Row& row) -> Outcome {
-    auto irrigation = irrigation_from(settings, row);
-    if (!irrigation) return irrigation.failure();
-    result.diary.irrigations.push_back(std::move(*irrigation));
-    return Done{};
-  });
-  read_file(settings.diary_folder + "/scouting.csv", result, [&](const Row& row) -> Outcome {
-    auto note = scouting_from(settings, row);
-    if (!note) return note.failure();
-    result.diary.notes.push_back(std::move(*note));
-    return Done{};
-  });
+  const Columns irrigation_columns{{"field", "start", "end"},
+                                   {"method", "depth", "depth_mm", "depth_in", "set"}};
+  const Columns scouting_columns{{"field", "date"},
+                                 {"stage", "began", "disease", "seed_set", "note"}};
+  read_file(settings.diary_folder + "/irrigation.csv", result, irrigation_columns,
+            [&](const Row& row) -> Outcome {
+              auto irrigation = irrigation_from(settings, row);
+              if (!irrigation) return irrigation.failure();
+              result.diary.irrigations.push_back(std::move(*irrigation));
+              return Done{};
+            });
+  read_file(settings.diary_folder + "/scouting.csv", result, scouting_columns,
+            [&](const Row& row) -> Outcome {
+              auto note = scouting_from(settings, row);
+              if (!note) return note.failure();
+              result.diary.notes.push_back(std::move(*note));
+              return Done{};
+            });
   return result;
 }
 

@@ -38,6 +38,7 @@ Outcome Keeper::load(Instant now) {
     first_start = now;
     if (auto done = store_.put_notes({{"first_start", text_of(now)}}); !done) return done;
   }
+  first_start_ = first_start;
   lookout_.set_first_start(first_start);
   for (auto [key, slot] : {std::pair{"last_daily", &last_daily_}, {"last_weekly", &last_weekly_}}) {
     auto note = store_.note(key);
@@ -47,6 +48,10 @@ Outcome Keeper::load(Instant now) {
   // What fell due before the first start was never promised.
   if (!last_daily_) last_daily_ = now;
   if (!last_weekly_) last_weekly_ = now;
+  sent_day_ = settings_->calendar.day_of(now);
+  auto today = store_.letters_since(settings_->calendar.start_of(sent_day_));
+  if (!today) return today.failure();
+  for (const auto& item : *today) ++sent_today_[item.letter.recipient];
 
   auto said = store_.said(now - ledger_reach);
   if (!said) return said.failure();
@@ -188,8 +193,20 @@ Outcome Keeper::flush(Instant now) {
   return Done{};
 }
 
+/// A clock that once stood years ahead must not keep anything unsaid until then.
+void Keeper::heed_clock(Instant now) {
+  if (first_start_ > now) {
+    first_start_ = now;
+    lookout_.set_first_start(now);
+    pending_.notes["first_start"] = text_of(now);
+  }
+  if (last_daily_ > now) last_daily_ = now;
+  if (last_weekly_ > now) last_weekly_ = now;
+}
+
 Kept Keeper::step(Instant now, bool clock_set) {
   Kept kept;
+  if (clock_set) heed_clock(now);
   for (auto& [station, batch] : batches_) {
     if (!batch_due(station, batch, now)) continue;
     if (auto done = store_batch(station, batch); !done) kept.troubles.push_back(done.failure());
@@ -251,7 +268,13 @@ void Keeper::add_timed_letters(Instant now, store::Decision& decision,
   constexpr auto still_of_use = std::chrono::hours{3};  // a daily line later than that says little
   const Instant daily = next_daily(*settings_, *last_daily_);
   if (now >= daily) {
-    const Instant latest_due = next_daily(*settings_, now - std::chrono::days{1});
+    // Not "24 h ago": the day of a clock change has 23 or 25 of them.
+    const CivilDay today = settings_->calendar.day_of(now);
+    const std::chrono::minutes clock{settings_->mail->daily_minute};
+    Instant latest_due = settings_->calendar.at(CivilTime(today) + clock);
+    if (latest_due > now) {
+      latest_due = settings_->calendar.at(CivilTime(today - std::chrono::days{1}) + clock);
+    }
     if (now - latest_due < still_of_use) {
       auto lines = letters::compose_daily(settings_->recipients, lookout_.desk(now));
       std::move(lines.begin(), lines.end(), std::back_inserter(letters));
@@ -277,7 +300,8 @@ Instant Keeper::next_wake(Instant now) const {
   Instant wake = now + Seconds{60};
   for (const auto& [station, batch] : batches_) {
     if (batch.samples.empty() && batch.notes.empty()) continue;
-    wake = std::min(wake, std::max(now, batch.since + batch_for));
+    // What is overdue after a step was not taken by the store: it is not asked without a pause.
+    if (batch.since + batch_for > now) wake = std::min(wake, batch.since + batch_for);
   }
   return wake;
 }

@@ -67,6 +67,7 @@ class Keeper {
   Outcome save_pending();
   void collect_hours(store::Decision& decision, const Closed& closed);
   Closed closed_at(Instant now) const;
+  void heed_clock(Instant now);
   bool batch_due(const std::string& station, const Batch& batch, Instant now) const;
   void add_timed_letters(Instant now, store::Decision& decision,
                          std::vector<letters::Letter>& letters);
@@ -79,7 +80,7 @@ class Keeper {
   std::map<std::string, std::set<HourStart>> unsaved_hours_;  // made anew, not yet stored
   store::Decision pending_;                                   // decided, not yet stored
   std::int64_t diary_version_ = -1;
-  std::optional<Instant> last_daily_, last_weekly_;
+  std::optional<Instant> first_start_, last_daily_, last_weekly_;
   std::optional<CivilDay> tidied_;
   SentToday sent_today_;
   CivilDay sent_day_{};

@@ -1,4 +1,4 @@
-// The tables of the farm, the store, the log, the alerts and the diary.
+// The tables of the farm, the store, the log, the alerts, the diary and the page.
 #include <chrono>
 
 #include "edge/clock/clock.hpp"
@@ -90,6 +90,22 @@ void read_diary(Work& work) {
   const auto diary = section(work, "diary");
   if (!diary) return;
   work.settings.diary_folder = path_of(work, *diary, "folder", true).value_or("");
+}
+
+void read_page(Work& work) {
+  const auto table = section(work, "page");
+  if (!table) return;
+  const Wanted port{"a port from 1024 to 65535", "port = 8470"};
+  const Wanted address{
+      "a numeric address; only one of this computer's own loopback is hidden from others",
+      "address = \"127.0.0.1\""};
+  const Wanted names{"host names of this computer", "names = [\"farm-computer\"]"};
+  Page page;
+  if (!table->has("port")) table->miss("port", port);
+  page.port = table->whole("port", 1024, 65535, port).value_or(0);
+  page.address = table->text("address", address).value_or(page.address);
+  page.names = table->texts("names", names).value_or(page.names);
+  work.settings.page = page;
 }
 
 }  // namespace antherd::settings

@@ -20,8 +20,8 @@ std::vector<KnownTable> make_tables() {
   };
   std::vector<KnownTable> tables{
       {"the file",
-       {"farm", "store", "log", "mail", "recipient", "alerts", "station", "field", "crop",
-        "diary"}},
+       {"farm", "store", "log", "mail", "recipient", "alerts", "station", "field", "crop", "diary",
+        "page"}},
       {"[farm]", {"name", "time_zone", "units", "exercise"}},
       {"[store]", {"folder", "keep_samples"}},
       {"[log]", {"file", "level"}},
@@ -50,6 +50,7 @@ std::vector<KnownTable> make_tables() {
         "photoperiod"}},
       {"[crop.NAME] photoperiod", {"critical", "slope"}},
       {"[diary]", {"folder"}},
+      {"[page]", {"port", "address", "names"}},
       {"[station.drop] time", {"column", "columns", "form", "zone"}},
       {"[station.http] time", {"at", "form", "zone"}},
       {"[station.drop] where", {"column", "equals"}},

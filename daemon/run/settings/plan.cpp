@@ -235,6 +235,10 @@ std::string describe(const Settings& settings) {
   text += "  diary: " +
           (settings.diary_folder.empty() ? "entered by command only" : settings.diary_folder) +
           "\n";
+  if (settings.page) {
+    text += "  page: http://" + settings.page->address + ":" + std::to_string(settings.page->port) +
+            "/, read only\n";
+  }
   for (const Station& station : settings.stations) text += describe(station, settings.units);
   for (const FieldPlan& plan : settings.fields) text += describe(plan, settings.units);
   return text;

@@ -51,6 +51,7 @@ Reading read_tree(const Node& root, const std::string& path, bool ask_disk) {
   read_store_and_log(work);
   read_alerts(work);
   read_diary(work);
+  read_page(work);
   read_stations(work);
   read_fields(work);
   read_mail(work);

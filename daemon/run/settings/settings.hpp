@@ -46,6 +46,13 @@ struct Mail {
   int at_most_per_day = 12;
 };
 
+/// The local page; without it there is no open port.
+struct Page {
+  std::string address = "127.0.0.1";
+  int port = 0;
+  std::vector<std::string> names;  // host names by which visitors may call this computer
+};
+
 struct Log {
   std::string file;     // empty: journal or standard error
   std::string level = "info";
@@ -60,6 +67,7 @@ struct Settings {
   Seconds keep_samples{400LL * 86400};
   Log log;
   std::optional<Mail> mail;
+  std::optional<Page> page;
   std::vector<letters::Recipient> recipients;
   alerts::Policy policy;
   std::vector<Station> stations;

@@ -1,0 +1,92 @@
+// See front_page.hpp.
+#include "run/service/front_page.hpp"
+
+#include <nlohmann/json.hpp>
+
+#include "core/letters/charts.hpp"
+#include "edge/drawing/drawing.hpp"
+#include "run/service/review.hpp"
+
+namespace antherd::service {
+namespace {
+
+constexpr auto fresh_for = std::chrono::minutes{10};
+
+std::string json_of(const letters::Desk& desk) {
+  nlohmann::ordered_json fields = nlohmann::ordered_json::array();
+  for (const auto& [name, status] : desk.fields) {
+    nlohmann::ordered_json field;
+    field["field"] = name;
+    field["as_of"] = status.as_of.time_since_epoch().count();
+    field["flower_known"] = status.flower.known;
+    field["stage"] = status.flower.known ? nlohmann::ordered_json(status.flower.stage)
+                                         : nlohmann::ordered_json(nullptr);
+    field["heat_level"] = static_cast<int>(status.heat.today.level);
+    field["humid_level"] = status.humid.last ? static_cast<int>(status.humid.last->level) : 0;
+    fields.push_back(std::move(field));
+  }
+  nlohmann::ordered_json all;
+  all["farm"] = desk.farm;
+  all["fields"] = std::move(fields);
+  return all.dump(-1, ' ', false, nlohmann::ordered_json::error_handler_t::replace);
+}
+
+std::string made_text(const Calendar& calendar, Instant now) {
+  const CivilTime civil = calendar.civil(now);
+  const CivilDate date{std::chrono::floor<std::chrono::days>(civil)};
+  const std::chrono::hh_mm_ss time{civil - std::chrono::floor<std::chrono::days>(civil)};
+  const auto two = [](long n) { return (n < 10 ? "0" : "") + std::to_string(n); };
+  return std::to_string(static_cast<int>(date.year())) + "-" +
+         two(static_cast<unsigned>(date.month())) + "-" + two(static_cast<unsigned>(date.day())) +
+         " " + two(time.hours().count()) + ":" + two(time.minutes().count());
+}
+
+}  // namespace
+
+Outcome FrontPage::open(const settings::Settings& settings) {
+  page_.reset();
+  shown_.reset();
+  if (!settings.page) return Done{};
+  page::PageOptions options;
+  options.address = settings.page->address;
+  options.port = static_cast<std::uint16_t>(settings.page->port);
+  options.beyond_loopback = true;  // whoever writes another address means it
+  options.names = settings.page->names;
+  auto page = page::Page::listen(options);
+  if (!page) return page.failure();
+  page_ = std::move(*page);
+  return Done{};
+}
+
+void FrontPage::refresh(const Lookout& lookout, const store::Store& store, Instant now) {
+  if (!page_) return;
+  const bool same_hour = shown_ && hour_of(*shown_) == hour_of(now) && now >= *shown_;
+  if (same_hour && now - *shown_ < fresh_for) return;
+  shown_ = now;
+  const settings::Settings& settings = lookout.settings();
+  const letters::Desk desk = lookout.desk(now);
+  Period week = week_before(settings.calendar, now);
+  const letters::Review review = make_review(lookout, store, week, now);
+  week.first += std::chrono::days{1};  // the chart runs up to today
+  week.last += std::chrono::days{1};
+  const letters::Review recent = make_review(lookout, store, week, now);
+
+  page::PageContent content;
+  content.farm = settings.farm;
+  content.made = made_text(settings.calendar, now);
+  content.now_text = letters::compose_now(desk, {}, {});
+  content.review_text = letters::compose_review(review, desk);
+  content.caution = letters::standing_caution(letters::Language::english);
+  content.json = json_of(desk);
+  for (const letters::FieldReview& field : recent.fields) {
+    letters::ChartReader reader;
+    reader.field = field.status.field;
+    reader.units = settings.units;
+    reader.thresholds = desk.heat_rules.at(reader.field);
+    const auto svg = drawing::to_svg(letters::week_chart(reader, field.days, field.humid_days));
+    if (svg) content.charts.push_back({"The last seven days of " + reader.field, *svg});
+  }
+  page_->show(std::move(content));
+}
+
+}  // namespace antherd::service
