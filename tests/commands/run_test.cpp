@@ -1,0 +1,152 @@
+// The service as a process: signals, second instances, strange files in the drop folder.
+#include <signal.h>
+
+#include "program.hpp"
+#include "service/ground.hpp"
+#include "support/catch.hpp"
+
+using namespace ground;
+using program::Service;
+using std::chrono::seconds;
+
+namespace {
+
+/// Four times what the promise allows, for a machine that is busy with other things.
+constexpr std::chrono::milliseconds stop_bound{8000};
+
+/// Its log goes to standard error.
+Farm talking() {
+  Farm farm;
+  farm.log = {};
+  return farm;
+}
+
+bool holds(const std::string& text, const std::string& part) {
+  return text.find(part) != std::string::npos;
+}
+
+}  // namespace
+
+TEST_CASE("the service says when it is ready and ends with 0 when it is told to") {
+  Folder folder;
+  settings_in(folder, talking());
+  const int number = GENERATE(SIGTERM, SIGINT);
+  Service service(folder.path());
+  REQUIRE(service.told("READY=1"));
+  service.signal(number);
+  const auto ended = service.wait(seconds{20});
+  INFO(service.words());
+  REQUIRE(ended);
+  CHECK(ended->first == 0);
+  CHECK(ended->second < stop_bound);
+  CHECK(holds(service.words(), "stopping"));
+}
+
+TEST_CASE("broken settings at SIGHUP are named and the service goes on") {
+  Folder folder;
+  settings_in(folder, talking());
+  Service service(folder.path());
+  REQUIRE(service.told("READY=1"));
+  const std::string good = folder.read("antherd.toml");
+  folder.write("antherd.toml", "[farm]\nname = 7\nnonsense = true\n");
+  service.signal(SIGHUP);
+  REQUIRE(service.told("READY=1"));
+  INFO(service.words());
+  CHECK(holds(service.words(), "antherd.toml:2:"));
+  CHECK(holds(service.words(), "antherd.toml:3:"));
+  CHECK(service.running());
+  folder.write("antherd.toml", good);
+  service.signal(SIGHUP);
+  CHECK(service.said("in force"));
+  service.signal(SIGTERM);
+  const auto ended = service.wait(seconds{20});
+  REQUIRE(ended);
+  CHECK(ended->first == 0);
+}
+
+TEST_CASE("a second service on one store is refused by its process, another store is fine") {
+  Folder folder, other;
+  settings_in(folder, talking());
+  settings_in(other, talking());
+  Service first(folder.path());
+  REQUIRE(first.told("READY=1"));
+  const auto second = program::run({"run", "--settings", folder / "antherd.toml"});
+  INFO(second.out << second.err);
+  CHECK(second.status == 1);
+  CHECK(holds(second.err, std::to_string(first.process())));
+  CHECK(first.running());
+  Service third(other.path());
+  CHECK(third.told("READY=1"));
+}
+
+TEST_CASE("a paced clock needs a farm that is marked as an exercise") {
+  Folder folder;
+  settings_in(folder, talking());
+  const auto refused = program::run({"run", "--settings", folder / "antherd.toml", "--clock-from",
+                                     "2026-07-12 12:00", "--stop-after", "1"});
+  CHECK(refused.status == 2);
+  CHECK(holds(refused.err, "exercise"));
+  Farm farm = talking();
+  farm.extra_farm = "exercise = true";
+  settings_in(folder, farm);
+  const auto wrong = program::run(
+      {"run", "--settings", folder / "antherd.toml", "--clock-from", "noon", "--stop-after", "1"});
+  CHECK(wrong.status == 2);
+  CHECK(holds(wrong.err, "noon"));
+  const auto ran = program::run({"run", "--settings", folder / "antherd.toml", "--clock-from",
+                                 "2026-07-12 12:00", "--pace", "60", "--stop-after", "1"});
+  INFO(ran.err);
+  CHECK(ran.status == 0);
+}
+
+TEST_CASE("strange files in the drop folder are named and the good one is used") {
+  Folder folder;
+  Farm farm = talking();
+  farm.extra_farm = "exercise = true";
+  settings_in(folder, farm);
+  const auto samples =
+      readings(Weather{}, farm_time("2026-07-12 00:00"), farm_time("2026-07-12 12:00"));
+  folder.write("drop/bench-good.csv", header + rows_of(samples));
+  folder.write("drop/bench-nul.csv",
+               std::string(header) + std::string("2026-07-12 01:00,2\0002,50,0\n", 28));
+  folder.write("drop/bench-long.csv",
+               header + std::string(10 * 1024 * 1024, '7') + "\n" + row_of(samples.back()));
+  std::string wide = "\xFF\xFE";
+  for (const char c : header + rows_of(samples)) wide += {c, '\0'};
+  folder.write("drop/bench-wide.csv", wide);
+  folder.write("drop/bench-empty.csv", "");
+  Service service(folder.path(),
+                  {"--clock-from", "2026-07-12 12:00", "--pace", "60", "--stop-after", "60"});
+  REQUIRE(service.told("READY=1"));
+  CHECK(service.told("read 0 min ago"));
+  CHECK(service.running());
+  service.signal(SIGTERM);
+  const auto ended = service.wait(seconds{20});
+  REQUIRE(ended);
+  CHECK(ended->first == 0);
+  const std::string all = service.words() + folder.read("store/refused.csv");
+  for (const char* file : {"bench-nul.csv", "bench-long.csv", "bench-wide.csv"}) {
+    INFO(file << "\n" << service.words().substr(0, 3000));
+    CHECK(holds(all, file));
+  }
+  CHECK(service.words().size() < 100 * 1024);  // ten megabytes do not reach the log
+  auto stored = store::Store::open({.folder = folder / "store",
+                                    .read_only = true,
+                                    .service = false,
+                                    .now = {},
+                                    .patience = seconds{5},
+                                    .page_limit = 0});
+  REQUIRE(stored);
+  const auto kept = stored->samples("bench", Instant{}, Instant::max());
+  REQUIRE(kept);
+  CHECK(kept->size() >= samples.size());
+}
+
+TEST_CASE("settings that are faulty at the start: 2, each fault named, nothing is made") {
+  Folder folder;
+  folder.write("antherd.toml", ground::text_of(Farm{}) + "[nonsense]\n");
+  const auto ended = program::run({"run", "--settings", folder / "antherd.toml"});
+  CHECK(ended.status == 2);
+  CHECK(holds(ended.err, "nonsense"));
+  CHECK(folder.names("store").empty());
+}

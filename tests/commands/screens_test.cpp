@@ -1,0 +1,141 @@
+// now, review and letters on a store that a service has filled.
+#include <nlohmann/json.hpp>
+#include <sstream>
+
+#include "program.hpp"
+#include "service/ground.hpp"
+#include "support/catch.hpp"
+
+using namespace ground;
+
+namespace {
+
+/// A hot July with its letters, an exercise: "now" is the newest reading's time.
+Farm july() {
+  Farm farm;
+  farm.extra_farm = "exercise = true";
+  return farm;
+}
+
+struct Season {
+  Bench bench{july()};
+  Instant now = farm_time("2026-07-13 20:00");
+  Season() {
+    const Instant sown = farm_time("2026-06-25 00:00");
+    const Instant from = farm_time("2026-07-11 12:00");
+    bench.open(sown);
+    bench.drop("bench.csv", readings(Weather{}, sown, from));
+    bench.turn(from);
+    bench.live(Weather{}, from, now, minutes{15});
+  }
+  program::Ended run(std::vector<std::string> arguments) const {
+    arguments.insert(arguments.end(), {"--settings", bench.folder / "antherd.toml"});
+    return program::run(arguments);
+  }
+};
+
+bool holds(const std::string& text, const std::string& part) {
+  return text.find(part) != std::string::npos;
+}
+
+}  // namespace
+
+TEST_CASE("now, review and letters read beside the running service") {
+  Season season;
+  const auto now = season.run({"now"});
+  INFO(now.out << now.err);
+  CHECK(now.status == 0);
+  CHECK(holds(now.out, "north bench"));
+
+  const auto week = season.run({"review", "--week", "2026-W28"});
+  CHECK(week.status == 0);
+  CHECK(holds(week.out, "2026-W28"));
+  CHECK(season.run({"review", "--season"}).status == 0);
+  for (const char* wrong : {"2026-W54", "2026-28", "W28", "2026-W00", "2025-W53", "2026-W28x"}) {
+    const auto ended = season.run({"review", "--week", wrong});
+    INFO("'" << wrong << "': " << ended.err);
+    CHECK(ended.status == 2);
+    CHECK(holds(ended.err, wrong));
+  }
+
+  const auto letters = season.run({"letters", "--lines"});
+  CHECK(letters.status == 0);
+  std::istringstream stream(letters.out);
+  std::size_t count = 0;
+  std::string heat;
+  for (std::string line; std::getline(stream, line); ++count) {
+    const auto row = nlohmann::json::parse(line);
+    CHECK(row.contains("id"));
+    CHECK(row["state"] == "sent");
+    if (row["kind"] == "heat") heat = std::to_string(row["id"].get<long>());
+  }
+  CHECK(count == season.bench.letters().size());
+  CHECK(season.run({"letters"}).status == 0);
+
+  // Seen: the reminder of that level no longer comes.
+  REQUIRE(!heat.empty());
+  const auto seen = season.run({"letters", "--seen", heat});
+  INFO(seen.out << seen.err);
+  CHECK(seen.status == 0);
+  const auto said = season.bench.desk->store().said(Instant{});
+  REQUIRE(said);
+  bool marked = false;
+  for (const auto& entry : *said) marked = marked || entry.seen;
+  CHECK(marked);
+
+  for (const char* option : {"--seen", "--retry"}) {
+    const auto ended = season.run({"letters", option, "999"});
+    CHECK(ended.status == 1);
+    CHECK(holds(ended.err, "999"));
+  }
+  const auto sent = season.run({"letters", "--retry", heat});
+  CHECK(sent.status == 1);
+  CHECK(holds(sent.err, "sent already"));
+}
+
+TEST_CASE("a parked letter asks for attention until somebody has it sent again") {
+  Season season;
+  auto item = season.bench.letters().back();
+  item.state = outbox::State::parked;
+  item.answer = "550 no such mailbox";
+  REQUIRE(season.bench.desk->store().update(item, outbox::Line{}));
+  const auto parked = season.run({"letters"});
+  CHECK(parked.status == 3);
+  CHECK(holds(parked.out, "550 no such mailbox"));
+  CHECK(season.run({"now"}).status == 3);
+
+  const auto retried = season.run({"letters", "--retry", std::to_string(item.id)});
+  INFO(retried.out << retried.err);
+  CHECK(retried.status == 0);
+  // The running service takes it up, though it was another process that put it back.
+  season.bench.turn(season.now + minutes{2});
+  season.bench.turn(season.now + minutes{4});
+  const auto after = season.bench.desk->store().letter(item.id);
+  REQUIRE(after);
+  CHECK((*after)->state == outbox::State::sent);
+}
+
+TEST_CASE("a silent station is an attention of now") {
+  Bench bench;  // no exercise: the wall clock counts, and July is long past
+  const Instant sown = farm_time("2026-06-25 00:00");
+  const Instant until = farm_time("2026-07-12 12:00");
+  bench.open(sown);
+  bench.drop("bench.csv", readings(Weather{}, sown, until));
+  bench.turn(until);
+  bench.close(until + minutes{6});
+  const auto ended = program::run({"now", "--settings", bench.folder / "antherd.toml"});
+  INFO(ended.out << ended.err);
+  CHECK((ended.status == 3 || holds(ended.out, "season")));
+}
+
+TEST_CASE("without a store the reading commands say so and end with 1") {
+  Folder folder;
+  settings_in(folder);
+  for (const char* command : {"now", "review", "letters"}) {
+    const auto ended = program::run({command, "--settings", folder / "antherd.toml"});
+    INFO(command << ": " << ended.err);
+    CHECK(ended.status == 1);
+    CHECK(holds(ended.err, "there is none yet"));
+  }
+  CHECK(folder.names("store").empty());
+}

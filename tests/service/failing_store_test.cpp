@@ -1,0 +1,183 @@
+// A store that takes nothing more: the service stays up and says so, and what was decided goes out,
+// once, when it works again.
+#include <sqlite3.h>
+
+#include <algorithm>
+
+#include "ground.hpp"
+#include "support/catch.hpp"
+
+using namespace ground;
+
+namespace {
+
+const Instant sown = farm_time("2026-06-25 00:00");
+
+/// Makes changes of the store fail from outside, by triggers that a second connection puts in.
+class Stopper {
+ public:
+  explicit Stopper(const Folder& folder) {
+    REQUIRE(sqlite3_open((folder / "store/antherd.db").c_str(), &database_) == SQLITE_OK);
+    sqlite3_busy_timeout(database_, 2000);
+  }
+  ~Stopper() { sqlite3_close(database_); }
+  Stopper(const Stopper&) = delete;
+  Stopper& operator=(const Stopper&) = delete;
+
+  void stop(const std::string& table) { each("CREATE TRIGGER ", table, true); }
+  void release(const std::string& table) { each("DROP TRIGGER ", table, false); }
+  void stop_all() {
+    for (const auto& table : tables()) stop(table);
+  }
+  void release_all() {
+    for (const auto& table : tables()) release(table);
+  }
+
+ private:
+  std::vector<std::string> tables() {
+    std::vector<std::string> names;
+    const auto add = [](void* list, int, char** cells, char**) {
+      static_cast<std::vector<std::string>*>(list)->push_back(cells[0]);
+      return 0;
+    };
+    REQUIRE(sqlite3_exec(database_,
+                         "SELECT name FROM sqlite_schema WHERE type = 'table' AND name NOT LIKE "
+                         "'sqlite%'",
+                         add, &names, nullptr) == SQLITE_OK);
+    return names;
+  }
+  void each(const std::string& act, const std::string& table, bool body) {
+    for (const char* verb : {"INSERT", "UPDATE", "DELETE"}) {
+      std::string script = act + "stop_" + table + "_" + verb;
+      if (body) {
+        script += std::string(" BEFORE ") + verb + " ON \"" + table +
+                  "\" BEGIN SELECT RAISE(ABORT, 'the disk is full'); END";
+      }
+      INFO(script);
+      REQUIRE(sqlite3_exec(database_, script.c_str(), nullptr, nullptr, nullptr) == SQLITE_OK);
+    }
+  }
+  sqlite3* database_ = nullptr;
+};
+
+const Instant hot_morning = farm_time("2026-07-12 10:00");
+const Instant hot_evening = farm_time("2026-07-12 18:00");
+
+}  // namespace
+
+TEST_CASE("what was decided while the store failed goes out once when it works again") {
+  Bench bench, steady;
+  for (Bench* each : {&bench, &steady}) {
+    each->open(sown);
+    each->live(Weather{}, sown, hot_morning, minutes{15});
+  }
+  const auto before = bench.letters().size();
+  steady.live(Weather{}, hot_morning, hot_evening, minutes{15});
+
+  Stopper stopper(bench.folder);
+  stopper.stop_all();
+  bench.live(Weather{}, hot_morning, hot_evening, minutes{15});
+  CHECK(bench.letters().size() == before);
+  const auto kept = bench.desk->keeper().step(hot_evening, true);
+  CHECK(!kept.troubles.empty());  // it is said, not swallowed
+  stopper.release_all();
+
+  bench.turn(hot_evening + minutes{6});
+  bench.turn(hot_evening + minutes{12});
+  steady.turn(hot_evening + minutes{6});
+  steady.turn(hot_evening + minutes{12});
+  CHECK(bench.letters_of("heat").size() >= 1);
+  CHECK(bench.said_of(alerts::Kind::heat) >= 1);
+  CHECK(bench.fingerprint() == steady.fingerprint());
+  const auto count = bench.letters().size();
+  bench.turn(hot_evening + minutes{20});
+  CHECK(bench.letters().size() == count);
+}
+
+TEST_CASE("only the outbox fails: the letter is not lost, nor decided a second time") {
+  Bench bench;
+  bench.open(sown);
+  bench.live(Weather{}, sown, hot_morning, minutes{15});
+  Stopper stopper(bench.folder);
+  stopper.stop("letter");
+  bench.live(Weather{}, hot_morning, hot_evening, minutes{15});
+  CHECK(bench.letters_of("heat").empty());
+  CHECK(bench.said_of(alerts::Kind::heat) == 0);  // both or none
+  stopper.release("letter");
+  bench.turn(hot_evening + minutes{1});
+  const auto heat = bench.letters_of("heat");
+  REQUIRE(!heat.empty());
+  for (const auto& item : heat) CHECK(item.state == outbox::State::sent);
+  CHECK(bench.folder.names("outgoing").size() == bench.letters().size());
+}
+
+TEST_CASE("a restart while the store fails decides it again") {
+  Bench bench;
+  bench.open(sown);
+  bench.live(Weather{}, sown, hot_morning, minutes{15});
+  {
+    Stopper stopper(bench.folder);
+    stopper.stop("letter");
+    bench.live(Weather{}, hot_morning, hot_evening, minutes{15});
+    bench.desk.reset();
+    stopper.release("letter");
+  }
+  bench.open(hot_evening + minutes{5});
+  bench.turn(hot_evening + minutes{5});
+  CHECK(!bench.letters_of("heat").empty());
+}
+
+TEST_CASE("a store that cannot note how a letter ended does not stop the mail") {
+  Farm farm;
+  farm.mail = "server = \"smtp://localhost:2525\"\nplain = true\n";
+  Bench bench(farm);
+  bench.open(sown);
+  store::Decision decision;
+  for (const char* id : {"one", "two"}) {
+    outbox::Item item;
+    item.letter.id = id;
+    item.letter.recipient = "owner@larkspur.example";
+    item.letter.subject = id;
+    item.letter.body = "A body.\n";
+    item.letter.kind = "heat";
+    item.letter.severity = alerts::Severity::severe;
+    item.letter.decided = hot_morning;
+    item.letter.valid_until = hot_morning + hours{72};
+    item.next_try = hot_morning;
+    decision.letters.push_back(item);
+  }
+  REQUIRE(bench.desk->store().save(decision));
+  std::vector<std::int64_t> handed;
+  service::Carrier carrier(
+      bench.settings, bench.desk->store(),
+      [&](mail::Server, std::int64_t item, letters::Letter) { handed.push_back(item); });
+  REQUIRE(carrier.load(hot_morning));
+  carrier.carry(hot_morning);
+  REQUIRE(handed.size() == 1);
+  Stopper stopper(bench.folder);
+  const bool dot = GENERATE(true, false);
+  if (dot) {
+    REQUIRE(carrier.before_dot(handed[0], hot_morning));
+    stopper.stop_all();
+    carrier.received(handed[0], {mail::How::accepted, mail::About::server, 250, "taken", ""},
+                     hot_morning);
+  } else {
+    stopper.stop_all();
+    CHECK(!carrier.before_dot(handed[0], hot_morning));  // no mark, no dot
+    carrier.received(handed[0], {mail::How::wait, mail::About::server, 0, "broken off", ""},
+                     hot_morning);
+  }
+  CHECK(!carrier.busy());
+  carrier.carry(hot_morning + minutes{2});
+  CHECK(handed.size() == 1);  // nothing goes that could not be noted
+  stopper.release_all();
+
+  carrier.carry(hot_morning + minutes{4});
+  REQUIRE(handed.size() == 2);
+  CHECK((handed[1] == handed[0]) == !dot);
+  if (dot) {
+    const auto first = bench.desk->store().letter(handed[0]);
+    REQUIRE(first);
+    CHECK((*first)->state == outbox::State::sent);
+  }
+}

@@ -1,0 +1,150 @@
+// New settings while the service runs: whole or not at all, and never under a letter's feet.
+#include <algorithm>
+
+#include "ground.hpp"
+#include "support/catch.hpp"
+
+using namespace ground;
+
+namespace {
+const Instant sown = farm_time("2026-06-25 00:00");
+const Instant noon = farm_time("2026-07-12 12:05");
+
+std::string replaced(std::string text, const std::string& from, const std::string& to) {
+  const auto at = text.find(from);
+  REQUIRE(at != std::string::npos);
+  return text.replace(at, from.size(), to);
+}
+}  // namespace
+
+TEST_CASE("broken settings keep the old ones, good ones apply") {
+  Bench bench;
+  bench.open(sown);
+  bench.drop("bench.csv", readings(Weather{}, sown, noon));
+  bench.turn(noon);
+  const auto print = bench.fingerprint();
+  const std::string good = bench.folder.read("antherd.toml");
+  const auto name = [&] { return bench.desk->keeper().lookout().settings().farm; };
+
+  for (const std::string& broken :
+       {std::string("not TOML ["), std::string(), replaced(good, "15 min", "15 parsecs"),
+        replaced(good, "stations = [\"bench\"]", "stations = [\"moon\"]"),
+        replaced(good, "temp_c", "temp\\r\\nBcc: x"),
+        replaced(good, "Larkspur Bench", "Larkspur\\r\\nBcc: other@larkspur.example")}) {
+    bench.folder.write("antherd.toml", broken);
+    bench.desk->reload(noon + minutes{1});
+    bench.turn(noon + minutes{1});
+    CHECK(name() == "Larkspur Bench");
+  }
+  std::filesystem::remove(bench.folder / "antherd.toml");
+  bench.desk->reload(noon + minutes{1});
+  CHECK(name() == "Larkspur Bench");
+
+  bench.folder.write("antherd.toml", replaced(good, "Larkspur Bench", "Larkspur Hill"));
+  bench.desk->reload(noon + minutes{2});
+  bench.turn(noon + minutes{2});
+  CHECK(name() == "Larkspur Hill");
+  CHECK(bench.fingerprint() == print);
+}
+
+TEST_CASE("a reload says nothing a second time and loses no reading") {
+  Bench bench;
+  bench.open(sown);
+  bench.live(Weather{}, sown, farm_time("2026-07-12 18:00"), minutes{15});
+  const auto letters = bench.letter_ids();
+  const Instant now = farm_time("2026-07-12 18:01");
+  bench.desk->reload(now);
+  bench.turn(now);
+  CHECK(bench.letter_ids() == letters);
+  // What came just before stands only in memory until its batch is due.
+  const Instant next = farm_time("2026-07-12 18:15");
+  bench.folder.append("drop/bench.csv", row_of(reading_at(Weather{}, next)));
+  bench.turn(farm_time("2026-07-12 18:15"));
+  bench.desk->reload(farm_time("2026-07-12 18:16"));
+  bench.turn(farm_time("2026-07-12 18:17"));
+  bench.turn(farm_time("2026-07-12 18:25"));
+  const auto last = bench.desk->store().last_sample("bench");
+  REQUIRE(last);
+  REQUIRE(*last);
+  CHECK(farm_clock(**last) == "2026-07-12 18:15");
+}
+
+TEST_CASE("a reading that was polled and not yet stored outlives a reload") {
+  Farm farm;
+  farm.more =
+      "\n[[station]]\nname = \"river\"\nlatitude = 46.7\nlongitude = -117.2\n"
+      "elevation = \"750 m\"\ninterval = \"5 min\"\n[station.http]\n"
+      "url = \"http://127.0.0.1:9/now.json\"\nevery = \"5 min\"\nform = \"json\"\n"
+      "time = { at = \"/t\", form = \"unix\" }\n"
+      "temperature = { at = \"/c\", unit = \"degC\" }\nhumidity = { at = \"/h\", unit = \"%\" }\n";
+  Bench bench(farm);
+  bench.open(noon);
+  bench.turn(noon);
+  station::Answer answer;
+  answer.readings.samples = {reading_at(Weather{}, noon)};
+  bench.desk->poll_answered("river", answer, noon);
+  bench.turn(noon);
+  auto next = answer;
+  next.readings.samples = {reading_at(Weather{}, noon + minutes{1})};
+  bench.desk->poll_answered("river", next, noon + minutes{1});
+  bench.turn(noon + minutes{1});
+  bench.desk->reload(noon + minutes{2});
+  bench.turn(noon + minutes{10});
+  const auto stored = bench.desk->store().samples("river", noon - hours{1}, noon + hours{1});
+  REQUIRE(stored);
+  CHECK(stored->size() == 2);
+}
+
+TEST_CASE("while a letter is under way new settings wait for its end") {
+  Farm farm;
+  farm.mail = "server = \"smtp://localhost:2525\"\nplain = true\n";
+  Bench bench(farm);
+  bench.open(sown);
+  std::vector<std::int64_t> handed;
+  bench.desk->on_send(
+      [&](mail::Server, std::int64_t item, letters::Letter) { handed.push_back(item); });
+  Instant now = farm_time("2026-06-29 06:00");  // a Monday: the review
+  bench.drop("bench.csv", readings(Weather{}, sown, now));
+  bench.turn(now);
+  REQUIRE(handed.size() == 1);
+
+  const std::string good = bench.folder.read("antherd.toml");
+  bench.folder.write("antherd.toml", replaced(good, "Larkspur Bench", "Larkspur Hill"));
+  const auto name = [&] { return bench.desk->keeper().lookout().settings().farm; };
+  bench.desk->reload(now + minutes{1});
+  bench.turn(now + minutes{1});
+  CHECK(name() == "Larkspur Bench");
+  CHECK(bench.desk->before_dot(handed.front(), now + minutes{1}));
+  bench.desk->mail_spoken(handed.front(), {mail::How::accepted, mail::About::server, 250, "ok", ""},
+                          now + minutes{1});
+  CHECK(name() == "Larkspur Hill");
+  const auto item = bench.desk->store().letter(handed.front());
+  REQUIRE(item);
+  REQUIRE(*item);
+  CHECK((*item)->state == outbox::State::sent);
+}
+
+TEST_CASE("after a column's name was mended the files are read from their start") {
+  Bench bench;
+  const std::string good = bench.folder.read("antherd.toml");
+  bench.folder.write("antherd.toml", replaced(good, "\"temp_c\"", "\"temperature\""));
+  bench.settings = std::make_shared<const settings::Settings>(
+      *settings::read_file(bench.folder / "antherd.toml").settings);
+  bench.open(sown);
+  bench.drop("bench.csv", readings(Weather{}, sown, noon));
+  bench.turn(noon);
+  bench.turn(noon + minutes{6});
+  REQUIRE(!*bench.desk->store().last_sample("bench"));
+
+  bench.folder.write("antherd.toml", good);
+  SECTION("by a reload") { bench.desk->reload(noon + minutes{7}); }
+  SECTION("by a restart") {
+    bench.close(noon + minutes{7});
+    bench.settings = std::make_shared<const settings::Settings>(
+        *settings::read_file(bench.folder / "antherd.toml").settings);
+    bench.open(noon + minutes{7});
+  }
+  bench.turn(noon + minutes{7});
+  bench.turn(noon + minutes{13});
+  CHECK(*bench.desk->store().last_sample("bench"));
+}

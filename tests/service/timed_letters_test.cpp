@@ -1,0 +1,202 @@
+// Letters that the clock decides: the daily line and the weekly review across both clock changes
+// and after a night that the service slept through, quiet hours, the daily limit.
+#include <algorithm>
+#include <set>
+
+#include "ground.hpp"
+#include "run/service/post.hpp"
+#include "support/catch.hpp"
+
+using namespace ground;
+
+namespace {
+
+/// A farm of the autumn or of the spring: in flower at the change of the clocks.
+Farm flowering_on(const std::string& sown) {
+  Farm farm;
+  farm.sown = sown;
+  return farm;
+}
+
+std::vector<std::string> decided(const Bench& bench, const std::string& kind) {
+  std::vector<std::string> times;
+  for (const auto& item : bench.letters_of(kind)) {
+    times.push_back(farm_clock(item.letter.decided));
+  }
+  return times;
+}
+
+letters::Letter letter_of(const std::string& id, alerts::Severity severity, bool raise = false) {
+  letters::Letter letter;
+  letter.id = id;
+  letter.recipient = "owner@larkspur.example";
+  letter.subject = id;
+  letter.body = "A body.\n";
+  letter.kind = "heat";
+  letter.severity = severity;
+  letter.raise = raise;
+  return letter;
+}
+
+}  // namespace
+
+TEST_CASE("the daily line comes each evening at 19:00, also on the days of the clock changes") {
+  // 2026-11-01: the clock is put back; 2026-03-08: put forward (America/Los_Angeles).
+  const auto [sown, first, last] = GENERATE(std::tuple{"2026-10-12", "2026-10-29", "2026-11-03"},
+                                            std::tuple{"2026-02-16", "2026-03-05", "2026-03-10"});
+  Bench bench(flowering_on(sown));
+  bench.open(farm_time(std::string(sown) + " 00:00"));
+  const Instant from = farm_time(std::string(first) + " 00:00");
+  bench.drop("bench.csv", readings(Weather{}, farm_time(std::string(sown) + " 00:00"), from));
+  bench.turn(from);
+  bench.live(Weather{}, from, farm_time(std::string(last) + " 23:00"), minutes{10});
+
+  std::vector<std::string> expected;
+  const Instant last_evening = farm_time(std::string(last) + " 19:00");
+  for (Instant at = from + hours{12}; at <= last_evening + hours{6}; at += days{1}) {
+    expected.push_back(farm_clock(at).substr(0, 10) + " 19:00");
+  }
+  REQUIRE(expected.size() == 6);
+  CHECK(decided(bench, "daily") == expected);
+}
+
+TEST_CASE("the weekly review comes on Monday at 06:00, across both clock changes") {
+  const auto [sown, from, to, expected] = GENERATE(
+      std::tuple{
+          "2026-10-20", "2026-10-24 00:00", "2026-11-10 00:00",
+          std::vector<std::string>{"2026-10-26 06:00", "2026-11-02 06:00", "2026-11-09 06:00"}},
+      std::tuple{
+          "2026-02-20", "2026-02-28 00:00", "2026-03-17 00:00",
+          std::vector<std::string>{"2026-03-02 06:00", "2026-03-09 06:00", "2026-03-16 06:00"}});
+  Bench bench(flowering_on(sown));
+  bench.open(farm_time(from));
+  for (Instant now = farm_time(from); now <= farm_time(to); now += minutes{30}) bench.turn(now);
+  CHECK(decided(bench, "weekly") == expected);
+  // Nothing came in all that time, and the review is there all the same.
+  for (const auto& item : bench.letters_of("weekly")) CHECK(item.state == outbox::State::sent);
+}
+
+TEST_CASE("a service that slept at the time: the review follows, the daily line only within 3 h") {
+  Bench bench;
+  const Instant sown = farm_time("2026-06-25 00:00");
+  bench.open(sown);
+  const Instant down = farm_time("2026-07-12 18:00");  // a Sunday
+  bench.drop("bench.csv", readings(Weather{}, sown, down));
+  bench.turn(down);
+  const auto before = decided(bench, "daily").size();
+  const auto weeks = decided(bench, "weekly").size();
+  bench.close(down);
+
+  SECTION("back after two hours") {
+    bench.open(farm_time("2026-07-12 21:00"));
+    bench.turn(farm_time("2026-07-12 21:00"));
+    CHECK(decided(bench, "daily").size() == before + 1);
+    CHECK(decided(bench, "weekly").size() == weeks);
+  }
+  SECTION("back on Tuesday") {
+    bench.open(farm_time("2026-07-14 12:00"));
+    bench.turn(farm_time("2026-07-14 12:00"));
+    CHECK(decided(bench, "daily").size() == before);
+    REQUIRE(decided(bench, "weekly").size() == weeks + 1);
+    CHECK(decided(bench, "weekly").back() == "2026-07-14 12:00");
+    bench.turn(farm_time("2026-07-14 12:05"));
+    CHECK(decided(bench, "weekly").size() == weeks + 1);
+    bench.live(Weather{}, down, farm_time("2026-07-14 12:10"), hours{43});
+    bench.turn(farm_time("2026-07-14 19:00"));
+    CHECK(decided(bench, "daily").size() == before + 1);
+  }
+  SECTION("back after three weeks: one review, not three") {
+    bench.open(farm_time("2026-08-05 12:00"));
+    bench.turn(farm_time("2026-08-05 12:00"));
+    CHECK(decided(bench, "weekly").size() == weeks + 1);
+  }
+}
+
+TEST_CASE("a clock that once stood years ahead does not silence the review for ever") {
+  Bench bench;
+  bench.open(farm_time("2046-07-01 12:00"));
+  bench.turn(farm_time("2046-07-01 12:00"));
+  bench.turn(farm_time("2046-07-09 12:00"));
+  bench.close(farm_time("2046-07-09 12:00"));
+  bench.open(farm_time("2026-07-07 12:00"));
+  for (Instant now = farm_time("2026-07-07 12:00"); now <= farm_time("2026-07-20 12:00");
+       now += hours{1}) {
+    bench.turn(now);
+  }
+  const auto times = decided(bench, "weekly");
+  CHECK(std::count(times.begin(), times.end(), "2026-07-13 06:00") == 1);
+  CHECK(std::count(times.begin(), times.end(), "2026-07-20 06:00") == 1);
+}
+
+TEST_CASE("quiet hours hold all but Extreme until their end, over midnight and over the changes") {
+  Folder folder;
+  Farm farm;
+  farm.recipients =
+      "[[recipient]]\naddress = \"owner@larkspur.example\"\nquiet = \"22:00-05:30\"\n";
+  const auto settings = settings_in(folder, farm);
+  const auto next_try = [&](const std::string& now, alerts::Severity severity) {
+    const auto items =
+        service::to_items({letter_of("one", severity)}, *settings, {}, farm_time(now));
+    REQUIRE(items.size() == 1);
+    return farm_clock(items[0].next_try);
+  };
+  using alerts::Severity;
+  CHECK(next_try("2026-07-12 21:59", Severity::severe) == "2026-07-12 21:59");
+  CHECK(next_try("2026-07-12 22:00", Severity::severe) == "2026-07-13 05:30");
+  CHECK(next_try("2026-07-13 03:00", Severity::severe) == "2026-07-13 05:30");
+  CHECK(next_try("2026-07-13 05:30", Severity::severe) == "2026-07-13 05:30");
+  CHECK(next_try("2026-07-12 23:00", Severity::extreme) == "2026-07-12 23:00");
+  CHECK(next_try("2026-10-31 22:30", Severity::severe) == "2026-11-01 05:30");
+  CHECK(next_try("2026-03-07 22:30", Severity::severe) == "2026-03-08 05:30");
+}
+
+TEST_CASE("past the daily limit letters wait for the morning, a raise and Extreme go") {
+  Folder folder;
+  Farm farm;
+  farm.mail = "folder = \"outgoing\"\nat_most_per_day = 2\n";
+  const auto settings = settings_in(folder, farm);
+  using alerts::Severity;
+  const Instant now = farm_time("2026-07-12 15:00");
+  const auto items = service::to_items(
+      {letter_of("one", Severity::moderate), letter_of("two", Severity::moderate),
+       letter_of("three", Severity::severe), letter_of("four", Severity::severe, true),
+       letter_of("five", Severity::extreme)},
+      *settings, {}, now);
+  REQUIRE(items.size() >= 4);
+  const auto held = [&](const std::string& id) {
+    for (const auto& item : items) {
+      if (item.letter.id == id) return item.next_try > now;
+    }
+    return true;
+  };
+  CHECK(!held("one"));
+  CHECK(!held("two"));
+  CHECK(held("three"));
+  CHECK(!held("four"));
+  CHECK(!held("five"));
+}
+
+TEST_CASE("the daily limit is not forgotten with a restart") {
+  Farm farm;
+  farm.mail = "folder = \"outgoing\"\nat_most_per_day = 1\n";
+  Bench bench(farm);
+  const Instant sown = farm_time("2026-06-25 00:00");
+  const Instant noon = farm_time("2026-07-12 12:00");
+  bench.open(sown);
+  bench.drop("bench.csv", readings(Weather{}, sown, noon));
+  bench.turn(noon);
+  // Two notes a day apart from each other: every restart in between counts from nothing.
+  int gone_today = 0;
+  for (int hour = 0; hour < 11; ++hour) {
+    const Instant from = noon + hours{hour};
+    bench.live(Weather{}, from, from + minutes{45}, minutes{15});
+    bench.close(from + minutes{46});
+    bench.open(from + minutes{47});
+  }
+  for (const auto& item : bench.letters()) {
+    const bool today = farm_clock(item.letter.decided).substr(0, 10) == "2026-07-12";
+    const bool exempt = item.letter.raise || item.letter.severity == alerts::Severity::extreme;
+    if (today && !exempt && item.state == outbox::State::sent) ++gone_today;
+  }
+  CHECK(gone_today <= 1);
+}
