@@ -41,8 +41,8 @@ CivilTime solar_time(Instant at, Degree longitude);
 Instant from_solar_time(CivilTime reading, Degree longitude);
 
 /// Day length in hours by the same rise and set; 24 or 0 where there is none. On the day of an
-/// equinox at the equator 12.11 h, not 12: the disc is seen before it is there. Source: Meeus ch. 15
-/// by sun_day.
+/// equinox at the equator 12.11 h, not 12: the disc is seen before it is there.
+/// Source: Meeus ch. 15, by sun_day.
 double day_length_hours(CivilDay solar_day, const Place& place);
 
 }  // namespace antherd::weather

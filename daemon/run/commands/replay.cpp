@@ -35,8 +35,8 @@ void add_days(Events& events, const season::Plan& plan, const season::Chronicle&
   for (const season::HeatDay& day : chronicle.days) {
     ordered_json line;
     line["what"] = "day";
-    line["field"] = plan.field.name;
     line["date"] = day_text(day.date);
+    line["field"] = plan.field.name;
     line["tmax_c"] = day.t_max ? ordered_json(rounded(day.t_max->value, 4)) : ordered_json(nullptr);
     line["hours_32"] = or_null(day.hours_32);
     line["hours_35"] = or_null(day.hours_35);
@@ -51,8 +51,8 @@ void add_days(Events& events, const season::Plan& plan, const season::Chronicle&
   for (const season::HumidDay& day : chronicle.humid_days) {
     ordered_json line;
     line["what"] = "humid_day";
-    line["field"] = plan.field.name;
     line["date"] = day_text(day.date);
+    line["field"] = plan.field.name;
     line["infection"] = number(day.infection);
     line["water"] = or_null(day.water);
     line["dry_out"] = or_null(day.dry_out);
