@@ -278,3 +278,18 @@ TEST_CASE("a letter that nobody could take in 72 hours is parked and named") {
   CHECK(item.state == outbox::State::parked);
   CHECK(!item.answer.empty());
 }
+
+TEST_CASE("a letter that a person has sent again goes at once, whatever the line waited for") {
+  Post post;
+  post.load({item_of("one", alerts::Severity::severe, noon)}, noon);
+  CHECK(!post.carry(noon, mail::How::settings_trouble).empty());
+  REQUIRE(post.carrier->refresh());
+  CHECK(post.carry(noon + minutes{5}, mail::How::accepted).empty());  // the line rests an hour
+  // Another process: `antherd letters --retry`.
+  const Instant wish = noon + minutes{6};
+  auto& store = post.bench.desk->store();
+  REQUIRE(store.update(outbox::retry(post.stored("one"), wish), outbox::reopen(*store.line())));
+  REQUIRE(post.carrier->refresh());
+  CHECK(!post.carry(wish, mail::How::accepted).empty());
+  CHECK(post.stored("one").state == outbox::State::sent);
+}

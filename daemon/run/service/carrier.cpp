@@ -59,11 +59,12 @@ Carrier::Carrier(std::shared_ptr<const settings::Settings> settings, store::Stor
 Outcome Carrier::load(Instant now) {
   auto line = store_.line();
   if (!line) return line.failure();
+  stored_line_ = *line;
   line_ = outbox::reopen(*line);
   auto items = store_.letters_open();
   if (!items) return items.failure();
   for (const outbox::Item& item : *items) {
-    if (auto done = store_.update(outbox::recover(item, now), line_); !done) return done;
+    if (auto done = update(outbox::recover(item, now)); !done) return done;
   }
   return refresh();
 }
@@ -78,6 +79,10 @@ Outcome Carrier::refresh() {
   if (kept) {
     if (outbox::Item* item = find(in_hand_)) *item = *kept;
   }
+  auto line = store_.line();
+  if (!line) return line.failure();
+  // Another line than the one we left there is a person's wish, made by a command.
+  if (!(*line == stored_line_)) line_ = stored_line_ = *line;
   for (const auto& [id, ended] : unkept_) {
     if (outbox::Item* item = find(id)) *item = ended;
   }
@@ -91,8 +96,14 @@ outbox::Item* Carrier::find(std::int64_t id) {
   return item == items_.end() ? nullptr : &*item;
 }
 
+Outcome Carrier::update(const outbox::Item& item) {
+  auto done = store_.update(item, line_);
+  if (done) stored_line_ = line_;
+  return done;
+}
+
 Outcome Carrier::keep(const outbox::Item& item) {
-  if (auto done = store_.update(item, line_); !done) return done;
+  if (auto done = update(item); !done) return done;
   if (outbox::Item* known = find(item.id)) *known = item;
   drop_closed();
   return Done{};
@@ -105,7 +116,7 @@ void Carrier::drop_closed() {
 Outcome Carrier::keep_unkept() {
   while (!unkept_.empty()) {
     const auto first = unkept_.begin();
-    if (auto done = store_.update(first->second, line_); !done) return done;
+    if (auto done = update(first->second); !done) return done;
     unkept_.erase(first);
   }
   return Done{};

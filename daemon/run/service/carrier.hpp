@@ -43,6 +43,7 @@ class Carrier {
 
  private:
   outbox::Item* find(std::int64_t id);
+  Outcome update(const outbox::Item& item);
   Outcome keep(const outbox::Item& item);
   void drop_closed();
   /// Writes down the ends of conversations that the store did not take at their time.
@@ -53,8 +54,8 @@ class Carrier {
   std::shared_ptr<const settings::Settings> settings_;
   store::Store& store_;
   Send send_;
-  std::vector<outbox::Item> items_;  // waiting, sending, in doubt
-  outbox::Line line_;
+  std::vector<outbox::Item> items_;              // waiting, sending, in doubt
+  outbox::Line line_, stored_line_;              // the second as it stands in the store
   std::int64_t in_hand_ = 0;                     // at the worker, 0 for none
   std::map<std::int64_t, outbox::Item> unkept_;  // ended, not yet stored, by id
   std::uint64_t draws_ = 0;

@@ -107,7 +107,8 @@ Instant DeskWork::turn(Instant now, bool clock_set) {
     kept.troubles.push_back(done.failure());
   }
   log_kept(kept);
-  if (kept.letters > 0) {
+  // With each scan too: a command may have put a letter back to waiting, or a review in.
+  if (kept.letters > 0 || scan) {
     if (auto done = carrier_->refresh(); !done) log_once("outbox", done.failure().sentence());
   }
   for (const std::string& sentence : carrier_->carry(now)) log_info(sentence);

@@ -109,10 +109,23 @@ Outcome Keeper::take_diary(const field::Diary& diary) {
 
 Outcome Keeper::store_batch(const std::string& station, Batch& batch) {
   auto intake = store_.add_samples(station, batch.samples, batch.notes);
-  if (!intake) return intake.failure();
+  if (!intake) {
+    remake_hours_of_memory(station, batch);
+    return intake.failure();
+  }
   batch = Batch{};
   if (!intake->earliest) return Done{};
   return remake_hours(station, *intake->earliest, *intake->latest);
+}
+
+/// Decisions do not wait for a store that takes no samples: hours are made from memory too.
+void Keeper::remake_hours_of_memory(const std::string& station, const Batch& batch) {
+  if (batch.samples.empty()) return;
+  const auto [first, last] =
+      std::minmax_element(batch.samples.begin(), batch.samples.end(),
+                          [](const auto& a, const auto& b) { return a.time < b.time; });
+  // When nothing can be read either, the failure of the batch has said so.
+  if (auto done = remake_hours(station, first->time, last->time); !done) return;
 }
 
 Outcome Keeper::remake_hours(const std::string& station, Instant earliest, Instant latest) {
@@ -122,6 +135,11 @@ Outcome Keeper::remake_hours(const std::string& station, Instant earliest, Insta
   auto samples =
       store_.samples(station, from - weather::context_before, Instant(to) + weather::context_after);
   if (!samples) return samples.failure();
+  const Batch& waiting = batches_[station];
+  if (!waiting.samples.empty()) {
+    samples->insert(samples->end(), waiting.samples.begin(), waiting.samples.end());
+    *samples = weather::standing(std::move(*samples));
+  }
   std::vector<Instant> times;
   for (const auto& sample : *samples) times.push_back(sample.time);
   lookout_.add_sample_times(station, times);
