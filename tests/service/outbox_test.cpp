@@ -103,27 +103,6 @@ TEST_CASE("hour, ledger and letters of a decision are stored together") {
   }));
 }
 
-TEST_CASE("a failing transaction keeps neither the hour nor what was said nor its letter") {
-  Bench bench;
-  bench.open(sown);
-  store::Decision decision;
-  weather::Hour hour;
-  hour.start = hour_of(noon);
-  decision.hours["bench"].push_back(hour);
-  decision.letters.push_back(item_of("one", alerts::Severity::severe, noon));
-  auto bad = item_of("two", alerts::Severity::severe, noon);
-  bad.id = 99;  // was stored already: not a new letter
-  bad.state = outbox::State::sent;
-  decision.letters.push_back(bad);
-  if (!bench.desk->store().save(decision)) {
-    CHECK(bench.letters().empty());
-    CHECK(bench.stored_hours().empty());
-  } else {
-    CHECK(bench.letters().size() == 2);
-    CHECK(bench.stored_hours().size() == 1);
-  }
-}
-
 TEST_CASE("the folder gets one .eml for each letter, in the turn that decides it") {
   Bench bench;
   bench.open(sown);

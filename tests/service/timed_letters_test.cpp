@@ -101,7 +101,8 @@ TEST_CASE("a service that slept at the time: the review follows, the daily line 
     CHECK(decided(bench, "weekly").back() == "2026-07-14 12:00");
     bench.turn(farm_time("2026-07-14 12:05"));
     CHECK(decided(bench, "weekly").size() == weeks + 1);
-    bench.live(Weather{}, down, farm_time("2026-07-14 12:10"), hours{43});
+    bench.drop("bench-late.csv", readings(Weather{}, down, farm_time("2026-07-14 12:10")));
+    bench.turn(farm_time("2026-07-14 12:10"));
     bench.turn(farm_time("2026-07-14 19:00"));
     CHECK(decided(bench, "daily").size() == before + 1);
   }

@@ -64,7 +64,7 @@ void add_screens(CLI::App& app, Invocation& call) {
   letters->add_option("--retry", call.retry, "put a parked letter back to waiting, by its number");
   letters->add_option("--seen", call.seen,
                       "a letter has been seen: no reminders at its level (never fewer raises)");
-  letters->add_flag("--lines", call.lines, "one JSON object a line");
+  add_tables(letters, call);
 }
 
 void add_diary(CLI::App& app, Invocation& call) {
