@@ -62,9 +62,9 @@ std::string hours_short(const season::HeatDay& day, const risk::HeatRules& rules
     const std::string text = words.threshold(limit);
     return text.substr(0, text.find(glue));
   };
-  return "; h at " + bare(rules.sustained) + ", " + bare(rules.severe) + ", " +
-         words.threshold(rules.extreme) + ": " + std::to_string(*day.hours_32) + ", " +
-         std::to_string(*day.hours_35) + ", " + std::to_string(*day.hours_38);
+  return "; h at " + bare(rules.sustained) + "/" + bare(rules.severe) + "/" +
+         words.threshold(rules.extreme) + ": " + std::to_string(*day.hours_32) + "/" +
+         std::to_string(*day.hours_35) + "/" + std::to_string(*day.hours_38);
 }
 
 std::string heat_line(const FieldStatus& status, const Words& words) {

@@ -55,23 +55,6 @@ std::vector<std::string> attention_of(const service::Lookout& lookout, const sto
   return sentences;
 }
 
-/// What was last said of each episode that is still open.
-std::vector<alerts::Said> unclosed_of(const service::Lookout& lookout) {
-  std::vector<alerts::Said> unclosed;
-  for (const alerts::Episode& episode : lookout.episodes()) {
-    if (!episode.open()) continue;
-    const alerts::Said* last = nullptr;
-    for (const alerts::Said& said : lookout.ledger()) {
-      if (said.kind == episode.kind && said.subject == episode.subject &&
-          said.at >= episode.start) {
-        last = &said;
-      }
-    }
-    if (last != nullptr) unclosed.push_back(*last);
-  }
-  return unclosed;
-}
-
 struct View {
   store::Store store;
   service::Lookout lookout;
@@ -98,7 +81,7 @@ Exit now(const Invocation& call) {
   auto view = view_of(settings, time);
   if (!view) return say(view.failure());
   const auto attention = attention_of(view->lookout, view->store, time);
-  const auto unclosed = unclosed_of(view->lookout);
+  const auto unclosed = service::unclosed_of(view->lookout);
   std::cout << letters::compose_now(view->lookout.desk(time), unclosed, attention);
   return attention.empty() ? Exit::done : Exit::attention;
 }

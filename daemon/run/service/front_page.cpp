@@ -65,26 +65,24 @@ void FrontPage::refresh(const Lookout& lookout, const store::Store& store, Insta
   shown_ = now;
   const settings::Settings& settings = lookout.settings();
   const letters::Desk desk = lookout.desk(now);
-  Period week = week_before(settings.calendar, now);
+  const Period week = week_before(settings.calendar, now);
   const letters::Review review = make_review(lookout, store, week, now);
-  week.first += std::chrono::days{1};  // the chart runs up to today
-  week.last += std::chrono::days{1};
-  const letters::Review recent = make_review(lookout, store, week, now);
 
   page::PageContent content;
   content.farm = settings.farm;
   content.made = made_text(settings.calendar, now);
-  content.now_text = letters::compose_now(desk, {}, {});
+  const auto unclosed = unclosed_of(lookout);
+  content.now_text = letters::compose_now(desk, unclosed, {});
   content.review_text = letters::compose_review(review, desk);
   content.caution = letters::standing_caution(letters::Language::english);
   content.json = json_of(desk);
-  for (const letters::FieldReview& field : recent.fields) {
+  for (const letters::FieldReview& field : review.fields) {
     letters::ChartReader reader;
     reader.field = field.status.field;
     reader.units = settings.units;
     reader.thresholds = desk.heat_rules.at(reader.field);
     const auto svg = drawing::to_svg(letters::week_chart(reader, field.days, field.humid_days));
-    if (svg) content.charts.push_back({"The last seven days of " + reader.field, *svg});
+    if (svg) content.charts.push_back({"Seven days of " + reader.field, *svg});
   }
   page_->show(std::move(content));
 }

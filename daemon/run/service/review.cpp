@@ -107,6 +107,23 @@ void add_letters(letters::Review& review, const store::Store& store, const Span&
 
 }  // namespace
 
+/// What was last said of each episode that is still open.
+std::vector<alerts::Said> unclosed_of(const Lookout& lookout) {
+  std::vector<alerts::Said> unclosed;
+  for (const alerts::Episode& episode : lookout.episodes()) {
+    if (!episode.open()) continue;
+    const alerts::Said* last = nullptr;
+    for (const alerts::Said& said : lookout.ledger()) {
+      if (said.kind == episode.kind && said.subject == episode.subject &&
+          said.at >= episode.start) {
+        last = &said;
+      }
+    }
+    if (last != nullptr) unclosed.push_back(*last);
+  }
+  return unclosed;
+}
+
 Period week_before(const Calendar& calendar, Instant now) {
   const CivilDay today = calendar.day_of(now);
   return Period{week_title(iso_week_of(today - days{7})), today - days{7}, today - days{1}};

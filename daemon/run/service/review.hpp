@@ -14,6 +14,9 @@ struct Period {
   CivilDay first{}, last{};  // both included
 };
 
+/// What was last said of each episode that is still open.
+std::vector<alerts::Said> unclosed_of(const Lookout& lookout);
+
 /// The seven whole days before the day of `now`, named after the ISO 8601 week of the first.
 Period week_before(const Calendar& calendar, Instant now);
 /// The ISO 8601 week of "2026-W28"; nothing for another text or a week that does not exist.
