@@ -172,6 +172,7 @@ bool DeskWork::look_into_drop(const settings::Station& station, Source& source, 
     }
     notes.insert(note_of(name, bookmark));
   }
+  if (look.troubles.empty()) source.last_trouble.clear();
   for (const Failure& trouble : look.troubles) note_trouble(name, trouble.sentence());
   take_readings(name, look.readings, notes, now);
   return look.more;

@@ -13,6 +13,7 @@ namespace {
 
 constexpr auto reach_before_sowing = std::chrono::days{3};
 constexpr auto ledger_reach = std::chrono::days{400};
+constexpr std::ptrdiff_t most_in_memory = 200'000;  // samples of a station: 4 months of minutes
 constexpr auto remade_at_once = std::chrono::days{20};
 
 std::string text_of(Instant at) { return std::to_string(at.time_since_epoch().count()); }
@@ -81,6 +82,10 @@ void Keeper::take(const std::string& station, const std::vector<weather::Sample>
   Batch& batch = batches_[station];
   if (batch.samples.empty() && batch.notes.empty()) batch.since = now;
   batch.samples.insert(batch.samples.end(), samples.begin(), samples.end());
+  // While the store fails the oldest go first: their files can be read again, memory cannot grow.
+  if (std::ssize(batch.samples) > most_in_memory) {
+    batch.samples.erase(batch.samples.begin(), batch.samples.end() - most_in_memory / 2);
+  }
   for (const auto& [key, value] : notes) batch.notes[key] = value;
 }
 
