@@ -80,7 +80,9 @@ bool is_ripe(const Phenology& crop, const Plan& plan) {
 /// A field past ripe, or sown long ago, or harvested is not watched.
 void update_watch(State& state, const Plan& plan) {
   constexpr auto sown_long_ago = std::chrono::days{240};
-  const bool ripe = is_ripe(state.crop, plan);
+  // What was ripe stays so when the station falls silent afterwards: a gap makes no crop younger.
+  const bool ripe =
+      state.crop.known() ? is_ripe(state.crop, plan) : state.ripe_since.has_value();
   if (!ripe) {
     state.ripe_since.reset();
   } else if (!state.ripe_since) {

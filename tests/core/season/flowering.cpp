@@ -157,3 +157,14 @@ TEST_CASE("ripe by the estimate alone does not silence a field whose note is hel
   CHECK(told.state.crop.part == Part::window);
   CHECK(told.state.watch == Watch::watched);
 }
+
+TEST_CASE("a ripe field stays ripe when its station falls silent afterwards") {
+  const Plan plan = plan_at_greenwich();
+  // 10 °C·d a day: ripe (1300) after 130 days; then 40 days without a reading.
+  const auto silent_later = [](int n) { return n < 135 * 24 ? cool(n) : std::nullopt; };
+  const Told told = tell(plan, 175 * 24, silent_later);
+  CHECK_FALSE(told.state.crop.known());  // 40 of 175 days were not seen
+  CHECK(told.state.watch == Watch::ripe);
+  REQUIRE(told.state.ripe_since);
+  CHECK((*told.state.ripe_since - plan.field.sown).count() == 129);
+}
