@@ -20,6 +20,7 @@ Instant noon_of(const Plan& plan, CivilDay day) {
 /// The field was not watched for too long: the note says where it stands, the past is forgotten.
 void anchor(Phenology& crop, const crop::Observation& seen) {
   crop.time = seen.reached;
+  crop.day_ends.clear();
   crop.belief = crop::Belief{1.0, seen.sd};
   crop.held.reset();
   crop.unseen = 0;
@@ -197,6 +198,15 @@ WindowEdges window_edges(const Phenology& crop, const Plan& plan) {
   return result;
 }
 
+std::optional<CivilDay> crossed_on(const Phenology& crop, double thermal_time) {
+  if (crop.day_ends.empty() || crop.day_ends.back().second < thermal_time) return std::nullopt;
+  const auto crossing =
+      std::find_if(crop.day_ends.begin(), crop.day_ends.end(),
+                   [&](const auto& day_end) { return day_end.second >= thermal_time; });
+  const bool known_before = crossing != crop.day_ends.begin();
+  return known_before ? std::optional(crossing->first) : std::nullopt;
+}
+
 PhenologyHour advance(Phenology& crop, const Plan& plan, const DiaryView& diary, const Air& air,
                       CivilDay day) {
   PhenologyHour result;
@@ -210,6 +220,11 @@ PhenologyHour advance(Phenology& crop, const Plan& plan, const DiaryView& diary,
       return crop::share_opened(100.0 * (t.value - odds.begins) / odds.lasts);
     };
     result.flower_share = opened(crop.time) - opened(before);
+  }
+  if (crop.day_ends.empty() || crop.day_ends.back().first != day) {
+    crop.day_ends.emplace_back(day, crop.time.value);
+  } else {
+    crop.day_ends.back().second = crop.time.value;
   }
   const Part part = part_of(crop, plan, day);
   remember_dates(crop, plan, day, part);

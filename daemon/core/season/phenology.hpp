@@ -5,6 +5,8 @@
 #include <array>
 #include <cstddef>
 #include <optional>
+#include <utility>
+#include <vector>
 
 #include "core/crop/belief.hpp"
 #include "core/season/diary_view.hpp"
@@ -47,20 +49,21 @@ struct HeldNote {
 constexpr std::array<int, 6> told_stages{9, 51, 60, 65, 69, 89};
 
 struct Phenology {
-  ThermalTime time;                    // sum up to the end of the last hour
-  int hours = 0;                       // since sowing
-  int unseen = 0;                      // without temperature, since sowing or anchoring
-  int filled = 0;                      // of these, filled from neighbouring days
+  ThermalTime time;  // sum up to the end of the last hour
+  int hours = 0;     // since sowing
+  int unseen = 0;    // without temperature, since sowing or anchoring
+  int filled = 0;    // of these, filled from neighbouring days
   bool scouted = false;
   crop::Belief belief;
   std::optional<HeldNote> held;
-  std::size_t next_note = 0;           // index into the diary's notes
-  std::optional<CivilDay> done;        // "flowers-done" began: the window closes at this day's end
+  std::size_t next_note = 0;     // index into the diary's notes
+  std::optional<CivilDay> done;  // "flowers-done" began: the window closes at this day's end
   std::optional<CivilDay> last_note;
   std::optional<int> last_note_stage;
   UnitMemory units;
   std::array<ClockHour, 24> by_clock;  // by UTC hour of day, which keeps to the sun
   std::array<std::optional<CivilDay>, told_stages.size()> reached;
+  std::vector<std::pair<CivilDay, double>> day_ends;  // thermal time so far, since sowing or anchor
   std::optional<CivilDay> window_first, window_last;
   Part part = Part::before;
 
@@ -70,11 +73,16 @@ struct Phenology {
   double stage(const Plan& plan) const;
 };
 
+/// The past day on which thermal time crossed a value, by what is believed now: a later note moves
+/// it, unlike `reached`, which keeps what was believed then. Nothing while it is not crossed, and
+/// for what lies before the days that are known.
+std::optional<CivilDay> crossed_on(const Phenology& crop, double thermal_time);
+
 /// What one hour did.
 struct PhenologyHour {
-  double unit = 0;            // °C
-  double flower_share = 0;    // of the season's flowers, opened in this hour
-  bool note_was_held = false; // a note was held now
+  double unit = 0;             // °C
+  double flower_share = 0;     // of the season's flowers, opened in this hour
+  bool note_was_held = false;  // a note was held now
 };
 
 /// Takes one more hour in: notes whose noon has come first, then the hour's unit.

@@ -35,9 +35,13 @@ FlowerStatus flower_status(const State& state, const Plan& plan) {
   if (!flower.window_first) flower.window_first = expected_day(state, edges.opens.value);
   if (!flower.window_last) flower.window_last = expected_day(state, edges.closes.value);
   if (crop.done) flower.window_last = crop.done;
-  flower.flower_first = crop.reached[2] ? crop.reached[2] : expected_day(state, odds.begins);
-  flower.flower_last =
-      crop.reached[4] ? crop.reached[4] : expected_day(state, odds.begins + odds.lasts);
+  const auto crossing = [&](double needed, std::size_t stage) {
+    if (crop.time.value < needed) return expected_day(state, needed);
+    const auto crossed = crossed_on(crop, needed);
+    return crossed ? crossed : crop.reached[stage];
+  };
+  flower.flower_first = crossing(odds.begins, 2);
+  flower.flower_last = crossing(odds.begins + odds.lasts, 4);
   const double daily = crop.units.mean_14_days();
   if (daily > 0) flower.flower_first_days = odds.sd_begin / daily;
   if (crop.part == Part::window && crop.window_first) {

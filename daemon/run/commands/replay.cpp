@@ -7,6 +7,7 @@
 #include <set>
 
 #include "core/alerts/stations.hpp"
+#include "core/crop/development.hpp"
 #include "core/season/fold.hpp"
 #include "run/commands/common.hpp"
 
@@ -83,14 +84,17 @@ ordered_json alert_line(const alerts::Episode& episode, const alerts::Change& ch
 
 void add_stages(Events& events, const season::Plan& plan, const season::State& state) {
   for (std::size_t i = 0; i < season::told_stages.size(); ++i) {
-    const auto& date = state.crop.reached[i];
-    if (!date) continue;
+    if (!state.crop.reached[i]) continue;
+    const double needed =
+        crop::requirement(season::told_stages[i], plan.traits.needs).value * state.crop.belief.mean;
+    const auto crossed = season::crossed_on(state.crop, needed);
+    const CivilDay date = crossed.value_or(*state.crop.reached[i]);
     ordered_json line;
     line["what"] = "stage";
     line["field"] = plan.field.name;
     line["stage"] = season::told_stages[i];
-    line["date"] = day_text(*date);
-    events.push_back({plan.calendar.start_of(*date), 1, line});
+    line["date"] = day_text(date);
+    events.push_back({plan.calendar.start_of(date), 1, line});
   }
 }
 

@@ -1,5 +1,7 @@
 // The flowering window through the fold: edges, scouting, held notes, an unknown stage. All by
 // hand from science §5 at 10 °C·d a day, so that thermal time at noon of day n is 10 n + 5.
+#include <cmath>
+
 #include "scene.hpp"
 #include "support/catch.hpp"
 
@@ -167,4 +169,19 @@ TEST_CASE("a ripe field stays ripe when its station falls silent afterwards") {
   CHECK(told.state.watch == Watch::ripe);
   REQUIRE(told.state.ripe_since);
   CHECK((*told.state.ripe_since - plan.field.sown).count() == 129);
+}
+
+TEST_CASE("a note moves the date of first anthers back to where it puts it") {
+  const Plan plan = plan_at_greenwich();
+  // 10 °C·d a day: 700 is crossed on day 69 by the prior; the note says day 76.
+  field::Diary diary;
+  diary.notes.push_back(note(plan, 76, 60, true));
+  const Told told = tell(plan, 80 * 24, cool, diary);
+  const FieldStatus seen = status(told.state, plan, DiaryView(diary, plan.place()));
+  const double needed = 700 * told.state.crop.belief.mean;
+  REQUIRE(seen.flower.flower_first);
+  const auto day = (*seen.flower.flower_first - plan.field.sown).count();
+  CHECK(day == static_cast<long>(std::ceil(needed / 10.0)) - 1);
+  CHECK(day > 72);  // without the history it would still be day 69
+  CHECK(day <= 76);
 }
