@@ -150,3 +150,15 @@ TEST_CASE("settings that are faulty at the start: 2, each fault named, nothing i
   CHECK(holds(ended.err, "nonsense"));
   CHECK(folder.names("store").empty());
 }
+
+TEST_CASE("the review is mailed through a running service, which keeps its store to itself") {
+  Folder folder;
+  settings_in(folder, talking());
+  Service service(folder.path());
+  REQUIRE(service.told("READY=1"));
+  const auto mailed = program::run({"review", "--mail"}, folder.path());
+  INFO(mailed.out << mailed.err);
+  CHECK(mailed.status == 0);
+  CHECK(holds(mailed.out, "were put into the outbox"));
+  CHECK(service.running());
+}

@@ -88,7 +88,10 @@ Result<field::Irrigation> irrigation_of(const settings::Settings& settings,
     } else if (call.method == "furrow") {
       irrigation.method = field::Method::furrow;
     } else {
-      return refuse("--method", "'" + call.method + "' is none of overhead, drip, furrow");
+      return refuse("--method", call.method.empty()
+                                    ? "the settings say irrigation = \"none\" of this field; say "
+                                      "overhead, drip or furrow"
+                                    : "'" + call.method + "' is none of overhead, drip, furrow");
     }
   }
   if (!call.depth.empty() && call.depth != "unknown") {

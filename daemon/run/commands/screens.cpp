@@ -72,6 +72,28 @@ Result<View> view_of(const SettingsPointer& settings, Instant now) {
   return view;
 }
 
+/// The service carries what lies in the outbox.
+Exit put_into_outbox(const settings::Settings& settings,
+                     const std::vector<letters::Letter>& letters, Instant now) {
+  if (!settings.mail) {
+    return say(Failure{"mail the review", settings.path, "there is no [mail] table",
+                       "it was only printed"});
+  }
+  auto store = open_to_write(settings);
+  if (!store) return say(store.failure());
+  store::Decision decision;
+  for (const letters::Letter& letter : letters) {
+    outbox::Item item;
+    item.letter = letter;
+    item.next_try = now;
+    decision.letters.push_back(std::move(item));
+  }
+  if (auto done = store->save(decision); !done) return say(done.failure());
+  std::cout << decision.letters.size()
+            << " letters were put into the outbox; the service carries them.\n";
+  return Exit::done;
+}
+
 }  // namespace
 
 Exit now(const Invocation& call) {
@@ -102,30 +124,23 @@ Exit review(const Invocation& call) {
     }
     period = *week;
   }
-  auto view = view_of(settings, time);
-  if (!view) return say(view.failure());
-  const letters::Desk desk = view->lookout.desk(time);
-  const letters::Review facts = service::make_review(view->lookout, view->store, period, time);
-  std::cout << letters::compose_review(facts, desk);
-  if (call.mail) {
-    if (!settings->mail) {
-      return say(Failure{"mail the review", settings->path, "there is no [mail] table",
-                         "it was only printed"});
-    }
-    auto store = open_to_write(*settings);
-    if (!store) return say(store.failure());
-    store::Decision decision;
-    for (const auto& letter : letters::compose_weekly(facts, settings->recipients, desk)) {
-      outbox::Item item;
-      item.letter = letter;
-      item.next_try = time;
-      decision.letters.push_back(std::move(item));
-    }
-    if (auto done = store->save(decision); !done) return say(done.failure());
-    std::cout << decision.letters.size() << " letters were put into the outbox; the service "
-              << "carries them.\n";
+  std::vector<letters::Letter> to_mail;
+  int parked = 0;
+  {
+    // The store is closed again before it is opened to write: one process, one way at a time.
+    auto view = view_of(settings, time);
+    if (!view) return say(view.failure());
+    const letters::Desk desk = view->lookout.desk(time);
+    const letters::Review facts = service::make_review(view->lookout, view->store, period, time);
+    std::cout << letters::compose_review(facts, desk);
+    parked = facts.letters_parked;
+    if (call.mail) to_mail = letters::compose_weekly(facts, settings->recipients, desk);
   }
-  return facts.letters_parked > 0 ? Exit::attention : Exit::done;
+  if (call.mail) {
+    const Exit mailed = put_into_outbox(*settings, to_mail, time);
+    if (mailed != Exit::done) return mailed;
+  }
+  return parked > 0 ? Exit::attention : Exit::done;
 }
 
 }  // namespace antherd::commands
