@@ -22,6 +22,7 @@ struct StationStory {
   std::optional<Instant> last_reading;
   std::vector<std::string> fields;  // that it watches
   std::vector<std::string> fields_in_window;
+  std::map<std::string, std::string> stand_in;  // field → its other station that has fresh readings
   std::string source;        // "drop folder drop/", "http://192.168.1.20/now.json"
   int refused_rows = 0;      // in the last 24 h
   std::string last_trouble;  // of the source, e.g. "connection refused"

@@ -42,6 +42,10 @@ std::string notice_words(const Telling& telling) {
   return kind_words(telling.kind);
 }
 
+bool goes_on(const Telling& telling) {
+  return !telling.changes.empty() && telling.changes.back().phase != alerts::Phase::closed;
+}
+
 std::vector<std::string> happened(const std::vector<Telling>& tellings, const Words& words) {
   std::vector<std::string> lines;
   for (const Telling& telling : tellings) {
@@ -62,8 +66,25 @@ std::vector<std::string> happened(const std::vector<Telling>& tellings, const Wo
       }
       lines.push_back(line);
     }
+    if (goes_on(telling))
+      lines.push_back("Now: " + who + kind_words(telling.kind) + " still lasts");
   }
   return lines;
+}
+
+/// A station whose trouble is told late and is not over: nothing past about that.
+bool silent_still(const Telling& telling) {
+  return telling.kind == Kind::no_data && goes_on(telling);
+}
+
+std::string tonight_of(const Telling& worst, const FieldStatus* status) {
+  if (status != nullptr) return tonight_and_mildew(*status);
+  if (silent_still(worst)) {
+    return "Tonight: it still lasts; what hangs on this station is not watched. Go by your own "
+           "thermometer.";
+  }
+  if (goes_on(worst)) return "Tonight: it still lasts. See antherd now.";
+  return "Tonight: nothing hangs on this news any more.";
 }
 
 /// Both hazards of each field that the news is about.
@@ -109,16 +130,19 @@ Part late_part(const std::vector<Telling>& tellings, const Words& words) {
     part.lead = "Learned late, " + kind_words(worst.kind) + " ended";
   }
   part.name = plain(worst.subject);
-  const std::string figure =
+  std::string figure =
       worst.figure ? figure_words(worst.kind, *worst.figure, worst.subject, words) : "";
+  // Of a silence that lasts the first hours say too little.
+  if (silent_still(worst)) figure = "silent since " + words.when(worst.start);
   const Instant when = gravest_moment(worst);
   const std::string at = date_and_time(when, words);
-  part.rest = (figure.empty() ? "" : figure + " ") + at.substr(at.find(glue) + 1) +
+  part.rest = (figure.empty() ? "" : figure + " ") +
+              (silent_still(worst) ? "" : at.substr(at.find(glue) + 1)) +
               (status == nullptr ? "" : ", " + flower_tag(*status));
   part.first = part.name + ": " + (status == nullptr ? "" : flower_state(*status) + ", ") +
-               "learned late: " + what + (figure.empty() ? "" : ", " + figure) + ", " + at + ".";
-  part.tonight = status == nullptr ? "Tonight: nothing hangs on this news any more."
-                                   : tonight_and_mildew(*status);
+               "learned late: " + what + (figure.empty() ? "" : ", " + figure) +
+               (silent_still(worst) ? "" : ", " + at) + ".";
+  part.tonight = tonight_of(worst, status);
   part.sections.push_back({"LEARNED LATE",
                            "These readings or notes came in more than 12 h after their time. Had "
                            "they come in time, each would have had its own letter.",
@@ -134,8 +158,11 @@ Part late_part(const std::vector<Telling>& tellings, const Words& words) {
   part.next =
       "Why so late? See the station's data path: antherd check. New changes get their own "
       "letters at once.";
-  part.brief = status == nullptr ? "See antherd now." : tonight_in_brief(*status);
-  part.still = "This was already past when it was decided.";
+  part.brief = status == nullptr
+                   ? (goes_on(worst) ? "It still lasts: see antherd now." : "See antherd now.")
+                   : tonight_in_brief(*status);
+  part.still = goes_on(worst) ? "This still lasted when it was decided."
+                              : "This was already past when it was decided.";
   return part;
 }
 

@@ -75,10 +75,17 @@ Letter letter_of(const std::vector<Telling>& tellings, const Recipient& recipien
                  const Words& words) {
   Letter letter = envelope(tellings, recipient, words.desk());
   letter.kind = alerts::name_of(tellings.front().kind);
-  const Part worst = part_of(brought_up(tellings.front(), words.desk()), words);
+  Part worst = part_of(brought_up(tellings.front(), words.desk()), words);
   std::vector<Part> others;
   for (std::size_t i = 1; i < tellings.size(); ++i) {
     others.push_back(part_of(brought_up(tellings[i], words.desk()), words));
+  }
+  const bool others_can_rise = std::any_of(
+      tellings.begin() + 1, tellings.end(),
+      [](const Telling& telling) { return !over(telling) && telling.level < Level::extreme; });
+  if (tellings.front().level == Level::extreme && others_can_rise) {
+    worst.next = "A letter at once if a field not yet at Extreme rises; a reminder after " +
+                 duration(words.desk().remind_after) + " while it lasts; word when it eases.";
   }
   fill(letter, worst, others, recipient, words);
   return letter;

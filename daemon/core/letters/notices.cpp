@@ -164,7 +164,7 @@ void streak(Part& part, const Telling& telling, const FieldStatus* status, const
       {"WATER", status == nullptr ? "" : water_in_humid(*status, words), {}, true},
       {"LOG",
        "Not so? See what is logged and take back what did not run.",
-       {water_command(telling.subject, "--list"), water_command(telling.subject, "--undo")},
+       {water_command(telling.subject, "--list"), water_command(telling.subject, "--undo NUMBER")},
        true}};
   part.next =
       "A letter at once if the mildew level rises. This notice is not repeated night by "

@@ -27,13 +27,18 @@ std::string in_short(const FieldReview& field, const Words& words) {
     if (day.hours_35.value_or(0) > 0) ++hot;
     if (day.t_max && (!top || *day.t_max > *top)) top = day.t_max;
   }
-  for (const season::HumidDay& day : field.humid_days) mildew = std::max(mildew, day.level);
+  bool judged = false;
+  for (const season::HumidDay& day : field.humid_days) {
+    mildew = std::max(mildew, day.level);
+    judged = judged || day.judged;
+  }
   std::vector<std::string> said{flower_state(field.status)};
   said.push_back(top ? "at most " + words.temperature(*top, rules) : "no temperature seen");
   if (hot > 0)
     said.push_back(count(hot, "day") + " at " + words.threshold(rules.severe) + " or more");
-  said.push_back("heat " + level_word(heat));
-  said.push_back("mildew " + level_word(mildew));
+  // What nobody saw is not "below Moderate".
+  said.push_back("heat " + (top || heat > Level::none ? level_word(heat) : "not seen"));
+  said.push_back("mildew " + (judged || mildew > Level::none ? level_word(mildew) : "not judged"));
   const int missing = field.hours_expected - field.hours_valid;
   said.push_back(missing > 0 ? count(missing, "hour") + " not seen" : "every hour seen");
   std::string text = plain(field.status.field) + ": ";

@@ -28,7 +28,11 @@ std::string drawn(const Row& row) {
   return line + "\n";
 }
 
-std::string level_cell(Level level) { return level == Level::none ? "." : level_word(level); }
+/// What nobody saw is a dash, not a dot; a level that was held through a gap stands.
+std::string level_cell(Level level, bool seen) {
+  if (level != Level::none) return level_word(level);
+  return seen ? "." : "-";
+}
 
 std::string count_cell(const std::optional<int>& n) { return n ? std::to_string(*n) : "-"; }
 
@@ -56,16 +60,16 @@ Row row_of(const season::HeatDay* heat, const season::HumidDay* humid, CivilDay 
        {&season::HeatDay::hours_32, &season::HeatDay::hours_35, &season::HeatDay::hours_38}) {
     row.cells.push_back(heat != nullptr ? count_cell(heat->*hours) : "-");
   }
-  row.cells.push_back(heat != nullptr ? level_cell(heat->level) : "-");
+  row.cells.push_back(heat != nullptr ? level_cell(heat->level, heat->t_max.has_value()) : "-");
   if (humid == nullptr || !humid->judged) {
     row.cells.insert(row.cells.end(),
-                     {"-", "-", humid == nullptr ? "-" : level_cell(humid->level), "-"});
+                     {"-", "-", humid == nullptr ? "-" : level_cell(humid->level, false), "-"});
     return row;
   }
   const bool water = humid->water.value_or(false);
   row.cells.push_back(humid->infection ? number(*humid->infection, 1) + (water ? "w" : "") : "-");
   row.cells.push_back(number(humid->score, 1));
-  row.cells.push_back(level_cell(humid->level));
+  row.cells.push_back(level_cell(humid->level, true));
   row.cells.push_back(!humid->dry_out ? "-" : *humid->dry_out ? "yes" : "no");
   return row;
 }

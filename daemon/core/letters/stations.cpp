@@ -38,6 +38,36 @@ std::string flower_end(const Words& words, const StationStory* story) {
   return status == nullptr ? "" : ", " + flower_tag(*status);
 }
 
+/// The fields that nobody watches while the station is silent.
+std::vector<std::string> unwatched(const StationStory& story) {
+  std::vector<std::string> fields;
+  for (const std::string& field : story.fields) {
+    if (!story.stand_in.contains(field)) fields.push_back(field);
+  }
+  return fields;
+}
+
+/// What another station sees meanwhile. Nothing where there is none.
+std::string stood_in(const StationStory* story) {
+  std::vector<std::string> said;
+  if (story == nullptr) return "";
+  for (const auto& [field, other] : story->stand_in) {
+    said.push_back(capital(plain(field)) + " is watched by its other station, " + plain(other) +
+                   ", meanwhile: warnings come, and may fit the field less well.");
+  }
+  return join(said);
+}
+
+/// Who sees heat and wet leaves while the station is silent.
+std::string tonight_unseen(const StationStory* story) {
+  const std::string fields = story == nullptr ? "" : names_of_fields(unwatched(*story));
+  if (story != nullptr && fields.empty() && !story->fields.empty()) {
+    return "Tonight: another station stands in for " + names_of_fields(story->fields) + ".";
+  }
+  return "Tonight: nobody is watching " + (fields.empty() ? "its fields" : fields) +
+         "; go by your own thermometer.";
+}
+
 Section each_field(const Words& words, const StationStory* story, bool blind) {
   Section section{"FIELDS", "", {}, true, {}};
   if (story == nullptr) return section;
@@ -52,8 +82,9 @@ Section each_field(const Words& words, const StationStory* story, bool blind) {
       held.push_back("mildew warning open at " + level_word(status->humid.episode->level));
     }
     if (held.empty()) held.push_back("no warning open");
-    section.lines.push_back(plain(field) + ": " + flower_state(*status) +
-                            (blind ? "; when last seen, " : "; ") + list(held));
+    section.lines.push_back(
+        plain(field) + ": " + flower_state(*status) +
+        (blind && !story->stand_in.contains(field) ? "; when last seen, " : "; ") + list(held));
   }
   return section;
 }
@@ -82,7 +113,8 @@ Part no_data_open(const Telling& telling, const Words& words) {
   const Instant since =
       story != nullptr && story->last_reading ? *story->last_reading : telling.start;
   const std::string length = duration(std::max(Seconds{0}, words.desk().now - since));
-  const std::string fields = story == nullptr ? "" : names_of_fields(story->fields);
+  const std::string fields = story == nullptr ? "" : names_of_fields(unwatched(*story));
+  const bool covered = story != nullptr && !story->fields.empty() && fields.empty();
   const bool reminder = telling.saying == Saying::reminder;
   Part part;
   part.lead = (reminder ? "Still no data " : "No data ") + severity_word(telling.severity);
@@ -91,13 +123,15 @@ Part no_data_open(const Telling& telling, const Words& words) {
   part.first = plain(telling.subject) +
                (never ? ": no reading has ever come; expected since " : ": no reading since ") +
                words.when(since) + " (" + length + ").";
-  part.tonight = "Tonight: nobody is watching " + (fields.empty() ? "its fields" : fields) +
-                 "; go by your own thermometer.";
+  part.tonight = tonight_unseen(story);
   std::vector<std::string> silent;
   if (reminder) silent.push_back("A reminder: told first after " + words.when(telling.start) + ".");
-  silent.push_back(
-      "Heat and wet leaves are not seen now, and no warning about them can come. "
-      "No letter about heat or mildew means nothing while this lasts.");
+  if (!covered) {
+    silent.push_back(
+        "Heat and wet leaves are not seen now, and no warning about them can come. "
+        "No letter about heat or mildew means nothing while this lasts.");
+  }
+  if (const std::string others = stood_in(story); !others.empty()) silent.push_back(others);
   if (story != nullptr && !story->fields_in_window.empty()) {
     silent.push_back("In their flowering window: " + names_of_fields(story->fields_in_window) +
                      ".");
@@ -113,11 +147,23 @@ Part no_data_open(const Telling& telling, const Words& words) {
        false}};
   part.next = "Word when readings are back; a reminder after " +
               duration(words.desk().remind_after) + " while it lasts.";
-  part.brief = (fields.empty() ? "Its fields" : capital(fields)) +
-               " not watched. Check power, file, address.";
+  part.brief = (covered          ? "Another station stands in."
+                : fields.empty() ? "Its fields not watched."
+                                 : capital(fields) + " not watched.") +
+               std::string(" Check power, file, address.");
   part.still = "When this was decided the station had been silent since " +
                words.day(words.calendar().day_of(since)) + " " + words.clock(since) + ".";
   return part;
+}
+
+/// Whether another station saw the fields through the silence: its hours are not missing.
+bool seen_through(const Words& words, const StationStory* story) {
+  return story != nullptr && !story->fields.empty() &&
+         std::all_of(story->fields.begin(), story->fields.end(), [&](const std::string& field) {
+           const FieldStatus* status = status_of(words.desk(), field);
+           return status != nullptr && story->stand_in.contains(field) &&
+                  status->data.hours_missing_24 == 0;
+         });
 }
 
 std::string unseen(const Words& words, const StationStory* story) {
@@ -151,14 +197,17 @@ Part no_data_ended(const Telling& telling, const Words& words) {
       "readings since " + words.when(telling.about) + ", " + gone + flower_end(words, story);
   part.first = plain(telling.subject) + ": readings are back since " + words.when(telling.about) +
                ", " + gone + ".";
-  part.tonight = "Tonight: the watch is on again; the missing hours stay unknown.";
+  part.tonight = seen_through(words, story)
+                     ? "Tonight: the watch goes on; another station stood in."
+                     : "Tonight: the watch is on again; the missing hours stay unknown.";
   part.sections = {{"MISSING",
                     "Silent from " + words.when(telling.start) + ". " + unseen(words, story),
                     {},
                     true},
                    each_field(words, story, false)};
   part.next = "Letters about heat and mildew come again as usual.";
-  part.brief = "Missing hours stay unknown.";
+  part.brief =
+      seen_through(words, story) ? "Another station stood in." : "Missing hours stay unknown.";
   part.still = "Readings were back when this was decided.";
   return part;
 }

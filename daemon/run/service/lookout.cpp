@@ -142,6 +142,15 @@ letters::StationStory Lookout::story_of(const StationMemory& station, Instant no
       story.fields_in_window.push_back(name);
     }
   }
+  for (const std::string& name : story.fields) {
+    for (const std::string& other : settings_->field(name)->field.stations) {
+      const auto last = last_sample(other);
+      const bool fresh = last && now - *last < settings_->station(other)->station.silent_after;
+      if (other == station.station.name || !fresh) continue;
+      story.stand_in[name] = other;
+      break;
+    }
+  }
   const settings::Station* setting = settings_->station(station.station.name);
   if (setting != nullptr) story.source = setting->source();
   story.refused_rows = station.news.refused_rows_24;

@@ -1,4 +1,5 @@
 // Who gets which letter, what merges, and by what name a letter is known.
+#include <algorithm>
 #include <set>
 
 #include "rules.hpp"
@@ -20,6 +21,13 @@ alerts::Telling southern(alerts::Telling telling) {
 
 bool has(const std::string& text, const std::string& part) {
   return text.find(part) != std::string::npos;
+}
+
+/// The text as one line, for sentences that may be wrapped anywhere.
+std::string flat(std::string text) {
+  std::replace(text.begin(), text.end(), '\n', ' ');
+  for (std::size_t at; (at = text.find("  ")) != std::string::npos;) text.erase(at, 1);
+  return text;
 }
 
 letters::Recipient only(const std::string& field) {
@@ -188,4 +196,72 @@ TEST_CASE("the screen of two fields stays a screen") {
   CHECK(std::count(text.begin(), text.end(), '\n') <= 24);
   CHECK(has(text, "and 6 more"));
   CHECK(rules::broken_by_text(text, scene::july(14)).empty());
+}
+
+TEST_CASE("a silence told late that still lasts is no news of the past") {
+  const letters::Desk desk = scene::desk();
+  alerts::Telling telling = scene::silent(Saying::learned_late);
+  telling.late = true;
+  using alerts::Phase;
+  telling.changes = {{scene::at(12, 15), Phase::opened, Level::severe, {}, 7.0, ""}};
+  const auto lasting = letters::compose(std::vector{telling}, std::vector{scene::owner()}, desk);
+  REQUIRE(lasting.size() == 1);
+  CHECK(has(lasting[0].subject, "silent since"));
+  CHECK(has(lasting[0].body, "Tonight: it still lasts"));
+  CHECK(has(lasting[0].body, "no data still lasts"));
+  CHECK_FALSE(has(flat(lasting[0].body), "nothing hangs on this news"));
+  telling.changes.push_back({scene::at(13, 2), Phase::closed, Level::none, {}, {}, ""});
+  const auto over = letters::compose(std::vector{telling}, std::vector{scene::owner()}, desk);
+  CHECK(has(over.at(0).body, "nothing hangs on this news"));
+  CHECK_FALSE(has(over.at(0).body, "still lasts"));
+}
+
+TEST_CASE("a silent station's letter says which fields another station watches") {
+  letters::Desk desk = scene::desk();
+  letters::StationStory& story = desk.stations["bench"];
+  story.stand_in["south bench"] = "creek";
+  const std::vector tellings{scene::silent(Saying::opened)};
+  const auto some = letters::compose(tellings, std::vector{scene::owner()}, desk).at(0);
+  CHECK(has(some.body, "Tonight: nobody is watching north bench; go"));
+  CHECK(has(flat(some.body), "South bench is watched by its other station, creek"));
+  story.stand_in["north bench"] = "creek";
+  const auto all = letters::compose(tellings, std::vector{scene::owner()}, desk).at(0);
+  CHECK_FALSE(has(all.body, "nobody is watching"));
+  CHECK_FALSE(has(flat(all.body), "no warning about them can come"));
+  CHECK(has(flat(all.body), "stands in for north bench and south bench"));
+}
+
+TEST_CASE("with the worst field at Extreme another field may still rise") {
+  const letters::Desk desk = scene::desk();
+  const std::vector both{scene::heat(Saying::raised, Level::extreme),
+                         southern(scene::heat(Saying::reminder, Level::severe))};
+  const auto mixed = letters::compose(both, std::vector{scene::owner()}, desk).at(0);
+  CHECK_FALSE(has(flat(mixed.body), "cannot rise further"));
+  CHECK(has(flat(mixed.body), "a field not yet at Extreme"));
+  const std::vector one{scene::heat(Saying::raised, Level::extreme)};
+  CHECK(has(letters::compose(one, std::vector{scene::owner()}, desk).at(0).body,
+            "cannot rise further"));
+}
+
+TEST_CASE("a week that nobody saw is not called below Moderate") {
+  letters::Review review = scene::quiet_review();
+  for (season::HeatDay& day : review.fields[0].days) {
+    const CivilDay date = day.date;
+    day = season::HeatDay{};
+    day.date = date;
+  }
+  for (season::HumidDay& day : review.fields[0].humid_days) {
+    const CivilDay date = day.date;
+    day = season::HumidDay{};
+    day.date = date;
+  }
+  review.fields[0].coolest.clear();
+  review.fields[0].hours_valid = 0;
+  const std::string text = letters::compose_review(review, scene::desk());
+  CHECK(has(flat(text), "heat not seen, mildew not judged"));
+  const std::size_t row = text.find("Mon  6 Jul");
+  REQUIRE(row != std::string::npos);
+  const std::string line = text.substr(row, text.find('\n', row) - row);
+  CHECK(std::count(line.begin(), line.end(), '-') == 10);  // each column but the date
+  CHECK_FALSE(has(line, "."));
 }
