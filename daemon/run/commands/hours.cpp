@@ -96,7 +96,8 @@ Result<Window> window_of(const settings::Settings& settings, const Invocation& c
 void print_for_people(const ordered_json& row, const Calendar& calendar, const season::Air& air) {
   const auto cell = [&](const char* key, int width) {
     const std::string text = row[key].is_null() ? "-" : row[key].dump();
-    const std::string cut = text.substr(0, static_cast<std::size_t>(width) - 1);  // cells never touch
+    const std::string cut =
+        text.substr(0, static_cast<std::size_t>(width) - 1);  // cells never touch
     return std::string(static_cast<std::size_t>(width) - cut.size(), ' ') + cut;
   };
   std::cout << farm_text(calendar, air.start) << cell("temperature_c", 7) << cell("humidity_pct", 7)
