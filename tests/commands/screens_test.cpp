@@ -146,3 +146,42 @@ TEST_CASE("without a store the reading commands say so and end with 1") {
   }
   CHECK(folder.names("store").empty());
 }
+
+TEST_CASE("water says what the entry changes, at the time of the newest reading") {
+  Season season;
+  // Four wet evenings are logged; the fifth is the one that is asked about.
+  for (const char* day : {"2026-07-09", "2026-07-10", "2026-07-11"}) {
+    const std::string start = std::string(day) + " 20:00";
+    REQUIRE(season.run({"water", "north", "--start", start, "--end", "23:00"}).status == 0);
+  }
+  const std::vector<std::string> entry{"water", "north", "--start", "2026-07-12 20:00",
+                                       "--end", "23:00"};
+  auto trial = entry;
+  trial.emplace_back("--try");
+  const auto tried = season.run(trial);
+  INFO(tried.out << tried.err);
+  CHECK(holds(tried.out, "Sprinkler nights of the last five: 4 (without it 3)"));
+  const auto written = season.run(entry);
+  INFO(written.out << written.err);
+  CHECK(written.out.substr(written.out.find("Sprinkler")) ==
+        tried.out.substr(tried.out.find("Sprinkler")));
+}
+
+TEST_CASE("only from a Monday on are seven days named after a week") {
+  Season season;  // now is a Monday: the seven days before it are a week of the calendar
+  CHECK(holds(season.run({"review"}).out, "Week 2026-W28 (Mon 6 Jul to Sun 12 Jul)"));
+  season.bench.live(Weather{}, season.now, season.now + hours{24}, minutes{15});
+  const auto tuesday = season.run({"review"}).out;
+  CHECK(holds(tuesday, "Last 7 days (Tue 7 Jul to Mon 13 Jul)"));
+  CHECK(!holds(tuesday, "2026-W28 ("));
+}
+
+TEST_CASE("a replay from the store sees no silence where the station spoke") {
+  Season season;  // 18 days without a gap
+  const auto replayed = season.run({"replay"});
+  INFO(replayed.out << replayed.err);
+  CHECK(replayed.status == 0);
+  CHECK(holds(replayed.out, "Heat"));
+  CHECK(!holds(replayed.out, "o data "));  // neither "No data" nor "Still no data"
+  CHECK(!holds(replayed.out, "Data back"));
+}

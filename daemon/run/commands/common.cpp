@@ -174,6 +174,29 @@ Past past_from_folders(const SettingsPointer& settings, Instant now) {
   return past;
 }
 
+namespace {
+
+/// When a station spoke since `from`, for a replay: from its samples, and before the oldest that
+/// are kept from its hours, twice an hour so that no silence appears where there was none.
+Outcome add_times_of_season(Past& past, const store::Store& store, Instant from) {
+  for (auto& [name, hours] : past.hours) {
+    const auto samples = store.samples(name, from, Instant::max());
+    if (!samples) return samples.failure();
+    auto& times = past.times[name];
+    times.clear();
+    const Instant kept_from = samples->empty() ? Instant::max() : samples->front().time;
+    for (const weather::Hour& hour : hours) {
+      if (hour.n == 0 || Instant(hour.start) + std::chrono::hours{1} > kept_from) continue;
+      times.push_back(Instant(hour.start));
+      times.push_back(Instant(hour.start) + std::chrono::minutes{30});
+    }
+    for (const weather::Sample& sample : *samples) times.push_back(sample.time);
+  }
+  return Done{};
+}
+
+}  // namespace
+
 Result<Past> past_from_store(const SettingsPointer& settings, const store::Store& store,
                              Instant now) {
   Past past;
@@ -226,7 +249,12 @@ Result<Past> read_past(const SettingsPointer& settings, const Invocation& call) 
         "NAME=FILE.csv";
     return failure;
   }
-  return past_from_store(settings, *store, present(*settings, store));
+  auto past = past_from_store(settings, *store, present(*settings, store));
+  if (!past) return past;
+  if (const Outcome read = add_times_of_season(*past, *store, Instant::min()); !read) {
+    return read.failure();
+  }
+  return past;
 }
 
 Result<store::Store> open_to_read(const settings::Settings& settings) {

@@ -104,17 +104,21 @@ Result<field::Irrigation> irrigation_of(const settings::Settings& settings,
 }
 
 /// The humid level tomorrow with and without it, where the store knows enough.
-void say_what_it_does(const SettingsPointer& settings, const field::Irrigation& irrigation) {
+/// @param written  its number in the log, where it was written
+void say_what_it_does(const SettingsPointer& settings, const field::Irrigation& irrigation,
+                      std::optional<std::int64_t> written) {
   if (irrigation.method != field::Method::overhead) {
     std::cout << field::name_of(irrigation.method)
               << " wets no leaf: no part of the mildew watch.\n";
     return;
   }
-  const Instant now = clock::wall_now();
   const auto store = open_to_read(*settings);
   if (!store) return;
-  const auto past = past_from_store(settings, *store, now);
+  const Instant now = present(*settings, store);
+  auto past = past_from_store(settings, *store, now);
   if (!past) return;
+  std::erase_if(past->diaries[irrigation.field].irrigations,
+                [&](const field::Irrigation& known) { return known.id == written; });
   Past with = *past;
   with.diaries[irrigation.field].irrigations.push_back(irrigation);
   const auto level_in = [&](const Past& facts) {
@@ -238,6 +242,7 @@ Exit water(const Invocation& call) {
     return wrong(irrigation.failure().what, irrigation.failure().why,
                  "antherd water north --start \"2026-07-14 20:00\" --end 23:00 --depth \"0.5 in\"");
   }
+  std::optional<std::int64_t> written;
   const std::string sentence = sentence_of(*irrigation, settings->calendar);
   if (call.try_only) {
     std::cout << "Tried, not written: " << plan->field.name << ", " << sentence << ".\n";
@@ -246,10 +251,11 @@ Exit water(const Invocation& call) {
     if (!store) return say(store.failure());
     const auto id = store->add(*irrigation);
     if (!id) return say(id.failure());
+    written = *id;
     std::cout << "Written as entry " << *id << ": " << plan->field.name << ", " << sentence
               << ".\n";
   }
-  say_what_it_does(settings, *irrigation);
+  say_what_it_does(settings, *irrigation, written);
   return Exit::done;
 }
 

@@ -254,6 +254,20 @@ void print_letters(const Past& past, HourStart until, bool full) {
   }
 }
 
+/// The end of the last hour that counts: a reading that only begins an hour is no hour, and behind
+/// the last reading nothing is known, not even a silence.
+HourStart end_of(const Past& past) {
+  HourStart end = HourStart::min();
+  for (const auto& [name, times] : past.times) {
+    const settings::Station* station = past.settings->station(name);
+    if (times.empty() || station == nullptr) continue;
+    // 20 min: with three quarters of its readings an hour counts.
+    const Seconds reach = std::max<Seconds>(station->station.interval, std::chrono::minutes{20});
+    end = std::max(end, hour_of(times.back() + reach));
+  }
+  return end;
+}
+
 }  // namespace
 
 Exit replay(const Invocation& call) {
@@ -274,7 +288,7 @@ Exit replay(const Invocation& call) {
                                       .quiet = {}});
     past->settings = std::make_shared<const settings::Settings>(std::move(with_reader));
   }
-  const HourStart until = hour_of(*last) + std::chrono::hours{1};
+  const HourStart until = end_of(*past);
   if (call.lines) {
     print_lines(*past, until);
   } else {

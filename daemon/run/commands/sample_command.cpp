@@ -85,7 +85,9 @@ Exit check_sample(const Invocation& call) {
   std::cout << "# A settings block for " << call.sample
             << ". Every line is a guess: look at each.\n"
             << block;
-  for (const std::string& doubt : guess.doubts) std::cout << "# Look at " << doubt << ".\n";
+  for (const std::string& doubt : guess.doubts) {
+    std::cout << "# Look at " << doubt << (doubt.ends_with('?') ? "\n" : ".\n");
+  }
   if (!guess.missing.empty()) {
     std::cout << "# Not found: ";
     for (const std::string& key : guess.missing) std::cout << key << " ";

@@ -126,7 +126,13 @@ std::vector<alerts::Said> unclosed_of(const Lookout& lookout) {
 
 Period week_before(const Calendar& calendar, Instant now) {
   const CivilDay today = calendar.day_of(now);
-  return Period{week_title(iso_week_of(today - days{7})), today - days{7}, today - days{1}};
+  Period period{"Last 7 days", today - days{7}, today - days{1}};
+  // Only from a Monday on are these days a week of the calendar.
+  const std::chrono::sys_days first{period.first.time_since_epoch()};
+  if (std::chrono::weekday{first} == std::chrono::Monday) {
+    period.title = week_title(iso_week_of(period.first));
+  }
+  return period;
 }
 
 std::optional<Period> iso_week(const std::string& text) {
