@@ -45,7 +45,7 @@ void add_service(CLI::App& app, Invocation& call) {
       ->check(CLI::Range(1, 86400));
   CLI::App* check =
       add(app, "check", "read the settings, name every fault, print the plan that was understood",
-          "antherd check --settings config/antherd.toml");
+          "antherd check --settings config/shortest.toml");
   check->add_option("--sample", call.sample,
                     "look at a station's CSV file and print a settings block that reads it");
   add(app, "mailtest", "send one letter to each recipient and explain what fails",
