@@ -136,9 +136,9 @@ Part late_part(const std::vector<Telling>& tellings, const Words& words) {
   if (silent_still(worst)) figure = "silent since " + words.when(worst.start);
   const Instant when = gravest_moment(worst);
   const std::string at = date_and_time(when, words);
-  part.rest = (figure.empty() ? "" : figure + " ") +
-              (silent_still(worst) ? "" : at.substr(at.find(glue) + 1)) +
-              (status == nullptr ? "" : ", " + flower_tag(*status));
+  const std::string moment = at.substr(at.find(glue) + 1);
+  part.rest = silent_still(worst) ? figure : (figure.empty() ? "" : figure + " ") + moment;
+  if (status != nullptr) part.rest += ", " + flower_tag(*status);
   part.first = part.name + ": " + (status == nullptr ? "" : flower_state(*status) + ", ") +
                "learned late: " + what + (figure.empty() ? "" : ", " + figure) +
                (silent_still(worst) ? "" : ", " + at) + ".";

@@ -207,6 +207,7 @@ TEST_CASE("a silence told late that still lasts is no news of the past") {
   const auto lasting = letters::compose(std::vector{telling}, std::vector{scene::owner()}, desk);
   REQUIRE(lasting.size() == 1);
   CHECK(has(lasting[0].subject, "silent since"));
+  CHECK(lasting[0].subject.back() != ' ');
   CHECK(has(lasting[0].body, "Tonight: it still lasts"));
   CHECK(has(lasting[0].body, "no data still lasts"));
   CHECK_FALSE(has(flat(lasting[0].body), "nothing hangs on this news"));
