@@ -79,6 +79,9 @@ std::string heat_line(const FieldStatus& status, const Words& words) {
 
 std::string mildew_line(const FieldStatus& status) {
   if (!status.humid.last) return "no humid day judged yet";
+  if (!status.humid.last->judged && status.humid.last->level == Level::none) {
+    return "not judged: the last humid day's data are missing";
+  }
   std::string text = level_short(status.humid.last->level);
   if (!status.humid.last->judged) text += ", last day not judged (data missing)";
   if (status.humid.last->r) text += ", score " + number(*status.humid.last->r, 1);

@@ -77,6 +77,9 @@ Result<field::Irrigation> irrigation_of(const settings::Settings& settings,
   if (!to) return refuse(end_given, to.failure().why);
   if (*to <= *from) return refuse("--end", "it is not after --start");
   if (*to - *from > std::chrono::hours{96}) return refuse("--end", "more than 96 h after --start");
+  if (*from > clock::wall_now() + std::chrono::days{7} && !settings.exercise) {
+    return refuse("--start '" + call.start + "'", "it lies more than 7 days ahead");
+  }
   irrigation.start = *from;
   irrigation.end = *to;
   irrigation.method = plan.field.irrigation;

@@ -15,13 +15,17 @@ constexpr auto letter_waits_long = std::chrono::hours{6};
 std::vector<std::string> attention_of(const service::Lookout& lookout, const store::Store& store,
                                       Instant now) {
   std::vector<std::string> sentences;
+  const letters::Desk desk = lookout.desk(now);
   for (const alerts::Episode& episode : lookout.episodes()) {
     if (!episode.open()) continue;
     if (episode.kind == alerts::Kind::no_data) {
       const auto last = lookout.last_sample(episode.subject);
-      sentences.push_back("Station " + episode.subject + " is silent" +
-                          (last ? " since " + farm_text(lookout.settings().calendar, *last) : "") +
-                          ": its fields are not watched.");
+      const auto& story = desk.stations.at(episode.subject);
+      const bool covered = story.stand_in.size() >= story.fields.size();
+      sentences.push_back(
+          "Station " + episode.subject + " is silent" +
+          (last ? " since " + farm_text(lookout.settings().calendar, *last) : "") +
+          (covered ? "; another station stands in." : ": its fields are not watched."));
     } else if (episode.kind == alerts::Kind::doubtful_sensor) {
       sentences.push_back("Station " + episode.subject + " reports doubtful values.");
     }

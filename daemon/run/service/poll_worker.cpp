@@ -4,9 +4,16 @@
 #include <utility>
 
 namespace antherd::service {
+namespace {
+
+constexpr int threads_at_once = 4;  // stations that may be slow at one time
+
+}  // namespace
 
 PollWorker::PollWorker(Report report, std::function<Instant()> now)
-    : report_(std::move(report)), now_(std::move(now)), thread_([this] { work(); }) {}
+    : report_(std::move(report)), now_(std::move(now)) {
+  for (int i = 0; i < threads_at_once; ++i) threads_.emplace_back([this] { work(); });
+}
 
 PollWorker::~PollWorker() { stop(); }
 
@@ -22,7 +29,9 @@ void PollWorker::stop() {
     stop_ = true;
     wake_.notify_all();
   }
-  if (thread_.joinable()) thread_.join();
+  for (std::thread& thread : threads_) {
+    if (thread.joinable()) thread.join();
+  }
 }
 
 void PollWorker::work() {

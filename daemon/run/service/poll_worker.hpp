@@ -1,5 +1,5 @@
-// One thread that asks the HTTP stations, one after the other. A slow station delays the others by
-// at most its 20 s; the loop is never delayed.
+// A few threads that ask the HTTP stations. A slow station holds one of them for at most its 20 s;
+// the others go on, and the loop is never delayed.
 #pragma once
 
 #include <atomic>
@@ -9,6 +9,7 @@
 #include <mutex>
 #include <string>
 #include <thread>
+#include <vector>
 
 #include "edge/station/poll.hpp"
 
@@ -18,7 +19,7 @@ class PollWorker {
  public:
   using Report = std::function<void(std::string station, station::Answer)>;
 
-  /// @param report  called in the worker's thread; must only post to the owner
+  /// @param report  called in a worker's thread; must only post to the owner
   /// @param now  the service's time, for stations without their own
   PollWorker(Report report, std::function<Instant()> now);
   ~PollWorker();
@@ -40,7 +41,7 @@ class PollWorker {
   std::mutex mutex_;
   std::condition_variable wake_;
   std::deque<Job> jobs_;
-  std::thread thread_;
+  std::vector<std::thread> threads_;
 };
 
 }  // namespace antherd::service
