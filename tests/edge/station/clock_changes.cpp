@@ -105,7 +105,7 @@ TEST_CASE("a whole year by local columns is the same as by UTC") {
   const auto shown = [](std::chrono::sys_seconds at) {
     const auto day = std::chrono::floor<std::chrono::days>(at);
     const std::chrono::year_month_day date{day};
-    char form[40];
+    char form[120];
     std::snprintf(form, sizeof form, "%04d-%02u-%02u %02d:00", static_cast<int>(date.year()),
                   static_cast<unsigned>(date.month()), static_cast<unsigned>(date.day()),
                   static_cast<int>((at - day) / Seconds{3600}));

@@ -269,7 +269,7 @@ TEST_CASE("a file of any size is read as its text would be") {
   std::string text = "time,temp,rh\n";
   for (int day = 1; day <= 28; ++day) {
     for (int minute = 0; minute < 1440; ++minute) {
-      char row[60];
+      char row[120];
       std::snprintf(row, sizeof row, "2026-02-%02d %02d:%02d:00,%d.25,%d.125\n", day, minute / 60,
                     minute % 60, minute % 40, day);
       text += row;

@@ -47,7 +47,7 @@ class Watch {
 };
 
 std::string row(int minute, int degrees = 20) {
-  char text[60];
+  char text[120];
   std::snprintf(text, sizeof text, "2026-06-01 %02d:%02d,%d,40\n", 10 + minute / 60, minute % 60,
                 degrees);
   return text;
@@ -253,7 +253,7 @@ TEST_CASE("too many files: the last by name are looked at and that is said") {
   Watch watch(folder);
   const std::size_t count = limits::files + 5;
   for (std::size_t i = 0; i < count; ++i) {
-    char name[40];
+    char name[120];
     std::snprintf(name, sizeof name, "f%06zu.csv", i);
     const int file = open((folder / name).c_str(), O_CREAT | O_WRONLY | O_CLOEXEC, 0600);
     REQUIRE(file >= 0);
