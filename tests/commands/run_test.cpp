@@ -108,7 +108,7 @@ TEST_CASE("strange files in the drop folder are named and the good one is used")
       readings(Weather{}, farm_time("2026-07-12 00:00"), farm_time("2026-07-12 12:00"));
   folder.write("drop/bench-good.csv", header + rows_of(samples));
   folder.write("drop/bench-nul.csv",
-               std::string(header) + std::string("2026-07-12 01:00,2\0002,50,0\n", 28));
+               std::string(header) + std::string("2026-07-12 01:00,2\0002,50,0\n", 26));
   folder.write("drop/bench-long.csv",
                header + std::string(10 * 1024 * 1024, '7') + "\n" + row_of(samples.back()));
   std::string wide = "\xFF\xFE";
