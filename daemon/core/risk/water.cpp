@@ -73,7 +73,7 @@ double stress(Millimetre depletion, Millimetre total, double share) {
 bool WaterAccount::known() const {
   const double all = total().value;
   if (all <= 0 || std::abs((depletion_dry - depletion).value) > all / 20.0) return false;
-  return !unknown_start || depletion.value <= 0.9 * all;
+  return !unknown_start || !ran_dry;
 }
 
 WaterAccount open_account(double water_per_metre, std::optional<double> held_at_sowing) {
@@ -103,6 +103,9 @@ std::optional<double> book_day(WaterAccount& account, const WaterDay& day) {
   const double ks_dry =
       book(account.depletion_dry, Millimetre(grown * (1 - account.initial_share_dry)),
            account.total(), share, use, known_income);
+  const double all = account.total().value;
+  if (account.depletion.value > 0.9 * all) account.ran_dry = true;
+  if (account.depletion_dry.value - use.value <= all / 20.0) account.ran_dry = false;
   if (!account.known()) return std::nullopt;
   return (ks + ks_dry) / 2.0;
 }

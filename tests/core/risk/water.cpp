@@ -94,6 +94,9 @@ TEST_CASE("an unknown start that only runs dry stays unknown, a known one is str
   }
   CHECK_FALSE(book_day(unknown, day));
   CHECK(*book_day(full, day) < 0.1);
+  // A few sprinkler evenings do not make it known, filling the root zone does.
+  CHECK_FALSE(book_day(unknown, WaterDay{65, Millimetre(6), {}, Millimetre(40), false}));
+  CHECK(book_day(unknown, WaterDay{65, Millimetre(6), {}, Millimetre(200), false}));
 }
 
 TEST_CASE("soil that roots reach later brings what it held at sowing") {
