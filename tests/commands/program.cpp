@@ -1,5 +1,6 @@
 // See program.hpp.
 #include "program.hpp"
+#include "support/paths.hpp"
 
 #include <fcntl.h>
 #include <poll.h>
@@ -21,14 +22,14 @@ namespace {
 
 using Clock = std::chrono::steady_clock;
 
-constexpr const char* binary = ANTHERD_BUILD "/daemon/antherd";
+const std::string binary = paths::build() + "/daemon/antherd";
 
 [[noreturn]] void become(const std::vector<std::string>& arguments, const std::string& folder) {
-  std::vector<char*> words{const_cast<char*>(binary)};
+  std::vector<char*> words{const_cast<char*>(binary.c_str())};
   for (const auto& argument : arguments) words.push_back(const_cast<char*>(argument.c_str()));
   words.push_back(nullptr);
   if (!folder.empty() && chdir(folder.c_str()) != 0) _exit(126);
-  execv(binary, words.data());
+  execv(binary.c_str(), words.data());
   _exit(127);
 }
 

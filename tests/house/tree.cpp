@@ -1,4 +1,5 @@
 #include "house/tree.hpp"
+#include "support/paths.hpp"
 
 #include <algorithm>
 #include <filesystem>
@@ -20,6 +21,8 @@ void read_folder(const fs::path& top, const fs::path& folder, std::vector<File>&
     const std::string name = entry.path().filename().string();
     if (entry.is_directory() && !entry.is_symlink()) {
       if (!name.starts_with(".") || name == ".ci") read_folder(top, entry.path(), files);
+    } else if (name == ".git") {
+      // of a second work tree a file: git's, not the project's
     } else if (entry.is_regular_file() && entry.file_size() <= (1u << 20)) {
       std::ifstream file(entry.path(), std::ios::binary);
       std::ostringstream text;
@@ -35,7 +38,7 @@ void read_folder(const fs::path& top, const fs::path& folder, std::vector<File>&
 const std::vector<File>& tree() {
   static const std::vector<File> files = [] {
     std::vector<File> found;
-    read_folder(ANTHERD_SOURCE, ANTHERD_SOURCE, found);
+    read_folder(paths::source(), paths::source(), found);
     std::sort(found.begin(), found.end(),
               [](const File& a, const File& b) { return a.path < b.path; });
     return found;
@@ -45,7 +48,7 @@ const std::vector<File>& tree() {
 
 std::vector<std::string> top_level() {
   std::vector<std::string> names;
-  for (const auto& entry : fs::directory_iterator(ANTHERD_SOURCE))
+  for (const auto& entry : fs::directory_iterator(paths::source()))
     names.push_back(entry.path().filename().string());
   std::sort(names.begin(), names.end());
   return names;

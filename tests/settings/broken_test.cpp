@@ -4,6 +4,7 @@
 
 #include "farm.hpp"
 #include "support/catch.hpp"
+#include "support/paths.hpp"
 
 using namespace antherd;
 
@@ -15,7 +16,7 @@ struct Case {
 };
 
 std::vector<Case> cases() {
-  std::ifstream file(ANTHERD_SOURCE "/tests/settings/broken.txt");
+  std::ifstream file(paths::source() + "/tests/settings/broken.txt");
   std::vector<Case> all(1);
   for (std::string line; std::getline(file, line);) {
     Case& current = all.back();

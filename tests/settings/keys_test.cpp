@@ -9,6 +9,7 @@
 #include "run/settings/time_form.hpp"
 #include "run/settings/url.hpp"
 #include "support/catch.hpp"
+#include "support/paths.hpp"
 
 using namespace antherd;
 using namespace antherd::settings;
@@ -68,7 +69,7 @@ TEST_CASE("zones by name and by offset") {
 }
 
 TEST_CASE("the complete example shows every key of the plain tables, used or commented out") {
-  std::ifstream file(ANTHERD_SOURCE "/config/antherd.toml");
+  std::ifstream file(paths::source() + "/config/antherd.toml");
   std::ostringstream stream;
   stream << file.rdbuf();
   const std::string text = stream.str();

@@ -6,6 +6,7 @@
 #include "farm.hpp"
 #include "run/settings/plan.hpp"
 #include "support/catch.hpp"
+#include "support/paths.hpp"
 
 using namespace antherd;
 using settings::Settings;
@@ -13,7 +14,7 @@ using settings::Settings;
 namespace {
 
 std::string text_of(const std::string& name) {
-  std::ifstream file(std::string(ANTHERD_SOURCE "/config/") + name);
+  std::ifstream file(paths::source() + "/config/" + name);
   std::ostringstream text;
   text << file.rdbuf();
   return text.str();

@@ -7,6 +7,7 @@
 
 #include "scene.hpp"
 #include "support/catch.hpp"
+#include "support/paths.hpp"
 
 using namespace antherd;
 using alerts::Kind;
@@ -16,7 +17,7 @@ using risk::Level;
 namespace {
 
 std::string file_of(const std::string& name) {
-  return std::string(ANTHERD_SOURCE) + "/tests/core/letters/expected/" + name + ".txt";
+  return paths::source() + "/tests/core/letters/expected/" + name + ".txt";
 }
 
 void compare(const std::string& name, const std::string& text) {

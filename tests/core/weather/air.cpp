@@ -1,7 +1,7 @@
 // Moist air against published tables and a general library.
 #include "core/weather/air.hpp"
 
-#include "table.hpp"
+#include "support/table.hpp"
 
 using namespace antherd;
 using namespace antherd::weather;

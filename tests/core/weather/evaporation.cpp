@@ -2,7 +2,7 @@
 #include "core/weather/evaporation.hpp"
 
 #include "core/weather/air.hpp"
-#include "table.hpp"
+#include "support/table.hpp"
 
 using namespace antherd;
 using namespace antherd::weather;

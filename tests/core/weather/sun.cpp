@@ -5,7 +5,7 @@
 #include <cstdio>
 
 #include "core/weather/evaporation.hpp"
-#include "table.hpp"
+#include "support/table.hpp"
 
 #if __has_include(<libnova/libnova.h>)
 #include <libnova/libnova.h>

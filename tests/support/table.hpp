@@ -1,24 +1,31 @@
-// Reads a table of expected numbers from tests/tables and checks one formula against it. Every row
-// brings a wrong answer that its tolerance must reject.
+// Reads a table of expected numbers from tests/tables and checks formulas against it. Every row
+// brings a wrong answer that its tolerance must reject. What the rows of a formula came to goes to
+// the outside checks that tests/run prints.
 #pragma once
 
+#include <algorithm>
 #include <cmath>
 #include <fstream>
 #include <map>
 #include <optional>
 #include <sstream>
 #include <string>
+#include <utility>
 #include <vector>
 
 #include "support/catch.hpp"
+#include "support/outside.hpp"
+#include "support/paths.hpp"
 
 namespace tables {
 
 /// One row, by column name; cells hold no commas.
 class Row {
  public:
-  explicit Row(std::map<std::string, std::string> cells) : cells_(std::move(cells)) {}
+  Row(std::string table, std::map<std::string, std::string> cells)
+      : table_(std::move(table)), cells_(std::move(cells)) {}
 
+  const std::string& table() const { return table_; }
   const std::string& text(const std::string& column) const { return cells_.at(column); }
   bool has(const std::string& column) const { return !text(column).empty(); }
   double number(const std::string& column) const {
@@ -28,6 +35,7 @@ class Row {
   }
 
  private:
+  std::string table_;
   std::map<std::string, std::string> cells_;
 };
 
@@ -44,7 +52,7 @@ inline std::vector<std::string> cells_of(const std::string& line) {
 }
 
 inline std::vector<Row> read(const std::string& file) {
-  std::ifstream in(std::string(ANTHERD_SOURCE) + "/tests/tables/" + file);
+  std::ifstream in(paths::source() + "/tests/tables/" + file);
   std::string line;
   REQUIRE(std::getline(in, line));
   const auto header = cells_of(line);
@@ -55,11 +63,40 @@ inline std::vector<Row> read(const std::string& file) {
     REQUIRE(cells.size() == header.size());
     std::map<std::string, std::string> by_name;
     for (std::size_t i = 0; i < cells.size(); ++i) by_name[header[i]] = cells[i];
-    rows.emplace_back(by_name);
+    rows.emplace_back(file, by_name);
   }
   REQUIRE(!rows.empty());
   return rows;
 }
+
+/// What the rows of one formula of one table came to; told when the test program ends.
+class Outcomes {
+ public:
+  static Outcomes& all() {
+    static Outcomes outcomes;
+    return outcomes;
+  }
+  void see(const Row& row, double got) {
+    Outcome& outcome = by_formula_[{row.table(), row.text("formula")}];
+    outcome.largest.see(got, row.number("expected"));
+    outcome.bound = std::max(outcome.bound, row.number("tolerance"));
+    outcome.unit = row.text("unit");
+  }
+  ~Outcomes() {
+    for (const auto& [key, outcome] : by_formula_) {
+      outside::report(key.second, "tests/tables/" + key.first, outcome.largest, outcome.bound,
+                      outcome.unit);
+    }
+  }
+
+ private:
+  struct Outcome {
+    outside::Largest largest;
+    double bound = 0;
+    std::string unit;
+  };
+  std::map<std::pair<std::string, std::string>, Outcome> by_formula_;
+};
 
 /// Holds what the program says against the row, and the row's wrong answer against its tolerance.
 inline void check(const Row& row, double got) {
@@ -70,6 +107,7 @@ inline void check(const Row& row, double got) {
   CHECK(std::abs(row.number("rejects") - expected) > tolerance);
   CHECK(row.has("origin"));
   CHECK(row.has("tolerance_reason"));
+  Outcomes::all().see(row, got);
 }
 
 }  // namespace tables
