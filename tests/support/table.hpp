@@ -29,12 +29,17 @@ class Row {
   const std::string& text(const std::string& column) const { return cells_.at(column); }
   bool has(const std::string& column) const { return !text(column).empty(); }
   double number(const std::string& column) const {
-    INFO(text("name") << ": " << column);
-    REQUIRE(has(column));
+    if (!has(column)) FAIL(table_ << ": no " << column << " in " << line());
     return std::stod(text(column));
   }
 
  private:
+  std::string line() const {
+    std::string all;
+    for (const auto& [column, cell] : cells_) all += column + " " + cell + "; ";
+    return all;
+  }
+
   std::string table_;
   std::map<std::string, std::string> cells_;
 };
@@ -51,22 +56,29 @@ inline std::vector<std::string> cells_of(const std::string& line) {
   return cells;
 }
 
-inline std::vector<Row> read(const std::string& file) {
-  std::ifstream in(paths::source() + "/tests/tables/" + file);
+/// The rows of a file anywhere; the part after its last "/" names the table.
+inline std::vector<Row> read_file(const std::string& path) {
+  std::ifstream in(path);
+  const std::string file = path.substr(path.rfind('/') + 1);
   std::string line;
+  INFO(path);
   REQUIRE(std::getline(in, line));
   const auto header = cells_of(line);
   std::vector<Row> rows;
   while (std::getline(in, line)) {
     const auto cells = cells_of(line);
-    INFO(file << ": " << line);
-    REQUIRE(cells.size() == header.size());
+    if (cells.size() != header.size()) FAIL(file << ": not a cell a column: " << line);
     std::map<std::string, std::string> by_name;
     for (std::size_t i = 0; i < cells.size(); ++i) by_name[header[i]] = cells[i];
     rows.emplace_back(file, by_name);
   }
   REQUIRE(!rows.empty());
   return rows;
+}
+
+/// The rows of a table of tests/tables.
+inline std::vector<Row> read(const std::string& file) {
+  return read_file(paths::source() + "/tests/tables/" + file);
 }
 
 /// What the rows of one formula of one table came to; told when the test program ends.

@@ -10,20 +10,6 @@
 using namespace antherd;
 using namespace antherd::crop;
 
-TEST_CASE("development unit follows the trapezoid") {
-  // By hand from science §5: base 3, plateau 19 from 22 to 30, zero again at 45 °C.
-  struct Row {
-    double t, unit, wrong;  // `wrong`: what a base of 4 or a plateau to 32 would give
-  };
-  for (const Row& row :
-       {Row{-5, 0, 1}, Row{3, 0, 0.5}, Row{3.5, 0.5, 0}, Row{13, 10, 9}, Row{22, 19, 18},
-        Row{26, 19, 23}, Row{30, 19, 27}, Row{37.5, 9.5, 11}, Row{45, 0, 1}, Row{50, 0, 1}}) {
-    INFO(row.t);
-    CHECK(development_unit(Celsius(row.t)) == Approx(row.unit).margin(1e-12));
-    CHECK_FALSE(development_unit(Celsius(row.t)) == Approx(row.wrong).margin(1e-12));
-  }
-}
-
 TEST_CASE("photoperiod slows the sensitive type only beyond its critical day") {
   // By hand: 1 − 0.008 · (15.35 − 14.35) = 0.992 (Präger et al. 2019 slope).
   const Traits early = *traits_of("early");
@@ -45,14 +31,6 @@ TEST_CASE("requirements and stages are linear between the listed ones and invert
   }
   CHECK(stage_at(ThermalTime(5000), coastal.needs, 1.0) == 89.0);
   CHECK(traits_of("unheard-of") == std::nullopt);
-}
-
-TEST_CASE("normal probabilities match tables of the normal distribution") {
-  // Abramowitz & Stegun, table 26.1 (from memory): Φ(1) = .84134, Φ(1.96) = .97500.
-  CHECK(normal_probability(0) == 0.5);
-  CHECK(normal_probability(1) == Approx(0.84134).margin(5e-6));
-  CHECK(normal_probability(1.96) == Approx(0.97500).margin(5e-6));
-  CHECK(normal_probability(-1.6448536) == Approx(0.05).margin(1e-8));
 }
 
 TEST_CASE("the flowering window opens at 5 % begun and closes at 95 % over") {

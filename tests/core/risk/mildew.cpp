@@ -38,30 +38,6 @@ DayWetness evaluated(const std::vector<DayHour>& day) {
 
 }  // namespace
 
-TEST_CASE("wetness needed follows the published form") {
-  // Magarey, Sutton & Thayer 2005; W(18) = Wmin at the optimum by construction, the others computed
-  // from the printed equation (science §11).
-  HumidRules published;
-  published.t_min = 7;
-  published.t_best = 18;
-  published.t_max = 30;
-  published.w_min = 10;
-  published.w_max = 42;
-  CHECK(*wetness_needed(Celsius(18), published) == Approx(10));
-  CHECK(*wetness_needed(Celsius(10), published) == Approx(19.74).margin(0.005));
-  CHECK(*wetness_needed(Celsius(25), published) == Approx(15.28).margin(0.005));
-  CHECK_FALSE(wetness_needed(Celsius(5), published));  // a textbook coding would print 42
-  CHECK_FALSE(wetness_needed(Celsius(35), published));
-  struct Row {
-    double t, w;
-  };
-  for (const Row& row : {Row{8, 6.353}, Row{10, 4.951}, Row{15, 4}, Row{20, 5.015}, Row{22, 6.663},
-                         Row{24, 11.948}}) {
-    CHECK(*wetness_needed(Celsius(row.t), rules) == Approx(row.w).margin(0.0005));
-  }
-  CHECK(*wetness_needed(Celsius(25.5), rules) == 12.0);  // never beyond Wmax
-}
-
 TEST_CASE("dew counts after sunrise, water from its first hour") {
   const double per_hour = 1.0 / *wetness_needed(Celsius(20), rules);
   SECTION("dew from 22:00 to 09:00 counts from sunrise on") {

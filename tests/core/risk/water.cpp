@@ -6,44 +6,6 @@
 using namespace antherd;
 using namespace antherd::risk;
 
-TEST_CASE("Hargreaves gives example 20 of FAO-56") {
-  // Lyon, July: 5.0 mm/d (from memory); the real equation gives 4.95 to 5.05 after rounding.
-  const Millimetre eto = hargreaves(Celsius(26.6), Celsius(14.8), 40.55);
-  CHECK(eto.value == Approx(5.0).margin(0.06));
-  CHECK_FALSE(eto.value == Approx(5.21).margin(0.06));  // 0.0023 taken as 0.0024
-  CHECK(hargreaves(Celsius(-30), Celsius(-30), 5).value == 0);
-}
-
-TEST_CASE("crop coefficient and roots follow the stages") {
-  CHECK(crop_coefficient(9) == Approx(0.52));
-  CHECK(crop_coefficient(51) == Approx(0.52));
-  CHECK(crop_coefficient(55.5) == Approx(0.76));
-  CHECK(crop_coefficient(60) == Approx(1.0));
-  CHECK(crop_coefficient(70) == Approx(1.0));
-  CHECK(crop_coefficient(82) == Approx(0.85));
-  CHECK(crop_coefficient(89) == Approx(0.70));
-  CHECK(root_depth(0).value == Approx(0.2));
-  CHECK(root_depth(34.5).value == Approx(0.6));
-  CHECK(root_depth(89).value == Approx(1.0));
-}
-
-TEST_CASE("soils hold the water of FAO-56 table 19") {
-  CHECK(*soil_water("silt loam") == Approx(160));
-  CHECK(*soil_water("sand") == Approx(80));
-  CHECK(*soil_water("clay") == Approx(160));
-  CHECK_FALSE(soil_water("gravel"));
-}
-
-TEST_CASE("stress begins where the readily available water ends") {
-  // FAO-56 eq. 84 by hand: (100 − 80)/(0.45 · 100) = 0.4444.
-  CHECK(stress(Millimetre(80), Millimetre(100), 0.55) == Approx(20 / 45.0));
-  CHECK(stress(Millimetre(55), Millimetre(100), 0.55) == 1.0);
-  CHECK(stress(Millimetre(100), Millimetre(100), 0.55) == 0.0);
-  // p at ETc 7.5 mm/d by hand: 0.55 + 0.04 · (5 − 7.5) = 0.45.
-  CHECK(readily_available_share(Millimetre(7.5)) == Approx(0.45));
-  CHECK(readily_available_share(Millimetre(20)) == Approx(0.1));
-}
-
 TEST_CASE("a full soil dries by its use and is filled by rain, the surplus drains") {
   WaterAccount account = open_account(160, 1.0);
   WaterDay day;
