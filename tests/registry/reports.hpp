@@ -16,6 +16,7 @@ namespace registry {
 struct Report {
   int file = 0;  // 0…23
   std::string station, time, temperature, dew_point;
+  std::string latitude, longitude, elevation;
 };
 
 /// All reports in the order of the files. Throws std::runtime_error where ncdump fails or a column
@@ -25,6 +26,9 @@ const std::vector<Report>& reports();
 /// The intake refuses years before 2000 (a clock that was never set), so the rows are moved by 28
 /// years, the cycle of the calendar: 2023-03-18 is a Saturday too, and no leap day is near.
 constexpr int years_moved = 28;
+
+/// Where a station stands that no report places; a quarter of the reports have no place.
+constexpr const char* nowhere[] = {"40.0", "-100.0", "300"};
 
 /// What the intake made of one station's rows, and what its settings say of it.
 struct Intake {
@@ -37,5 +41,7 @@ struct Intake {
 std::vector<Intake> take_in();
 /// The same of the first file's stations alone, the years left as they are.
 std::vector<Intake> take_in_unmoved();
+/// What the settings say when every station's place is put in as it was reported.
+std::vector<std::string> complaints_as_reported();
 
 }  // namespace registry

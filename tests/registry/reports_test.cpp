@@ -158,6 +158,13 @@ TEST_CASE("rows of a year before 2000 are refused by name, every one") {
   CHECK(reasons == std::set<std::string>{"time: year 1995 is outside 2000 to 2099"});
 }
 
+TEST_CASE("a reported place that is none on Earth is refused by name, alone among 2,094") {
+  const std::vector<std::string> complaints = registry::complaints_as_reported();
+  REQUIRE(complaints.size() == 1);
+  CHECK(complaints.front().find("[[station]] WUY, longitude: got the number -790.2") !=
+        std::string::npos);
+}
+
 TEST_CASE("every verdict of the real reports is SQL's, by station, hour, reason and count") {
   registry::Sql& sql = day().sql;
   check_same("select * from our_flag", "select * from flag");
