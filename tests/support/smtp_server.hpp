@@ -32,6 +32,7 @@ struct SmtpScript {
   /// letter), QUIT. What is not here is answered well.
   std::map<std::string, std::string> answers = {};
   bool hang_up_in_body = false;  // after the first bytes of the letter
+  std::chrono::milliseconds thinks{0};  // before each answer
 };
 
 class SmtpServer {
@@ -128,6 +129,7 @@ class SmtpServer {
 
   /// @return whether the conversation goes on
   bool say(const std::string& reply) {
+    if (script_.thinks.count() > 0) std::this_thread::sleep_for(script_.thinks);
     if (reply == hang_up) return false;
     if (reply == keep_silent) {
       while (receive()) {
