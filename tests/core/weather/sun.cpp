@@ -1,4 +1,4 @@
-// The sun against Meeus' worked example and against a general astronomy library.
+// The sun against Meeus' worked example and by hand; sun_library.cpp has the astronomy library.
 #include "core/weather/sun.hpp"
 
 #include <chrono>
@@ -6,11 +6,6 @@
 
 #include "core/weather/evaporation.hpp"
 #include "support/table.hpp"
-
-#if __has_include(<libnova/libnova.h>)
-#include <libnova/libnova.h>
-#define WITH_LIBNOVA
-#endif
 
 using namespace antherd;
 using namespace antherd::weather;
@@ -89,69 +84,3 @@ TEST_CASE("mean solar time is UTC and longitude") {
   CHECK(from_solar_time(west, Degree(-117.18)) == noon);
   CHECK(solar_time(noon, Degree(180)) == local_days{year{2026} / 7 / 2});
 }
-
-#ifdef WITH_LIBNOVA
-namespace {
-
-double julian_of(Instant at) {
-  return static_cast<double>(at.time_since_epoch().count()) / 86400.0 + 2440587.5;
-}
-
-/// The library's sun by VSOP87. It speaks of the equinox of 2000; precession brings it to the date.
-ln_equ_posn library_sun(Instant at) {
-  ln_equ_posn of_2000{}, of_date{};
-  ln_get_solar_equ_coords(julian_of(at), &of_2000);
-  ln_get_equ_prec(&of_2000, julian_of(at), &of_date);
-  return of_date;
-}
-
-double library_altitude(Instant at, const Place& place) {
-  ln_equ_posn sun = library_sun(at);
-  ln_lnlat_posn observer{place.longitude.value, place.latitude.value};
-  ln_hrz_posn horizontal{};
-  ln_get_hrz_from_equ(&sun, &observer, julian_of(at), &horizontal);
-  return horizontal.alt;
-}
-
-}  // namespace
-
-TEST_CASE("declination and right ascension agree with libnova") {
-  // The method promises 0.01° (Meeus ch. 25); an arcminute covers nutation handled apart. Without
-  // precession the year 2026 would be off by 0.36°, without the equation of centre by up to 1.9°.
-  for (Instant at = sys_days{year{1990} / 1 / 1}; at < sys_days{year{2060} / 1 / 1};
-       at += hours{24 * 37 + 5}) {
-    const ln_equ_posn theirs = library_sun(at);
-    const SunPosition ours = sun_position(at);
-    CHECK(std::abs(ours.declination.value - theirs.dec) < 0.0167);
-    CHECK(std::abs(std::remainder(ours.right_ascension.value - theirs.ra, 360.0)) < 0.0167);
-  }
-}
-
-TEST_CASE("the altitude agrees with libnova at every hour") {
-  // 0.03° is 7 s of the sky's turn; a longitude taken the wrong way round is off by tens of
-  // degrees, mean instead of true solar time by up to 4°.
-  for (const Place& place : places) {
-    for (Instant at = sys_days{year{2026} / 1 / 1}; at < sys_days{year{2027} / 1 / 1};
-         at += hours{61}) {
-      CHECK(std::abs(sun_altitude(at, place).value - library_altitude(at, place)) < 0.03);
-    }
-  }
-}
-
-TEST_CASE("at our rise and set libnova's sun stands at the horizon") {
-  // A horizon of −0.567° (a star's) would be off by 0.266°, sea level without refraction by 0.833°.
-  for (const Place& place : places) {
-    for (local_days day{year{2026} / 1 / 2}; day < local_days{year{2027} / 1 / 1};
-         day += days{11}) {
-      const SunDay sun = sun_day(day, place);
-      REQUIRE(sun.rise);
-      REQUIRE(sun.set);
-      CHECK(std::abs(library_altitude(*sun.rise, place) - -0.833) < 0.03);
-      CHECK(std::abs(library_altitude(*sun.set, place) - -0.833) < 0.03);
-      // The one comes up, the other goes down.
-      CHECK(library_altitude(*sun.rise + minutes{20}, place) > -0.7);
-      CHECK(library_altitude(*sun.set + minutes{20}, place) < -0.95);
-    }
-  }
-}
-#endif
