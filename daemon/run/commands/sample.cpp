@@ -4,27 +4,19 @@
 
 #include <algorithm>
 #include <cctype>
-#include <cmath>
+#include <cstdio>
 #include <optional>
 
+#include "edge/station/form.hpp"
 #include "edge/station/text.hpp"
-#include "run/settings/quantities.hpp"
+#include "run/commands/sample_columns.hpp"
+#include "run/commands/sample_time.hpp"
 
 namespace antherd::commands {
 namespace {
 
-constexpr std::size_t rows_looked_at = 400;
-
-std::string lower(std::string text) {
-  std::transform(text.begin(), text.end(), text.begin(),
-                 [](unsigned char c) { return static_cast<char>(std::tolower(c)); });
-  return text;
-}
-
-bool has(const std::string& text, std::initializer_list<const char*> words) {
-  return std::any_of(words.begin(), words.end(),
-                     [&](const char* word) { return text.find(word) != std::string::npos; });
-}
+constexpr std::size_t first_rows = 200;
+constexpr std::size_t rows_in_all = 2000;
 
 std::vector<std::string> cells_of(const std::string& line, char separator) {
   std::vector<std::string> cells(1);
@@ -42,166 +34,237 @@ std::vector<std::string> cells_of(const std::string& line, char separator) {
   return cells;
 }
 
-/// Numbers of one column; a decimal comma is read where the separator leaves room for it.
-std::vector<double> numbers_of(const SampleText& sample, std::size_t column) {
-  std::vector<double> numbers;
-  for (const auto& row : sample.rows) {
-    if (column >= row.size()) continue;
-    std::string cell = row[column];
-    if (sample.separator != ',') std::replace(cell.begin(), cell.end(), ',', '.');
-    if (const auto number = settings::parse_number(cell); number && std::abs(*number) < 9000) {
-      numbers.push_back(*number);
-    }
-  }
-  std::sort(numbers.begin(), numbers.end());
-  return numbers;
-}
-
-double at_share(const std::vector<double>& sorted, double share) {
-  if (sorted.empty()) return 0;
-  return sorted[static_cast<std::size_t>(share * static_cast<double>(sorted.size() - 1))];
-}
-
 std::string quoted(const std::string& text) {
   std::string result = "\"";
   for (const char c : text) result += c == '"' || c == '\\' ? std::string{'\\', c} : std::string{c};
   return result + '"';
 }
 
-std::optional<std::size_t> column_with(const SampleText& sample,
-                                       std::initializer_list<const char*> words,
-                                       std::initializer_list<const char*> but) {
-  for (std::size_t i = 0; i < sample.header.size(); ++i) {
-    const std::string name = lower(sample.header[i]);
-    if (has(name, words) && !has(name, but) && !numbers_of(sample, i).empty()) return i;
-  }
-  return std::nullopt;
+std::string short_text(double number) {
+  char text[40];
+  std::snprintf(text, sizeof text, "%.4g", number + 0.0);  // no -0
+  return text;
 }
 
-/// The pattern that a clock reading is written in, or nothing.
-std::optional<std::string> pattern_of(const std::string& cell) {
-  std::string shape;
-  for (const char c : cell) shape += std::isdigit(static_cast<unsigned char>(c)) ? '9' : c;
-  const auto starts = [&](const char* prefix) { return shape.rfind(prefix, 0) == 0; };
-  if (shape == "9999999999") return "unix";
-  if (shape == "9999999999999") return "unix_ms";
-  if (starts("9999-99-99T99:99")) return "iso";
-  std::string date;
-  std::size_t used = 0;
-  if (starts("9999-99-99")) {
-    date = "%Y-%m-%d", used = 10;
-  } else if (starts("9999/99/99")) {
-    date = "%Y/%m/%d", used = 10;
-  } else if (starts("99.99.9999")) {
-    date = "%d.%m.%Y", used = 10;
-  } else if (starts("99/99/9999")) {
-    date = "%m/%d/%Y", used = 10;
+std::vector<std::string> column_of(const SampleText& sample, std::size_t column) {
+  std::vector<std::string> cells;
+  for (const auto& row : sample.rows) {
+    if (column < row.size()) cells.push_back(row[column]);
   }
-  const std::string rest = shape.substr(used);
-  if (rest.empty()) return date.empty() ? std::nullopt : std::optional(date);
-  const std::string glue = used > 0 ? " " : "";
-  for (const auto& [form, pattern] :
-       {std::pair{"99:99:99", "%H:%M:%S"}, {"99:99", "%H:%M"}, {"9:99", "%H:%M"}}) {
-    if (rest == glue + form) return date + glue + pattern;
-    for (const char* zone : {" +9999", " -9999", "+9999", "-9999", "+99:99", "-99:99"}) {
-      if (rest != glue + form + zone) continue;
-      return date + glue + pattern + (zone[0] == ' ' ? " %z" : "%z");
+  return cells;
+}
+
+/// The columns that make up the time, one or a day and a clock; none where there is no such.
+std::vector<std::size_t> find_time(const SampleText& sample, TimeGuess& whole) {
+  std::vector<std::size_t> columns;
+  std::vector<TimeGuess> parts;
+  for (std::size_t i = 0; i < sample.header.size(); ++i) {
+    const auto part = guess_time_form(column_of(sample, i));
+    if (!part) continue;
+    if (part->date && part->clock) {
+      whole = *part;
+      return {i};
     }
+    const bool wanted = parts.empty() || (parts.size() == 1 && parts[0].date != part->date);
+    if (!wanted) continue;
+    columns.push_back(i);
+    parts.push_back(*part);
   }
-  return std::nullopt;
+  if (columns.size() != 2) return {};
+  whole = parts[0];
+  whole.form += " " + parts[1].form;
+  whole.zoned = parts[0].zoned || parts[1].zoned;
+  whole.utc = parts[0].utc || parts[1].utc;
+  whole.day_or_month = parts[0].day_or_month || parts[1].day_or_month;
+  return columns;
 }
 
 void guess_time(const SampleText& sample, SampleGuess& guess) {
-  const std::vector<std::string>& first = sample.rows.front();
-  std::vector<std::string> columns;
-  std::string form;
-  for (std::size_t i = 0; i < sample.header.size() && i < first.size(); ++i) {
-    const auto pattern = pattern_of(first[i]);
-    if (!pattern) continue;
-    const bool date = pattern->find("%Y") != std::string::npos;
-    const bool clock = pattern->find("%H") != std::string::npos;
-    if (!date && !clock) {  // unix, unix_ms, iso stand alone
-      columns = {sample.header[i]}, form = *pattern;
-      break;
-    }
-    if (date && clock) {
-      columns = {sample.header[i]}, form = *pattern;
-      break;
-    }
-    if (columns.size() == 2) continue;
-    columns.push_back(sample.header[i]);
-    form += (form.empty() ? "" : " ") + *pattern;
-  }
+  TimeGuess time;
+  const std::vector<std::size_t> columns = find_time(sample, time);
   if (columns.empty()) {
     guess.missing.emplace_back("time");
     return;
   }
-  std::string line = "time = { ";
-  line += columns.size() == 1
-              ? "column = " + quoted(columns[0])
-              : "columns = [" + quoted(columns[0]) + ", " + quoted(columns[1]) + "]";
-  line += ", form = " + quoted(form);
-  const bool zoned = form.find("%z") != std::string::npos || form.rfind("unix", 0) == 0 ||
-                     (form == "iso" && first.size() > 0);
-  if (!zoned) {
+  std::string names, line = "time = { ";
+  for (const std::size_t column : columns) {
+    names += (names.empty() ? "" : ", ") + quoted(sample.header[column]);
+  }
+  line += columns.size() == 1 ? "column = " + names : "columns = [" + names + "]";
+  line += ", form = " + quoted(time.form);
+  const std::string header = small_letters(names);
+  if (time.utc || (!time.zoned && has_word(header, {"utc", "gmt", "zulu"}))) {
+    line += ", zone = \"utc\"";
+  } else if (!time.zoned) {
     line += ", zone = \"farm\"";
     guess.doubts.emplace_back(
         "zone: \"farm\" keeps your clock changes; a logger that never "
         "changes its clock wants \"-08:00\" or \"utc\"");
   }
   guess.lines.push_back(line + " }");
-  if (form.find("%m/%d") != std::string::npos) {
+  if (time.day_or_month) {
     guess.doubts.emplace_back(
         "time: month before day is a guess; if the day comes first write "
         "%d/%m/%Y");
   }
 }
 
-void guess_value(SampleGuess& guess, const SampleText& sample, const char* key,
-                 std::optional<std::size_t> column, const std::string& unit,
-                 const std::string& more = "") {
-  if (!column) {
-    guess.missing.emplace_back(key);
+/// A file of several stations: which rows are whose.
+void guess_where(const SampleText& sample, SampleGuess& guess) {
+  for (std::size_t i = 0; i < sample.header.size(); ++i) {
+    const auto parts = parts_of(sample, i);
+    const bool named = std::any_of(parts.begin(), parts.end(), [](const std::string& part) {
+      for (const char* word :
+           {"station", "stationid", "site", "mote", "sensor", "device", "origin", "node", "id"}) {
+        if (part == word) return true;
+      }
+      return false;
+    });
+    if (!named) continue;
+    std::vector<std::string> names;
+    for (const std::string& cell : column_of(sample, i)) {
+      const bool known = std::find(names.begin(), names.end(), cell) != names.end();
+      if (!cell.empty() && !known) names.push_back(cell);
+    }
+    // As many names as rows are numbers of the rows.
+    if (names.size() < 2 || 10 * names.size() > 9 * sample.rows.size()) continue;
+    guess.lines.push_back("where = { column = " + quoted(sample.header[i]) +
+                          ", equals = " + quoted(names.front()) + " }");
+    guess.doubts.push_back("where: the file holds " + std::to_string(names.size()) +
+                           " or more stations (" + names[0] + ", " + names[1] +
+                           (names.size() > 2 ? ", …" : "") + "); name yours");
     return;
   }
-  guess.lines.push_back(std::string(key) + " = { column = " + quoted(sample.header[*column]) +
-                        ", unit = " + quoted(unit) + more + " }");
 }
 
-std::string temperature_unit(const SampleText& sample, std::size_t column) {
-  const std::string name = lower(sample.header[column]);
-  if (has(name, {"degf", "°f", "_f", "(f", "fahr"})) return "degF";
-  if (has(name, {"degc", "°c", "_c", "(c", "cels"})) return "degC";
-  return at_share(numbers_of(sample, column), 0.75) > 45 ? "degF" : "degC";
+/// Collects the lines of values and what marks their missing ones.
+class Values {
+ public:
+  Values(const SampleText& sample, SampleGuess& guess) : sample_(sample), guess_(guess) {}
+
+  void put(const char* key, std::optional<std::size_t> column, const std::string& unit,
+           const std::string& more = "") {
+    if (!column) {
+      guess_.missing.emplace_back(key);
+      return;
+    }
+    guess_.lines.push_back(std::string(key) + " = { column = " + quoted(sample_.header[*column]) +
+                           ", unit = " + quoted(unit) + more + " }");
+    for (const std::string& mark : marks_of(sample_, *column)) {
+      if (std::find(missing_.begin(), missing_.end(), mark) == missing_.end()) {
+        missing_.push_back(mark);
+        found_mark_ = true;
+      }
+    }
+  }
+  /// The unit by name; else that of the other temperature; else by the values, with a remark.
+  std::string temperature_unit(const char* key, std::optional<std::size_t> column) {
+    if (!column) return "degC";
+    const auto numbers = numbers_of(sample_, *column);
+    auto unit = named_temperature_unit(sample_, *column);
+    if (!unit) {
+      unit = last_unit_ ? *last_unit_ : at_share(numbers, 0.75) > 45 ? "degF" : "degC";
+      guess_.doubts.push_back(std::string(key) + ": no unit is named; its values run from " +
+                              short_text(numbers.front()) + " to " + short_text(numbers.back()) +
+                              " and are taken as " + *unit);
+    }
+    last_unit_ = unit;
+    return *unit;
+  }
+  void put_missing() {
+    if (!found_mark_) return;
+    std::string list;
+    for (const std::string& mark : missing_) list += (list.empty() ? "" : ", ") + quoted(mark);
+    guess_.lines.push_back("missing = [" + list + "]");
+  }
+
+ private:
+  const SampleText& sample_;
+  SampleGuess& guess_;
+  std::vector<std::string> missing_ = station::RecordForm{}.missing;
+  bool found_mark_ = false;
+  std::optional<std::string> last_unit_;
+};
+
+/// A column's name and unit row in small letters.
+std::string words_of(const SampleText& sample, std::size_t column) {
+  std::string words = sample.header[column];
+  if (column < sample.units.size()) words += " " + sample.units[column];
+  return small_letters(words);
 }
 
-std::string wind_unit(const std::string& name) {
-  if (has(name, {"mph"})) return "mph";
-  if (has(name, {"km"})) return "km/h";
-  if (has(name, {"kn", "kt"})) return "kn";
-  return "m/s";
+/// The unit that a name holds, else the first of the list, with a remark of what was taken.
+std::string unit_or_first(const std::string& words,
+                          std::initializer_list<std::pair<const char*, const char*>> known,
+                          std::string& remark) {
+  for (const auto& [part, unit] : known) {
+    if (words.find(part) != std::string::npos) return unit;
+  }
+  const std::string first = known.begin()->second;
+  remark = "no unit is named and " + first + " is taken; ";
+  return first;
+}
+
+void guess_others(const SampleText& sample, Values& values, SampleGuess& guess) {
+  if (const auto rain = column_with(sample, {"rain", "precip", "prcp"}, {"rate", "cum"})) {
+    std::string remark;
+    const std::string unit = unit_or_first(
+        words_of(sample, *rain),
+        {{"mm", "mm"}, {"inch", "in"}, {"_in", "in"}, {"(in", "in"}, {" in", "in"}}, remark);
+    values.put("rain", rain, unit, ", meaning = \"since_last\"");
+    guess.doubts.push_back("rain: " + remark +
+                           "since_last, day_total or counter? Look whether the column "
+                           "falls back to 0 each time, at midnight, or never");
+  }
+  if (const auto wind = column_with(sample, {"wind", "wspd"}, {"dir", "gust", "max", "chill"})) {
+    std::string remark;
+    const std::string unit = unit_or_first(words_of(sample, *wind),
+                                           {{"m/s", "m/s"},
+                                            {"mps", "m/s"},
+                                            {"_ms", "m/s"},
+                                            {"mph", "mph"},
+                                            {"km", "km/h"},
+                                            {"kph", "km/h"},
+                                            {"kn", "kn"},
+                                            {"kt", "kn"}},
+                                           remark);
+    values.put("wind", wind, unit, ", height = \"2 m\"");
+    guess.doubts.push_back("wind: " + remark + "how high does the sensor stand?");
+  }
+  if (const auto solar = column_with(sample, {"solar", "radiation"}, {"max"})) {
+    values.put("solar", solar, "W/m2");
+  }
 }
 
 }  // namespace
 
 SampleText split_sample(const std::string& text) {
-  SampleText sample;
-  std::string body = text.rfind("\xEF\xBB\xBF", 0) == 0 ? text.substr(3) : text;
-  std::size_t at = 0;
-  while (at < body.size() && sample.rows.size() < rows_looked_at) {
-    std::size_t end = body.find('\n', at);
-    if (end == std::string::npos) end = body.size();
-    const std::string line(station::trim(body.substr(at, end - at)));
+  const std::string body = text.rfind("\xEF\xBB\xBF", 0) == 0 ? text.substr(3) : text;
+  std::vector<std::string> lines;
+  for (std::size_t at = 0; at < body.size();) {
+    const std::size_t end = std::min(body.find('\n', at), body.size());
+    std::string line(station::trim(std::string_view(body).substr(at, end - at)));
+    if (!line.empty()) lines.push_back(std::move(line));
     at = end + 1;
-    if (line.empty()) continue;
-    if (sample.header.empty()) {
-      const auto count = [&](char c) { return std::count(line.begin(), line.end(), c); };
-      if (count('\t') > count(',') && count('\t') >= count(';')) sample.separator = '\t';
-      if (count(';') > count(',') && count(';') > count('\t')) sample.separator = ';';
-      sample.header = cells_of(line, sample.separator);
-    } else {
-      sample.rows.push_back(cells_of(line, sample.separator));
-    }
+  }
+  SampleText sample;
+  if (lines.empty()) return sample;
+  const std::string& header = lines.front();
+  const auto count = [&](char c) { return std::count(header.begin(), header.end(), c); };
+  if (count('\t') > count(',') && count('\t') >= count(';')) sample.separator = '\t';
+  if (count(';') > count(',') && count(';') > count('\t')) sample.separator = ';';
+  sample.header = cells_of(header, sample.separator);
+  std::size_t first = 1;
+  const auto any_digit = [](const std::string& line) {
+    return std::any_of(line.begin(), line.end(),
+                       [](unsigned char c) { return std::isdigit(c) != 0; });
+  };
+  for (; first < lines.size() && first < 4 && !any_digit(lines[first]); ++first) {
+    if (sample.units.empty()) sample.units = cells_of(lines[first], sample.separator);
+  }
+  const std::size_t step = std::max<std::size_t>(1, lines.size() / (rows_in_all - first_rows));
+  for (std::size_t i = first; i < lines.size(); i += i < first_rows ? 1 : step) {
+    sample.rows.push_back(cells_of(lines[i], sample.separator));
   }
   return sample;
 }
@@ -213,34 +276,19 @@ SampleGuess guess_form(const SampleText& sample) {
     return guess;
   }
   guess_time(sample, guess);
-  const auto temperature = column_with(sample, {"temp", "t_", "air"},
-                                       {"dew", "soil", "wind", "max", "min", "fuel", "type"});
-  guess_value(guess, sample, "temperature", temperature,
-              temperature ? temperature_unit(sample, *temperature) : "degC");
-  const auto humidity = column_with(sample, {"humid", "rh"}, {"soil"});
-  if (humidity) {
+  guess_where(sample, guess);
+  Values values(sample, guess);
+  const auto temperature = temperature_column(sample);
+  values.put("temperature", temperature, values.temperature_unit("temperature", temperature));
+  if (const auto humidity = humidity_column(sample)) {
     const bool fraction = at_share(numbers_of(sample, *humidity), 1.0) <= 1.0;
-    guess_value(guess, sample, "humidity", humidity, fraction ? "1" : "%");
+    values.put("humidity", humidity, fraction ? "1" : "%");
   } else {
-    const auto dew = column_with(sample, {"dew"}, {});
-    guess_value(guess, sample, "dew_point", dew, dew ? temperature_unit(sample, *dew) : "degC");
+    const auto dew = dew_point_column(sample);
+    values.put("dew_point", dew, values.temperature_unit("dew_point", dew));
   }
-  if (const auto rain = column_with(sample, {"rain", "precip", "prcp"}, {"rate", "cum"})) {
-    const std::string name = lower(sample.header[*rain]);
-    const bool inches = has(name, {"_in", "inch", "(in"});
-    guess_value(guess, sample, "rain", rain, inches ? "in" : "mm", ", meaning = \"since_last\"");
-    guess.doubts.emplace_back(
-        "rain: since_last, day_total or counter? Look whether the column "
-        "falls back to 0 each time, at midnight, or never");
-  }
-  if (const auto wind = column_with(sample, {"wind", "wspd"}, {"dir", "gust", "max", "chill"})) {
-    guess_value(guess, sample, "wind", wind, wind_unit(lower(sample.header[*wind])),
-                ", height = \"2 m\"");
-    guess.doubts.emplace_back("wind: how high does the sensor stand?");
-  }
-  if (const auto solar = column_with(sample, {"solar", "radiation"}, {"max"})) {
-    guess_value(guess, sample, "solar", solar, "W/m2");
-  }
+  guess_others(sample, values, guess);
+  values.put_missing();
   return guess;
 }
 

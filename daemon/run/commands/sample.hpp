@@ -6,17 +6,19 @@
 
 namespace antherd::commands {
 
-/// The header and first rows of a file, cells trimmed and unquoted.
+/// The header and rows of a file, cells trimmed and unquoted.
 struct SampleText {
   char separator = ',';
   std::vector<std::string> header;
+  std::vector<std::string> units;  // of a row below the header that holds no digit; else empty
   std::vector<std::vector<std::string>> rows;
 };
 
-/// Splits the start of a CSV text. Nothing is judged here.
+/// Splits a CSV text: its first rows, and of a long one rows from all its length, so that a file
+/// that begins in winter shows its summer too. Nothing is judged here.
 SampleText split_sample(const std::string& text);
 
-/// The guessed `[station.drop]` lines, each with a remark where a person should look.
+/// The guessed `[station.drop]` lines, and remarks where a person should look.
 /// Keys that no column fits are left out and named in `missing`.
 struct SampleGuess {
   std::vector<std::string> lines;

@@ -6,11 +6,13 @@
 #include "edge/station/readings.hpp"
 #include "run/commands/common.hpp"
 #include "run/commands/sample.hpp"
+#include "run/commands/sample_columns.hpp"
 
 namespace antherd::commands {
 namespace {
 
-constexpr std::size_t bytes_looked_at = 256 * 1024;
+/// What is guessed from: a year of readings every minute. The reading itself takes the whole file.
+constexpr std::size_t bytes_looked_at = 64 * 1024 * 1024;
 
 std::string block_of(const SampleGuess& guess, const std::string& interval) {
   std::string block =
@@ -37,48 +39,63 @@ std::string interval_of(const std::vector<weather::Sample>& samples) {
   }
   if (steps.empty()) return "5 min";
   std::nth_element(steps.begin(), steps.begin() + static_cast<long>(steps.size() / 2), steps.end());
-  return std::to_string(std::clamp(steps[steps.size() / 2] / 60, 1L, 60L)) + " min";
+  const long step = steps[steps.size() / 2];
+  if (step < 60) return std::to_string(step) + " s";
+  return std::to_string(std::min(step / 60, 60L)) + " min";
+}
+
+/// How many rows were refused; past a bound they are counted in one last entry.
+std::size_t refused_rows(const std::vector<station::Refused>& refused) {
+  if (refused.empty() || refused.back().line > 0) return refused.size();
+  return refused.size() - 1 + static_cast<std::size_t>(std::atoll(refused.back().reason.c_str()));
+}
+
+void print_first_refused(const std::vector<station::Refused>& refused) {
+  if (refused.empty()) return;
+  const station::Refused& first = refused.front();
+  std::cout << "# The first refused row is line " << first.line << ": " << first.reason << ".\n";
 }
 
 void print_what_it_reads(const std::vector<weather::Sample>& samples, std::size_t refused) {
   std::cout << "# Read with it: " << samples.size() << " readings, " << refused
-            << " rows refused; from " << utc_text(samples.front().time) << " to "
-            << utc_text(samples.back().time) << "\n";
-  std::optional<double> coldest, warmest;
+            << (refused == 1 ? " row" : " rows") << " refused; from "
+            << utc_text(samples.front().time) << " to " << utc_text(samples.back().time) << "\n";
+  std::vector<double> temperatures;
   for (const auto& sample : samples) {
-    if (!sample.temperature) continue;
-    coldest = std::min(coldest.value_or(1e9), sample.temperature->value);
-    warmest = std::max(warmest.value_or(-1e9), sample.temperature->value);
+    if (sample.temperature) temperatures.push_back(sample.temperature->value);
   }
-  if (coldest) {
-    std::cout << "# Temperature " << rounded(*coldest, 1) << " to " << rounded(*warmest, 1)
-              << " °C. If that is not your weather, the unit is wrong.\n";
-  }
+  if (temperatures.empty()) return;
+  std::sort(temperatures.begin(), temperatures.end());
+  const auto at = [&](double share) { return rounded(at_share(temperatures, share), 1); };
+  std::cout << "# Temperature " << at(0) << " to " << at(1) << " °C, half of it " << at(0.25)
+            << " to " << at(0.75) << ". If that is not your weather, the unit is wrong.\n";
 }
 
 }  // namespace
 
 Exit check_sample(const Invocation& call) {
   std::ifstream file(call.sample, std::ios::binary);
-  std::string text(bytes_looked_at, '\0');
-  file.read(text.data(), static_cast<std::streamsize>(text.size()));
-  text.resize(static_cast<std::size_t>(file.gcount()));
+  std::string text;
+  for (char piece[65536]; file && text.size() < bytes_looked_at;) {
+    file.read(piece, sizeof piece);
+    text.append(piece, static_cast<std::size_t>(file.gcount()));
+  }
   if (text.empty()) {
     return say(Failure{"look at a station's file", call.sample, "it cannot be read or is empty",
                        "nothing was written"});
   }
-  if (const auto end = text.rfind('\n'); end != std::string::npos) text.resize(end + 1);
+  if (text.size() >= bytes_looked_at) text.resize(text.rfind('\n') + 1);
   const SampleText sample = split_sample(text);
   const SampleGuess guess = guess_form(sample);
   std::string block = block_of(guess, "5 min");
   const auto reading = settings::read_text(settings_of(block), "sample.toml", false);
   std::vector<weather::Sample> samples;
-  std::size_t refused = 0;
+  std::vector<station::Refused> refused;
   if (reading.settings) {
     const auto& drop = *reading.settings->stations.front().drop;
-    if (auto read = station::read_csv(text, call.sample, drop.record, std::nullopt)) {
+    if (auto read = station::read_csv_file(call.sample, drop.record, std::nullopt)) {
       samples = std::move(read->samples);
-      refused = read->refused.size();
+      refused = std::move(read->refused);
       block = block_of(guess, interval_of(samples));
     }
   }
@@ -96,10 +113,12 @@ Exit check_sample(const Invocation& call) {
     std::cout << "\n";
   }
   if (samples.empty()) {
+    print_first_refused(refused);
     std::cout << "# No row could be read with it: mend the lines above, then run antherd check.\n";
     return Exit::attention;
   }
-  print_what_it_reads(samples, refused);
+  print_what_it_reads(samples, refused_rows(refused));
+  print_first_refused(refused);
   return guess.missing.empty() ? Exit::done : Exit::attention;
 }
 
