@@ -7,8 +7,6 @@
 namespace antherd::clock {
 namespace {
 
-constexpr std::size_t longest_word = 80;  // names are short; a longer text is no misspelt name
-
 char plain(char letter) {
   if (letter >= 'A' && letter <= 'Z') return static_cast<char>(letter - 'A' + 'a');
   return letter == '-' || letter == ' ' ? '_' : letter;

@@ -10,6 +10,8 @@
 
 namespace antherd::clock {
 
+constexpr std::size_t longest_word = 80;  // names are short; a longer text is no misspelt name
+
 /// How many letters must be changed, added, dropped or swapped with their neighbour to make one
 /// word of the other; capitals count as small letters, `_`, `-` and blanks as one.
 /// Source: optimal string alignment distance, Damerau 1964 (from memory).

@@ -78,6 +78,7 @@ std::vector<Calendar::Change> changes_of(const date::time_zone& zone) {
 /// Names of the same place first, whatever the capitals, the blanks or the continent; else the
 /// nearest by letters, of the whole name, then of the place alone.
 std::vector<std::string> near_names(const std::string& wanted) {
+  if (wanted.size() > longest_word) return {};
   const auto place_of = [](const std::string& name) { return name.substr(name.rfind('/') + 1); };
   const std::vector<std::string> names = zone_names();
   for (const std::size_t apart : {0U, 1U}) {
