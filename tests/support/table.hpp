@@ -114,7 +114,8 @@ class Outcomes {
 inline void check(const Row& row, double got) {
   const double expected = row.number("expected");
   const double tolerance = row.number("tolerance");
-  INFO(row.text("name") << ": expected " << expected << " " << row.text("unit") << ", got " << got);
+  INFO(row.table() << ": " << row.text("name") << ": expected " << expected << " "
+                   << row.text("unit") << ", got " << got);
   CHECK(std::abs(got - expected) <= tolerance);
   CHECK(std::abs(row.number("rejects") - expected) > tolerance);
   CHECK(row.has("origin"));
