@@ -187,3 +187,20 @@ TEST_CASE("check --sample says why no row could be read, and knows seconds") {
   const auto fast = program::run({"check", "--sample", folder / "fast.csv"});
   CHECK(fast.out.find("interval = \"5 s\"") != std::string::npos);
 }
+
+TEST_CASE("check --sample names a file that is no text and lets none of its bytes through") {
+  const Folder folder;
+  folder.write("picture.csv", std::string("time,temp\x1b[31m,\0rh\n1,2,3\n", 25));
+  const auto seen = program::run({"check", "--sample", folder / "picture.csv"});
+  CHECK(seen.status == 1);
+  CHECK(seen.err.find("its first line is no text: time,temp\\x1b[31m") != std::string::npos);
+  // Strange bytes below a good header stay out of the block.
+  folder.write("rows.csv",
+               "station,time,temp_c,rh\nA\x1b[31m,2026-07-01 00:00,\x07,50\n"
+               "B,2026-07-01 00:00,21,50\nA\x1b[31m,2026-07-01 01:00,22,50\n");
+  const auto rows = program::run({"check", "--sample", folder / "rows.csv"});
+  INFO(rows.out);
+  CHECK(rows.out.find("[station.drop]") != std::string::npos);
+  CHECK(rows.out.find('\x1b') == std::string::npos);
+  CHECK(rows.out.find('\x07') == std::string::npos);
+}

@@ -36,7 +36,8 @@ std::vector<std::string> cells_of(const std::string& line, char separator) {
 
 std::string quoted(const std::string& text) {
   std::string result = "\"";
-  for (const char c : text) result += c == '"' || c == '\\' ? std::string{'\\', c} : std::string{c};
+  for (const char c : station::visible(text))
+    result += c == '"' || c == '\\' ? std::string{'\\', c} : std::string{c};
   return result + '"';
 }
 
@@ -131,8 +132,9 @@ void guess_where(const SampleText& sample, SampleGuess& guess) {
     guess.lines.push_back("where = { column = " + quoted(sample.header[i]) +
                           ", equals = " + quoted(names.front()) + " }");
     guess.doubts.push_back("where: the file holds " + std::to_string(names.size()) +
-                           " or more stations (" + names[0] + ", " + names[1] +
-                           (names.size() > 2 ? ", …" : "") + "); name yours");
+                           " or more stations (" + station::visible(names[0], 40) + ", " +
+                           station::visible(names[1], 40) + (names.size() > 2 ? ", …" : "") +
+                           "); name yours");
     return;
   }
 }

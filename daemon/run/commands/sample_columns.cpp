@@ -6,6 +6,7 @@
 #include <cmath>
 #include <functional>
 
+#include "edge/station/text.hpp"
 #include "run/settings/quantities.hpp"
 
 namespace antherd::commands {
@@ -89,12 +90,15 @@ std::vector<double> numbers_of(const SampleText& sample, std::size_t column) {
 
 std::vector<std::string> marks_of(const SampleText& sample, std::size_t column) {
   std::vector<std::string> marks;
+  constexpr std::size_t most = 6;  // a column of rubbish has no marks worth naming
   for (const auto& row : sample.rows) {
     if (column >= row.size() || row[column].empty() || row[column].size() > 8) continue;
     const std::string& cell = row[column];
     const auto number = number_of(sample, cell);
     if (number && !stands_for_nothing(*number)) continue;
+    if (!number && station::visible(cell) != cell) continue;
     if (std::find(marks.begin(), marks.end(), cell) == marks.end()) marks.push_back(cell);
+    if (marks.size() == most) break;
   }
   return marks;
 }

@@ -2,8 +2,10 @@
 #include <algorithm>
 #include <fstream>
 #include <iostream>
+#include <string_view>
 
 #include "edge/station/readings.hpp"
+#include "edge/station/text.hpp"
 #include "run/commands/common.hpp"
 #include "run/commands/sample.hpp"
 #include "run/commands/sample_columns.hpp"
@@ -84,6 +86,13 @@ Exit check_sample(const Invocation& call) {
     return say(Failure{"look at a station's file", call.sample, "it cannot be read or is empty",
                        "nothing was written"});
   }
+  const std::string_view header = std::string_view(text).substr(0, text.find('\n'));
+  if (std::any_of(header.begin(), header.end(),
+                  [](unsigned char c) { return c < ' ' && c != '\t' && c != '\r'; })) {
+    return say(Failure{"look at a station's file", call.sample,
+                       "its first line is no text: " + station::visible(header, 60),
+                       "nothing was written"});
+  }
   if (text.size() >= bytes_looked_at) text.resize(text.rfind('\n') + 1);
   const SampleText sample = split_sample(text);
   const SampleGuess guess = guess_form(sample);
@@ -109,8 +118,11 @@ Exit check_sample(const Invocation& call) {
     std::cout << "# Not found: ";
     for (const std::string& key : guess.missing) std::cout << key << " ";
     std::cout << "\n# The columns are: ";
-    for (const std::string& name : sample.header) std::cout << name << " | ";
-    std::cout << "\n";
+    std::string names;
+    for (std::size_t i = 0; i < sample.header.size() && names.size() < 400; ++i) {
+      names += station::visible(sample.header[i], 60) + " | ";
+    }
+    std::cout << names << "\n";
   }
   if (samples.empty()) {
     print_first_refused(refused);
