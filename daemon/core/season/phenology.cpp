@@ -2,6 +2,7 @@
 #include "core/season/phenology.hpp"
 
 #include <algorithm>
+#include <cmath>
 
 #include "core/crop/development.hpp"
 #include "core/crop/flowers.hpp"
@@ -27,16 +28,22 @@ void anchor(Phenology& crop, const crop::Observation& seen) {
   crop.filled = 0;
 }
 
+/// How far a note lies from a belief, in combined σ.
+double distance(const crop::Belief& belief, const crop::Observation& seen) {
+  return std::abs(seen.factor - belief.mean) / std::hypot(belief.sd, seen.sd);
+}
+
 /// @return whether the note is held
 bool weigh(Phenology& crop, const crop::Observation& seen) {
-  if (crop::agrees(crop.belief, seen)) {
-    crop.belief = crop::update(crop.belief, seen);
-    crop.held.reset();
-    return false;
-  }
-  if (crop.held && (crop::agrees(crop.held->with, seen) ||
-                    crop::agrees(crop::Belief{crop.held->seen.factor, crop.held->seen.sd}, seen))) {
-    crop.belief = crop::update(crop.held->with, seen);
+  const bool agrees = crop::agrees(crop.belief, seen);
+  const bool agrees_with_held =
+      crop.held && (crop::agrees(crop.held->with, seen) ||
+                    crop::agrees(crop::Belief{crop.held->seen.factor, crop.held->seen.sd}, seen));
+  // A prior is wide: a second note may agree with both, and speaks for the one it lies nearer to.
+  const bool take_held = agrees_with_held &&
+                         (!agrees || distance(crop.held->with, seen) < distance(crop.belief, seen));
+  if (agrees || take_held) {
+    crop.belief = crop::update(take_held ? crop.held->with : crop.belief, seen);
     crop.held.reset();
     return false;
   }

@@ -77,6 +77,14 @@ TEST_CASE("a note far off is held, and the window spans both") {
     CHECK_FALSE(told.state.crop.held);
     CHECK(told.state.crop.belief.mean == Approx(0.477099).margin(2e-6));
   }
+  SECTION("a second note agrees with both and lies nearer to the held one") {
+    // k = 465/810 = 0.57407, sd 0.050244: 0.426 from 1, within 3 √(0.15² + 0.0502²) = 0.475, that
+    // is 2.69 σ; 0.0958 from 0.478302, √(0.0412² + 0.0502²) = 0.0650, 1.47 σ. So m = (588.889 ·
+    // 0.478302 + 396.12 · 0.574074)/985.01 = 0.516817
+    const Told told = tell(plan, 48 * 24, cool, {{}, {early, note(plan, 46, 65, true)}});
+    CHECK_FALSE(told.state.crop.held);
+    CHECK(told.state.crop.belief.mean == Approx(0.516817).margin(2e-6));
+  }
 }
 
 TEST_CASE("flowers done closes the window at the day's end, flowers seen later open it again") {
