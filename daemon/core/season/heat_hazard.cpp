@@ -117,9 +117,10 @@ void settle_episode(HeatHazard& heat, std::vector<alerts::Episode>& episodes,
 }
 
 HeatDay end_day(HeatHazard& heat, const HourContext& hour) {
-  add_affected(heat, hour);
   const HeatDay day = day_so_far(heat);
-  if (day.hours_35.value_or(0) >= 1) {
+  const bool cut = hour.plan.field.harvested && day.date > *hour.plan.field.harvested;
+  if (!cut) add_affected(heat, hour);
+  if (!cut && day.hours_35.value_or(0) >= 1) {
     // A note may move the estimate back, and flowers counted before would open again.
     heat.exposed_share = std::min(1.0, heat.exposed_share + day.flower_share);
     if (day.in_window) ++heat.hot_days;

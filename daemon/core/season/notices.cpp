@@ -99,7 +99,10 @@ void look_at_window(State& state, const HourContext& hour) {
     give(state, hour, Kind::stage, "window-near", opens);
   }
   if (state.crop.part == Part::window) {
-    give(state, hour, Kind::stage, "window-opens", state.crop.window_first);
+    // A late station's first note tells where the field stands: that it opened weeks ago is no
+    // news.
+    const bool news = state.crop.window_first && hour.day - *state.crop.window_first <= days{7};
+    if (news) give(state, hour, Kind::stage, "window-opens", state.crop.window_first);
     if (enough && time + closing_days * daily >= edges.closes.value) {
       give_close(state, hour, expected_day(state, edges.closes.value));
     }

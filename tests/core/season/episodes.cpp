@@ -98,6 +98,23 @@ TEST_CASE("harvest closes what is open, and the days after have no level") {
   CHECK(told.state.watch == Watch::harvested);
 }
 
+TEST_CASE("flowers that were cut meet no heat") {
+  Plan plan = plan_at_greenwich();
+  plan.field.harvested = plan.field.sown + days{85};
+  // An hour of 35 °C on every day; full flower is at 810 °C·d, on day 81.
+  const auto hot = [](int n) -> std::optional<Weather> {
+    return n % 24 == 13 ? Weather{35, 20} : Weather{};
+  };
+  const Told on_the_day = tell(plan, 86 * 24, hot);
+  const Told later = tell(plan, 110 * 24, hot);
+  CHECK(on_the_day.state.heat.exposed_share > 0.3);
+  CHECK(later.state.heat.exposed_share == on_the_day.state.heat.exposed_share);
+  CHECK(later.state.heat.hot_days == on_the_day.state.heat.hot_days);
+  CHECK(later.state.heat.affected_high == on_the_day.state.heat.affected_high);
+  plan.field.harvested.reset();
+  CHECK(tell(plan, 110 * 24, hot).state.heat.exposed_share > 0.9);
+}
+
 TEST_CASE("a ripe field has no level even where seed fill is still reckoned") {
   const Plan plan = plan_at_greenwich();
   // Full flower began at 505 °C·d: k = 0.6235, sd 0.0502; m = 0.661 with the prior of 0.15. Ripe at

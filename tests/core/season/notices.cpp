@@ -32,6 +32,21 @@ TEST_CASE("the window is told ten days ahead, at its opening and two days before
   CHECK(closes[0].at == seven(plan, 116));  // 1162.9 + 20 ≥ 1175.32; 1152.9 + 20 is not
 }
 
+TEST_CASE("a window that opened weeks before the stage was known is not told as opening") {
+  const Plan plan = plan_at_greenwich();
+  const auto late = [](int n) {
+    return n < 30 * 24 ? std::nullopt : std::optional<Weather>(Weather{});
+  };
+  // Unknown stage counts as the window from day 35 on; the note of day 65 makes it known.
+  const Told told = tell(plan, 90 * 24, late, {{}, {note(plan, 65, 60, true)}});
+  CHECK(told.hour(66 * 24).part == Part::window);
+  CHECK(told.state.crop.window_first == plan.field.sown + days{35});
+  CHECK(told.notices("window-opens").empty());
+  // A note within the first week of those days is news.
+  const Told soon = tell(plan, 90 * 24, late, {{}, {note(plan, 38, 60, true)}});
+  CHECK(soon.notices("window-opens").size() == 1);
+}
+
 TEST_CASE("the window that a note keeps open does not close silently later") {
   const Plan plan = plan_at_greenwich();
   // Full flower at 1165 °C·d, the middle of 810 and 970: k = 1.309, m = 1.24 or so.
