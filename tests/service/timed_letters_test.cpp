@@ -76,6 +76,24 @@ TEST_CASE("the weekly review comes on Monday at 06:00, across both clock changes
   for (const auto& item : bench.letters_of("weekly")) CHECK(item.state == outbox::State::sent);
 }
 
+TEST_CASE("that heat is over is told at six in the morning, not when the day ends") {
+  Bench bench;
+  const Instant sown = farm_time("2026-06-25 00:00");
+  bench.open(sown);
+  const Instant from = farm_time("2026-07-14 12:00");  // the last of three hot days
+  bench.drop("bench.csv", readings(Weather{}, sown, from));
+  bench.turn(from);
+  bench.live(Weather{}, from, farm_time("2026-07-16 08:00"), minutes{15});
+  const auto& heat = bench.episodes().back();
+  REQUIRE(heat.kind == alerts::Kind::heat);
+  REQUIRE(heat.closed);
+  CHECK(farm_clock(*heat.closed) == "2026-07-16 00:00");
+  const auto times = decided(bench, "heat");
+  REQUIRE_FALSE(times.empty());
+  CHECK(times.back() == "2026-07-16 06:00");
+  CHECK(bench.letters_of("heat").back().letter.subject.starts_with("Heat eased"));
+}
+
 TEST_CASE("a service that slept at the time: the review follows, the daily line only within 3 h") {
   Bench bench;
   const Instant sown = farm_time("2026-06-25 00:00");
