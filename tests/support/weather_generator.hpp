@@ -24,6 +24,8 @@ struct Stretch {
   int days = 1;
   Degree longitude{-123};  // east positive
   std::uint64_t seed = 1;
+  Seconds every = one_hour;      // from one reading to the next, a part of an hour
+  Seconds first = one_hour / 2;  // the first reading, after the start
 };
 
 /// Uniform numbers by SplitMix64 (Steele, Lea & Flood 2014): integer arithmetic alone, so that a
@@ -75,7 +77,7 @@ inline double course(double solar_hour) {
   return 0.5 + 0.5 * std::cos(pi * since_peak / 14.0);
 }
 
-/// One reading an hour, in the middle of it, with temperature and humidity alone.
+/// One reading with temperature and humidity alone.
 inline weather::Sample reading(Instant at, double t, double td) {
   weather::Sample sample;
   sample.time = at;
@@ -92,13 +94,15 @@ inline int solar_day_number(const Stretch& stretch, Instant at) {
   return static_cast<int>((day(at) - day(stretch.start)).count());
 }
 
-/// Calls `make(instant, solar day number, solar hour)` for the middle of every hour.
+/// Calls `make(instant, solar day number, solar hour)` for each reading: by default the middle of
+/// every hour.
 template <class Make>
 std::vector<weather::Sample> each_hour(const Stretch& stretch, Make make) {
   std::vector<weather::Sample> samples;
-  samples.reserve(static_cast<std::size_t>(stretch.days) * 24);
-  for (int h = 0; h < stretch.days * 24; ++h) {
-    const Instant at = stretch.start + one_hour * h + one_hour / 2;
+  const auto count = one_hour * 24 * stretch.days / stretch.every;
+  samples.reserve(static_cast<std::size_t>(count));
+  for (int i = 0; i < static_cast<int>(count); ++i) {
+    const Instant at = stretch.start + stretch.every * i + stretch.first;
     samples.push_back(make(at, solar_day_number(stretch, at), solar_hours(at, stretch.longitude)));
   }
   return samples;
