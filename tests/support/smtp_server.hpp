@@ -28,8 +28,8 @@ constexpr const char* keep_silent = "(keep silent)";
 struct SmtpScript {
   std::string greeting = "220 mail.larkspur.example ready";
   std::vector<std::string> offers = {"AUTH PLAIN LOGIN", "8BITMIME"};
-  /// By command: HELO, STARTTLS, AUTH (after the credentials), MAIL, RCPT, DATA, dot (after the
-  /// letter), QUIT. What is not here is answered well.
+  /// By command: HELO, STARTTLS, AUTH (after the credentials), MAIL, RCPT ("RCPT owner@x.example"
+  /// for one of them), DATA, dot (after the letter), QUIT. What is not here is answered well.
   std::map<std::string, std::string> answers = {};
   bool hang_up_in_body = false;  // after the first bytes of the letter
   std::chrono::milliseconds thinks{0};  // before each answer
@@ -161,13 +161,20 @@ class SmtpServer {
         goes_on = data();
       } else if (verb == "QUIT") {
         say(reply_to("QUIT", "221 2.0.0 bye"));
-      } else if (verb == "MAIL" || verb == "RCPT" || verb == "HELO") {
+      } else if (verb == "RCPT") {
+        goes_on = say(reply_to("RCPT " + address_in(line), reply_to("RCPT", "250 2.1.5 ok")));
+      } else if (verb == "MAIL" || verb == "HELO") {
         goes_on = say(reply_to(verb, "250 2.1.0 ok"));
       } else {
         goes_on = say(reply_to(verb, "502 5.5.2 what?"));
       }
       if (!goes_on) return;
     }
+  }
+
+  static std::string address_in(const std::string& line) {
+    const std::size_t begin = line.find('<'), end = line.find('>');
+    return begin < end && end != std::string::npos ? line.substr(begin + 1, end - begin - 1) : "";
   }
 
   std::string hello() const {

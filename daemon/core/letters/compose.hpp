@@ -73,12 +73,18 @@ struct Review {
   std::vector<FieldReview> fields;
   std::vector<alerts::Said> said_of_stations;
   int letters_sent = 0, letters_waiting = 0, letters_parked = 0;
-  std::vector<std::string> parked;    // one line each: who, what, why
-  std::vector<std::string> troubles;  // service troubles of the period, one line each
+  std::vector<std::string> parked;             // one line each: who, what, why
+  std::vector<alerts::Episode> mail_troubles;  // that touch the period
+  std::vector<std::string> troubles;           // service troubles of the period, one line each
 };
 std::string compose_review(const Review& review, const Desk& desk);
 std::vector<Letter> compose_weekly(const Review& review, std::span<const Recipient> recipients,
                                    const Desk& desk);
+
+/// One letter that names all that waited past the limits of an address, worst first; the worst
+/// stands in it whole. Its identity hangs on the oldest of them alone.
+/// @param waited  one or more letters to this recipient, any order
+Letter compose_digest(std::span<const Letter> waited, const Recipient& recipient, const Desk& desk);
 
 /// The one screen of `antherd now`.
 std::string compose_now(const Desk& desk, std::span<const alerts::Said> unclosed,

@@ -91,8 +91,17 @@ std::string letters_paragraph(const Review& review) {
   return section_text(section);
 }
 
-std::string troubles(const Review& review) {
+std::string mail_trouble_line(const alerts::Episode& trouble, const Words& words) {
+  return "mail: letters waited from " + words.when(trouble.start) +
+         (trouble.closed ? " to " + words.when(*trouble.closed)
+                         : ", and none has been accepted since");
+}
+
+std::string troubles(const Review& review, const Words& words) {
   Section section{"TROUBLES", "", {}, true, {}};
+  for (const alerts::Episode& trouble : review.mail_troubles) {
+    section.lines.push_back(mail_trouble_line(trouble, words));
+  }
   for (const std::string& line : review.troubles) section.lines.push_back(plain(line));
   if (section.lines.empty()) section.text = "The watch itself reports none.";
   return section_text(section);
@@ -162,7 +171,8 @@ std::string compose_review(const Review& review, const Desk& desk) {
                        "what was not, stands below.");
   }
   for (const FieldReview& field : review.fields) text += field_chapter(field, words);
-  text += stations(review, words) + letters_paragraph(review) + troubles(review) + next(words);
+  text +=
+      stations(review, words) + letters_paragraph(review) + troubles(review, words) + next(words);
   return text + "\n" + paragraph(standing_caution(Language::english));
 }
 

@@ -152,8 +152,24 @@ Item expire(Item item, Instant now) {
   return park(std::move(item), now, std::move(sentence));
 }
 
+Item hold(Item item) {
+  if (item.state != State::waiting || item.attempts > 0) return item;
+  item.state = State::held;
+  return item;
+}
+
+Item merge(Item item, const std::string& digest, Instant now) {
+  if (item.state != State::held) return item;
+  item.state = State::merged;
+  item.digest = digest;
+  item.ended = now;
+  return item;
+}
+
 Item retry(Item item, Instant now) {
-  if (item.state == State::sending || item.state == State::sent) return item;
+  if (item.state == State::sending || item.state == State::sent || item.state == State::merged) {
+    return item;
+  }
   if (item.letter.valid_until && *item.letter.valid_until <= now) {
     item.letter.valid_until = now + alert_validity;
   }
@@ -185,13 +201,17 @@ const char* name_of(State state) {
       return "sent";
     case State::parked:
       return "parked";
+    case State::held:
+      return "held";
+    case State::merged:
+      return "merged";
   }
   return "";
 }
 
 std::optional<State> state_from(std::string_view word) {
-  for (State state :
-       {State::waiting, State::sending, State::in_doubt, State::sent, State::parked}) {
+  for (State state : {State::waiting, State::sending, State::in_doubt, State::sent, State::parked,
+                      State::held, State::merged}) {
     if (word == name_of(state)) return state;
   }
   return std::nullopt;

@@ -4,6 +4,9 @@
 //      ▲                 │ 4xx, no line        │ no answer: 10 min, then once more, marked
 //      └─────────────────┘                     └─ a second doubt, 5xx, too old ──▶ parked
 //
+//   held ──named in a digest──▶ merged     past the limits of an address; the digest is a letter of
+//                                          its own and goes the way above
+//
 // Pure: states and arrows, and the timetable of tries. It must not know SMTP nor a database.
 #pragma once
 
@@ -28,7 +31,7 @@ constexpr Seconds late_after{30 * 60};
 /// How long an alert is of use, given anew by retry().
 constexpr Seconds alert_validity{72 * 3600};
 
-enum class State { waiting, sending, in_doubt, sent, parked };
+enum class State { waiting, sending, in_doubt, sent, parked, held, merged };
 
 struct Item {
   std::int64_t id = 0;  // the store's, 0 before it is stored
@@ -40,6 +43,7 @@ struct Item {
   std::optional<Instant> first_try;
   std::optional<Instant> ended;  // sent or parked
   std::string answer;            // the last answer in one sentence, never a secret
+  std::string digest;            // merged: the identity of the letter that names it
 };
 
 /// How one conversation ended.
@@ -99,8 +103,13 @@ Item recover(Item item, Instant now);
 Line reopen(Line line);
 /// Too old to be of use (see Plan::expired): parked, with the sentence that names it.
 Item expire(Item item, Instant now);
-/// Back to waiting by a person's wish, due now. An expired letter gets 72 h again; a doubtful one
-/// stays marked and may come into doubt once more.
+/// A letter that is waiting and was never tried waits for the digest of its address instead.
+Item hold(Item item);
+/// A held letter was named in a digest, which takes its place: it is never sent itself.
+Item merge(Item item, const std::string& digest, Instant now);
+/// Back to waiting by a person's wish, due now; of a held letter too. An expired letter gets 72 h
+/// again; a doubtful one stays marked and may come into doubt once more. Of a merged letter its
+/// digest is to be sent again.
 Item retry(Item item, Instant now);
 
 /// What the carrier would do now: which item goes next (the gravest, then the oldest, that is due),
@@ -125,6 +134,20 @@ letters::Letter as_sent(const Item& item, Instant now);
 /// @param failures  ≥ 1; below that nothing is waited
 /// @param jitter01  0…1, beyond is cut; 1 takes the whole 20 % off
 Seconds retry_delay(int failures, double jitter01);
+
+/// What is remembered of a letter's way when only the mail's health is asked for.
+struct Delivery {
+  Instant decided;
+  State state = State::waiting;
+  std::optional<Instant> ended;
+};
+/// How long a letter may wait before that is trouble of its own.
+constexpr Seconds trouble_after{6 * 3600};
+/// Episodes of mail_trouble: from the decision of a letter that waited 6 h until all such letters
+/// were accepted. One that was parked after so long a wait counts until the next acceptance of any
+/// letter: giving up is no recovery. Letters held for a digest wait on purpose and do not count.
+/// @param deliveries  of the last days, any order; what is older is not seen
+std::vector<alerts::Episode> mail_troubles(std::span<const Delivery> deliveries, Instant now);
 
 const char* name_of(State state);
 std::optional<State> state_from(std::string_view word);

@@ -26,6 +26,15 @@ std::string base64_stem(const std::string& text) {
   return stem;
 }
 
+/// The characters of base64 that the secret alone decides when so many bytes stand before it, and
+/// anything behind: a secret is found in whatever text it was encoded with.
+std::string base64_core(const std::string& secret, std::size_t before) {
+  const std::string coded = base64(std::string(before, '\0') + secret);
+  const std::size_t first = (before * 8 + 5) / 6;
+  const std::size_t last = (before + secret.size()) * 8 / 6;
+  return last > first ? coded.substr(first, last - first) : "";
+}
+
 /// The code of a reply line, 0 when it is none.
 int code_of(std::string_view line) {
   int code = 0;
@@ -44,7 +53,11 @@ bool begins_with_word(std::string_view text, std::string_view word) {
 Conversation::Conversation(const Server& server)
     : secrets_{server.password, base64_stem(server.password),
                base64_stem(std::string(1, '\0') + server.user + std::string(1, '\0') +
-                           server.password)} {}
+                           server.password)} {
+  for (std::size_t before = 0; before < 3; ++before) {
+    secrets_.push_back(base64_core(server.password, before));
+  }
+}
 
 std::string Conversation::without_secrets(std::string text) const {
   for (const std::string& secret : secrets_) replace_all(text, secret);
@@ -53,7 +66,9 @@ std::string Conversation::without_secrets(std::string text) const {
 
 void Conversation::write_down(std::string_view mark, std::string_view text) {
   if (transcript_.size() > longest_transcript) return;
-  transcript_ += std::string(mark) + " " + without_secrets(tidy(text, longest_answer)) + "\n";
+  // Before anything is cut: half a secret would not be known again.
+  const std::string harmless = tidy(without_secrets(std::string(text)), longest_answer);
+  transcript_ += std::string(mark) + " " + without_secrets(harmless) + "\n";
   if (transcript_.size() > longest_transcript) transcript_ += "* the rest is left out\n";
 }
 
@@ -89,11 +104,12 @@ void Conversation::heard(std::string_view text) {
   write_down("<", text);
   if (parting_) return;
   const int code = code_of(text);
+  const std::string harmless = without_secrets(std::string(text));  // before it is cut
   if (partial_.empty()) {
-    partial_ = text.substr(0, longest_answer);
+    partial_ = harmless.substr(0, longest_answer);
   } else if (partial_.size() < longest_answer) {
     partial_ += " ";
-    partial_ += text.substr(code == 0 ? 0 : std::min<std::size_t>(4, text.size()));
+    partial_ += harmless.substr(code == 0 ? 0 : std::min<std::size_t>(4, harmless.size()));
   }
   if (code == 0 || (text.size() > 3 && text[3] == '-')) return;  // more lines follow
   code_ = code;

@@ -44,7 +44,7 @@ class Conversation {
  private:
   void write_down(std::string_view mark, std::string_view text);
 
-  std::string secrets_[3];
+  std::vector<std::string> secrets_;
   Step step_ = Step::line;
   bool answered_ = false;
   bool in_login_ = false;  // from AUTH to its last answer nothing of ours is written down

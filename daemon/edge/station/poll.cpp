@@ -1,5 +1,4 @@
-// One poll of a station; see poll.hpp. Redirects are followed here, one by one, so that each can
-// be judged; what the answer means is json.cpp's matter.
+// One poll of a station; see poll.hpp. What the answer means is json.cpp's matter.
 #include "edge/station/poll.hpp"
 
 #include <algorithm>
@@ -32,28 +31,6 @@ std::string clause_of(long status) {
   return "the station answered with something else than its values" + number;
 }
 
-bool is_redirect(long status) {
-  return status == 301 || status == 302 || status == 303 || status == 307 || status == 308;
-}
-
-/// Why a redirect is not followed, or nothing.
-std::string redirect_fault(const std::string& from, const std::string& to) {
-  const UrlParts here = parts_of(from);
-  const UrlParts there = parts_of(to);
-  if (to.empty() || there.scheme.empty()) return "it redirects to nowhere";
-  if (there.scheme != "http" && there.scheme != "https") {
-    return "it redirects to something that is no web page";
-  }
-  if (there.host != here.host) {
-    return "it redirects to another host, '" + visible(there.host, 100) +
-           "': if that is right, name it in the settings";
-  }
-  if (here.scheme == "https" && there.scheme == "http") {
-    return "it redirects from https to http, where nobody vouches for the answer";
-  }
-  return "";
-}
-
 std::vector<std::string> header_lines(const PollMemory& memory) {
   std::vector<std::string> lines{"Accept: application/json, */*;q=0.1"};
   if (!memory.etag.empty()) lines.push_back("If-None-Match: " + memory.etag);
@@ -61,29 +38,6 @@ std::vector<std::string> header_lines(const PollMemory& memory) {
     lines.push_back("If-Modified-Since: " + memory.last_modified);
   }
   return lines;
-}
-
-/// Asks, following redirects within the host.
-Response ask(const HttpForm& form, const PollMemory& memory, const std::atomic<bool>& stop) {
-  Request request{form.url, header_lines(memory), limits::http_total};
-  Response response;
-  for (int redirects = 0;; ++redirects) {
-    response = transfer(request, stop);
-    request.total -= response.took;
-    if (response.stopped || !response.why.empty() || !is_redirect(response.status)) {
-      return response;
-    }
-    if (redirects == limits::http_redirects) {
-      response.why = "it redirects more than 3 times";
-    } else {
-      response.why = redirect_fault(request.url, response.location);
-    }
-    if (response.why.empty() && request.total <= std::chrono::milliseconds{0}) {
-      response.why = "no whole answer within 20 s";
-    }
-    if (!response.why.empty()) return response;
-    request.url = response.location;
-  }
 }
 
 Answer failed(const PollMemory& memory, Failure trouble) {
@@ -128,7 +82,8 @@ Answer poll(const HttpForm& form, const PollMemory& memory, const std::function<
   if ((parts.scheme != "http" && parts.scheme != "https") || parts.host.empty()) {
     return failed(form, memory, "the URL is none of http:// or https://");
   }
-  const Response response = ask(form, memory, stop);
+  const Response response =
+      transfer_within_host({form.url, header_lines(memory), limits::http_total}, stop);
   Answer answer;
   answer.memory = memory;
   if (response.stopped) return answer;

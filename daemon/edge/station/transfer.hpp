@@ -1,5 +1,4 @@
-// One HTTP request (RFC 9110) by libcurl, bounded in time and bytes, ended by `stop`. Follows
-// nothing, parses nothing.
+// HTTP requests (RFC 9110) by libcurl, bounded in time and bytes, ended by `stop`. Parses nothing.
 #pragma once
 
 #include <atomic>
@@ -28,6 +27,9 @@ struct Response {
 
 /// Asks once. Never throws; ends within 0.2 s of `stop`.
 Response transfer(const Request& request, const std::atomic<bool>& stop);
+
+/// Asks, following at most 3 redirects, each within the host and never from https to http.
+Response transfer_within_host(Request request, const std::atomic<bool>& stop);
 
 /// A URL taken apart: only what the redirect rule needs. Empty scheme: no URL of ours.
 struct UrlParts {

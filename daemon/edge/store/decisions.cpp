@@ -50,6 +50,7 @@ Outcome Store::save(const Decision& decision) {
     for (const auto& [station, gone] : decision.hours_gone) inside_->remove(station, gone);
     put_said(*inside_->database, decision.said);
     inside_->put(decision.letters);
+    inside_->merge(decision.merged);
     inside_->put(decision.notes);
     return Done{};
   });

@@ -9,7 +9,7 @@ using outbox::Item;
 
 #define ANTHERD_LETTER_COLUMNS                                                                  \
   "id, identity, recipient, subject, body, kind, severity, decided, valid_until, still, rise, " \
-  "state, attempts, doubts, next_try, first_try, ended, answer"
+  "state, attempts, doubts, next_try, first_try, ended, answer, digest"
 
 Item read_item(Statement& row) {
   Item item;
@@ -35,6 +35,7 @@ Item read_item(Statement& row) {
   item.first_try = row.maybe<Instant>();
   item.ended = row.maybe<Instant>();
   item.answer = row.text();
+  item.digest = row.text();
   return item;
 }
 
@@ -49,8 +50,8 @@ std::vector<Item> read_items(Statement& row) {
 void Store::Inside::put(const std::vector<outbox::Item>& items) {
   Statement statement = database->use(
       "INSERT INTO letter(identity, recipient, subject, body, kind, severity, decided, "
-      "valid_until, still, rise, state, attempts, doubts, next_try, first_try, ended, answer) "
-      "VALUES(?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?) "
+      "valid_until, still, rise, state, attempts, doubts, next_try, first_try, ended, answer, "
+      "digest) VALUES(?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?) "
       "ON CONFLICT(identity, recipient) DO NOTHING");
   for (const Item& item : items) {
     const letters::Letter& letter = item.letter;
@@ -58,8 +59,17 @@ void Store::Inside::put(const std::vector<outbox::Item>& items) {
         .bind(letter.id, letter.recipient, letter.subject, letter.body, letter.kind,
               word_of(severity_words, letter.severity), letter.decided, letter.valid_until,
               letter.still, letter.raise, word_of(state_words, item.state), item.attempts,
-              item.doubts, item.next_try, item.first_try, item.ended, item.answer)
+              item.doubts, item.next_try, item.first_try, item.ended, item.answer, item.digest)
         .run();
+  }
+}
+
+void Store::Inside::merge(const std::vector<Merger>& mergers) {
+  Statement statement = database->use(
+      "UPDATE letter SET state = 'merged', digest = ?, ended = ? "
+      "WHERE identity = ? AND recipient = ? AND state = 'held'");
+  for (const Merger& merger : mergers) {
+    statement.bind(merger.digest, merger.at, merger.letter, merger.recipient).run();
   }
 }
 
@@ -72,12 +82,39 @@ Result<std::vector<outbox::Item>> Store::letters_open() const {
   });
 }
 
+Result<std::vector<outbox::Item>> Store::letters_held() const {
+  return inside_->read("read the letters that wait for a digest", [&] {
+    Statement row = inside_->database->use("SELECT " ANTHERD_LETTER_COLUMNS
+                                           " FROM letter WHERE state = 'held' ORDER BY id");
+    return read_items(row);
+  });
+}
+
 Result<std::vector<outbox::Item>> Store::letters_since(Instant since) const {
   return inside_->read("read the letters", [&] {
     Statement row = inside_->database->use("SELECT " ANTHERD_LETTER_COLUMNS
                                            " FROM letter WHERE decided >= ? ORDER BY decided, id");
     row.bind(since);
     return read_items(row);
+  });
+}
+
+Result<std::vector<outbox::Delivery>> Store::deliveries(Instant since) const {
+  return inside_->read("read what became of the letters", [&] {
+    std::vector<outbox::Delivery> found;
+    Statement row =
+        inside_->database->use("SELECT decided, state, ended FROM letter WHERE decided >= ?");
+    row.bind(since);
+    while (row.step()) {
+      outbox::Delivery delivery;
+      delivery.decided = row.instant();
+      const auto state = value_of(state_words, row.text());
+      if (!state) throw Trouble{SQLITE_CORRUPT, "a letter has an unknown state", {}};
+      delivery.state = *state;
+      delivery.ended = row.maybe<Instant>();
+      found.push_back(delivery);
+    }
+    return found;
   });
 }
 

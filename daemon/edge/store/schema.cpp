@@ -170,7 +170,15 @@ PRAGMA application_id = 0x416e7468;
 PRAGMA user_version = 1;
 )sql";
 
-constexpr std::array<Migration, 1> all_steps{{{1, "first tables", first_schema}}};
+// Letters past the limits of an address wait as `held`, then are `merged`: named in a digest.
+constexpr const char* digest_schema = R"sql(
+ALTER TABLE letter ADD COLUMN digest TEXT NOT NULL DEFAULT '';  -- identity of the letter naming it
+CREATE INDEX letter_held ON letter(id) WHERE state = 'held';
+PRAGMA user_version = 2;
+)sql";
+
+constexpr std::array<Migration, 2> all_steps{
+    {{1, "first tables", first_schema}, {2, "digests", digest_schema}}};
 
 }  // namespace
 

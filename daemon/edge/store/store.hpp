@@ -34,13 +34,20 @@ struct Intake {
 /// A remembered place of an intake: file bookmarks and HTTP validators, as opaque text by key.
 using Notes = std::map<std::string, std::string>;
 
+/// A held letter that a digest to the same recipient names.
+struct Merger {
+  std::string letter, recipient, digest;  // identities, and the address of both
+  Instant at;
+};
+
 /// One tick's decisions: kept in one transaction or not at all.
 struct Decision {
   std::map<std::string, std::vector<weather::Hour>> hours;   // by station: written or replaced
   std::map<std::string, std::vector<HourStart>> hours_gone;  // by station: no longer any sample
   std::vector<alerts::Said> said;
-  std::vector<outbox::Item> letters;  // state waiting
+  std::vector<outbox::Item> letters;  // state waiting or held
   Notes notes;                        // e.g. "last_weekly"
+  std::vector<Merger> merged = {};    // after the letters were put
 };
 
 class Store {
@@ -105,7 +112,9 @@ class Store {
   Result<std::vector<alerts::Said>> said(Instant since) const;  // said at or after, in time order
   Outcome mark_seen(const std::string& episode, alerts::Level level);  // fails when never said
   Result<std::vector<outbox::Item>> letters_open() const;              // waiting, sending, in doubt
+  Result<std::vector<outbox::Item>> letters_held() const;
   Result<std::vector<outbox::Item>> letters_since(Instant since) const;  // decided since, any state
+  Result<std::vector<outbox::Delivery>> deliveries(Instant since) const;  // decided since
   Result<std::optional<outbox::Item>> letter(std::int64_t id) const;
   /// Keeps an item's new state and the line's, in one transaction. The words of a stored letter
   /// never change. Fails when there is no such letter.
@@ -137,6 +146,6 @@ class Store {
   std::unique_ptr<Inside> inside_;
 };
 
-constexpr int schema_number = 1;
+constexpr int schema_number = 2;
 
 }  // namespace antherd::store

@@ -46,11 +46,13 @@ inline constexpr Words<alerts::Severity, 4> severity_words{
      {alerts::Severity::moderate, "moderate"},
      {alerts::Severity::severe, "severe"},
      {alerts::Severity::extreme, "extreme"}}};
-inline constexpr Words<outbox::State, 5> state_words{{{outbox::State::waiting, "waiting"},
+inline constexpr Words<outbox::State, 7> state_words{{{outbox::State::waiting, "waiting"},
                                                       {outbox::State::sending, "sending"},
                                                       {outbox::State::in_doubt, "in_doubt"},
                                                       {outbox::State::sent, "sent"},
-                                                      {outbox::State::parked, "parked"}}};
+                                                      {outbox::State::parked, "parked"},
+                                                      {outbox::State::held, "held"},
+                                                      {outbox::State::merged, "merged"}}};
 inline constexpr Words<field::Method, 4> method_words{{{field::Method::none, "none"},
                                                        {field::Method::overhead, "overhead"},
                                                        {field::Method::drip, "drip"},

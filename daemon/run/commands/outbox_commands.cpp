@@ -39,6 +39,11 @@ Exit retry_letter(store::Store& store, std::int64_t id, Instant now) {
     return say(Failure{"retry a letter", std::to_string(id), "it was sent already",
                        "nothing was changed"});
   }
+  if ((*item)->state == outbox::State::merged) {
+    return say(Failure{"retry a letter", std::to_string(id),
+                       "it was named in the digest " + (*item)->digest,
+                       "send that one again: \"antherd letters\" lists it"});
+  }
   const auto line = store.line();
   if (!line) return say(line.failure());
   if (auto done = store.update(outbox::retry(**item, now), outbox::reopen(*line)); !done) {
@@ -48,17 +53,10 @@ Exit retry_letter(store::Store& store, std::int64_t id, Instant now) {
   return Exit::done;
 }
 
-/// Marks what a letter spoke of as seen: the ledger's entries of its kind and moment.
-Exit mark_seen(store::Store& store, std::int64_t id) {
-  const auto item = store.letter(id);
-  if (!item) return say(item.failure());
-  if (!*item) {
-    return say(Failure{"mark a letter as seen", std::to_string(id),
-                       "there is no letter of this number", "\"antherd letters\" lists them"});
-  }
-  const letters::Letter& letter = (*item)->letter;
+/// Marks what one letter spoke of: the ledger's entries of its kind and moment. @return how many
+Result<int> mark_entries(store::Store& store, const antherd::letters::Letter& letter) {
   const auto said = store.said(letter.decided - std::chrono::days{1});
-  if (!said) return say(said.failure());
+  if (!said) return said.failure();
   // A letter was made when its entries were, or some hours before it might go (quiet hours).
   const auto speaks_of = [&](const alerts::Said& entry) {
     return entry.at <= letter.decided && alerts::name_of(entry.kind) == letter.kind;
@@ -70,8 +68,35 @@ Exit mark_seen(store::Store& store, std::int64_t id) {
   int marked = 0;
   for (const alerts::Said& entry : *said) {
     if (entry.at != moment || !speaks_of(entry)) continue;
-    if (auto done = store.mark_seen(entry.episode, entry.level); !done) return say(done.failure());
+    if (auto done = store.mark_seen(entry.episode, entry.level); !done) return done.failure();
     ++marked;
+  }
+  return marked;
+}
+
+/// Marks what a letter spoke of as seen; of a digest, what each letter that it names spoke of.
+Exit mark_seen(store::Store& store, std::int64_t id) {
+  const auto item = store.letter(id);
+  if (!item) return say(item.failure());
+  if (!*item) {
+    return say(Failure{"mark a letter as seen", std::to_string(id),
+                       "there is no letter of this number", "\"antherd letters\" lists them"});
+  }
+  std::vector<antherd::letters::Letter> meant{(*item)->letter};
+  if (meant.front().kind == "digest") {
+    const auto all = store.letters_since(meant.front().decided - std::chrono::days{30});
+    if (!all) return say(all.failure());
+    for (const outbox::Item& named : *all) {
+      const bool here =
+          named.digest == (*item)->letter.id && named.letter.recipient == (*item)->letter.recipient;
+      if (here) meant.push_back(named.letter);
+    }
+  }
+  int marked = 0;
+  for (const antherd::letters::Letter& letter : meant) {
+    const auto entries = mark_entries(store, letter);
+    if (!entries) return say(entries.failure());
+    marked += *entries;
   }
   if (marked == 0) {
     return say(Failure{"mark a letter as seen", std::to_string(id),

@@ -26,6 +26,10 @@ std::vector<std::string> attention_of(const service::Lookout& lookout, const sto
           "Station " + episode.subject + " is silent" +
           (last ? " since " + farm_text(lookout.settings().calendar, *last) : "") +
           (covered ? "; another station stands in." : ": its fields are not watched."));
+    } else if (episode.kind == alerts::Kind::mail_trouble) {
+      sentences.push_back("Mail trouble since " +
+                          farm_text(lookout.settings().calendar, episode.start) +
+                          ": do not count on letters.");
     } else if (episode.kind == alerts::Kind::doubtful_sensor) {
       sentences.push_back("Station " + episode.subject + " reports doubtful values.");
     }
@@ -70,6 +74,10 @@ Result<View> view_of(const SettingsPointer& settings, Instant now) {
   const auto past = past_from_store(settings, *store, now);
   if (!past) return past.failure();
   View view{std::move(*store), lookout_over(*past)};
+  const auto deliveries = view.store.deliveries(now - service::mail_looks_back);
+  if (deliveries && settings->mail) {
+    view.lookout.set_mail_troubles(outbox::mail_troubles(*deliveries, now));
+  }
   view.lookout.turn(now, closed_at(*past, now));
   // The ledger is what was really said, not what this look would have said.
   view.lookout.set_ledger(past->said);

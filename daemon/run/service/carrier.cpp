@@ -48,7 +48,8 @@ outbox::Receipt receipt_of(std::int64_t item, const mail::Spoken& spoken, Instan
 }
 
 bool is_open(outbox::State state) {
-  return state != outbox::State::sent && state != outbox::State::parked;
+  return state == outbox::State::waiting || state == outbox::State::sending ||
+         state == outbox::State::in_doubt;
 }
 
 }  // namespace
@@ -158,6 +159,10 @@ std::string Carrier::write_file(outbox::Item item, Instant now) {
   const auto path = mail::write_eml(settings_->mail->folder, settings_->mail->from, letter);
   mail::Spoken spoken;
   spoken.how = path ? mail::How::accepted : mail::How::wait;
+  if (!path && !mail::as_rfc5322(letter, settings_->mail->from)) {
+    spoken.how = mail::How::refused;  // the letter itself: it must not stand before the others
+    spoken.about = mail::About::letter;
+  }
   spoken.sentence = path ? "written to " + *path : path.failure().sentence();
   return received(item.id, spoken, now);
 }

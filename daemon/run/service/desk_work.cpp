@@ -10,7 +10,8 @@ namespace antherd::service {
 namespace {
 
 constexpr Seconds scan_every{60};
-constexpr Seconds settles_within{90};  // after a start; a poll takes 20 s at most
+constexpr Seconds longest_poll_pause{15 * 60};  // back-off after failures
+constexpr Seconds settles_within{90};           // after a start; a poll takes 20 s at most
 
 /// How a drop folder's files are read, as one text: another form reads the files anew.
 std::string form_text(const station::DropForm& drop) {
@@ -29,12 +30,6 @@ std::string form_text(const station::DropForm& drop) {
   }
   for (const std::string& word : record.missing) text += '|' + word;
   return text;
-}
-
-std::string age_text(Seconds age) {
-  const auto minutes = age.count() / 60;
-  if (minutes < 120) return std::to_string(std::max<long>(0, minutes)) + " min";
-  return std::to_string(minutes / 60) + " h";
 }
 
 }  // namespace
@@ -112,6 +107,7 @@ Instant DeskWork::turn(Instant now, bool clock_set) {
     if (auto done = carrier_->refresh(); !done) log_once("outbox", done.failure().sentence());
   }
   for (const std::string& sentence : carrier_->carry(now)) log_info(sentence);
+  if (!settling_since_) give_sign_of_life(kept.troubles.empty(), now);
   if (!settling_since_) front_page_.refresh(keeper_->lookout(), store_, now);
 
   Instant wake = std::min(now + scan_every, std::max(now, next_look_));
@@ -139,6 +135,21 @@ bool DeskWork::settled(Instant now) {
   return true;
 }
 
+/// Only a turn that could keep what it found, of a loop that lately looked at each of its stations,
+/// is a sign of life.
+void DeskWork::give_sign_of_life(bool kept_well, Instant now) {
+  if (!beat_) return;
+  const bool looked = std::all_of(
+      settings_->stations.begin(), settings_->stations.end(),
+      [&](const settings::Station& station) {
+        const auto& at = sources_.at(station.station.name).looked;
+        const Seconds patience =
+            2 * (station.http ? std::max(station.http->every, longest_poll_pause) : scan_every);
+        return at && now >= *at && now - *at <= patience;
+      });
+  if (const auto url = heartbeat_.beat(settings_->watch, kept_well && looked, now)) beat_(*url);
+}
+
 void DeskWork::forget_bookmarks_of_another_form(const settings::Station& station, Source& source,
                                                 store::Notes& notes) {
   const std::string key = "form/" + station.station.name;
@@ -160,6 +171,7 @@ void DeskWork::look(Instant now) {
 bool DeskWork::look_into_drop(const settings::Station& station, Source& source, Instant now) {
   const std::string& name = station.station.name;
   const station::Look look = station::look_into(*station.drop, source.bookmarks, now);
+  source.looked = now;
   store::Notes notes;
   for (const station::Bookmark& bookmark : look.bookmarks) {
     const auto known =
@@ -214,6 +226,7 @@ void DeskWork::poll_answered(const std::string& name, const station::Answer& ans
   Source& source = found->second;
   source.asked = false;
   source.answered = true;
+  source.looked = now;
   source.memory = answer.memory;
   // Every station has its own place in the spread: they do not all ask in the same second.
   const double place = static_cast<double>(std::hash<std::string>{}(name) % 1000) / 1000.0;
@@ -314,43 +327,6 @@ std::vector<std::string> DeskWork::folders() const {
   }
   if (!settings_->diary_folder.empty()) folders.push_back(settings_->diary_folder);
   return folders;
-}
-
-std::string DeskWork::status_line(Instant now) const {
-  std::string line;
-  for (const auto& station : settings_->stations) {
-    const auto last = keeper_->lookout().last_sample(station.station.name);
-    line += station.station.name + ": " +
-            (last ? "read " + age_text(now - *last) + " ago" : "no data yet") + "; ";
-  }
-  const outbox::Line& mail = carrier_->line();
-  line += std::to_string(carrier_->waiting()) + " letters waiting";
-  if (mail.last_success) line += ", last mail " + age_text(now - *mail.last_success) + " ago";
-  if (!mail.trouble.empty()) line += ", mail: " + mail.trouble;
-  return line;
-}
-
-void DeskWork::log_kept(const Kept& kept) {
-  for (const alerts::Telling& telling : kept.tellings) {
-    std::string sentence = std::string(alerts::name_of(telling.kind)) + " of " + telling.subject +
-                           ", " + alerts::name_of(telling.severity);
-    if (telling.figure) sentence += ", figure " + std::to_string(*telling.figure).substr(0, 5);
-    if (!telling.key.empty()) sentence += ", " + telling.key;
-    log_warning("alert: " + sentence);
-  }
-  for (const Failure& trouble : kept.troubles) {
-    log_once("store " + trouble.what, trouble.sentence());
-  }
-  if (kept.troubles.empty()) {
-    std::erase_if(logged_, [](const auto& said) { return said.first.rfind("store ", 0) == 0; });
-  }
-}
-
-/// The same trouble is said once, until it changes or passes.
-void DeskWork::log_once(const std::string& what, const std::string& sentence) {
-  if (logged_[what] == sentence) return;
-  logged_[what] = sentence;
-  log_warning(sentence);
 }
 
 }  // namespace antherd::service

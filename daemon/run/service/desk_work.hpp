@@ -12,6 +12,7 @@
 #include "edge/store/store.hpp"
 #include "run/service/carrier.hpp"
 #include "run/service/front_page.hpp"
+#include "run/service/heartbeat.hpp"
 #include "run/service/intake.hpp"
 #include "run/service/keeper.hpp"
 #include "run/settings/settings.hpp"
@@ -29,6 +30,7 @@ class DeskWork {
 
   void on_send(Carrier::Send send) { send_ = std::move(send); }
   void on_poll(Ask ask) { ask_ = std::move(ask); }
+  void on_beat(std::function<void(const std::string& url)> beat) { beat_ = std::move(beat); }
 
   /// One turn. @return when to turn again, at most 60 s later
   Instant turn(Instant now, bool clock_set);
@@ -36,6 +38,7 @@ class DeskWork {
   void look_soon() { look_due_ = true; }
 
   void poll_answered(const std::string& station, const station::Answer& answer, Instant now);
+  void life_answered(const Outcome& outcome, Instant now);
   bool before_dot(std::int64_t item, Instant now) { return carrier_->before_dot(item, now); }
   void mail_spoken(std::int64_t item, const mail::Spoken& spoken, Instant now);
 
@@ -56,6 +59,7 @@ class DeskWork {
     station::PollMemory memory;                // of a polled station
     Instant next_poll;
     bool asked = false, answered = false;
+    std::optional<Instant> looked;    // read, or told in full why it cannot be
     std::map<CivilDay, int> refused;  // rows by day
     std::string last_trouble;
   };
@@ -74,6 +78,8 @@ class DeskWork {
   void note_trouble(const std::string& station, const std::string& sentence);
   void tell_news(const std::string& station, Instant now);
   void log_kept(const Kept& kept);
+  void note_mail_trouble();
+  void give_sign_of_life(bool kept_well, Instant now);
   void log_once(const std::string& what, const std::string& sentence);
 
   std::shared_ptr<const settings::Settings> settings_;
@@ -81,6 +87,8 @@ class DeskWork {
   std::unique_ptr<Keeper> keeper_;
   std::unique_ptr<Carrier> carrier_;
   FrontPage front_page_;
+  Heartbeat heartbeat_;
+  std::function<void(const std::string& url)> beat_;
   Carrier::Send send_;
   Ask ask_;
   std::map<std::string, Source> sources_;

@@ -14,6 +14,7 @@ namespace {
 constexpr auto reach_before_sowing = std::chrono::days{3};
 constexpr auto ledger_reach = std::chrono::days{400};
 constexpr std::ptrdiff_t most_in_memory = 200'000;  // samples of a station: 4 months of minutes
+constexpr auto limits_look_back = std::chrono::days{2};
 constexpr auto remade_at_once = std::chrono::days{20};
 
 std::string text_of(Instant at) { return std::to_string(at.time_since_epoch().count()); }
@@ -49,10 +50,12 @@ Outcome Keeper::load(Instant now) {
   // What fell due before the first start was never promised.
   if (!last_daily_) last_daily_ = now;
   if (!last_weekly_) last_weekly_ = now;
-  sent_day_ = settings_->calendar.day_of(now);
-  auto today = store_.letters_since(settings_->calendar.start_of(sent_day_));
-  if (!today) return today.failure();
-  for (const auto& item : *today) ++sent_today_[item.letter.recipient];
+  auto recent = store_.letters_since(now - limits_look_back);
+  if (!recent) return recent.failure();
+  auto held = store_.letters_held();
+  if (!held) return held.failure();
+  recent->insert(recent->end(), held->begin(), held->end());
+  rations_ = rations_of(*recent);
 
   auto said = store_.said(now - ledger_reach);
   if (!said) return said.failure();
@@ -236,17 +239,19 @@ Kept Keeper::step(Instant now, bool clock_set) {
   }
   if (auto done = refresh_diary(); !done) kept.troubles.push_back(done.failure());
 
+  if (settings_->mail) {
+    const auto deliveries = store_.deliveries(now - mail_looks_back);
+    if (deliveries) lookout_.set_mail_troubles(outbox::mail_troubles(*deliveries, now));
+  }
   const Closed closed = closed_at(now);
   Turn turn = lookout_.turn(now, closed, clock_set);
   collect_hours(pending_, closed);
   pending_.said.insert(pending_.said.end(), turn.said.begin(), turn.said.end());
   add_timed_letters(now, pending_, turn.letters);
-  const CivilDay today = settings_->calendar.day_of(now);
-  if (today != sent_day_) sent_today_.clear();
-  sent_day_ = today;
-  auto items = to_items(turn.letters, *settings_, sent_today_, now);
-  for (const auto& item : items) ++sent_today_[item.letter.recipient];
+  forget_old(rations_, now);
+  auto items = to_items(turn.letters, *settings_, rations_, now);
   pending_.letters.insert(pending_.letters.end(), items.begin(), items.end());
+  add_digests(now);
   kept.tellings = std::move(turn.tellings);
 
   const bool nothing = pending_.hours.empty() && pending_.hours_gone.empty() &&
@@ -311,6 +316,50 @@ void Keeper::add_timed_letters(Instant now, store::Decision& decision,
     last_weekly_ = now;
     decision.notes["last_weekly"] = text_of(now);
   }
+}
+
+/// What was held past the limits becomes one letter an address, and is marked as named there, in
+/// the transaction of this step.
+void Keeper::add_digests(Instant now) {
+  const auto due = digests_due(*settings_, rations_, now);
+  if (due.empty()) return;
+  const auto stored = store_.letters_held();
+  if (!stored) return;  // the next turn asks again
+  std::vector<outbox::Item> held = *stored;
+  held.insert(held.end(), pending_.letters.begin(), pending_.letters.end());
+  for (const std::string& address : due) {
+    std::map<std::string, letters::Letter> waited;  // by identity: what is pending may be stored
+    for (const outbox::Item& item : held) {
+      const bool named = std::any_of(
+          pending_.merged.begin(), pending_.merged.end(), [&](const store::Merger& merger) {
+            return merger.letter == item.letter.id && merger.recipient == address;
+          });
+      if (item.state != outbox::State::held || item.letter.recipient != address || named) continue;
+      waited.emplace(item.letter.id, item.letter);
+    }
+    if (waited.empty()) {  // a person had them sent one by one
+      rations_[address].held_since.reset();
+      continue;
+    }
+    const letters::Letter digest = digest_of(address, waited, now);
+    for (const auto& [id, letter] : waited) {
+      pending_.merged.push_back({id, address, digest.id, now});
+    }
+    pending_.letters.push_back(digest_item(digest, rations_, now));
+  }
+}
+
+letters::Letter Keeper::digest_of(const std::string& address,
+                                  const std::map<std::string, letters::Letter>& waited,
+                                  Instant now) const {
+  letters::Recipient recipient;  // one who is no longer in the settings is owed it all the same
+  recipient.address = address;
+  for (const auto& known : settings_->recipients) {
+    if (known.address == address) recipient = known;
+  }
+  std::vector<letters::Letter> letters;
+  for (const auto& [id, letter] : waited) letters.push_back(letter);
+  return letters::compose_digest(letters, recipient, lookout_.desk(now));
 }
 
 std::vector<letters::Letter> Keeper::weekly_letters(Instant now) {

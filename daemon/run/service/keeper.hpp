@@ -73,6 +73,10 @@ class Keeper {
   void add_timed_letters(Instant now, store::Decision& decision,
                          std::vector<letters::Letter>& letters);
   std::vector<letters::Letter> weekly_letters(Instant now);
+  void add_digests(Instant now);
+  letters::Letter digest_of(const std::string& address,
+                            const std::map<std::string, letters::Letter>& waited,
+                            Instant now) const;
 
   std::shared_ptr<const settings::Settings> settings_;
   store::Store& store_;
@@ -83,8 +87,7 @@ class Keeper {
   std::int64_t diary_version_ = -1;
   std::optional<Instant> first_start_, last_daily_, last_weekly_;
   std::optional<CivilDay> tidied_;
-  SentToday sent_today_;
-  CivilDay sent_day_{};
+  Rations rations_;
 };
 
 constexpr Seconds batch_for{300};  // ≤ 5 min of samples may be lost with the power (promise 1)

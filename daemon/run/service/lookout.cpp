@@ -126,6 +126,7 @@ Turn Lookout::turn(Instant now, const Closed& closed, bool clock_set) {
     notices.insert(notices.end(), field.state.notices.begin(), field.state.notices.end());
   }
   for (const auto& [name, station] : stations_) gather_station_episodes(station, now);
+  episodes_.insert(episodes_.end(), mail_troubles_.begin(), mail_troubles_.end());
 
   Turn turn;
   turn.tellings = alerts::decide(episodes_, notices, said_, policy_, now);

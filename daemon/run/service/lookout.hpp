@@ -45,6 +45,10 @@ class Lookout {
   void set_ledger(std::vector<alerts::Said> said);
   void set_first_start(std::optional<Instant> at) { policy_.first_start = at; }
   void set_source_news(const std::string& station, SourceNews news);
+  /// Episodes of the mail as the outbox tells them.
+  void set_mail_troubles(std::vector<alerts::Episode> troubles) {
+    mail_troubles_ = std::move(troubles);
+  }
 
   /// Folds every field up to its closed hours and decides what to say.
   Turn turn(Instant now, const Closed& closed, bool clock_set = true);
@@ -87,7 +91,7 @@ class Lookout {
   std::map<std::string, FieldMemory> fields_;
   std::map<std::string, StationMemory> stations_;
   std::vector<alerts::Said> said_;
-  std::vector<alerts::Episode> episodes_;
+  std::vector<alerts::Episode> episodes_, mail_troubles_;
   bool clock_set_ = true;
 };
 

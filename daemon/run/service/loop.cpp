@@ -28,12 +28,14 @@ class Loop {
         mail_([this](auto item, auto permission) { ask_before_dot(item, permission); },
               [this](auto item, auto spoken) { report_mail(item, std::move(spoken)); }),
         polls_([this](auto name, auto answer) { report_poll(std::move(name), std::move(answer)); },
+               [this](auto outcome) { report_life(std::move(outcome)); },
                [time = options.time] { return time.now(); }) {
     work_->on_send([this](mail::Server server, std::int64_t item, letters::Letter letter) {
       mail_.send(std::move(server), item, std::move(letter));
     });
     work_->on_poll([this](const std::string& name, const station::HttpForm& form,
                           const station::PollMemory& memory) { polls_.ask(name, form, memory); });
+    work_->on_beat([this](const std::string& url) { polls_.give_sign_of_life(url); });
   }
 
   void run() {
@@ -126,6 +128,10 @@ class Loop {
       work_->poll_answered(name, answer, now());
       hurry();
     });
+  }
+
+  void report_life(Outcome outcome) {
+    asio::post(io_, [this, outcome = std::move(outcome)] { work_->life_answered(outcome, now()); });
   }
 
   void stop(const std::string& why) {

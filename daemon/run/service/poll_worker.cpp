@@ -3,6 +3,8 @@
 
 #include <utility>
 
+#include "edge/station/sign_of_life.hpp"
+
 namespace antherd::service {
 namespace {
 
@@ -10,8 +12,8 @@ constexpr int threads_at_once = 4;  // stations that may be slow at one time
 
 }  // namespace
 
-PollWorker::PollWorker(Report report, std::function<Instant()> now)
-    : report_(std::move(report)), now_(std::move(now)) {
+PollWorker::PollWorker(Report report, ReportLife life, std::function<Instant()> now)
+    : report_(std::move(report)), life_(std::move(life)), now_(std::move(now)) {
   for (int i = 0; i < threads_at_once; ++i) threads_.emplace_back([this] { work(); });
 }
 
@@ -20,6 +22,12 @@ PollWorker::~PollWorker() { stop(); }
 void PollWorker::ask(std::string name, station::HttpForm form, station::PollMemory memory) {
   const std::lock_guard lock(mutex_);
   jobs_.push_back(Job{std::move(name), std::move(form), std::move(memory)});
+  wake_.notify_all();
+}
+
+void PollWorker::give_sign_of_life(std::string url) {
+  const std::lock_guard lock(mutex_);
+  jobs_.push_back(Job{"", {}, {}, std::move(url)});
   wake_.notify_all();
 }
 
@@ -42,6 +50,10 @@ void PollWorker::work() {
     const Job job = std::move(jobs_.front());
     jobs_.pop_front();
     lock.unlock();
+    if (!job.sign_of_life.empty()) {
+      life_(station::give_sign_of_life(job.sign_of_life, stop_));
+      continue;
+    }
     report_(job.name, station::poll(job.form, job.memory, now_, stop_));
   }
 }

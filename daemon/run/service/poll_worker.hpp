@@ -18,13 +18,16 @@ namespace antherd::service {
 class PollWorker {
  public:
   using Report = std::function<void(std::string station, station::Answer)>;
+  using ReportLife = std::function<void(Outcome)>;
 
-  /// @param report  called in a worker's thread; must only post to the owner
+  /// @param report, life  called in a worker's thread; must only post to the owner
   /// @param now  the service's time, for stations without their own
-  PollWorker(Report report, std::function<Instant()> now);
+  PollWorker(Report report, ReportLife life, std::function<Instant()> now);
   ~PollWorker();
 
   void ask(std::string name, station::HttpForm form, station::PollMemory memory);
+  /// One sign of life, after the stations that wait to be asked.
+  void give_sign_of_life(std::string url);
   void stop();
 
  private:
@@ -32,10 +35,12 @@ class PollWorker {
     std::string name;
     station::HttpForm form;
     station::PollMemory memory;
+    std::string sign_of_life = {};  // an address: no station is asked, this is
   };
   void work();
 
   Report report_;
+  ReportLife life_;
   std::function<Instant()> now_;
   std::atomic<bool> stop_{false};
   std::mutex mutex_;

@@ -3,6 +3,7 @@
 
 #include <algorithm>
 #include <cstdio>
+#include <map>
 
 namespace antherd::service {
 namespace {
@@ -84,22 +85,53 @@ letters::FieldReview review_field(const Lookout& lookout, const std::string& nam
   return review;
 }
 
-void add_letters(letters::Review& review, const store::Store& store, const Span& span) {
-  const auto letters = store.letters_since(span.from);
+void count_letter(letters::Review& review, const outbox::Item& item, outbox::State state,
+                  const Span& span, Instant latest) {
+  const auto within = [&](Instant at) { return at >= span.from && at < latest; };
+  if (state == outbox::State::sent) {
+    if (within(item.letter.decided)) ++review.letters_sent;
+  } else if (state == outbox::State::parked) {
+    // By its end: a letter that was given up in this week was decided in the one before, perhaps.
+    if (!within(item.ended.value_or(item.letter.decided))) return;
+    ++review.letters_parked;
+    review.parked.push_back(item.letter.recipient + ": " + item.letter.subject + " — " +
+                            item.answer);
+  } else if (item.letter.decided < latest) {
+    ++review.letters_waiting;
+  }
+}
+
+void add_letters(letters::Review& review, const store::Store& store, const Span& span,
+                 Instant now) {
+  const auto letters = store.letters_since(span.from - mail_looks_back);
   if (!letters) {
     review.troubles.push_back(letters.failure().sentence());
     return;
   }
+  // Of the week that has just ended what happened since then is told too: the next review must not
+  // be the first to name it.
+  const Instant latest = now - span.to < days{1} ? now + Seconds{1} : span.to;
+  std::map<std::pair<std::string, std::string>, const outbox::Item*> digests;
+  std::vector<outbox::Delivery> deliveries;
   for (const outbox::Item& item : *letters) {
-    if (item.state == outbox::State::sent) {
-      ++review.letters_sent;
-    } else if (item.state == outbox::State::parked) {
-      ++review.letters_parked;
-      review.parked.push_back(item.letter.recipient + ": " + item.letter.subject + " — " +
-                              item.answer);
-    } else {
-      ++review.letters_waiting;
+    if (item.letter.kind == "digest") digests[{item.letter.id, item.letter.recipient}] = &item;
+    deliveries.push_back({item.letter.decided, item.state, item.ended});
+  }
+  for (outbox::Item item : *letters) {
+    outbox::State state = item.state;
+    if (state == outbox::State::merged) {  // it went, or did not, with its digest
+      const auto digest = digests.find({item.digest, item.letter.recipient});
+      if (digest == digests.end()) continue;
+      state = digest->second->state;
+      item.ended = digest->second->ended;
+      item.answer = "in \"" + digest->second->letter.subject + "\"";
     }
+    count_letter(review, item, state, span, latest);
+  }
+  for (alerts::Episode& trouble : outbox::mail_troubles(deliveries, now)) {
+    const bool touches =
+        trouble.changes.front().at < latest && (!trouble.closed || *trouble.closed >= span.from);
+    if (touches) review.mail_troubles.push_back(std::move(trouble));
   }
   const auto line = store.line();
   if (line && !line->trouble.empty()) review.troubles.push_back(line->trouble);
@@ -178,7 +210,7 @@ letters::Review make_review(const Lookout& lookout, const store::Store& store, c
                                     [&](const auto& f) { return f.status.field == said.subject; });
     (field == review.fields.end() ? review.said_of_stations : field->said).push_back(said);
   }
-  add_letters(review, store, span);
+  add_letters(review, store, span, now);
   return review;
 }
 

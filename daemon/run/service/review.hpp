@@ -9,6 +9,9 @@
 
 namespace antherd::service {
 
+/// How far back the outbox is asked when the mail's health is judged.
+constexpr auto mail_looks_back = std::chrono::days{10};
+
 struct Period {
   std::string title;         // "Week 2026-W28"
   CivilDay first{}, last{};  // both included

@@ -1,9 +1,10 @@
-// The tables of the farm, the store, the log, the alerts, the diary and the page.
+// The tables of the farm, the store, the log, the alerts, the diary, the page and the watch.
 #include <chrono>
 
 #include "edge/clock/clock.hpp"
 #include "run/settings/parts.hpp"
 #include "run/settings/quantities.hpp"
+#include "run/settings/url.hpp"
 
 namespace antherd::settings {
 namespace {
@@ -106,6 +107,31 @@ void read_page(Work& work) {
   page.address = table->text("address", address).value_or(page.address);
   page.names = table->texts("names", names).value_or(page.names);
   work.settings.page = page;
+}
+
+void read_watch(Work& work) {
+  const auto table = section(work, "watch");
+  if (!table) return;
+  const Wanted address{"an address that begins with https:// (http:// on this computer alone)",
+                       "heartbeat_url = \"https://watch.larkspur.example/farm\""};
+  Watch watch;
+  if (const auto written = table->name("heartbeat_url", 1000, address, true)) {
+    const Result<Url> url = parse_url(*written);
+    const bool known =
+        url && (url->scheme == "https" || (url->scheme == "http" && is_loopback(url->host)));
+    if (known) {
+      watch.heartbeat_url = *written;
+    } else {  // it is not repeated: such an address is often a key
+      table->complain(
+          "heartbeat_url", "another text",
+          {address.allowed + (url ? "" : " (" + url.failure().why + ")"), address.example});
+    }
+  }
+  watch.every = table
+                    ->quantity("every", parse_duration, Seconds{300}, one_day,
+                               {"a duration from 5 min to 24 h, with its unit", "every = \"1 h\""})
+                    .value_or(watch.every);
+  work.settings.watch = std::move(watch);
 }
 
 }  // namespace antherd::settings

@@ -21,7 +21,7 @@ std::vector<KnownTable> make_tables() {
   std::vector<KnownTable> tables{
       {"the file",
        {"farm", "store", "log", "mail", "recipient", "alerts", "station", "field", "crop", "diary",
-        "page"}},
+        "page", "watch"}},
       {"[farm]", {"name", "time_zone", "units", "exercise"}},
       {"[store]", {"folder", "keep_samples"}},
       {"[log]", {"file", "level"}},
@@ -51,6 +51,7 @@ std::vector<KnownTable> make_tables() {
       {"[crop.NAME] photoperiod", {"critical", "slope"}},
       {"[diary]", {"folder"}},
       {"[page]", {"port", "address", "names"}},
+      {"[watch]", {"heartbeat_url", "every"}},
       {"[station.drop] time", {"column", "columns", "form", "zone"}},
       {"[station.http] time", {"at", "form", "zone"}},
       {"[station.drop] where", {"column", "equals"}},

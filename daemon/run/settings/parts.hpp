@@ -26,6 +26,7 @@ void read_store_and_log(Work& work);
 void read_alerts(Work& work);
 void read_diary(Work& work);
 void read_page(Work& work);
+void read_watch(Work& work);
 void read_stations(Work& work);
 void read_fields(Work& work);
 void read_mail(Work& work);

@@ -67,6 +67,14 @@ std::string mail_text(const Settings& settings) {
   return text;
 }
 
+std::string watch_text(const Settings& settings) {
+  if (!settings.watch) return "";
+  const std::string& url = settings.watch->heartbeat_url;
+  const std::size_t host = url.find("://") + 3;
+  return "  sign of life: to " + url.substr(0, url.find_first_of("/?#", host)) + " every " +
+         duration_text(settings.watch->every) + "\n";
+}
+
 std::string recipient_text(const letters::Recipient& recipient) {
   std::string text = "  told: " + recipient.address + ": ";
   text += recipient.fields.empty() ? "all fields" : "fields " + joined(recipient.fields);
@@ -230,6 +238,7 @@ std::string describe(const Settings& settings) {
       "  log: " + (settings.log.file.empty() ? "journal or standard error" : settings.log.file) +
       ", level " + settings.log.level + "\n";
   text += mail_text(settings);
+  text += watch_text(settings);
   for (const auto& recipient : settings.recipients) text += recipient_text(recipient);
   text += alerts_text(settings.policy);
   text += "  diary: " +

@@ -52,6 +52,7 @@ Reading read_tree(const Node& root, const std::string& path, bool ask_disk) {
   read_alerts(work);
   read_diary(work);
   read_page(work);
+  read_watch(work);
   read_stations(work);
   read_fields(work);
   read_mail(work);

@@ -53,6 +53,12 @@ struct Page {
   std::vector<std::string> names;  // host names by which visitors may call this computer
 };
 
+/// A sign of life to somebody else's watch, while the service really looks at its stations.
+struct Watch {
+  std::string heartbeat_url;  // https, or http on loopback; often a secret: only the host is shown
+  Seconds every{3600};
+};
+
 struct Log {
   std::string file;     // empty: journal or standard error
   std::string level = "info";
@@ -68,6 +74,7 @@ struct Settings {
   Log log;
   std::optional<Mail> mail;
   std::optional<Page> page;
+  std::optional<Watch> watch;
   std::vector<letters::Recipient> recipients;
   alerts::Policy policy;
   std::vector<Station> stations;

@@ -17,7 +17,7 @@ namespace {
 
 constexpr Instant later = afternoon + minutes(7);
 constexpr std::array all_states{State::waiting, State::sending, State::in_doubt, State::sent,
-                                State::parked};
+                                State::parked,  State::held,    State::merged};
 
 Item in_state(State state, int doubts) {
   Item item = item_of(5);
@@ -25,7 +25,8 @@ Item in_state(State state, int doubts) {
   item.doubts = doubts;
   item.attempts = 1;
   item.next_try = afternoon;
-  if (state == State::sent || state == State::parked) item.ended = afternoon;
+  const bool over = state == State::sent || state == State::parked || state == State::merged;
+  if (over) item.ended = afternoon;
   return item;
 }
 
@@ -49,7 +50,8 @@ const std::vector<Event>& all_events() {
       {"settings trouble", ends(Ending::settings_trouble)},
       {"recover", [](Item item) { return recover(item, later); }},
       {"expire", [](Item item) { return expire(item, later); }},
-      {"retry", [](Item item) { return retry(item, later); }}};
+      {"retry", [](Item item) { return retry(item, later); }},
+      {"merge", [](Item item) { return merge(item, "digest-1", later); }}};
   return events;
 }
 
@@ -90,6 +92,10 @@ const std::vector<Arrow> arrows{
     {"retry", waiting, waiting, 0, 0},
     {"retry", in_doubt, waiting, 1, 1},
     {"retry", parked, waiting, 2, 1},  // may come into doubt once more
+    {"retry", held, waiting, 0, 0},
+    {"merge", held, merged, 0, 0},
+    {"accepted", held, sent, 0, 0},
+    {"accepted", merged, sent, 0, 0},
 };
 
 const Event& event_named(std::string_view name) {
@@ -103,7 +109,7 @@ const Event& event_named(std::string_view name) {
 bool same(const Item& one, const Item& other) {
   return one.state == other.state && one.attempts == other.attempts && one.doubts == other.doubts &&
          one.next_try == other.next_try && one.first_try == other.first_try &&
-         one.ended == other.ended && one.answer == other.answer &&
+         one.ended == other.ended && one.answer == other.answer && one.digest == other.digest &&
          one.letter.valid_until == other.letter.valid_until;
 }
 
@@ -115,7 +121,9 @@ TEST_CASE("each arrow leads where it is drawn") {
     const Item after = event_named(arrow.event).happen(in_state(arrow.from, arrow.doubts_before));
     CHECK(std::string(name_of(after.state)) == name_of(arrow.to));
     CHECK(after.doubts == arrow.doubts_after);
-    CHECK(after.ended.has_value() == (arrow.to == sent || arrow.to == parked));
+    CHECK(after.ended.has_value() ==
+          (arrow.to == sent || arrow.to == parked || arrow.to == merged));
+    CHECK(after.digest == (arrow.to == merged ? "digest-1" : ""));
     CHECK(after.letter.id == "heat-5");
   }
 }
@@ -134,9 +142,17 @@ TEST_CASE("every other pair of state and event changes nothing") {
       CHECK(same(event.happen(before), before));
     }
   }
-  CHECK(pairs == 50);
-  CHECK(still == 50 - static_cast<int>(drawn.size()));
-  CHECK(still == 28);
+  CHECK(pairs == 77);
+  CHECK(still == 77 - static_cast<int>(drawn.size()));
+  CHECK(still == 51);
+}
+
+TEST_CASE("only a letter that was never tried is held for a digest") {
+  CHECK(hold(item_of(1)).state == State::held);
+  CHECK(hold(in_state(waiting, 0)).state == waiting);  // tried once
+  for (State state : {sending, in_doubt, sent, parked, merged}) {
+    CHECK(hold(in_state(state, 0)).state == state);
+  }
 }
 
 TEST_CASE("take counts the try and keeps the first") {

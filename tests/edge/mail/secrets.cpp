@@ -35,6 +35,22 @@ TEST_CASE("a login, and what of it is written down") {
     }
     CHECK(server.wire().find("MAIL") == std::string::npos);
   }
+  SECTION("refused, by a server that encodes what it heard in ways of its own") {
+    // At each place within a group of three bytes, and where a long answer is cut.
+    std::string told;
+    for (const char* before : {"", "x", "xy"}) told += base64(before + password + "-end") + " ";
+    server.answer("AUTH", "535-5.7.8 " + told + "\r\n535 5.7.8 " + std::string(280, 'n') +
+                              password + std::string(40, 'n'));
+    const Spoken spoken = speak(settings);
+    CHECK(spoken.how == How::settings_trouble);
+    for (const std::string& text : {spoken.sentence, spoken.transcript}) {
+      CHECK(text.find("s3cre") == std::string::npos);
+      for (std::size_t before = 0; before < 3; ++before) {
+        const std::string coded = base64(std::string(before, 'x') + password + "-end");
+        CHECK(text.find(coded.substr(4, 12)) == std::string::npos);
+      }
+    }
+  }
   SECTION("not now") {
     server.answer("AUTH", "454 4.7.0 later");
     check(speak(settings), How::wait, 454, About::server, "cannot check the login now");

@@ -10,6 +10,7 @@
 #include <mutex>
 #include <thread>
 
+#include "edge/station/sign_of_life.hpp"
 #include "edge/station/support.hpp"
 #include "edge/station/transfer.hpp"
 
@@ -320,4 +321,32 @@ TEST_CASE("after failures the next poll waits longer, at most 15 min") {
   CHECK(poll_delay(form, memory, 0.5) == Seconds{810});
   form.every = Seconds{3600};
   CHECK(poll_delay(form, memory, 1.0) == Seconds{3600});
+}
+
+TEST_CASE("a sign of life is one GET; its failure names the host, never the key in the address") {
+  const Server server([](const std::string& request) {
+    if (says(request, {"GET /key-ok"})) return response("204 No Content", "");
+    if (says(request, {"GET /key-moved "})) return response("302 x", "", "Location: /key-ok\r\n");
+    if (says(request, {"GET /key-away"})) {
+      return response("302 Found", "", "Location: http://localhost:1/x\r\n");
+    }
+    return response("503 Busy", "no");
+  });
+  const std::atomic<bool> stop{false};
+  CHECK(give_sign_of_life(server.url("/key-ok"), stop));
+  CHECK(server.requests().size() == 1);
+  CHECK(give_sign_of_life(server.url("/key-moved"), stop));
+  const auto trouble = [&](std::string url) {
+    const Outcome outcome = give_sign_of_life(url, stop);
+    REQUIRE_FALSE(outcome);
+    CHECK(outcome.failure().sentence().find("key-") == std::string::npos);
+    CHECK(outcome.failure().sentence().find("station") == std::string::npos);
+    return outcome.failure().sentence();
+  };
+  CHECK(says(trouble(server.url("/key-busy?secret=1")), {"http://127.0.0.1", "HTTP 503"}));
+  CHECK(says(trouble(server.url("/key-away")), {"another host"}));
+  std::string encrypted = server.url("/key-ok");
+  encrypted.replace(0, 4, "https");
+  CHECK(says(trouble(encrypted), {"no trusted TLS connection"}));
+  CHECK(says(trouble("http://127.0.0.1:1/key-none"), {"cannot be reached"}));
 }

@@ -79,7 +79,7 @@ TEST_CASE("every word of the schema comes back", "[store]") {
     entry.seen = i == 3;
     made.said.push_back(entry);
     outbox::Item item = letter("letter." + std::to_string(i), "a@b.example", i);
-    item.state = static_cast<outbox::State>(i % 5);
+    item.state = static_cast<outbox::State>(i % 7);
     item.letter.severity = static_cast<alerts::Severity>(i % 4);
     item.letter.raise = i % 2 == 0;
     if (i % 3 == 0) item.letter.valid_until.reset();
@@ -133,6 +133,43 @@ TEST_CASE("a letter that is there is not kept a second time", "[store]") {
   more.letters = {letter("heat.1", "third@larkspur.example"), letter("heat.1", "")};
   must(store.save(more));
   CHECK(must(store.letters_open()).size() == 3);
+}
+
+TEST_CASE("held letters and the digest that names them change places in one step", "[store]") {
+  const Folder folder;
+  Store store = open(writer(folder));
+  Decision first;
+  for (const char* id : {"heat.1", "heat.2", "heat.3"}) {
+    first.letters.push_back(letter(id, "a@b.example"));
+    first.letters.back().state = outbox::State::held;
+  }
+  first.letters[2].letter.recipient = "other@b.example";
+  must(store.save(first));
+  CHECK(must(store.letters_open()).empty());
+  CHECK(must(store.letters_held()).size() == 3);
+
+  Decision second;
+  second.letters = {letter("digest.1", "a@b.example"), letter("heat.4", "a@b.example")};
+  second.letters[1].state = outbox::State::held;  // held and named in one and the same step
+  for (const char* id : {"heat.1", "heat.2", "heat.4"}) {
+    second.merged.push_back({id, "a@b.example", "digest.1", instant(july_14 + 9)});
+  }
+  must(store.save(second));
+  must(store.save(second));  // again, e.g. after a restart
+  const auto held = must(store.letters_held());
+  REQUIRE(held.size() == 1);
+  CHECK(held[0].letter.recipient == "other@b.example");
+  REQUIRE(must(store.letters_open()).size() == 1);
+  CHECK(must(store.letters_open())[0].letter.id == "digest.1");
+  int merged = 0;
+  for (const outbox::Item& item : must(store.letters_since(instant(0)))) {
+    if (item.state != outbox::State::merged) continue;
+    ++merged;
+    CHECK(item.digest == "digest.1");
+    CHECK(item.ended == instant(july_14 + 9));
+  }
+  CHECK(merged == 3);
+  CHECK(must(store.deliveries(instant(0))).size() == 5);
 }
 
 TEST_CASE("a letter's life and the line are kept together", "[store]") {

@@ -30,7 +30,7 @@ TEST_CASE("the file is what it should be", "[store]") {
   CHECK(raw.run("PRAGMA journal_mode") == "wal\n");
   CHECK(raw.run("PRAGMA application_id") == std::to_string(0x416e7468) + "\n");
   CHECK(raw.run("PRAGMA user_version") == std::to_string(store::schema_number) + "\n");
-  CHECK(raw.run("SELECT number, name FROM migration") == "1|first tables\n");
+  CHECK(raw.run("SELECT number, name FROM migration") == "1|first tables\n2|digests\n");
   CHECK(raw.run("SELECT name FROM pragma_table_list WHERE schema = 'main' AND type = 'table' "
                 "AND name NOT LIKE 'sqlite%' AND NOT strict") == "");
   CHECK(raw.run("PRAGMA integrity_check") == "ok\n");
@@ -87,7 +87,7 @@ TEST_CASE("a newer schema is refused by name and left alone", "[store]") {
     const auto refused = Store::open(options);
     REQUIRE_FALSE(refused);
     CHECK(refused.failure().why.find("schema 7") != std::string::npos);
-    CHECK(refused.failure().why.find("knows 1") != std::string::npos);
+    CHECK(refused.failure().why.find("knows 2") != std::string::npos);
   }
   CHECK(bytes_of(folder.database()) == before);
 }
@@ -109,7 +109,8 @@ TEST_CASE("steps of the schema are taken once, in order, each whole", "[store]")
   const Folder folder;
   fill(writer(folder), 5);
   std::vector<store::Migration> steps(store::migrations().begin(), store::migrations().end());
-  steps.push_back({2, "more", "CREATE TABLE more(x INTEGER) STRICT; PRAGMA user_version = 2;"});
+  REQUIRE(steps.size() == 2);
+  steps.push_back({3, "more", "CREATE TABLE more(x INTEGER) STRICT; PRAGMA user_version = 3;"});
   using store::Standing;
   const auto connect = [&] {
     return std::make_unique<store::Database>(folder.database(), store::Database::Mode::write,
@@ -118,18 +119,41 @@ TEST_CASE("steps of the schema are taken once, in order, each whole", "[store]")
   auto database = connect();
   CHECK(store::standing_of(*database, store::migrations()) == Standing::current);
   CHECK(store::standing_of(*database, steps) == Standing::older);
-  steps.push_back({3, "broken", "CREATE TABLE third(x) STRICT; PRAGMA user_version = 3;"});
+  steps.push_back({4, "broken", "CREATE TABLE third(x) STRICT; PRAGMA user_version = 4;"});
   CHECK_THROWS_AS(store::migrate(*database, steps), store::Trouble);  // STRICT wants types
   CHECK(Raw(folder.database()).run("SELECT number, name FROM migration") ==
-        "1|first tables\n2|more\n");
-  steps.back().sql = "CREATE TABLE third(x REAL) STRICT; PRAGMA user_version = 3;";
+        "1|first tables\n2|digests\n3|more\n");
+  steps.back().sql = "CREATE TABLE third(x REAL) STRICT; PRAGMA user_version = 4;";
   store::migrate(*database, steps);
   store::migrate(*database, steps);
   CHECK(store::standing_of(*database, steps) == Standing::current);
   CHECK(store::standing_of(*database, store::migrations()) == Standing::newer);
   CHECK(Raw(folder.database()).run("SELECT count(*) FROM sample") == "5\n");
   CHECK(Raw(folder.database()).run("SELECT max(number) FROM migration; PRAGMA user_version") ==
-        "3\n3\n");
+        "4\n4\n");
+}
+
+TEST_CASE("a store of the first schema opens with its letters", "[store]") {
+  const Folder folder;
+  {
+    store::Database database(folder.database(), store::Database::Mode::write,
+                             std::chrono::milliseconds(100));
+    store::migrate(database, store::migrations().first(1));
+  }
+  Raw(folder.database())
+      .run(
+          "INSERT INTO letter(identity, recipient, subject, body, kind, severity, decided, still, "
+          "rise, state, attempts, doubts, next_try, answer) VALUES('heat.1', 'a@b.example', 's', "
+          "'b', 'heat', 'severe', 1783987200, '', 0, 'in_doubt', 1, 1, 1783987200, '')");
+  CHECK(Raw(folder.database()).run("PRAGMA user_version") == "1\n");
+  CHECK_FALSE(Store::open(reader(folder)));  // a reader changes nothing: it says who does
+  Store store = must(Store::open(service(folder)));
+  CHECK_FALSE(store.set_aside());
+  const auto letters = must(store.letters_open());
+  REQUIRE(letters.size() == 1);
+  CHECK(letters[0].state == outbox::State::in_doubt);
+  CHECK(letters[0].digest.empty());
+  CHECK(Raw(folder.database()).run("PRAGMA user_version") == "2\n");
 }
 
 TEST_CASE("the service sets a damaged file aside, commands leave it", "[store]") {

@@ -1,0 +1,80 @@
+// What the owner's work says to the log and to the service manager; see desk_work.hpp.
+#include <algorithm>
+
+#include "run/service/desk_work.hpp"
+#include "run/service/log.hpp"
+
+namespace antherd::service {
+namespace {
+
+std::string age_text(Seconds age) {
+  const auto minutes = age.count() / 60;
+  if (minutes < 120) return std::to_string(std::max<long>(0, minutes)) + " min";
+  return std::to_string(minutes / 60) + " h";
+}
+
+}  // namespace
+
+std::string DeskWork::status_line(Instant now) const {
+  std::string line;
+  for (const auto& station : settings_->stations) {
+    const auto last = keeper_->lookout().last_sample(station.station.name);
+    line += station.station.name + ": " +
+            (last ? "read " + age_text(now - *last) + " ago" : "no data yet") + "; ";
+  }
+  const outbox::Line& mail = carrier_->line();
+  line += std::to_string(carrier_->waiting()) + " letters waiting";
+  if (mail.last_success) line += ", last mail " + age_text(now - *mail.last_success) + " ago";
+  if (!mail.trouble.empty()) line += ", mail: " + mail.trouble;
+  return line;
+}
+
+void DeskWork::life_answered(const Outcome& outcome, Instant now) {
+  const std::string sentence = heartbeat_.answered(outcome, now);
+  if (sentence.empty()) return;
+  if (outcome) {
+    log_info(sentence);
+  } else {
+    log_warning(sentence);
+  }
+}
+
+void DeskWork::log_kept(const Kept& kept) {
+  for (const alerts::Telling& telling : kept.tellings) {
+    std::string sentence = std::string(alerts::name_of(telling.kind)) + " of " + telling.subject +
+                           ", " + alerts::name_of(telling.severity);
+    if (telling.figure) sentence += ", figure " + std::to_string(*telling.figure).substr(0, 5);
+    if (!telling.key.empty()) sentence += ", " + telling.key;
+    log_warning("alert: " + sentence);
+  }
+  for (const Failure& trouble : kept.troubles) {
+    log_once("store " + trouble.what, trouble.sentence());
+  }
+  note_mail_trouble();
+  if (kept.troubles.empty()) {
+    std::erase_if(logged_, [](const auto& said) { return said.first.rfind("store ", 0) == 0; });
+  }
+}
+
+/// A letter has waited 6 h: nobody can be told of that by letter, so the log says it.
+void DeskWork::note_mail_trouble() {
+  for (const alerts::Episode& episode : keeper_->lookout().episodes()) {
+    if (episode.kind != alerts::Kind::mail_trouble || !episode.open()) continue;
+    log_once(
+        "mail trouble",
+        "mail trouble: a letter has waited more than 6 h and none of those that waited so "
+        "long has gone since; do not count on letters; see antherd letters" +
+            (carrier_->line().trouble.empty() ? std::string() : "; " + carrier_->line().trouble));
+    return;
+  }
+  if (logged_.erase("mail trouble") > 0) log_info("mail trouble is over: letters go again");
+}
+
+/// The same trouble is said once, until it changes or passes.
+void DeskWork::log_once(const std::string& what, const std::string& sentence) {
+  if (logged_[what] == sentence) return;
+  logged_[what] = sentence;
+  log_warning(sentence);
+}
+
+}  // namespace antherd::service
