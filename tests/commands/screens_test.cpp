@@ -185,3 +185,58 @@ TEST_CASE("a replay from the store sees no silence where the station spoke") {
   CHECK(!holds(replayed.out, "o data "));  // neither "No data" nor "Still no data"
   CHECK(!holds(replayed.out, "Data back"));
 }
+
+TEST_CASE("mail that does not go: the screen says since when, the status asks for attention") {
+  Season season;
+  const Instant newest = season.now;  // an exercise: the newest reading's time
+  auto item = season.bench.letters().back();
+  item.letter.id = "waits-1";
+  item.letter.decided = newest - hours{7};
+  item.letter.valid_until.reset();
+  item.state = outbox::State::waiting;
+  item.ended.reset();
+  item.next_try = newest + hours{1};
+  store::Decision decision;
+  decision.letters = {item};
+  REQUIRE(season.bench.desk->store().save(decision));
+  const auto now = season.run({"now"});
+  INFO(now.out << now.err);
+  CHECK(now.status == 3);
+  CHECK(holds(now.out, "Mail trouble since 2026-07-13 13:"));
+  outbox::Line line;
+  line.trouble = "mail.larkspur.example:465 refuses the login of farm (535)";
+  REQUIRE(season.bench.desk->store().update(season.bench.letters().back(), line));
+  CHECK(holds(season.run({"now"}).out, "Mail: mail.larkspur.example:465 refuses the login"));
+}
+
+TEST_CASE("a digest marked as seen marks what each letter that it names spoke of") {
+  Season season;
+  auto& store = season.bench.desk->store();
+  const auto heat = season.bench.letters_of("heat");
+  REQUIRE(!heat.empty());
+  outbox::Item digest = heat.front();
+  digest.letter.id = "digest-1";
+  digest.letter.kind = "digest";
+  digest.letter.decided = season.now;
+  outbox::Item named = heat.front();
+  named.letter.id = "named-1";
+  named.state = outbox::State::held;
+  store::Decision decision;
+  decision.letters = {digest, named};
+  decision.merged = {{"named-1", named.letter.recipient, "digest-1", season.now}};
+  REQUIRE(store.save(decision));
+  std::int64_t digest_id = 0, named_id = 0;
+  for (const auto& item : season.bench.letters()) {
+    if (item.letter.id == "digest-1") digest_id = item.id;
+    if (item.letter.id == "named-1") named_id = item.id;
+  }
+  const auto refused = season.run({"letters", "--retry", std::to_string(named_id)});
+  CHECK(refused.status == 1);
+  CHECK(holds(refused.err, "digest-1"));
+  const auto seen = season.run({"letters", "--seen", std::to_string(digest_id)});
+  INFO(seen.out << seen.err);
+  CHECK(seen.status == 0);
+  const auto said = store.said(Instant{});
+  REQUIRE(said);
+  CHECK(std::any_of(said->begin(), said->end(), [](const auto& entry) { return entry.seen; }));
+}
