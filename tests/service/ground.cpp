@@ -108,7 +108,8 @@ time = { column = "time", form = "%Y-%m-%d %H:%M", zone = "utc" }
 temperature = { column = "temp_c", unit = "degC" }
 humidity = { column = "rh_pct", unit = "%" }
 rain = { column = "rain_mm", unit = "mm", meaning = "since_last" }
-
+)";
+  text += farm.values + R"(
 [crop.quick]
 emerged = "20 degC d"
 buds = "80 degC d"
@@ -126,7 +127,7 @@ stations = ["bench"]
 crop_type = "quick"
 irrigation = "overhead"
 )";
-  return text + "sown = " + farm.sown + "\n" + farm.more;
+  return text + "sown = " + farm.sown + "\n" + farm.of_field + farm.more;
 }
 
 std::shared_ptr<const settings::Settings> settings_in(const Folder& folder, const Farm& farm) {

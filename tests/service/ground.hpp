@@ -50,7 +50,9 @@ struct Farm {
   std::string extra_farm;                        // more lines of [farm]
   std::string mail = "folder = \"outgoing\"\n";  // lines of [mail]; empty: no table
   std::string recipients = "[[recipient]]\naddress = \"owner@larkspur.example\"\n";
-  std::string alerts;  // lines of [alerts]
+  std::string alerts;    // lines of [alerts]
+  std::string values;    // more lines of [station.drop]
+  std::string of_field;  // more lines of [[field]]
   std::string sown = "2026-06-25";
   std::string more;  // whole tables
 };

@@ -109,6 +109,7 @@ TEST_CASE("the plan says who, what and where, and no secret") {
         "field north bench: ", "watched by bench",
         "sown 2026-04-20, crop type coastal (first anthers at 700 °C·d from sowing)",
         "irrigation: overhead; soil: not said; soil water at sowing: unknown",
+        "leaf wetness: by humidity wherever no sensor tells",
         "heat counts from 90.0 °F, severe from 95.0 °F, extreme from 100.4 °F"}) {
     INFO(words);
     CHECK(plan.find(words) != std::string::npos);

@@ -1,4 +1,5 @@
 // Settings that are right, read whole: the two files of config/, and each key's value.
+#include <algorithm>
 #include <filesystem>
 #include <fstream>
 #include <sstream>
@@ -117,9 +118,50 @@ TEST_CASE("the complete example's fields") {
   CHECK(river->traits.photoperiod.critical_hours == 13.0);
   const risk::HumidRules usual;
   CHECK(river->rules.humid.film_humidity == usual.film_humidity);
+  CHECK(river->rules.humid.film == usual.film);
   CHECK(river->rules.humid.bucket_mm == usual.bucket_mm);
   CHECK(river->rules.humid.t_best == usual.t_best);
   CHECK(river->rules.humid.w_max == usual.w_max);
+}
+
+TEST_CASE("the rule for films has three words, and an older form of one") {
+  const auto settings_with = [](const std::string& humid) {
+    return test::settings_of(test::farm_with("irrigation = \"overhead\"",
+                                             "irrigation = \"overhead\"\nhumid = " + humid));
+  };
+  const auto film_of = [&](const std::string& humid) {
+    return settings_with(humid).fields.front().rules.humid.film;
+  };
+  CHECK(film_of("{ film = \"humidity\" }") == risk::Film::humidity);
+  CHECK(film_of("{ film = \"dew_point\" }") == risk::Film::dew_point);
+  CHECK(film_of("{ film = \"energy\" }") == risk::Film::energy);
+  CHECK(film_of("{ bucket = \"0.2 mm\" }") == risk::Film::humidity);
+  CHECK(film_of("{ dew_point_film = true }") == risk::Film::dew_point);
+  CHECK(film_of("{ dew_point_film = false }") == risk::Film::humidity);
+  CHECK(film_of("{ film = \"energy\", dew_point_film = false }") == risk::Film::energy);
+  const auto plan = describe(settings_with("{ film = \"energy\" }"));
+  CHECK(plan.find("leaf wetness: by a leaf's energy balance wherever no sensor tells") !=
+        std::string::npos);
+}
+
+TEST_CASE("the energy balance without wind and sun is remarked on") {
+  const auto remarked = [](const std::string& measures) {
+    const std::string text =
+        test::farm_with("humidity = { column = \"rh_pct\", unit = \"%\" }",
+                        "humidity = { column = \"rh_pct\", unit = \"%\" }\n" + measures);
+    const std::string field = "irrigation = \"overhead\"";
+    std::string whole = text;
+    whole.replace(whole.find(field), field.size(), field + "\nhumid = { film = \"energy\" }");
+    const auto reading = settings::read_text(whole, "/etc/antherd/farm.toml", false);
+    return std::any_of(reading.remarks.begin(), reading.remarks.end(), [](const auto& remark) {
+      return remark.find("wants wind and solar") != std::string::npos;
+    });
+  };
+  CHECK(remarked(""));
+  CHECK(remarked("wind = { column = \"wind\", unit = \"m/s\" }"));
+  CHECK_FALSE(
+      remarked("wind = { column = \"wind\", unit = \"m/s\" }\n"
+               "solar = { column = \"sun\", unit = \"W/m2\" }"));
 }
 
 TEST_CASE("the shortest example is whole, with the documented defaults") {

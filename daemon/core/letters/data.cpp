@@ -84,6 +84,23 @@ std::string unseen_since(const FieldStatus& status, const Words& words) {
   return words.desk().now - *last < stale ? "" : "nothing seen since " + words.closing(*last);
 }
 
+namespace {
+
+/// Where leaf wetness comes from, unless it is the usual rule for want of a sensor.
+std::string wetness_source(const season::HumidStatus& humid) {
+  const std::string by = humid.film == risk::Film::energy      ? " from a leaf's energy balance"
+                         : humid.film == risk::Film::dew_point ? " from the dew point"
+                                                               : " from humidity";
+  if (humid.sensor_hours_24 == 0) {
+    return humid.film == risk::Film::humidity ? "" : "Leaf wetness is estimated" + by + ".";
+  }
+  if (humid.sensor_hours_24 >= 24) return "Leaf wetness: by sensor in the last 24 h.";
+  return "Leaf wetness: by sensor in " + std::to_string(humid.sensor_hours_24) +
+         " of the last 24 h, else estimated" + by + ".";
+}
+
+}  // namespace
+
 std::string data_paragraph(const FieldStatus& status, const Words& words, bool heat) {
   const season::DataStatus& data = status.data;
   std::vector<std::string> said;
@@ -111,6 +128,7 @@ std::string data_paragraph(const FieldStatus& status, const Words& words, bool h
   if (!heat && !data.rain_measured) {
     said.push_back("Rain is not measured here: rain that fell is not in this.");
   }
+  if (!heat) said.push_back(wetness_source(status.humid));
   return join(said);
 }
 

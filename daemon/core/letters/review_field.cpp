@@ -146,6 +146,39 @@ Section told(const FieldReview& field, const Words& words) {
   return section;
 }
 
+/// "humidity (set for this field): right in 1210 of 1440 h (84 %), missed 90 wet h, …".
+std::string rule_line(const season::HumidStatus& humid, risk::Film film) {
+  const risk::SensorRecord& record = humid.sensor;
+  const auto at = static_cast<std::size_t>(film);
+  const int right = record.right(film);
+  std::string name = film == risk::Film::energy      ? "a leaf's energy balance"
+                     : film == risk::Film::dew_point ? "dew point"
+                                                     : "humidity";
+  if (film == humid.film) name += " (set for this field)";
+  return name + ": right in " + std::to_string(right) + " of " + count(record.hours, "hour") +
+         " (" + number(100.0 * right / record.hours, 0) + " %); missed " +
+         count(record.missed[at], "wet hour") + ", took " + count(record.imagined[at], "dry one") +
+         " for wet";
+}
+
+/// Where a sensor tells the truth: how the rules that stand in for it would have done.
+std::string leaf_sensor(const season::HumidStatus& humid) {
+  constexpr int enough = 14 * 24;
+  const risk::SensorRecord& record = humid.sensor;
+  if (record.hours == 0) return "";
+  Section section{"LEAF SENSOR", "", {}, true, {}};
+  section.text = "Since sowing the sensor told " + count(record.hours, "hour") + ", " +
+                 std::to_string(record.wet) +
+                 " of them wet. It decides; had it been silent, these rules would have stood in:";
+  for (const risk::Film film : {risk::Film::humidity, risk::Film::dew_point, risk::Film::energy}) {
+    section.lines.push_back(rule_line(humid, film));
+  }
+  section.lines.push_back(
+      record.hours < enough ? "Too few hours to choose a rule by: two weeks are the least."
+                            : "Another rule: humid = { film = ... } of the field in the settings.");
+  return section_text(section);
+}
+
 }  // namespace
 
 std::string said_line(const alerts::Said& said, const Words& words) {
@@ -166,6 +199,7 @@ std::string field_chapter(const FieldReview& field, const Words& words) {
         decided(field, words), told(field, words)}) {
     text += section_text(section);
   }
+  text += leaf_sensor(field.status.humid);
   return text;
 }
 

@@ -9,16 +9,30 @@
 namespace antherd::risk {
 namespace {
 
-bool humid_film(LeafState& state, const LeafHour& hour, const HumidRules& rules) {
-  if (rules.dew_point_film) {
-    // The dew point comes back from a humidity of six decimals: exactly 2.0 must not hang on noise.
-    const double depression = std::round((hour.temperature - hour.dew_point).value * 1e4) / 1e4;
-    if (depression <= 2.0) state.humid_film = true;
-    if (depression >= 3.8) state.humid_film = false;
-    return state.humid_film;
-  }
+constexpr double film_counts_from = 0.02;  // mm
+
+std::size_t at(Film film) { return static_cast<std::size_t>(film); }
+
+bool film_by_humidity(const LeafHour& hour, const HumidRules& rules) {
   return hour.humidity.value >= rules.film_humidity ||
          (hour.humidity.value >= rules.film_humidity_calm && hour.drying.value < 0.1);
+}
+
+bool film_by_dew_point(LeafState& state, const LeafHour& hour) {
+  // The dew point comes back from a humidity of six decimals: exactly 2.0 must not hang on noise.
+  const double depression = std::round((hour.temperature - hour.dew_point).value * 1e4) / 1e4;
+  if (depression <= 2.0) state.humid_film = true;
+  if (depression >= 3.8) state.humid_film = false;
+  return state.humid_film;
+}
+
+/// @param spent  what the water film took of the hour's drying, mm
+bool film_by_energy(LeafState& state, const LeafHour& hour, double spent, const HumidRules& rules) {
+  const double exchange = hour.exchange.value;
+  state.dew_mm = std::min(rules.bucket_mm, state.dew_mm + std::max(0.0, -exchange));
+  const bool dew = state.dew_mm > film_counts_from;
+  state.dew_mm = std::max(0.0, state.dew_mm - std::max(0.0, exchange - spent));
+  return dew || hour.humidity.value >= rules.film_humidity;
 }
 
 /// The night that holds the end of an irrigation, if that end lies between sunset − 3 h and
@@ -44,27 +58,46 @@ std::optional<NightSet> night_of(const field::Irrigation& irrigation, const weat
 
 Wet wet_hour(LeafState& state, const LeafHour& hour, const Watering& water,
              const HumidRules& rules) {
-  constexpr double film_counts_from = 0.02, rain_counts_from = 0.2, sensor_wet_from = 30.0;
+  constexpr double rain_counts_from = 0.2, sensor_wet_from = 30.0;
   state.film_mm = std::min(rules.bucket_mm, state.film_mm + hour.rain.value + water.depth.value);
   if (water.unknown_depth) state.film_mm = rules.bucket_mm;
   const bool film = state.film_mm > film_counts_from;
-  const bool damp = humid_film(state, hour, rules);
+  const double before = state.film_mm;
   state.film_mm = std::max(0.0, state.film_mm - hour.drying.value);
+  ByFilm<bool> damp{};
+  damp[at(Film::humidity)] = film_by_humidity(hour, rules);
+  damp[at(Film::dew_point)] = film_by_dew_point(state, hour);
+  damp[at(Film::energy)] = film_by_energy(state, hour, before - state.film_mm, rules);
 
   Wet result;
   const bool fallen = hour.rain.value >= rain_counts_from || water.overlaps;
+  const bool held = fallen || film || water.night_set;
+  for (std::size_t i = 0; i < film_rules; ++i) result.estimate[i] = held || damp[i];
   if (hour.sensor_minutes) {
     const bool sensed = *hour.sensor_minutes >= sensor_wet_from;
+    result.sensor = sensed;
     result.water = fallen || (sensed && (film || water.night_set));
     result.wet = fallen || sensed;
   } else {
-    result.water = fallen || film || water.night_set;
-    result.wet = result.water || damp;
+    result.water = held;
+    result.wet = result.estimate[at(rules.film)];
   }
   return result;
 }
 
 void after_gap(LeafState& state) { state = LeafState{}; }
+
+int SensorRecord::right(Film film) const { return hours - missed[at(film)] - imagined[at(film)]; }
+
+void compare(SensorRecord& record, const Wet& wet) {
+  if (!wet.sensor) return;
+  ++record.hours;
+  if (*wet.sensor) ++record.wet;
+  for (std::size_t i = 0; i < film_rules; ++i) {
+    if (*wet.sensor && !wet.estimate[i]) ++record.missed[i];
+    if (!*wet.sensor && wet.estimate[i]) ++record.imagined[i];
+  }
+}
 
 std::vector<NightSet> night_sets(const std::vector<field::Irrigation>& irrigations,
                                  const weather::Place& place) {

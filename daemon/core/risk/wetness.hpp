@@ -2,6 +2,7 @@
 // irrigation, or a sensor. It must not know what wetness does.
 #pragma once
 
+#include <array>
 #include <optional>
 #include <vector>
 
@@ -21,6 +22,7 @@ struct LeafHour {
   Celsius dew_point;
   Millimetre drying;                     // potential, of the hour
   Millimetre rain{0};                    // for wetness
+  Millimetre exchange{0};                // of a wet leaf: below 0 dew (weather/leaf.hpp)
   std::optional<double> sensor_minutes;  // leaf wetness sensor
 };
 
@@ -32,23 +34,48 @@ struct Watering {
   bool night_set = false;      // a night set keeps the leaves wet in this hour
 };
 
+/// By each film rule, in the order of Film.
+template <class Value>
+using ByFilm = std::array<Value, film_rules>;
+
 struct Wet {
   bool wet = false;
-  bool water = false;  // by water film, night set, rain or irrigation
+  bool water = false;          // by water film, night set, rain or irrigation
+  ByFilm<bool> estimate{};     // what each rule says without the sensor
+  std::optional<bool> sensor;  // what the sensor says
 };
 
 /// Carried from hour to hour.
 struct LeafState {
   double film_mm = 0;       // water film
   bool humid_film = false;  // for the dew-point option's hysteresis
+  double dew_mm = 0;        // for the energy option: dew on the leaf
 };
 
 /// One hour with data. Source: science §7; constant-RH film Sentelhas et al. 2008; dew-point
 /// option Huber & Gillespie 1992 (from memory); bucket and night sets are judgements.
+/// Energy option: dew of `exchange` collects up to the bucket (what is more drips off: Rutter et
+/// al. 1971, from memory), counts from 0.02 mm, and leaves after the water film has; air at
+/// `film_humidity` is wet without it, being nearer to the dew point (0.8 °C at 95 %) than the
+/// balance is exact. Source: Pedro & Gillespie 1982 (from memory); thresholds as for the bucket.
 Wet wet_hour(LeafState& state, const LeafHour& hour, const Watering& water,
              const HumidRules& rules);
-/// An hour without data: the film starts empty after it.
+/// An hour without data: the films start empty after it.
 void after_gap(LeafState& state);
+
+/// How often the rules were right where a sensor tells the truth.
+struct SensorRecord {
+  int hours = 0, wet = 0;  // hours with data and sensor; wet ones of them
+  ByFilm<int> missed{};    // wet by the sensor, dry by the rule
+  ByFilm<int> imagined{};  // the other way round
+
+  bool operator==(const SensorRecord&) const = default;
+  /// Hours in which a rule agreed with the sensor. Source: a count.
+  int right(Film film) const;
+};
+
+/// Adds an hour to the record where it has a sensor.
+void compare(SensorRecord& record, const Wet& wet);
 
 /// An overhead irrigation of ≥ 1 mm or unknown depth that ends between sunset − 3 h and the next
 /// sunrise: leaves stay wet from its start to that sunrise.

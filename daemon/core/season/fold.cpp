@@ -25,7 +25,7 @@ double solar_of(const State& state, const Plan& plan, const Air& air) {
                                   plan.stations[station].radiation_coefficient);
 }
 
-void add_energy_terms(HourRecord& record, const State& state, const Plan& plan) {
+void add_energy_terms(HourRecord& record, State& state, const Plan& plan) {
   const Air& air = record.air;
   if (!air.valid()) return;
   weather::HourAir terms;
@@ -35,7 +35,9 @@ void add_energy_terms(HourRecord& record, const State& state, const Plan& plan) 
   terms.solar = solar_of(state, plan, air);
   terms.clear_sky = weather::clear_sky_radiation(air.extraterrestrial, plan.field.elevation);
   terms.elevation = plan.field.elevation;
-  record.drying = weather::potential_drying(terms);
+  record.leaf.drying = weather::potential_drying(terms);
+  weather::look_up(state.sky, air.start, terms, air.extraterrestrial);
+  record.leaf.exchange = weather::leaf_exchange(terms, weather::clearness_at(state.sky, air.start));
   if (air.wind && air.solar) record.eto = weather::reference_evapotranspiration(terms);
 }
 
@@ -81,8 +83,7 @@ bool is_ripe(const Phenology& crop, const Plan& plan) {
 void update_watch(State& state, const Plan& plan) {
   constexpr auto sown_long_ago = std::chrono::days{240};
   // What was ripe stays so when the station falls silent afterwards: a gap makes no crop younger.
-  const bool ripe =
-      state.crop.known() ? is_ripe(state.crop, plan) : state.ripe_since.has_value();
+  const bool ripe = state.crop.known() ? is_ripe(state.crop, plan) : state.ripe_since.has_value();
   if (!ripe) {
     state.ripe_since.reset();
   } else if (!state.ripe_since) {
@@ -116,7 +117,7 @@ Step advance(State& state, const Plan& plan, const DiaryView& diary, const Air& 
                          end_of(air.start) >= state.next_day,
                          state.watch == Watch::watched};
   step.day = advance(state.heat, state.episodes, hour, grown.flower_share);
-  step.humid_day = advance(state.humid, state.episodes, hour, record.drying, record.wet);
+  step.humid_day = advance(state.humid, state.episodes, hour, record.leaf, record.wet);
   advance(state.water, hour, record.eto);
   if (step.day) step.day->ks = state.water.ks;
   give_notices(state, plan, diary, hour, grown.note_was_held);

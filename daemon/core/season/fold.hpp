@@ -15,6 +15,7 @@
 #include "core/season/plan.hpp"
 #include "core/season/status.hpp"
 #include "core/season/water_balance.hpp"
+#include "core/weather/leaf.hpp"
 
 namespace antherd::season {
 
@@ -30,6 +31,7 @@ struct State {
   HumidHazard humid;
   WaterBalance water;
   std::vector<double> temperatures;          // of the last 24 hours in a row, °C
+  weather::Sky sky;                          // for nights
   std::vector<alerts::Episode> episodes;
   std::vector<alerts::Notice> notices;
   std::size_t next_set = 0;                  // index into the diary's night sets
@@ -42,7 +44,7 @@ struct State {
 /// What one hour became: one line of `hours`.
 struct HourRecord {
   Air air;
-  Millimetre drying{0};
+  LeafWeather leaf;
   std::optional<Millimetre> eto;             // hourly, where wind and solar are measured
   risk::Wet wet;
   double unit = 0;                           // °C

@@ -34,7 +34,7 @@ struct HeatHazard {
   double exposed_share = 0;
   int hot_days = 0;
   double affected_low = 0, affected_high = 0;
-  std::deque<double> nights;        // means of the last 20 nights, °C
+  std::deque<double> nights;  // means of the last 20 nights, °C
   double night_sum = 0;
   int night_hours = 0;
   int warm_nights = 0;
@@ -44,6 +44,7 @@ struct HeatHazard {
 struct HumidHazard {
   std::vector<risk::DayHour> hours;  // of the humid day so far
   risk::LeafState leaf;
+  risk::SensorRecord sensor;  // of the season
   risk::Spell spell;
   bool yesterday_hot = false;
   std::vector<HumidDay> last_five;
@@ -55,8 +56,8 @@ struct HourContext {
   const DiaryView& diary;
   const Air& air;
   const Phenology& crop;
-  CivilDay day;              // civil day of the hour's start
-  bool day_ends = false;     // the next hour belongs to another civil day
+  CivilDay day;           // civil day of the hour's start
+  bool day_ends = false;  // the next hour belongs to another civil day
   bool watched = true;
 };
 
@@ -64,9 +65,16 @@ struct HourContext {
 std::optional<HeatDay> advance(HeatHazard& heat, std::vector<alerts::Episode>& episodes,
                                const HourContext& hour, double flower_share);
 
+/// What the hour's weather does to the water on a leaf.
+struct LeafWeather {
+  Millimetre drying{0};    // potential, never below 0
+  Millimetre exchange{0};  // of a wet leaf at the top of the crop, below 0 dew
+};
+
 /// One hour of wetness. @return the humid day when it ends with this hour
 std::optional<HumidDay> advance(HumidHazard& humid, std::vector<alerts::Episode>& episodes,
-                                const HourContext& hour, Millimetre drying, risk::Wet& wet);
+                                const HourContext& hour, const LeafWeather& weather,
+                                risk::Wet& wet);
 
 /// The day so far as a record. @param track  0 as measured
 HeatDay day_so_far(const HeatHazard& heat);

@@ -45,7 +45,7 @@ risk::DayHour day_hour(const Air& air, const risk::Wet& wet) {
   return hour;
 }
 
-risk::Wet wetness_of(HumidHazard& humid, const HourContext& hour, Millimetre drying) {
+risk::Wet wetness_of(HumidHazard& humid, const HourContext& hour, const LeafWeather& weather) {
   const Air& air = hour.air;
   if (!air.valid()) {
     risk::after_gap(humid.leaf);
@@ -56,7 +56,8 @@ risk::Wet wetness_of(HumidHazard& humid, const HourContext& hour, Millimetre dry
   leaf.temperature = *air.temperature;
   leaf.humidity = *air.humidity;
   leaf.dew_point = *air.dew_point;
-  leaf.drying = drying;
+  leaf.drying = weather.drying;
+  leaf.exchange = weather.exchange;
   leaf.rain = air.rain_for_wetness;
   leaf.sensor_minutes = air.wet_minutes;
   const auto water = risk::watering_of(air.start, hour.diary.irrigations, hour.diary.sets);
@@ -106,8 +107,10 @@ HumidDay end_humid_day(HumidHazard& humid, const HourContext& hour, CivilDay dat
 }  // namespace
 
 std::optional<HumidDay> advance(HumidHazard& humid, std::vector<alerts::Episode>& episodes,
-                                const HourContext& hour, Millimetre drying, risk::Wet& wet) {
-  wet = wetness_of(humid, hour, drying);
+                                const HourContext& hour, const LeafWeather& weather,
+                                risk::Wet& wet) {
+  wet = wetness_of(humid, hour, weather);
+  risk::compare(humid.sensor, wet);
   humid.hours.push_back(day_hour(hour.air, wet));
   const Degree longitude = hour.plan.field.longitude;
   if (!risk::ends_humid_day(hour.air.start, longitude)) return std::nullopt;

@@ -137,6 +137,11 @@ HumidStatus humid_status(const State& state, const Plan& plan, const DiaryView& 
   HumidStatus humid;
   humid.last_five = state.humid.last_five;
   if (!humid.last_five.empty()) humid.last = humid.last_five.back();
+  humid.film = plan.rules.humid.film;
+  humid.sensor = state.humid.sensor;
+  humid.sensor_hours_24 = static_cast<int>(
+      std::count_if(state.last_day.begin(), state.last_day.end(),
+                    [](const Air& air) { return air.valid() && air.wet_minutes; }));
   const Instant now = end_of(*state.last);
   const CivilDay today = state.day;
   std::vector<CivilDay> mornings;

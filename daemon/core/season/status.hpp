@@ -8,6 +8,7 @@
 
 #include "core/alerts/episode.hpp"
 #include "core/field/field.hpp"
+#include "core/risk/wetness.hpp"
 #include "core/units/quantity.hpp"
 #include "core/units/time.hpp"
 #include "core/weather/hour.hpp"
@@ -96,6 +97,9 @@ struct HumidStatus {
   Level if_not_watered = Level::none;      // … and were it not
   bool close_to_sunset_limit = false;  // a set that ended an hour earlier would not have counted
   bool disease_seen = false;
+  risk::Film film = risk::Film::humidity;  // the rule that stands in for a sensor
+  risk::SensorRecord sensor;               // of the season: the rules beside the sensor
+  int sensor_hours_24 = 0;                 // of the last 24 hours, with a sensor's word
   std::optional<alerts::Episode> episode;  // open, or closed within the last 24 h
 };
 

@@ -64,14 +64,17 @@ double estimated_solar(double extraterrestrial, std::optional<CelsiusDifference>
   return coefficient * std::sqrt(std::max(0.0, range_24h->value)) * extraterrestrial;
 }
 
+double net_long_wave(Celsius temperature, Percent humidity, double clearness) {
+  const double kelvin = temperature.value + 273.16;
+  const double vapour = vapour_pressure(temperature, humidity).value;
+  return hourly_stefan_boltzmann * kelvin * kelvin * kelvin * kelvin *
+         (0.34 - 0.14 * std::sqrt(vapour)) * (1.35 * clearness - 0.35);
+}
+
 double net_radiation(const HourAir& air) {
   const double clearness =
       air.clear_sky <= 0.05 ? 0.8 : std::clamp(air.solar / air.clear_sky, 0.3, 1.0);
-  const double kelvin = air.temperature.value + 273.16;
-  const double vapour = vapour_pressure(air.temperature, air.humidity).value;
-  const double long_wave = hourly_stefan_boltzmann * kelvin * kelvin * kelvin * kelvin *
-                           (0.34 - 0.14 * std::sqrt(vapour)) * (1.35 * clearness - 0.35);
-  return 0.77 * air.solar - long_wave;
+  return 0.77 * air.solar - net_long_wave(air.temperature, air.humidity, clearness);
 }
 
 Millimetre potential_drying(const HourAir& air) {

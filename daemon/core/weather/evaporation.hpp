@@ -30,6 +30,12 @@ double clear_sky_radiation(double extraterrestrial, Metre elevation);
 double estimated_solar(double extraterrestrial, std::optional<CelsiusDifference> range_24h,
                        double coefficient);
 
+/// Long-wave radiation that a surface at air temperature loses to the sky in an hour, MJ m⁻² h⁻¹:
+/// σ T⁴ (0.34 − 0.14 √ea) (1.35 Rs/Rso − 0.35). Source: FAO-56 eq. 39 with 2.043e-10 and T +
+/// 273.16. 15 °C, 90 %, clear: 0.2346.
+/// @param clearness  Rs/Rso, 0.3…1
+double net_long_wave(Celsius temperature, Percent humidity, double clearness);
+
 /// Net radiation Rn = 0.77 Rs − Rnl of an hour, Rnl by FAO-56 eq. 39 with 2.043e-10 and T + 273.16,
 /// Rs/Rso clamped to 0.3…1 and 0.8 where Rso ≤ 0.05 (science §7), MJ m⁻² h⁻¹.
 double net_radiation(const HourAir& air);

@@ -168,7 +168,17 @@ class HourMaker {
       hour.wind = MetrePerSecond(rounded(at_2m.value));
     }
     if (solar_.n > 0) hour.solar = WattPerSquareMetre(solar_.mean());
-    if (wet_.n > 0) hour.wet_minutes = std::min(60.0, rounded(wet_.sum));
+    put_wetness(hour);
+  }
+  /// Minutes that never arrived are not dry ones: with less than 45 seen the hour is wet when those
+  /// seen make it so, else the sensor said nothing.
+  void put_wetness(Hour& hour) const {
+    constexpr double minutes_to_know = 45.0, wet_for_sure = 30.0;
+    if (wet_.n == 0) return;
+    const Seconds each = station_.wetness_interval.value_or(std::min(station_.interval, one_hour));
+    const double seen = wet_.n * static_cast<double>(each.count()) / 60.0;
+    const double wet = std::min(60.0, rounded(wet_.sum));
+    if (seen >= minutes_to_know || wet >= wet_for_sure) hour.wet_minutes = wet;
   }
 
   const Station& station_;

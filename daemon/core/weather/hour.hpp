@@ -59,7 +59,8 @@ struct Hour {
   std::optional<Millimetre> rain_for_wetness;  // the same without sums over a gap > 1 h
   std::optional<MetrePerSecond> wind;          // mean, at 2 m (FAO-56 eq. 47)
   std::optional<WattPerSquareMetre> solar;     // mean
-  std::optional<double> wet_minutes;           // sensor: minutes wet in this hour, 0…60
+  std::optional<double> wet_minutes;  // sensor: minutes wet in this hour, 0…60; none when
+                                      // too few of its values came to call it dry
   bool whole_degrees =
       false;                // every temperature of the hour and of the 24 before is a whole °C/°F
   std::vector<Flag> flags;  // in order of element, reason

@@ -2,6 +2,7 @@
 // This file must not know how its readings travel.
 #pragma once
 
+#include <optional>
 #include <string>
 
 #include "core/units/quantity.hpp"
@@ -31,7 +32,8 @@ struct Station {
   RainMeaning rain_meaning = RainMeaning::since_last;
   Calendar rain_zone;  // the zone whose midnight resets a day_total
   Metre wind_height{2};
-  double radiation_coefficient = 0.16;  // kRs of science §7: 0.16 inland, 0.19 near a coast
+  std::optional<Seconds> wetness_interval;  // of one value of the wetness sensor; else `interval`
+  double radiation_coefficient = 0.16;      // kRs of science §7: 0.16 inland, 0.19 near a coast
   bool near_coast() const { return radiation_coefficient > 0.175; }
   bool measures_rain = false;
   bool measures_wind = false;

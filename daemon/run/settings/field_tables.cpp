@@ -43,6 +43,25 @@ void read_heat(const Table& table, risk::HeatRules& heat) {
   }
 }
 
+namespace {
+
+/// film = "dew_point", or its older form dew_point_film = true.
+void read_film(const Table& humid, risk::Film& film) {
+  const Words<risk::Film> films{{"humidity", risk::Film::humidity},
+                                {"dew_point", risk::Film::dew_point},
+                                {"energy", risk::Film::energy}};
+  const auto older = humid.truth("dew_point_film");
+  if (older.value_or(false)) film = risk::Film::dew_point;
+  const auto chosen = humid.choice("film", films, "film = \"energy\"");
+  if (chosen && older && *older != (*chosen == risk::Film::dew_point)) {
+    humid.object("film", "film and a dew_point_film that says otherwise", "keep film alone",
+                 std::string("film = \"") + risk::name_of(*chosen) + "\"");
+  }
+  film = chosen.value_or(film);
+}
+
+}  // namespace
+
 void read_humid(const Table& table, risk::HumidRules& humid) {
   const Wanted wanted{
       "a table with the numbers that differ from the usual ones",
@@ -70,7 +89,7 @@ void read_humid(const Table& table, risk::HumidRules& humid) {
   percent("film_humidity", humid.film_humidity);
   percent("film_humidity_calm", humid.film_humidity_calm);
   percent("dry_out_humidity", humid.dry_out_humidity);
-  humid.dew_point_film = own->truth("dew_point_film").value_or(humid.dew_point_film);
+  read_film(*own, humid.film);
   const auto bucket = own->quantity(
       "bucket", parse_depth, Millimetre(0.05), Millimetre(5),
       {"a depth of water from 0.05 mm to 5 mm, with its unit", "bucket = \"0.2 mm\""});

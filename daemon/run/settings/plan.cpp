@@ -158,6 +158,13 @@ std::string thresholds_text(const FieldPlan& plan, Units units) {
          degrees(heat.severe) + ", extreme from " + degrees(heat.extreme) + "\n";
 }
 
+std::string wetness_text(risk::Film film) {
+  const char* by = film == risk::Film::humidity    ? "humidity"
+                   : film == risk::Film::dew_point ? "the dew point"
+                                                   : "a leaf's energy balance";
+  return std::string("    leaf wetness: by ") + by + " wherever no sensor tells\n";
+}
+
 }  // namespace
 
 std::string clock_text(int minute) { return formatted("%02d:%02d", minute / 60, minute % 60); }
@@ -225,7 +232,7 @@ std::string describe(const FieldPlan& plan, Units units) {
     text += formatted("    against the station: %+.1f °C by day, %+.1f °C by night (measured)\n",
                       field.offset->day.value, field.offset->night.value);
   }
-  return text + thresholds_text(plan, units);
+  return text + wetness_text(plan.rules.humid.film) + thresholds_text(plan, units);
 }
 
 std::string describe(const Settings& settings) {

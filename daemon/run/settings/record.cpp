@@ -178,6 +178,7 @@ void read_extras(const Table& table, const Value& value, weather::Station& stati
             .value_or(Metre(2));
   } else if (key == "wetness") {
     read_wetness(table, station.interval, record);
+    station.wetness_interval = record.wetness_interval;
   }
 }
 

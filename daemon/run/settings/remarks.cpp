@@ -64,7 +64,19 @@ void remark_on_station(Work& work, const Station& station) {
   }
 }
 
-void remark_on_field(Work& work, const field::Field& field) {
+/// The energy balance without wind or sun stands on assumptions.
+void remark_on_film(Work& work, const FieldPlan& plan, const weather::Station& station) {
+  if (plan.rules.humid.film != risk::Film::energy) return;
+  if (station.measures_wind && station.measures_solar) return;
+  work.faults.remarks.push_back(
+      "field " + in_quotes(plan.field.name) + ": film = \"energy\" wants wind and solar; where " +
+      in_quotes(station.name) +
+      " does not measure them it takes 2 m/s and guesses the clouds from the day's warmth, and "
+      "misses dew of calm nights");
+}
+
+void remark_on_field(Work& work, const FieldPlan& plan) {
+  const field::Field& field = plan.field;
   const std::string name = "field " + in_quotes(field.name);
   if (field.crop_type == "highland" && std::fabs(field.latitude.value) > highland_latitude) {
     work.faults.remarks.push_back(name +
@@ -74,6 +86,7 @@ void remark_on_field(Work& work, const field::Field& field) {
   const Station* const station =
       field.stations.empty() ? nullptr : work.settings.station(field.stations.front());
   if (station == nullptr) return;
+  remark_on_film(work, plan, station->station);
   const weather::Place& place = station->station.place;
   const double apart = kilometres(field.latitude, field.longitude, place.latitude, place.longitude);
   if (apart <= far_from_station_km) return;
@@ -92,7 +105,7 @@ void remark_on(Work& work) {
     work.faults.remarks.push_back("there is no [mail] table: warnings go to the log only");
   }
   for (const Station& station : settings.stations) remark_on_station(work, station);
-  for (const FieldPlan& plan : settings.fields) remark_on_field(work, plan.field);
+  for (const FieldPlan& plan : settings.fields) remark_on_field(work, plan);
   if (work.ask_disk && !settings.diary_folder.empty() && !is_folder(settings.diary_folder)) {
     work.faults.remarks.push_back("diary: there is no folder " + settings.diary_folder + " yet");
   }

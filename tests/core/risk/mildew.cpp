@@ -110,8 +110,11 @@ TEST_CASE("a hot day kills spores") {
 
 TEST_CASE("leaf wetness: films, bucket, gaps") {
   LeafState state;
-  LeafHour hour{HourStart{},      Celsius(15),   Percent(80), Celsius(11.6),
-                Millimetre(0.05), Millimetre(0), std::nullopt};
+  LeafHour hour;
+  hour.temperature = Celsius(15);
+  hour.humidity = Percent(80);
+  hour.dew_point = Celsius(11.6);
+  hour.drying = Millimetre(0.05);
   CHECK_FALSE(wet_hour(state, hour, {}, rules).wet);
   SECTION("95 % is wet, 90 % only while little dries") {
     hour.humidity = Percent(95);
@@ -148,7 +151,7 @@ TEST_CASE("leaf wetness: films, bucket, gaps") {
   }
   SECTION("the dew-point option has a hysteresis") {
     HumidRules option;
-    option.dew_point_film = true;
+    option.film = Film::dew_point;
     hour.dew_point = Celsius(13.0);
     CHECK(wet_hour(state, hour, {}, option).wet);
     hour.dew_point = Celsius(11.5);
@@ -305,7 +308,7 @@ TEST_CASE("before buds the level is cut, out of season it is nothing") {
 
 TEST_CASE("the dew-point film switches at exactly 2.0 and 3.8 degrees, noise or not") {
   HumidRules by_dew_point;
-  by_dew_point.dew_point_film = true;
+  by_dew_point.film = Film::dew_point;
   const auto film_after = [&](bool before, double depression) {
     LeafState leaf;
     leaf.humid_film = before;
