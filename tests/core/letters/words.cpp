@@ -114,3 +114,23 @@ TEST_CASE("a field's name is quoted for the shell where it needs it") {
   CHECK(quoted("joe's $x") == "'joe'\\''s $x'");
   CHECK(quoted("-rf") == "\"-rf\"");
 }
+
+TEST_CASE("a mildew letter says where leaf wetness comes from, unless it is the usual rule") {
+  const auto said = [](int sensor_hours, risk::Film film) {
+    Desk desk = scene::desk();
+    season::FieldStatus status = scene::north();
+    status.humid.sensor_hours_24 = sensor_hours;
+    status.humid.film = film;
+    return unglued(data_paragraph(status, Words(desk), false));
+  };
+  const auto ends = [](const std::string& text, const char* with) {
+    INFO(text);
+    CHECK(text.ends_with(with));
+  };
+  CHECK(said(0, risk::Film::humidity).find("etness") == std::string::npos);
+  ends(said(0, risk::Film::dew_point), " Leaf wetness is estimated from the dew point.");
+  ends(said(0, risk::Film::energy), " Leaf wetness is estimated from a leaf's energy balance.");
+  ends(said(24, risk::Film::energy), " Leaf wetness: by sensor in the last 24 h.");
+  ends(said(20, risk::Film::humidity),
+       " Leaf wetness: by sensor in 20 of the last 24 h, else estimated from humidity.");
+}
