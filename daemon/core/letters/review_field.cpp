@@ -167,15 +167,15 @@ std::string leaf_sensor(const season::HumidStatus& humid) {
   const risk::SensorRecord& record = humid.sensor;
   if (record.hours == 0) return "";
   Section section{"LEAF SENSOR", "", {}, true, {}};
-  section.text = "Since sowing the sensor told " + count(record.hours, "hour") + ", " +
-                 std::to_string(record.wet) +
-                 " of them wet. It decides; had it been silent, these rules would have stood in:";
   for (const risk::Film film : {risk::Film::humidity, risk::Film::dew_point, risk::Film::energy}) {
     section.lines.push_back(rule_line(humid, film));
   }
-  section.lines.push_back(
-      record.hours < enough ? "Too few hours to choose a rule by: two weeks are the least."
-                            : "Another rule: humid = { film = ... } of the field in the settings.");
+  section.text = "The sensor told " + count(record.hours, "hour") + " since sowing, " +
+                 std::to_string(record.wet) +
+                 " of them wet, and its word stands. The rules stand in where it is silent. " +
+                 (record.hours < enough
+                      ? "Two weeks are the least to compare them by."
+                      : "Another one is chosen by the field's film, see config/antherd.toml.");
   return section_text(section);
 }
 
