@@ -207,9 +207,10 @@ Outcome make_ballast(const std::string& folder) {
   return Failure{"make the ballast", path, words_of(error), "it is tried again later"};
 }
 
-Outcome remove_ballast(const std::string& folder) {
+Result<bool> remove_ballast(const std::string& folder) {
   const std::string path = folder + "/ballast";
-  if (::unlink(path.c_str()) == 0 || errno == ENOENT) return Done{};
+  if (::unlink(path.c_str()) == 0) return true;
+  if (errno == ENOENT) return false;
   return Failure{"release the ballast", path, words_of(errno), "free some space by hand"};
 }
 

@@ -40,7 +40,7 @@ struct FileState {
 std::optional<FileState> file_state(const std::string& path);
 
 Outcome make_ballast(const std::string& folder);
-Outcome remove_ballast(const std::string& folder);
+Result<bool> remove_ballast(const std::string& folder);
 
 /// "antherd-copy-2026-W28.db"
 std::string copy_name(Instant now);

@@ -85,7 +85,7 @@ std::optional<std::string> Store::set_aside() const { return inside_->aside; }
 
 bool Store::out_of_space() const { return inside_->full; }
 
-Outcome Store::release_ballast() { return remove_ballast(inside_->options.folder); }
+Result<bool> Store::release_ballast() { return remove_ballast(inside_->options.folder); }
 
 Outcome Store::keep_ballast() { return make_ballast(inside_->options.folder); }
 

@@ -131,8 +131,8 @@ class Store {
   Result<std::string> fingerprint() const;
 
   // Room on the disk.
-  /// Gives 8 MiB back to a full disk. Done when there is no ballast either.
-  Outcome release_ballast();
+  /// Gives 8 MiB back to a full disk. @return whether there was a ballast to give
+  Result<bool> release_ballast();
   /// Makes the ballast anew; fails while less than 24 MiB are free. Done when it is there.
   Outcome keep_ballast();
   /// Writes `antherd-copy-YYYY-Www.db` (ISO week of `now`, UTC): everything but samples, checked,

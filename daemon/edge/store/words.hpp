@@ -84,7 +84,7 @@ std::string_view word_of(const Words<Value, size>& words, Value value) {
   for (const auto& [candidate, word] : words) {
     if (candidate == value) return word;
   }
-  ANTHERD_CHECK(!"a value without a word in the schema");
+  ANTHERD_CHECK(false && "a value without a word in the schema");
   return {};
 }
 

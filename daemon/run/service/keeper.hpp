@@ -65,7 +65,7 @@ class Keeper {
   Outcome store_batch(const std::string& station, Batch& batch);
   void remake_hours_of_memory(const std::string& station, const Batch& batch);
   Outcome remake_hours(const std::string& station, Instant earliest, Instant latest);
-  Outcome save_pending();
+  Outcome save_pending(std::vector<Failure>& troubles);
   void collect_hours(store::Decision& decision, const Closed& closed);
   Closed closed_at(Instant now) const;
   void heed_clock(Instant now);

@@ -38,7 +38,7 @@ int close_file(sqlite3_file* file) {
 }
 
 int read_file(sqlite3_file* file, void* into, int size, sqlite3_int64 at) {
-  if (handle_of(file).disk->dead()) return SQLITE_IOERR_READ;
+  if (handle_of(file).disk->dead() || handle_of(file).disk->fails()) return SQLITE_IOERR_READ;
   const std::string& bytes = content_of(file).now;
   const auto wanted = static_cast<std::size_t>(size);
   const auto from = std::min(static_cast<std::size_t>(at), bytes.size());
@@ -51,6 +51,12 @@ int read_file(sqlite3_file* file, void* into, int size, sqlite3_int64 at) {
 int write_file(sqlite3_file* file, const void* bytes, int size, sqlite3_int64 at) {
   PowerDisk& disk = *handle_of(file).disk;
   if (disk.dead()) return SQLITE_IOERR_WRITE;
+  if (disk.fails()) {
+    disk.change(content_of(file),
+                {false, at,
+                 std::string(static_cast<const char*>(bytes), static_cast<std::size_t>(size) / 2)});
+    return SQLITE_IOERR_WRITE;
+  }
   disk.change(
       content_of(file),
       {false, at, std::string(static_cast<const char*>(bytes), static_cast<std::size_t>(size))});
@@ -59,13 +65,14 @@ int write_file(sqlite3_file* file, const void* bytes, int size, sqlite3_int64 at
 
 int truncate_file(sqlite3_file* file, sqlite3_int64 size) {
   PowerDisk& disk = *handle_of(file).disk;
-  if (disk.dead()) return SQLITE_IOERR_TRUNCATE;
+  if (disk.dead() || disk.fails()) return SQLITE_IOERR_TRUNCATE;
   disk.change(content_of(file), {true, size, {}});
   return disk.count_down() ? SQLITE_OK : SQLITE_IOERR_TRUNCATE;
 }
 
 int sync_file(sqlite3_file* file, int) {
   Handle& handle = handle_of(file);
+  if (handle.disk->fails()) return SQLITE_IOERR_FSYNC;
   // The power may go while the disk is still at it.
   if (handle.disk->dead() || !handle.disk->count_down()) return SQLITE_IOERR_FSYNC;
   handle.disk->force(*handle.name, content_of(file));
@@ -176,6 +183,13 @@ PowerDisk::~PowerDisk() { sqlite3_vfs_unregister(&vfs_); }
 bool PowerDisk::count_down() {
   if (left_ > 0 && --left_ == 0) dead_ = true;
   return !dead_;
+}
+
+bool PowerDisk::fails() {
+  if (failing_ == 0) return false;
+  if (sound_ > 0) return --sound_, false;
+  --failing_;
+  return true;
 }
 
 void PowerDisk::change(File& file, Write write) {

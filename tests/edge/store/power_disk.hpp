@@ -25,6 +25,14 @@ class PowerDisk {
   bool dead() const { return dead_; }
   /// The power comes back: the disk holds what was forced, and what chance left of the rest.
   void revive();
+  /// The n-th read, write, truncation or forced write from now fails, and the `count` − 1 after it;
+  /// the power stays. A write that fails may have reached the disk in part.
+  void fail_at(int operation, int count) {
+    sound_ = operation - 1;
+    failing_ = count;
+  }
+  /// Whether a failure that was asked for is still to come.
+  bool failure_ahead() const { return failing_ > 0; }
   /// A disk that lies: forced writes to files of this ending are acknowledged and not done.
   void lie_about(std::string ending) { lied_about_ = std::move(ending); }
 
@@ -47,6 +55,7 @@ class PowerDisk {
   // For the functions that SQLite calls.
   std::map<std::string, File>& files() { return files_; }
   bool count_down();
+  bool fails();
   void change(File& file, Write write);
   bool force(const std::string& name, File& file);
 
@@ -55,6 +64,7 @@ class PowerDisk {
   std::mt19937 random_;
   int left_ = 0;
   bool dead_ = false;
+  int sound_ = 0, failing_ = 0;  // operations until the first failure; failures to come
   std::string lied_about_;
   Tally tally_;
   sqlite3_vfs vfs_{};
