@@ -22,7 +22,7 @@ std::string Complaints::moment_text() const {
 }
 
 void Complaints::add(const std::string& rule, const std::string& what) {
-  if (all_.size() >= 20) return;
+  if (++counts_[rule] > 3) return;
   all_.push_back(season_ + ", " + moment_text() + ": " + rule + ": " + what);
 }
 

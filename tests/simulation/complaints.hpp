@@ -2,6 +2,7 @@
 // moment, so that it can be run again.
 #pragma once
 
+#include <map>
 #include <string>
 #include <vector>
 
@@ -17,7 +18,7 @@ class Complaints {
       : season_(std::move(season)), calendar_(calendar) {}
   void set_calendar(const Calendar* calendar) { calendar_ = calendar; }
   void at(Instant moment) { moment_ = moment; }
-  /// The first twenty are kept: one mistake mostly shows many times.
+  /// Of each rule the first three are kept: one mistake mostly shows many times.
   void add(const std::string& rule, const std::string& what);
   const std::vector<std::string>& all() const { return all_; }
   std::string moment_text() const;
@@ -27,6 +28,7 @@ class Complaints {
   const Calendar* calendar_;
   Instant moment_{};
   std::vector<std::string> all_;
+  std::map<std::string, int> counts_;  // by rule
 };
 
 /// "2026-07-14 20:00" by a calendar.

@@ -10,7 +10,9 @@ namespace {
 
 std::string hours_text(Seconds span) { return std::to_string(span.count() / 3600) + " h"; }
 
-bool of_the_watch(const std::string& kind) { return kind == "no_data" || kind == "doubtful_sensor"; }
+bool of_the_watch(const std::string& kind) {
+  return kind == "no_data" || kind == "doubtful_sensor";
+}
 
 bool timed(const LetterRow& letter) { return letter.kind == "daily" || letter.kind == "weekly"; }
 
@@ -70,8 +72,8 @@ void Judge::judge_together(const std::vector<Said>& said, const std::vector<Seen
                           " was said and nothing was written to " + one.address);
     }
     if (written && !due) {
-      complaints_.add("each letter has its decision", "a letter to " + one.address +
-                                                          " stands for nothing that was said");
+      complaints_.add("each letter has its decision",
+                      "a letter to " + one.address + " stands for nothing that was said");
     }
   }
   for (const Said& s : said) {
@@ -82,8 +84,8 @@ void Judge::judge_together(const std::vector<Said>& said, const std::vector<Seen
                (l.row.subject + l.row.body).find(s.row.subject) != std::string::npos;
       });
       if (!named) {
-        complaints_.add("each decision has its letters", "no letter to " + one.address +
-                                                             " names " + s.row.subject);
+        complaints_.add("each decision has its letters",
+                        "no letter to " + one.address + " names " + s.row.subject);
       }
     }
   }
@@ -152,8 +154,9 @@ void Judge::judge_letter(const Seen& seen) {
     for (const auto& [id, other] : letters_) {
       if (other.row.recipient == row.recipient && other.row.subject == row.subject &&
           other.row.body == row.body && seen.at - other.at < days{3}) {
-        complaints_.add("no two letters say the same", what + ", and letter " +
-                                                           std::to_string(id));
+        complaints_.add("no two letters say the same", what + ", letter " + std::to_string(id) +
+                                                           " of " + hours_text(seen.at - other.at) +
+                                                           " before");
       }
     }
   }
@@ -176,9 +179,9 @@ void Judge::judge_limit(const Seen& seen) {
   if (seen.row.severity == "Extreme" || seen.row.severity == "extreme") return;
   const Instant morning = calendar.at(CivilTime(today + days{1}) + hours{6});
   if (seen.row.next_try < morning) {
-    complaints_.add("letters keep their daily limit",
-                    "\"" + seen.row.subject + "\" is number " + std::to_string(before + 1) +
-                        " to " + seen.row.recipient);
+    complaints_.add("letters keep their daily limit", "\"" + seen.row.subject + "\" is number " +
+                                                          std::to_string(before + 1) + " to " +
+                                                          seen.row.recipient);
   }
 }
 
@@ -222,8 +225,8 @@ void Judge::returned(Witness& witness) {
   for (const auto& [id, seen] : letters_) {
     const auto row = there.find(id);
     if (row == there.end() || row->second != seen.row.identity) {
-      complaints_.add("nothing is lost", "letter " + std::to_string(id) + " \"" +
-                                             seen.row.subject + "\" is gone from the store");
+      complaints_.add("nothing is lost", "letter " + std::to_string(id) + " \"" + seen.row.subject +
+                                             "\" is gone from the store");
     }
   }
   std::set<std::int64_t> said;

@@ -43,7 +43,7 @@ class Judge {
  private:
   struct Seen {
     LetterRow row;
-    Instant at;        // true time
+    Instant at;  // true time
     bool clock_right = true;
   };
   struct Said {

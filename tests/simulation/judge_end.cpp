@@ -17,7 +17,8 @@ struct Stored {
 std::map<Instant, Stored> samples_of(Witness& witness, const std::string& station) {
   std::map<Instant, Stored> found;
   witness.ask(
-      "SELECT time, temperature FROM sample WHERE station = (SELECT id FROM station WHERE name = '" +
+      "SELECT time, temperature FROM sample WHERE station = (SELECT id FROM station WHERE name = "
+      "'" +
           station + "')",
       [&](sqlite3_stmt* row) {
         Stored stored;
@@ -29,9 +30,7 @@ std::map<Instant, Stored> samples_of(Witness& witness, const std::string& statio
   return found;
 }
 
-std::string at_text(const Judge&, Instant at) {
-  return clock_text(Calendar(), at) + " UTC";
-}
+std::string at_text(const Judge&, Instant at) { return clock_text(Calendar(), at) + " UTC"; }
 
 }  // namespace
 
@@ -63,7 +62,8 @@ void Judge::judge_mail(Witness& witness, const std::vector<Delivery>& taken) {
       }
     } else if (row.state == "parked") {
       ++parked;
-      if (row.answer.empty()) complaints_.add("nothing is lost", what + " is parked without a word");
+      if (row.answer.empty())
+        complaints_.add("nothing is lost", what + " is parked without a word");
     } else {
       complaints_.add("nothing is lost", what + " is still " + row.state + ": " + row.answer);
     }
@@ -90,8 +90,8 @@ void Judge::judge_samples(Witness& witness, const StationLife& station, Instant 
     const auto there = stored.find(time);
     if (there == stored.end()) {
       if (sure && time <= now && !station.ambiguous(time)) {
-        complaints_.add("nothing is lost", name + ": the reading of " + at_text(*this, time) +
-                                               " is not in the store");
+        complaints_.add("nothing is lost",
+                        name + ": the reading of " + at_text(*this, time) + " is not in the store");
       }
       continue;
     }
@@ -124,14 +124,15 @@ void Judge::judge_hours(service::DeskWork& desk, Witness& witness, const std::st
     complaints_.add("the hours can be read", stored.failure().sentence());
     return;
   }
-  const auto closed = service::closed_before(settings_->station(station)->station, std::nullopt, now);
+  const auto closed =
+      service::closed_before(settings_->station(station)->station, std::nullopt, now);
   std::set<HourStart> recorded;
   for (const weather::Hour& hour : *stored) {
     recorded.insert(hour.start);
     int left_out = 0;
     for (const weather::Flag& flag : hour.flags) {
-      const bool out = flag.verdict == weather::Verdict::wrong ||
-                       flag.reason == weather::Reason::unconfirmed;
+      const bool out =
+          flag.verdict == weather::Verdict::wrong || flag.reason == weather::Reason::unconfirmed;
       if (flag.element == weather::Element::temperature && out) left_out += flag.count;
     }
     const int expected = with_temperature.count(hour.start) ? with_temperature.at(hour.start) : 0;
@@ -169,8 +170,8 @@ void Judge::judge_gaps(service::DeskWork& desk, Witness& witness, const std::str
   for (const auto& [from, to] : gaps) {
     // Told while it lasted, or afterwards where nobody was there to see it.
     const bool said = std::any_of(said_.begin(), said_.end(), [&](const Said& one) {
-      return one.row.kind == "no_data" && one.row.subject == station &&
-             one.row.start <= to && one.row.until.value_or(one.row.at) >= from;
+      return one.row.kind == "no_data" && one.row.subject == station && one.row.start <= to &&
+             one.row.until.value_or(one.row.at) >= from;
     });
     if (!said) {
       complaints_.add("every hour has a record or is a named gap",
@@ -197,8 +198,8 @@ void Judge::judge_replay(service::DeskWork& desk, Instant now) {
     replay.add_sample_times(station.name, times);
   }
   for (const auto& setting : settings_->stations) {
-    closed[setting.station.name] = service::closed_before(
-        setting.station, replay.last_sample(setting.station.name), now);
+    closed[setting.station.name] =
+        service::closed_before(setting.station, replay.last_sample(setting.station.name), now);
   }
   for (const auto& plan : settings_->fields) {
     auto diary = desk.store().diary(plan.field.name);
@@ -239,15 +240,15 @@ void Judge::judge_lowering(service::DeskWork& desk) {
     const auto& state = desk.keeper().lookout().state(field);
     for (const auto& episode : state.episodes) {
       for (const auto& change : episode.changes) {
-        const bool fell = change.phase == alerts::Phase::lowered ||
-                          change.phase == alerts::Phase::closed;
+        const bool fell =
+            change.phase == alerts::Phase::lowered || change.phase == alerts::Phase::closed;
         if (!fell || state.crop.part == season::Part::after) continue;
         int count = 0;
         // A day of heat is the farm's, with 23 to 25 hours; a humid day has 24 of the sun's.
-        const Instant from = episode.kind == alerts::Kind::heat
-                                 ? settings_->calendar.start_of(
-                                       settings_->calendar.day_of(change.at - Seconds{1}))
-                                 : change.at - hours{24};
+        const Instant from =
+            episode.kind == alerts::Kind::heat
+                ? settings_->calendar.start_of(settings_->calendar.day_of(change.at - Seconds{1}))
+                : change.at - hours{24};
         for (HourStart hour = hour_of(from); end_of(hour) <= change.at; hour += hours{1}) {
           count += static_cast<int>(seen.count(hour));
         }

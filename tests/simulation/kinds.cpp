@@ -15,6 +15,7 @@ const std::vector<Kind>& kinds() {
     Kind kind;
     kind.name = "dry valley";
     kind.climate = {14, 29, 2, 0.08, 9, 0.05, 0.02, 0};
+    kind.interval = 30;
     made.push_back(kind);
 
     kind = {};
@@ -22,7 +23,7 @@ const std::vector<Kind>& kinds() {
     kind.latitude = 44.6;
     kind.longitude = -123.9;
     kind.climate = {11, 18, 1, 0.01, 8, 0.6, 0.15, 0};
-    kind.days = 70;
+    kind.days = 60;
     kind.sets_in_ten = 6;
     kind.fields = 2;
     made.push_back(kind);
@@ -33,7 +34,6 @@ const std::vector<Kind>& kinds() {
     kind.fields = 3;
     kind.recipients = 3;
     kind.at_most_per_day = 5;
-    kind.interval = 60;
     made.push_back(kind);
 
     kind = {};
@@ -54,7 +54,6 @@ const std::vector<Kind>& kinds() {
     kind.sown = "2026-03-05";
     kind.climate = {12, 26, 2, 0.1, 9, 0.2, 0.1, 0};
     kind.local_stamps = true;
-    kind.interval = 60;
     made.push_back(kind);
 
     kind = {};
@@ -74,7 +73,6 @@ const std::vector<Kind>& kinds() {
     kind.longitude = -71.0;
     kind.sown = "2026-11-20";
     kind.climate = {13, 29, 2, 0.1, 7, 0.15, 0.05, 0};
-    kind.interval = 60;
     kind.irrigation = "furrow";
     made.push_back(kind);
 
@@ -84,7 +82,6 @@ const std::vector<Kind>& kinds() {
     kind.second_station = true;
     kind.fields = 3;
     kind.recipients = 2;
-    kind.interval = 60;
     made.push_back(kind);
 
     kind = {};
@@ -100,7 +97,7 @@ const std::vector<Kind>& kinds() {
     kind.longitude = 159.1;
     kind.sown = "2028-02-15";
     kind.climate = {16, 27, 1.5, 0.1, 8, 0.4, 0.2, 0};
-    kind.interval = 20;
+    kind.interval = 30;
     kind.days = 55;
     made.push_back(kind);
     return made;
@@ -162,8 +159,8 @@ std::string fields_of(const Kind& kind) {
     const std::string both = on_river ? "[\"river\", \"bench\"]" : "[\"bench\", \"river\"]";
     text += "[[field]]\nname = \"" + field_name(f) +
             "\"\nstations = " + (kind.second_station ? both : "[\"bench\"]") +
-            "\ncrop_type = \"quick\"\nirrigation = \"" + kind.irrigation + "\"\nsown = " +
-            kind.sown + "\n";
+            "\ncrop_type = \"quick\"\nirrigation = \"" + kind.irrigation +
+            "\"\nsown = " + kind.sown + "\n";
     if (f == 2) text += "offset = { day = \"+0.8 degC\", night = \"-0.5 degC\" }\n";
   }
   return text;
@@ -172,9 +169,9 @@ std::string fields_of(const Kind& kind) {
 }  // namespace
 
 std::string settings_of(const Kind& kind, int variant) {
-  const std::string mail =
-      kind.letters_to_folder ? "folder = \"outgoing\"\n"
-                             : "server = \"smtp://localhost:2525\"\nplain = true\n";
+  const std::string mail = kind.letters_to_folder
+                               ? "folder = \"outgoing\"\n"
+                               : "server = \"smtp://localhost:2525\"\nplain = true\n";
   return "[farm]\nname = \"Larkspur Bench\"\ntime_zone = \"" + kind.zone +
          "\"\n[store]\nfolder = \"store\"\n[log]\nfile = \"antherd.log\"\n[mail]\nfrom = "
          "\"alerts@larkspur.example\"\nat_most_per_day = " +
@@ -226,16 +223,16 @@ Day day_of(const Kind& kind, std::uint64_t seed, long number) {
 weather::Sample air_at(const Kind& kind, std::uint64_t seed, int station, Instant at) {
   const double hour = synthetic::solar_hours(at, Degree(kind.longitude));
   const auto shift = Seconds(std::llround(kind.longitude * 240.0));
-  const auto number = static_cast<long>(
-      std::chrono::floor<days>(at + shift).time_since_epoch().count());
+  const auto number =
+      static_cast<long>(std::chrono::floor<days>(at + shift).time_since_epoch().count());
   // From noon to noon one day passes into the next.
   const long first = hour < 12 ? number - 1 : number;
   const double part = (hour < 12 ? hour + 12 : hour - 12) / 24.0;
   const Day one = day_of(kind, seed, first), other = day_of(kind, seed, first + 1);
   const auto mix = [&](double a, double b) { return a + (b - a) * part; };
   const double seconds = static_cast<double>(at.time_since_epoch().count());
-  const double ripple = (kind.climate.pinned > 0 ? 0.12 : 0.25) *
-                        std::sin(seconds / 1300 + station) ;
+  const double ripple =
+      (kind.climate.pinned > 0 ? 0.12 : 0.25) * std::sin(seconds / 1300 + station);
   const double low = mix(one.low, other.low), high = mix(one.high, other.high);
   const double t = low + (high - low) * synthetic::course(hour) + ripple - 0.4 * station;
   weather::Sample sample;

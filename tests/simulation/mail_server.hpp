@@ -20,8 +20,8 @@ enum class Course {
   refused,         // 550 at RCPT
   login,           // 535
   lost_in_body,
-  silent_taken,    // no answer after the dot, and the letter was taken
-  silent_gone,     // … and it was not
+  silent_taken,  // no answer after the dot, and the letter was taken
+  silent_gone,   // … and it was not
 };
 
 struct Delivery {

@@ -26,8 +26,8 @@ CivilDay day_from(const std::string& date) {
   int year = 0;
   unsigned month = 0, day = 0;
   REQUIRE(std::sscanf(date.c_str(), "%d-%u-%u", &year, &month, &day) == 3);
-  return CivilDay{CivilDate{std::chrono::year(year), std::chrono::month(month),
-                            std::chrono::day(day)}};
+  return CivilDay{
+      CivilDate{std::chrono::year(year), std::chrono::month(month), std::chrono::day(day)}};
 }
 
 }  // namespace
@@ -247,12 +247,23 @@ bool Season::talk_on() {
     if (dies_in_mail(0)) return false;
     const std::string to = talk.letter.recipient;
     switch (talk.course) {
-      case Course::no_line: ended(How::wait, About::server, 0, "no line"); return true;
-      case Course::put_off: ended(How::wait, About::server, 421, "421 later"); return true;
-      case Course::login: ended(How::settings_trouble, About::server, 535, "535 no"); return true;
-      case Course::refused: ended(How::refused, About::recipient, 550, "550 " + to); return true;
-      case Course::lost_in_body: ended(How::wait, About::server, 0, "line lost"); return true;
-      default: break;
+      case Course::no_line:
+        ended(How::wait, About::server, 0, "no line");
+        return true;
+      case Course::put_off:
+        ended(How::wait, About::server, 421, "421 later");
+        return true;
+      case Course::login:
+        ended(How::settings_trouble, About::server, 535, "535 no");
+        return true;
+      case Course::refused:
+        ended(How::refused, About::recipient, 550, "550 " + to);
+        return true;
+      case Course::lost_in_body:
+        ended(How::wait, About::server, 0, "line lost");
+        return true;
+      default:
+        break;
     }
     talk.phase = 1;
     talk.until = now_ + server_.thinks();

@@ -42,8 +42,8 @@ class Season {
     std::int64_t item = 0;
     letters::Letter letter;
     Course course = Course::accepted;
-    int phase = 0;      // 0 handed over, 1 the dot may go, 2 the answer is due
-    Instant until;      // the server thinks until then
+    int phase = 0;  // 0 handed over, 1 the dot may go, 2 the answer is due
+    Instant until;  // the server thinks until then
   };
 
   Instant service_time() const { return now_ + offset_; }
@@ -88,9 +88,9 @@ class Season {
   std::optional<std::pair<int, Death>> mail_death_;  // in which phase
   Death death_in_commit_ = Death::kill;
   Instant start_, end_, now_;
-  Instant back_at_;                  // the computer is off until then
+  Instant back_at_;  // the computer is off until then
   std::optional<Instant> store_bad_since_;
-  Instant last_shutdown_;            // by the service's own clock
+  Instant last_shutdown_;  // by the service's own clock
   Seconds offset_{0};
   bool clock_set_ = true;
   CivilDay watered_{};

@@ -153,8 +153,8 @@ void Season::diary(const Fault& fault) {
     if (folder_.names("diary").size() < 2) {
       folder_.write("diary/irrigation.csv", "field,start,end,method,depth,set\n");
     }
-    folder_.append("diary/irrigation.csv", field_name(0) + "," + day + " 19:30," + day +
-                                               " 23:00,overhead,9 mm,\n");
+    folder_.append("diary/irrigation.csv",
+                   field_name(0) + "," + day + " 19:30," + day + " 23:00,overhead,9 mm,\n");
     return;
   }
   field::Scouting note;

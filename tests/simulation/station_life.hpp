@@ -17,7 +17,7 @@ namespace simulation {
 struct Sent {
   Instant time;
   std::optional<double> temperature, humidity;  // as written; nothing where it is no number
-  bool sure = true;     // it must be in the store at the end
+  bool sure = true;                             // it must be in the store at the end
   Instant handed_over;
 };
 
