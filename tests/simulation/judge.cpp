@@ -14,6 +14,15 @@ bool of_the_watch(const std::string& kind) {
   return kind == "no_data" || kind == "doubtful_sensor";
 }
 
+/// Tables pad their columns: "7 Jul      ± 5 d" is a date with its ±.
+std::string squeezed(const std::string& text) {
+  std::string kept;
+  for (const char letter : text) {
+    if (letter != ' ' || kept.empty() || kept.back() != ' ') kept += letter;
+  }
+  return kept;
+}
+
 bool timed(const LetterRow& letter) { return letter.kind == "daily" || letter.kind == "weekly"; }
 
 }  // namespace
@@ -84,8 +93,13 @@ void Judge::judge_together(const std::vector<Said>& said, const std::vector<Seen
                (l.row.subject + l.row.body).find(s.row.subject) != std::string::npos;
       });
       if (!named) {
+        std::string there;
+        for (const Seen& l : letters) {
+          if (l.row.recipient == one.address) there += ", \"" + l.row.subject + "\"";
+        }
         complaints_.add("each decision has its letters",
-                        "no letter to " + one.address + " names " + s.row.subject);
+                        s.row.kind + " " + s.row.saying + " " + s.row.level + ": no letter to " +
+                            one.address + " names " + s.row.subject + there);
       }
     }
   }
@@ -111,7 +125,7 @@ void Judge::judge_said(const Said& said) {
     const bool same = before->row.saying == row.saying && before->row.level == row.level;
     const bool over = before->row.saying == "eased" || before->row.saying == "ended" ||
                       before->row.saying == "learned_late";
-    const Seconds apart = said.at - before->at;
+    const Seconds apart = row.at - before->row.at;
     if (same && row.saying != "reminder" && before->row.about == row.about) {
       complaints_.add("nothing is said twice", what);
     }
@@ -143,7 +157,7 @@ void Judge::judge_letter(const Seen& seen) {
   letters::Letter letter;
   letter.id = row.identity;
   letter.subject = row.subject;
-  letter.body = row.body;
+  letter.body = row.kind == "weekly" ? squeezed(row.body) : row.body;
   letter.still = row.still.empty() && timed(row) ? "-" : row.still;
   letter.kind = row.kind;
   letter.decided = row.decided;
@@ -153,7 +167,7 @@ void Judge::judge_letter(const Seen& seen) {
   if (!timed(row)) {
     for (const auto& [id, other] : letters_) {
       if (other.row.recipient == row.recipient && other.row.subject == row.subject &&
-          other.row.body == row.body && seen.at - other.at < days{3}) {
+          other.row.body == row.body && seen.at - other.at < hours{20}) {
         complaints_.add("no two letters say the same", what + ", letter " + std::to_string(id) +
                                                            " of " + hours_text(seen.at - other.at) +
                                                            " before");

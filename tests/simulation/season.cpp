@@ -1,6 +1,8 @@
 // The course of a season; see season.hpp. What the faults do stands in season_faults.cpp.
 #include "season.hpp"
 
+#include <malloc.h>
+
 #include <algorithm>
 
 #include "run/service/log.hpp"
@@ -10,6 +12,8 @@ namespace simulation {
 namespace {
 
 constexpr const char* file = "antherd.toml";
+// SQLite keeps 2 MB of pages; the rest is the season's hours and what was said.
+constexpr long most_memory = 6L * 1024 * 1024;
 
 std::shared_ptr<const settings::Settings> settings_at(const ground::Folder& folder,
                                                       const std::string& text) {
@@ -43,6 +47,7 @@ void Tally::add(const Tally& other) {
   parked += other.parked;
   repeats += other.repeats;
   alerts += other.alerts;
+  heaviest = std::max(heaviest, other.heaviest);
 }
 
 Season::Season(const Kind& kind, std::uint64_t seed)
@@ -119,7 +124,8 @@ void Season::moment() {
 }
 
 void Season::open() {
-  auto opened = service::DeskWork::open(settings_, service_time());
+  steady_ = {};
+  auto opened = service::DeskWork::open(settings_, service_time(), clock_set_);
   ++tally_.opens;
   if (died()) return;
   if (!opened) {
@@ -143,11 +149,22 @@ void Season::open() {
   });
 }
 
-/// The process ends at once, or the power with it.
-void Season::die(Death death, Seconds off) {
+/// What the service held in memory, weighed as it is given back.
+void Season::end_desk() {
   witness_.reset();
   disk_.stop();
+  const auto before = mallinfo2().uordblks;
   desk_.reset();
+  const auto weight = static_cast<long>(before - mallinfo2().uordblks);
+  tally_.heaviest = std::max(tally_.heaviest, weight);
+  if (weight > most_memory) {
+    complaints_.add("memory is bounded", std::to_string(weight / 1024) + " KiB");
+  }
+}
+
+/// The process ends at once, or the power with it.
+void Season::die(Death death, Seconds off) {
+  end_desk();
   talk_.reset();
   asked_.clear();
   if (death == Death::cut) {
@@ -174,17 +191,13 @@ bool Season::died() {
 }
 
 void Season::turn() {
-  const bool behind = offset_ < Seconds{0};
-  for (StationLife& station : stations_) {
-    if (behind) station.doubt_ahead_of(service_time(), now_ - hours{6});
-  }
   for (int i = 0; i < 300 && desk_; ++i) {
     const Instant time = service_time();
     desk_->look_soon();
     const Instant wake = desk_->turn(time, clock_set_);
     ++tally_.turns;
     if (died()) return;
-    judge_.look(*witness_, now_, offset_ == Seconds{0});
+    judge_.look(*witness_, now_, plain());
     answer_polls();
     if (!desk_) return;
     converse();
@@ -207,7 +220,7 @@ void Season::answer_polls() {
   if (asked.empty()) return;
   desk_->turn(service_time(), clock_set_);
   ++tally_.turns;
-  if (!died()) judge_.look(*witness_, now_, offset_ == Seconds{0});
+  if (!died()) judge_.look(*witness_, now_, plain());
 }
 
 bool Season::dies_in_mail(int phase) {
@@ -233,7 +246,7 @@ void Season::converse() {
       desk_->turn(service_time(), clock_set_);
       ++tally_.turns;
       if (died()) return;
-      judge_.look(*witness_, now_, offset_ == Seconds{0});
+      judge_.look(*witness_, now_, plain());
     }
   }
 }
@@ -308,6 +321,8 @@ void Season::finish() {
   tally_.sent = judge_.sent;
   tally_.parked = judge_.parked;
   tally_.repeats = judge_.repeats;
+  end_desk();
+  disk_.wake();
 }
 
 }  // namespace simulation

@@ -14,6 +14,7 @@
 #include "judge.hpp"
 #include "mail_server.hpp"
 #include "run/service/desk_work.hpp"
+#include "run/service/timekeeper.hpp"
 #include "service/ground.hpp"
 #include "station_life.hpp"
 #include "witness.hpp"
@@ -24,6 +25,7 @@ namespace simulation {
 struct Tally {
   int turns = 0, kills = 0, cuts = 0, opens = 0, faults = 0;
   int letters = 0, sent = 0, parked = 0, repeats = 0, alerts = 0;
+  long heaviest = 0;  // bytes that a desk gave back when it ended
   void add(const Tally& other);
 };
 
@@ -46,7 +48,15 @@ class Season {
     Instant until;  // the server thinks until then
   };
 
-  Instant service_time() const { return now_ + offset_; }
+  /// What the service's timekeeper makes of the computer's clock.
+  Instant service_time() {
+    return steady_.now(now_ + offset_, now_.time_since_epoch(), clock_set_);
+  }
+  /// The service knows what time it is, and what it decides is committed at once.
+  bool plain() {
+    return desk_->working(service_time()) == now_ && !store_bad_since_ &&
+           now_ > store_bad_until_ + hours{1};
+  }
   Seconds step();
   void moment();
   void begin(const Fault& fault);
@@ -56,6 +66,7 @@ class Season {
   void open();
   void die(Death death, Seconds off);
   bool died();
+  void end_desk();
   void turn();
   void converse();
   bool talk_on();
@@ -90,8 +101,10 @@ class Season {
   Instant start_, end_, now_;
   Instant back_at_;  // the computer is off until then
   std::optional<Instant> store_bad_since_;
+  Instant store_bad_until_;
   Instant last_shutdown_;  // by the service's own clock
   Seconds offset_{0};
+  service::SteadyTime steady_;
   bool clock_set_ = true;
   CivilDay watered_{};
   Tally tally_;

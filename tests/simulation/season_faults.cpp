@@ -59,10 +59,12 @@ void Season::end(const Fault& fault) {
     case What::disk_error:
       disk_.refuse(SQLITE_OK);
       store_bad_since_.reset();
+      store_bad_until_ = now_;
       return;
     case What::disk_locked:
       disk_.hold_lock(false);
       store_bad_since_.reset();
+      store_bad_until_ = now_;
       return;
     default:
       break;

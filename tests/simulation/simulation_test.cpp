@@ -3,7 +3,6 @@
 //   ANTHERD_SEASON="fog coast"            only this kind
 //   ANTHERD_SEEDS=20                      that many seeds of each kind
 //   ANTHERD_FAULTS=kill,mail_down         only these faults, to find which one it takes
-#include <malloc.h>
 #include <time.h>
 
 #include <chrono>
@@ -60,9 +59,9 @@ TEST_CASE("no season breaks a rule, whatever the weather and the faults", "[simu
   std::printf(
       "simulation: %d seasons of %d kinds, %d faults ordered, %d turns; %d things said, %d "
       "letters: %d sent, %d parked, %d repeated and marked; %d kills, %d power cuts, %d starts; "
-      "%.0f s, %.0f s of processor\n",
+      "at most %ld KiB in memory; %.0f s, %.0f s of processor\n",
       seasons, seasons / std::max(1, seeds), sum.faults, sum.turns, sum.alerts, sum.letters,
-      sum.sent, sum.parked, sum.repeats, sum.kills, sum.cuts, sum.opens, wall.count(),
-      cpu_seconds() - cpu);
+      sum.sent, sum.parked, sum.repeats, sum.kills, sum.cuts, sum.opens, sum.heaviest / 1024,
+      wall.count(), cpu_seconds() - cpu);
   CHECK(seasons > 0);
 }

@@ -22,12 +22,12 @@ bool of_the_sensor(What what) { return what <= What::twofold; }
 }  // namespace
 
 StationLife::StationLife(const Kind& kind, std::uint64_t seed, int number, std::string folder,
-                         const Calendar& calendar)
+                         Calendar calendar)
     : kind_(kind),
       seed_(seed),
       number_(number),
       folder_(std::move(folder)),
-      calendar_(calendar),
+      calendar_(std::move(calendar)),
       dice_(seed * 31 + static_cast<std::uint64_t>(number) + 5) {
   fs::create_directories(folder_);
   if (!over_http()) append("bench.csv", header);
@@ -216,12 +216,6 @@ station::Answer StationLife::answer(const station::HttpForm& form,
 void StationLife::doubt_since(Instant when) {
   for (auto sent = sent_.rbegin(); sent != sent_.rend() && sent->handed_over >= when; ++sent) {
     sent->sure = false;
-  }
-}
-
-void StationLife::doubt_ahead_of(Instant service_time, Instant when) {
-  for (auto sent = sent_.rbegin(); sent != sent_.rend() && sent->handed_over >= when; ++sent) {
-    if (sent->time > service_time + minutes{10}) sent->sure = false;
   }
 }
 

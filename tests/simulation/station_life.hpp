@@ -24,7 +24,7 @@ struct Sent {
 class StationLife {
  public:
   StationLife(const Kind& kind, std::uint64_t seed, int number, std::string folder,
-              const Calendar& calendar);
+              Calendar calendar);
 
   void begin(const Fault& fault);
   void end(const Fault& fault);
@@ -35,8 +35,6 @@ class StationLife {
                          Instant now, Instant service_time);
   /// Rows handed over since then need not have arrived.
   void doubt_since(Instant when);
-  /// Rows handed over since `when` and stamped later than this by more than 10 min: refused.
-  void doubt_ahead_of(Instant service_time, Instant when);
 
   const std::vector<Sent>& sent() const { return sent_; }
   int number() const { return number_; }
@@ -57,7 +55,7 @@ class StationLife {
   std::uint64_t seed_;
   int number_;
   std::string folder_;
-  const Calendar& calendar_;
+  Calendar calendar_;
   synthetic::Dice dice_;
   std::map<What, Fault> active_;
   std::optional<Instant> measured_;
