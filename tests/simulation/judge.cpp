@@ -14,6 +14,11 @@ bool of_the_watch(const std::string& kind) {
   return kind == "no_data" || kind == "doubtful_sensor";
 }
 
+std::string one_line(std::string text) {
+  std::replace(text.begin(), text.end(), '\n', ' ');
+  return text;
+}
+
 /// Tables pad their columns: "7 Jul      ± 5 d" is a date with its ±.
 std::string squeezed(const std::string& text) {
   std::string kept;
@@ -90,7 +95,7 @@ void Judge::judge_together(const std::vector<Said>& said, const std::vector<Seen
       if (one.brief || !told(one, s.row.subject)) continue;
       const bool named = std::any_of(letters.begin(), letters.end(), [&](const Seen& l) {
         return l.row.recipient == one.address &&
-               (l.row.subject + l.row.body).find(s.row.subject) != std::string::npos;
+               one_line(l.row.subject + " " + l.row.body).find(s.row.subject) != std::string::npos;
       });
       if (!named) {
         std::string there;
