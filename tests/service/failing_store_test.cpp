@@ -179,6 +179,9 @@ TEST_CASE("a store that cannot note how a letter ended does not stop the mail") 
   CHECK(!carrier.busy());
   carrier.carry(hot_morning + minutes{2});
   CHECK(handed.size() == 1);  // nothing goes that could not be noted
+  const auto again = carrier.look_again(hot_morning + minutes{2});
+  REQUIRE(again);
+  CHECK(*again >= hot_morning + minutes{3});  // and the store is not asked without a pause
   stopper.release_all();
 
   carrier.carry(hot_morning + minutes{4});
@@ -189,6 +192,33 @@ TEST_CASE("a store that cannot note how a letter ended does not stop the mail") 
     REQUIRE(first);
     CHECK((*first)->state == outbox::State::sent);
   }
+}
+
+TEST_CASE("a store that takes no mark is not asked for it without a pause") {
+  Farm farm;
+  farm.mail = "server = \"smtp://localhost:2525\"\nplain = true\n";
+  Bench bench(farm);
+  bench.open(sown);
+  store::Decision decision;
+  outbox::Item item;
+  item.letter.id = "one";
+  item.letter.recipient = "owner@larkspur.example";
+  item.letter.kind = "heat";
+  item.letter.decided = item.next_try = hot_morning;
+  decision.letters.push_back(item);
+  REQUIRE(bench.desk->store().save(decision));
+  int handed = 0;
+  service::Carrier carrier(bench.settings, bench.desk->store(),
+                           [&](mail::Server, std::int64_t, letters::Letter) { ++handed; });
+  REQUIRE(carrier.load(hot_morning));
+  CHECK(carrier.look_again(hot_morning) == hot_morning);
+  Stopper stopper(bench.folder);
+  stopper.stop("line");
+  CHECK(!carrier.carry(hot_morning).empty());
+  CHECK(carrier.look_again(hot_morning) == hot_morning + minutes{1});
+  stopper.release("line");
+  carrier.carry(hot_morning + minutes{1});
+  CHECK(handed == 1);
 }
 
 TEST_CASE("samples that find no room do not keep the heat letter back") {

@@ -49,7 +49,7 @@ Item rest_in_doubt(Item item, const Receipt& receipt) {
   item.next_try = receipt.at + doubt_rest;
   if (item.doubts < doubts_allowed) return item;
   return park(std::move(item), receipt.at,
-              receipt.sentence + "; the answer was lost twice, so it is not sent again: \"" +
+              receipt.sentence + "; twice no answer came, so it is not sent again: \"" +
                   item.letter.subject + "\" to " + item.letter.recipient +
                   " may have arrived once, twice or not at all");
 }

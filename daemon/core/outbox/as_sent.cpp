@@ -73,8 +73,8 @@ letters::Letter as_sent(const Item& item, Instant now) {
   std::string head;
   if (item.doubts > 0) {
     head += wrapped(
-        "You may already have this letter: it was sent before, but the answer of the mail server "
-        "was lost.");
+        "You may already have this letter: it was sent before, but the mail server's answer did "
+        "not arrive.");
   }
   const Seconds late = now - letter.decided;
   if (late > late_after) {

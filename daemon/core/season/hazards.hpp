@@ -49,6 +49,7 @@ struct HumidHazard {
   bool yesterday_hot = false;
   std::vector<HumidDay> last_five;
   std::optional<std::size_t> episode;
+  bool had_emerged = false, had_buds = false;  // when the stage was last known
 };
 
 struct HourContext {

@@ -18,19 +18,22 @@ bool disease_was_seen(const HourContext& hour) {
       });
 }
 
-/// While the stage is unknown the days since sowing must do (science §5, "Stage unknown").
-void place_in_season(risk::DayContext& context, const HourContext& hour) {
+/// While the stage is unknown the days since sowing must do (science §5, "Stage unknown"), but a
+/// gap makes no crop younger: else it would lower a level.
+void place_in_season(HumidHazard& humid, risk::DayContext& context, const HourContext& hour) {
   const auto& needs = hour.plan.traits.needs;
   if (!hour.crop.known()) {
     const auto since = (hour.day - hour.plan.field.sown).count();
-    context.before_buds = since < 35;
-    context.in_season = since >= 7;
+    context.before_buds = since < 35 && !humid.had_buds;
+    context.in_season = since >= 7 || humid.had_emerged;
     return;
   }
   const double time = hour.crop.time.value, factor = hour.crop.belief.mean;
   context.in_season = time >= factor * needs.emerged.value &&
                       time <= factor * crop::requirement(field::stage::dough, needs).value;
   context.before_buds = time < factor * needs.buds.value;
+  humid.had_emerged = time >= factor * needs.emerged.value;
+  humid.had_buds = !context.before_buds;
 }
 
 risk::DayHour day_hour(const Air& air, const risk::Wet& wet) {
@@ -96,7 +99,7 @@ HumidDay end_humid_day(HumidHazard& humid, const HourContext& hour, CivilDay dat
       hour.diary.sets.begin(), hour.diary.sets.end(),
       [&](const risk::NightSet& set) { return set.enough && sunrise && set.sunrise == *sunrise; });
   context.disease_seen = disease_was_seen(hour);
-  place_in_season(context, hour);
+  place_in_season(humid, context, hour);
   context.in_season = context.in_season && hour.watched;
   const risk::SpellDay spell = risk::advance(humid.spell, wetness, context);
   humid.yesterday_hot = wetness.hot;

@@ -123,24 +123,34 @@ Outcome Carrier::keep_unkept() {
   return Done{};
 }
 
+std::string Carrier::rest(const Failure& failure, Instant now) {
+  rest_until_ = now + unkept_tried_again;
+  return failure.sentence();
+}
+
+bool Carrier::resting(Instant now) const {
+  // A longer rest was begun by a clock that has been set back since.
+  return now < rest_until_ && rest_until_ - now <= unkept_tried_again;
+}
+
 std::vector<std::string> Carrier::carry(Instant now) {
   std::vector<std::string> said;
-  if (!settings_->mail || in_hand_ != 0) return said;
+  if (!settings_->mail || in_hand_ != 0 || resting(now)) return said;
   // Nothing goes out while the store cannot take down what becomes of it.
-  if (auto done = keep_unkept(); !done) return said.push_back(done.failure().sentence()), said;
+  if (auto done = keep_unkept(); !done) return said.push_back(rest(done.failure(), now)), said;
   // A folder takes everything that is due at once, a server one letter at a time.
   for (bool more = true; more && in_hand_ == 0;) {
     more = false;
     const outbox::Plan plan = outbox::plan(items_, line_, now);
     for (const std::int64_t id : plan.expired) {
       const outbox::Item expired = outbox::expire(*find(id), now);
-      if (auto done = keep(expired); !done) return said.push_back(done.failure().sentence()), said;
+      if (auto done = keep(expired); !done) return said.push_back(rest(done.failure(), now)), said;
       said.push_back("a letter to " + expired.letter.recipient + " was parked: " + expired.answer);
     }
     if (!plan.send) break;
     const outbox::Item item = outbox::take(*find(*plan.send), now);
     if (auto done = keep(item); !done) {
-      said.push_back(done.failure().sentence());
+      said.push_back(rest(done.failure(), now));
       break;
     }
     if (settings_->mail->server) {
@@ -195,6 +205,7 @@ std::string Carrier::received(std::int64_t item, const mail::Spoken& spoken, Ins
 std::optional<Instant> Carrier::look_again(Instant now) const {
   if (!settings_->mail || in_hand_ != 0) return std::nullopt;
   if (!unkept_.empty()) return now + unkept_tried_again;
+  if (resting(now)) return rest_until_;
   const outbox::Plan plan = outbox::plan(items_, line_, now);
   return plan.send ? std::optional(now) : plan.look_again;
 }

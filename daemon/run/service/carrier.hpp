@@ -45,6 +45,9 @@ class Carrier {
   outbox::Item* find(std::int64_t id);
   Outcome update(const outbox::Item& item);
   Outcome keep(const outbox::Item& item);
+  /// The sentence of a store that does not take a mark; the carrier rests for a minute.
+  std::string rest(const Failure& failure, Instant now);
+  bool resting(Instant now) const;
   void drop_closed();
   /// Writes down the ends of conversations that the store did not take at their time.
   Outcome keep_unkept();
@@ -58,6 +61,7 @@ class Carrier {
   outbox::Line line_, stored_line_;              // the second as it stands in the store
   std::int64_t in_hand_ = 0;                     // at the worker, 0 for none
   std::map<std::int64_t, outbox::Item> unkept_;  // ended, not yet stored, by id
+  Instant rest_until_{};  // the store took a step's mark not: it is not asked without a pause
   std::uint64_t draws_ = 0;
 };
 

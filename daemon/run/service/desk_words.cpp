@@ -15,7 +15,8 @@ std::string age_text(Seconds age) {
 
 }  // namespace
 
-std::string DeskWork::status_line(Instant now) const {
+std::string DeskWork::status_line(Instant at) const {
+  const Instant now = working(at);
   std::string line;
   for (const auto& station : settings_->stations) {
     const auto last = keeper_->lookout().last_sample(station.station.name);

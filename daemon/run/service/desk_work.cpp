@@ -38,7 +38,7 @@ DeskWork::DeskWork(std::shared_ptr<const settings::Settings> settings, store::St
     : settings_(std::move(settings)), store_(std::move(store)) {}
 
 Result<std::unique_ptr<DeskWork>> DeskWork::open(std::shared_ptr<const settings::Settings> settings,
-                                                 Instant now) {
+                                                 Instant now, bool clock_set) {
   store::Store::Options options;
   options.folder = settings->store_folder;
   options.service = true;
@@ -50,7 +50,8 @@ Result<std::unique_ptr<DeskWork>> DeskWork::open(std::shared_ptr<const settings:
     log_error("the store was damaged; it was put aside as " + *aside +
               " and a new one was begun: files in the drop folder are read again");
   }
-  if (auto done = work->begin(now); !done) return done.failure();
+  work->mind_clock(now, clock_set, work->known_time());
+  if (auto done = work->begin(work->working(now)); !done) return done.failure();
   return work;
 }
 
@@ -87,6 +88,11 @@ Outcome DeskWork::begin(Instant now) {
 }
 
 Instant DeskWork::turn(Instant now, bool clock_set) {
+  mind_clock(now, clock_set, keeper_->lookout().time_of_stations());
+  return turn_at(working(now)) - Seconds{ahead_.load()};
+}
+
+Instant DeskWork::turn_at(Instant now) {
   const bool scan = look_due_ || now >= next_look_ || next_look_ - now > scan_every;
   look_due_ = false;
   if (scan) {
@@ -96,7 +102,7 @@ Instant DeskWork::turn(Instant now, bool clock_set) {
   ask_stations(now);
   Kept kept;
   if (settled(now)) {
-    kept = keeper_->step(now, clock_set);
+    kept = keeper_->step(now, clock_set_);
     for (Failure& trouble : keeper_->tidy(now)) kept.troubles.push_back(std::move(trouble));
   } else if (auto done = keeper_->flush(now); !done) {
     kept.troubles.push_back(done.failure());
@@ -170,7 +176,9 @@ void DeskWork::look(Instant now) {
 
 bool DeskWork::look_into_drop(const settings::Station& station, Source& source, Instant now) {
   const std::string& name = station.station.name;
-  const station::Look look = station::look_into(*station.drop, source.bookmarks, now);
+  // A clock that is not set calls no reading too early.
+  const Instant clock = clock_set_ ? now : Instant{};
+  const station::Look look = station::look_into(*station.drop, source.bookmarks, clock);
   source.looked = now;
   store::Notes notes;
   for (const station::Bookmark& bookmark : look.bookmarks) {
@@ -219,7 +227,8 @@ void DeskWork::ask_stations(Instant now) {
   }
 }
 
-void DeskWork::poll_answered(const std::string& name, const station::Answer& answer, Instant now) {
+void DeskWork::poll_answered(const std::string& name, const station::Answer& answer, Instant at) {
+  const Instant now = working(at);
   const auto found = sources_.find(name);
   const settings::Station* station = settings_->station(name);
   if (found == sources_.end() || station == nullptr || !station->http) return;  // settings changed
@@ -273,17 +282,19 @@ void DeskWork::tell_news(const std::string& station, Instant now) {
   keeper_->lookout().set_source_news(station, std::move(news));
 }
 
-void DeskWork::mail_spoken(std::int64_t item, const mail::Spoken& spoken, Instant now) {
+void DeskWork::mail_spoken(std::int64_t item, const mail::Spoken& spoken, Instant at) {
+  const Instant now = working(at);
   const std::string sentence = carrier_->received(item, spoken, now);
   if (spoken.how == mail::How::accepted) {
     log_info(sentence);
   } else {
     log_warning(sentence);
   }
-  if (reload_wanted_) reload(now);
+  if (reload_wanted_) reload(at);
 }
 
-void DeskWork::reload(Instant now) {
+void DeskWork::reload(Instant at) {
+  const Instant now = working(at);
   reload_wanted_ = carrier_->busy();
   if (reload_wanted_) return;
   settings::Reading reading = settings::read_file(settings_->path);
@@ -317,7 +328,7 @@ void DeskWork::reload(Instant now) {
 }
 
 void DeskWork::finish(Instant now) {
-  if (auto done = keeper_->flush(now); !done) log_error(done.failure().sentence());
+  if (auto done = keeper_->flush(working(now)); !done) log_error(done.failure().sentence());
 }
 
 std::vector<std::string> DeskWork::folders() const {

@@ -2,6 +2,7 @@
 // sources, keep what came, decide, carry. Tests drive it with any time they like.
 #pragma once
 
+#include <atomic>
 #include <functional>
 #include <map>
 #include <memory>
@@ -25,8 +26,11 @@ class DeskWork {
                                  const station::PollMemory&)>;
 
   /// Opens the store as the one service of its folder and reads everything back.
+  ///
+  /// Here and below `now` is the computer's time. While its clock is not set the desk works by a
+  /// time of its own, see working().
   static Result<std::unique_ptr<DeskWork>> open(std::shared_ptr<const settings::Settings> settings,
-                                                Instant now);
+                                                Instant now, bool clock_set = true);
 
   void on_send(Carrier::Send send) { send_ = std::move(send); }
   void on_poll(Ask ask) { ask_ = std::move(ask); }
@@ -39,13 +43,20 @@ class DeskWork {
 
   void poll_answered(const std::string& station, const station::Answer& answer, Instant now);
   void life_answered(const Outcome& outcome, Instant now);
-  bool before_dot(std::int64_t item, Instant now) { return carrier_->before_dot(item, now); }
+  bool before_dot(std::int64_t item, Instant now) {
+    return carrier_->before_dot(item, working(now));
+  }
   void mail_spoken(std::int64_t item, const mail::Spoken& spoken, Instant now);
 
   /// Reads the settings file again: whole or not at all; complaints go to the log.
   void reload(Instant now);
   /// Stores what is in memory.
   void finish(Instant now);
+
+  /// The time that the desk works by. A clock that is not set is taken as it is only where it is
+  /// not behind what the store and the stations know, nor years ahead of it; else time goes on from
+  /// there. May be called from another thread.
+  Instant working(Instant now) const { return now + Seconds{ahead_.load()}; }
 
   std::vector<std::string> folders() const;
   std::string status_line(Instant now) const;
@@ -66,6 +77,9 @@ class DeskWork {
 
   DeskWork(std::shared_ptr<const settings::Settings> settings, store::Store store);
   Outcome begin(Instant now);
+  std::optional<Instant> known_time() const;
+  void mind_clock(Instant now, bool clock_set, std::optional<Instant> known);
+  Instant turn_at(Instant now);
   void look(Instant now);
   bool look_into_drop(const settings::Station& station, Source& source, Instant now);
   void look_into_diary(Instant now);
@@ -93,6 +107,8 @@ class DeskWork {
   Ask ask_;
   std::map<std::string, Source> sources_;
   std::map<std::string, std::string> logged_;  // the last sentence of each kind of trouble
+  std::atomic<std::int64_t> ahead_{0};         // s from the computer's clock to working()
+  bool clock_set_ = true;
   std::string diary_version_ = "unread";
   Instant next_look_{};
   bool look_due_ = true;

@@ -285,7 +285,9 @@ std::vector<Failure> Keeper::tidy(Instant now) {
   const auto note = [&](const Outcome& done) {
     if (!done) troubles.push_back(done.failure());
   };
-  note(store_.drop_samples_before(now - settings_->keep_samples));
+  // Old by the readings too: a clock that is wrong by years must not throw a season away.
+  const auto newest = lookout_.time_of_stations();
+  note(store_.drop_samples_before(std::min(now, newest.value_or(now)) - settings_->keep_samples));
   note(store_.keep_ballast());
   const auto weekday =
       std::chrono::weekday{std::chrono::sys_days{today.time_since_epoch()}}.iso_encoding();

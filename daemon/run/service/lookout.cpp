@@ -229,6 +229,19 @@ std::optional<Instant> Lookout::last_sample(const std::string& station) const {
   return times.empty() ? std::nullopt : std::optional(times.back());
 }
 
+std::optional<Instant> Lookout::time_of_stations() const {
+  std::optional<Instant> newest;
+  for (const auto& [name, station] : stations_) {
+    const auto& times = station.times;
+    for (std::size_t i = times.size(); i-- > 1;) {
+      if (times[i] - times[i - 1] > 2 * station.station.interval) continue;
+      newest = newest ? std::max(*newest, times[i]) : times[i];
+      break;
+    }
+  }
+  return newest;
+}
+
 Instant next_daily(const settings::Settings& settings, Instant now) {
   const CivilDay today = settings.calendar.day_of(now);
   const std::chrono::minutes clock{settings.mail->daily_minute};

@@ -62,6 +62,9 @@ class Lookout {
   season::StationHours hours_of(const std::string& field) const;
   const std::vector<weather::Hour>& station_hours(const std::string& station) const;
   std::optional<Instant> last_sample(const std::string& station) const;
+  /// The newest sample that follows another within two intervals, of any station: by these a
+  /// computer whose clock is not set may tell the time. A stray stamp moves no clock.
+  std::optional<Instant> time_of_stations() const;
   const std::vector<alerts::Said>& ledger() const { return said_; }
   /// Episodes of fields and stations as they stood at the last turn.
   const std::vector<alerts::Episode>& episodes() const { return episodes_; }

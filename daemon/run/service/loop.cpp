@@ -29,7 +29,7 @@ class Loop {
               [this](auto item, auto spoken) { report_mail(item, std::move(spoken)); }),
         polls_([this](auto name, auto answer) { report_poll(std::move(name), std::move(answer)); },
                [this](auto outcome) { report_life(std::move(outcome)); },
-               [time = options.time] { return time.now(); }) {
+               [this](const station::HttpForm& form) { return arrival_time(form); }) {
     work_->on_send([this](mail::Server server, std::int64_t item, letters::Letter letter) {
       mail_.send(std::move(server), item, std::move(letter));
     });
@@ -55,6 +55,12 @@ class Loop {
 
  private:
   Instant now() const { return options_.time.now(); }
+
+  /// In a worker's thread. A clock that is not set calls no reading of a station too early.
+  Instant arrival_time(const station::HttpForm& form) const {
+    if (!form.record.time.arrival && !options_.time.set()) return Instant{};
+    return work_->working(options_.time.now());
+  }
 
   void turn() {
     if (stopping_) return;
@@ -171,7 +177,7 @@ class Loop {
 }  // namespace
 
 Outcome run(std::shared_ptr<const settings::Settings> settings, const RunOptions& options) {
-  auto work = DeskWork::open(std::move(settings), options.time.now());
+  auto work = DeskWork::open(std::move(settings), options.time.now(), options.time.set());
   if (!work) return work.failure();
   Loop loop(std::move(*work), options);
   loop.run();

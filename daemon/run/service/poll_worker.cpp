@@ -12,7 +12,7 @@ constexpr int threads_at_once = 4;  // stations that may be slow at one time
 
 }  // namespace
 
-PollWorker::PollWorker(Report report, ReportLife life, std::function<Instant()> now)
+PollWorker::PollWorker(Report report, ReportLife life, Now now)
     : report_(std::move(report)), life_(std::move(life)), now_(std::move(now)) {
   for (int i = 0; i < threads_at_once; ++i) threads_.emplace_back([this] { work(); });
 }
@@ -54,7 +54,8 @@ void PollWorker::work() {
       life_(station::give_sign_of_life(job.sign_of_life, stop_));
       continue;
     }
-    report_(job.name, station::poll(job.form, job.memory, now_, stop_));
+    report_(job.name, station::poll(
+                          job.form, job.memory, [&] { return now_(job.form); }, stop_));
   }
 }
 

@@ -20,9 +20,11 @@ class PollWorker {
   using Report = std::function<void(std::string station, station::Answer)>;
   using ReportLife = std::function<void(Outcome)>;
 
+  using Now = std::function<Instant(const station::HttpForm&)>;
+
   /// @param report, life  called in a worker's thread; must only post to the owner
-  /// @param now  the service's time, for stations without their own
-  PollWorker(Report report, ReportLife life, std::function<Instant()> now);
+  /// @param now  the service's time, for stations without their own; called in a worker's thread
+  PollWorker(Report report, ReportLife life, Now now);
   ~PollWorker();
 
   void ask(std::string name, station::HttpForm form, station::PollMemory memory);
@@ -41,7 +43,7 @@ class PollWorker {
 
   Report report_;
   ReportLife life_;
-  std::function<Instant()> now_;
+  Now now_;
   std::atomic<bool> stop_{false};
   std::mutex mutex_;
   std::condition_variable wake_;

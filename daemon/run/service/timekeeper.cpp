@@ -11,7 +11,11 @@ Timekeeper::Timekeeper(Instant from, double pace)
     : from_(from), started_(clock::steady_now()), pace_(pace) {}
 
 Instant Timekeeper::now() const {
-  if (!from_) return clock::wall_now();
+  if (!from_) {
+    const std::lock_guard lock(shared_->mutex);
+    const auto steady = std::chrono::floor<Seconds>(clock::steady_now().time_since_epoch());
+    return shared_->time.now(clock::wall_now(), steady, set());
+  }
   const std::chrono::duration<double> real = clock::steady_now() - started_;
   const double passed = real.count() * pace_;
   return *from_ + Seconds{static_cast<long long>(passed)};

@@ -40,7 +40,8 @@ std::string spaced(std::string text) {
   return text;
 }
 
-/// A date ahead without "±", as "Tue 14 Jul" in 2026, or nothing.
+}  // namespace
+
 std::string bare_date_ahead(const std::string& text, CivilDay today) {
   const std::array<const char*, 12> months{"Jan", "Feb", "Mar", "Apr", "May", "Jun",
                                            "Jul", "Aug", "Sep", "Oct", "Nov", "Dec"};
@@ -60,6 +61,8 @@ std::string bare_date_ahead(const std::string& text, CivilDay today) {
   }
   return "";
 }
+
+namespace {
 
 bool has_control(const std::string& text, bool newline_allowed) {
   for (std::size_t i = 0; i < text.size(); ++i) {

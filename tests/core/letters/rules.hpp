@@ -17,6 +17,9 @@ std::vector<std::string> broken_by_text(const std::string& text, antherd::CivilD
 /// The first of the words that are never said, or nothing.
 std::string forbidden_in(const std::string& text);
 
+/// A date ahead without "±", as "Tue 14 Jul" in 2026, or nothing. The text is one line.
+std::string bare_date_ahead(const std::string& text, antherd::CivilDay today);
+
 std::size_t code_points(const std::string& text);
 
 }  // namespace rules

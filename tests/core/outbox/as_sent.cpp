@@ -89,6 +89,7 @@ TEST_CASE("after a doubt the first line says that it may be a copy") {
   CHECK(letter.body.starts_with("You may already have this letter"));
   CHECK(letter.subject == item.letter.subject);
   CHECK(letter.id == item.letter.id);
+  CHECK(letter.body.find("lost") == std::string::npos);  // a word that no letter says
 
   letter = as_sent(item, afternoon + hours(51));
   CHECK(letter.body.starts_with("You may already have this letter"));

@@ -154,3 +154,17 @@ TEST_CASE("days of 23 and 25 hours are whole days") {
     CHECK(told.chronicle.days[n].date == plan.field.sown + days{static_cast<int>(n)});
   }
 }
+
+TEST_CASE("a gap that hides the stage lowers no humid spell") {
+  Plan plan = plan_at_greenwich();
+  plan.traits.needs.emerged = ThermalTime(20);
+  field::Diary diary;
+  for (int day = 0; day < 6; ++day) diary.irrigations.push_back(set_on(plan, day));
+  // Nothing is seen of day 6: by 18:00 that is 18 of 162 hours, so the stage is unknown.
+  const auto blind = [](int n) { return n < 6 * 24 ? std::optional(Weather{}) : std::nullopt; };
+  const Told told = tell(plan, 7 * 24, blind, diary);
+  CHECK(!told.state.crop.known());
+  REQUIRE(told.state.episodes.size() == 1);
+  CHECK(told.state.episodes[0].kind == alerts::Kind::humid_spell);
+  CHECK(told.state.episodes[0].open());
+}

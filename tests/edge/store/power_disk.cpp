@@ -14,6 +14,7 @@ struct Handle {
   sqlite3_file base;
   PowerDisk* disk;
   std::string* name;
+  int lock;  // SQLITE_LOCK_NONE … EXCLUSIVE
 };
 Handle& handle_of(sqlite3_file* file) { return *reinterpret_cast<Handle*>(file); }
 PowerDisk& disk_of(sqlite3_vfs* vfs) { return *static_cast<PowerDisk*>(vfs->pAppData); }
@@ -32,7 +33,16 @@ void put_into(std::string& bytes, const PowerDisk::Write& write) {
             bytes.begin() + static_cast<std::ptrdiff_t>(at));
 }
 
+void set_lock(sqlite3_file* file, int lock) {
+  auto& held = content_of(file).locks;
+  int& mine = handle_of(file).lock;
+  if (mine > SQLITE_LOCK_NONE) held.erase(held.find(mine));
+  if (lock > SQLITE_LOCK_NONE) held.insert(lock);
+  mine = lock;
+}
+
 int close_file(sqlite3_file* file) {
+  set_lock(file, SQLITE_LOCK_NONE);
   delete handle_of(file).name;
   return SQLITE_OK;
 }
@@ -57,6 +67,7 @@ int write_file(sqlite3_file* file, const void* bytes, int size, sqlite3_int64 at
                  std::string(static_cast<const char*>(bytes), static_cast<std::size_t>(size) / 2)});
     return SQLITE_IOERR_WRITE;
   }
+  if (disk.refusal() != SQLITE_OK) return disk.refusal();
   disk.change(
       content_of(file),
       {false, at, std::string(static_cast<const char*>(bytes), static_cast<std::size_t>(size))});
@@ -66,6 +77,7 @@ int write_file(sqlite3_file* file, const void* bytes, int size, sqlite3_int64 at
 int truncate_file(sqlite3_file* file, sqlite3_int64 size) {
   PowerDisk& disk = *handle_of(file).disk;
   if (disk.dead() || disk.fails()) return SQLITE_IOERR_TRUNCATE;
+  if (disk.refusal() != SQLITE_OK) return SQLITE_IOERR_TRUNCATE;
   disk.change(content_of(file), {true, size, {}});
   return disk.count_down() ? SQLITE_OK : SQLITE_IOERR_TRUNCATE;
 }
@@ -84,7 +96,22 @@ int file_size(sqlite3_file* file, sqlite3_int64* size) {
   return SQLITE_OK;
 }
 
-int grant(sqlite3_file*, int) { return SQLITE_OK; }
+int lock_file(sqlite3_file* file, int wanted) {
+  if (wanted <= handle_of(file).lock) return SQLITE_OK;
+  auto others = content_of(file).locks;
+  if (const int mine = handle_of(file).lock; mine > 0) others.erase(others.find(mine));
+  const int highest = others.empty() ? SQLITE_LOCK_NONE : *others.rbegin();
+  const int allowed = wanted == SQLITE_LOCK_SHARED     ? SQLITE_LOCK_RESERVED
+                      : wanted == SQLITE_LOCK_RESERVED ? SQLITE_LOCK_SHARED
+                                                       : SQLITE_LOCK_NONE;
+  if (highest > allowed) return SQLITE_BUSY;
+  set_lock(file, wanted);
+  return SQLITE_OK;
+}
+int unlock_file(sqlite3_file* file, int kept) {
+  if (kept < handle_of(file).lock) set_lock(file, kept);
+  return SQLITE_OK;
+}
 int nobody_reserved(sqlite3_file*, int* answer) { return *answer = 0, SQLITE_OK; }
 int no_control(sqlite3_file*, int, void*) { return SQLITE_NOTFOUND; }
 int sector_size(sqlite3_file*) { return 4096; }
@@ -104,7 +131,10 @@ int map_shared(sqlite3_file* file, int region, int size, int extend, void volati
   *memory = regions[wanted].data();
   return SQLITE_OK;
 }
-int lock_shared(sqlite3_file*, int, int, int) { return SQLITE_OK; }
+int lock_shared(sqlite3_file* file, int, int, int flags) {
+  const bool wanted = (flags & SQLITE_SHM_LOCK) != 0 && (flags & SQLITE_SHM_EXCLUSIVE) != 0;
+  return wanted && handle_of(file).disk->held() ? SQLITE_BUSY : SQLITE_OK;
+}
 void shared_barrier(sqlite3_file*) {}
 int unmap_shared(sqlite3_file* file, int remove) {
   if (remove != 0) content_of(file).shared.clear();
@@ -120,8 +150,8 @@ const sqlite3_io_methods methods = [] {
   made.xTruncate = truncate_file;
   made.xSync = sync_file;
   made.xFileSize = file_size;
-  made.xLock = grant;
-  made.xUnlock = grant;
+  made.xLock = lock_file;
+  made.xUnlock = unlock_file;
   made.xCheckReservedLock = nobody_reserved;
   made.xFileControl = no_control;
   made.xSectorSize = sector_size;
@@ -140,6 +170,7 @@ int open_file(sqlite3_vfs* vfs, const char* name, sqlite3_file* file, int flags,
   if ((flags & SQLITE_OPEN_CREATE) == 0 && disk.files().count(name) == 0) return SQLITE_CANTOPEN;
   disk.files()[name];
   handle_of(file).disk = &disk;
+  handle_of(file).lock = SQLITE_LOCK_NONE;
   handle_of(file).name = new std::string(name);
   file->pMethods = &methods;
   if (granted != nullptr) *granted = flags;
@@ -162,6 +193,9 @@ int full_name(sqlite3_vfs*, const char* name, int size, char* into) {
   return SQLITE_OK;
 }
 
+/// Whoever waits for a lock has waited: no test sleeps.
+int no_sleep(sqlite3_vfs*, int microseconds) { return microseconds; }
+
 }  // namespace
 
 PowerDisk::PowerDisk(std::uint32_t seed) : random_(seed) {
@@ -175,6 +209,7 @@ PowerDisk::PowerDisk(std::uint32_t seed) : random_(seed) {
   vfs_.xDelete = delete_file;
   vfs_.xAccess = is_there;
   vfs_.xFullPathname = full_name;
+  vfs_.xSleep = no_sleep;
   if (sqlite3_vfs_register(&vfs_, 1) != SQLITE_OK) throw std::runtime_error("no power disk");
 }
 
@@ -226,6 +261,12 @@ void PowerDisk::revive() {
     file.shared.clear();
     file.now = file.durable;
   }
+  dead_ = false;
+  left_ = 0;
+}
+
+void PowerDisk::wake() {
+  for (auto& [name, file] : files_) file.shared.clear();
   dead_ = false;
   left_ = 0;
 }
