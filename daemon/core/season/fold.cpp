@@ -25,9 +25,9 @@ double solar_of(const State& state, const Plan& plan, const Air& air) {
                                   plan.stations[station].radiation_coefficient);
 }
 
-void add_energy_terms(HourRecord& record, const State& state, const Plan& plan) {
+Drying add_energy_terms(HourRecord& record, const State& state, const Plan& plan) {
   const Air& air = record.air;
-  if (!air.valid()) return;
+  if (!air.valid()) return {};
   weather::HourAir terms;
   terms.temperature = *air.temperature;
   terms.humidity = *air.humidity;
@@ -37,6 +37,14 @@ void add_energy_terms(HourRecord& record, const State& state, const Plan& plan) 
   terms.elevation = plan.field.elevation;
   record.drying = weather::potential_drying(terms);
   if (air.wind && air.solar) record.eto = weather::reference_evapotranspiration(terms);
+  Drying drying;
+  drying.measured = record.drying;
+  const double humidity = air.humidity->value;
+  terms.humidity = Percent(std::max(0.0, humidity - humidity_doubt));
+  drying.drier = weather::potential_drying(terms);
+  terms.humidity = Percent(std::min(100.0, humidity + humidity_doubt));
+  drying.damper = weather::potential_drying(terms);
+  return drying;
 }
 
 void remember_temperature(State& state, const Air& air) {
@@ -104,7 +112,7 @@ Step advance(State& state, const Plan& plan, const DiaryView& diary, const Air& 
   Step step;
   HourRecord& record = step.hour;
   record.air = air;
-  add_energy_terms(record, state, plan);
+  const Drying drying = add_energy_terms(record, state, plan);
   const PhenologyHour grown = advance(state.crop, plan, diary, air, state.day);
   update_watch(state, plan);
 
@@ -116,7 +124,7 @@ Step advance(State& state, const Plan& plan, const DiaryView& diary, const Air& 
                          end_of(air.start) >= state.next_day,
                          state.watch == Watch::watched};
   step.day = advance(state.heat, state.episodes, hour, grown.flower_share);
-  step.humid_day = advance(state.humid, state.episodes, hour, record.drying, record.wet);
+  step.humid_day = advance(state.humid, state.episodes, hour, drying, record.wet);
   advance(state.water, hour, record.eto);
   if (step.day) step.day->ks = state.water.ks;
   give_notices(state, plan, diary, hour, grown.note_was_held);

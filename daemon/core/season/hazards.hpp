@@ -41,11 +41,18 @@ struct HeatHazard {
   std::optional<std::size_t> episode;  // index of the open one
 };
 
-struct HumidHazard {
+/// Wetness and spell by one reading of the humidity.
+struct HumidTrack {
   std::vector<risk::DayHour> hours;  // of the humid day so far
   risk::LeafState leaf;
   risk::Spell spell;
   bool yesterday_hot = false;
+};
+
+/// As measured, and the same had every humidity been 3 % lower or higher: what a good hygrometer
+/// may be off by.
+struct HumidHazard : HumidTrack {
+  HumidTrack drier, damper;
   std::vector<HumidDay> last_five;
   std::optional<std::size_t> episode;
 };
@@ -64,9 +71,16 @@ struct HourContext {
 std::optional<HeatDay> advance(HeatHazard& heat, std::vector<alerts::Episode>& episodes,
                                const HourContext& hour, double flower_share);
 
+constexpr double humidity_doubt = 3.0;  // % (common practice: accuracy of a field hygrometer)
+
+/// Potential drying of an hour as measured and with the humidity 3 % lower or higher.
+struct Drying {
+  Millimetre measured{0}, drier{0}, damper{0};
+};
+
 /// One hour of wetness. @return the humid day when it ends with this hour
 std::optional<HumidDay> advance(HumidHazard& humid, std::vector<alerts::Episode>& episodes,
-                                const HourContext& hour, Millimetre drying, risk::Wet& wet);
+                                const HourContext& hour, const Drying& drying, risk::Wet& wet);
 
 /// The day so far as a record. @param track  0 as measured
 HeatDay day_so_far(const HeatHazard& heat);

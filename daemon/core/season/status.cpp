@@ -137,6 +137,10 @@ HumidStatus humid_status(const State& state, const Plan& plan, const DiaryView& 
   HumidStatus humid;
   humid.last_five = state.humid.last_five;
   if (!humid.last_five.empty()) humid.last = humid.last_five.back();
+  if (humid.last) {
+    humid.if_drier = state.humid.drier.spell.level;
+    humid.if_damper = state.humid.damper.spell.level;
+  }
   const Instant now = end_of(*state.last);
   const CivilDay today = state.day;
   std::vector<CivilDay> mornings;
