@@ -194,6 +194,42 @@ TEST_CASE("replay for people writes nothing and sends nothing") {
   CHECK(full.out.size() > ended.out.size());
 }
 
+TEST_CASE("check --stations counts each week's hours by their verdicts") {
+  const Past past;
+  const auto csv = past.run({"check", "--stations", "--csv"});
+  INFO(csv.out << csv.err);
+  REQUIRE(csv.status == 0);
+  CHECK(csv.out.find("station,week,hours,seen,good,suspect,wrong,reasons\r\n") == 0);
+  // Thursday 25 June to Thursday 16 July: four weeks of the calendar, the middle two whole.
+  CHECK(std::count(csv.out.begin(), csv.out.end(), '\n') == 5);
+  CHECK(csv.out.find("bench,2026-W27,168,168,168,0,0,\r\n") != std::string::npos);
+  const auto lines = lines_of(past.run({"check", "--stations", "--lines"}).out);
+  REQUIRE(lines.size() == 4);
+  CHECK(keys_of(lines[1]) ==
+        Keys{"station", "week", "hours", "seen", "good", "suspect", "wrong", "reasons"});
+  int hours = 0;
+  for (const auto& line : lines) hours += line["hours"].get<int>();
+  CHECK(hours == (until - sown) / one_hour);
+  const auto people = past.run({"check", "--stations"});
+  CHECK(people.status == 0);
+  CHECK(people.out.find("2026-W28") != std::string::npos);
+  // Where no table is asked for these options would be silently without effect.
+  CHECK(past.run({"check"}).status == 2);
+  CHECK(run({"check", "--csv", "--settings", past.folder / "antherd.toml"}).status == 2);
+}
+
+TEST_CASE("check --stations names a temperature in the wrong unit") {
+  const Past past;
+  auto samples = readings(Weather{}, sown, until);
+  for (auto& sample : samples) {
+    sample.temperature = Celsius((sample.temperature->value - 8.0) * 1.8 + 32.0);
+  }
+  past.folder.write("season.csv", header + rows_of(samples));
+  const auto csv = past.run({"check", "--stations", "--csv"});
+  REQUIRE(csv.status == 0);
+  CHECK(csv.out.find("temperature fahrenheit as celsius 168") != std::string::npos);
+}
+
 TEST_CASE("a station's file that cannot be used is named, and the status is not 0") {
   const Past past;
   const auto with = [&](const std::string& pair) {

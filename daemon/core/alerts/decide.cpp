@@ -4,6 +4,7 @@
 #include <algorithm>
 #include <tuple>
 
+#include "core/alerts/stations.hpp"
 #include "core/alerts/story.hpp"
 
 namespace antherd::alerts {
@@ -202,11 +203,34 @@ std::optional<Telling> telling_of(const Story& story, const Policy& policy, Inst
   return end(story, policy, now);
 }
 
+namespace {
+
+// Good news of a station is no reason to wake anybody.
+bool waits_for_morning(const Telling& telling, const Policy& policy, Instant now) {
+  return telling.saying == Saying::ended && of_the_watch(telling.kind) &&
+         awake(now, policy.calendar) != now;
+}
+
+// A sensor that fails every night outside the window is one piece of news a week.
+bool known_already(const Telling& telling, std::span<const Said> said, const Policy& policy) {
+  if (telling.kind != Kind::doubtful_sensor || telling.level != Level::none) return false;
+  if (telling.saying != Saying::opened && telling.saying != Saying::learned_late) return false;
+  const Instant began = telling.changes.empty() ? telling.about : telling.changes.front().at;
+  return std::any_of(said.begin(), said.end(), [&](const Said& entry) {
+    return entry.kind == telling.kind && entry.subject == telling.subject && entry.at <= began &&
+           began - entry.at < policy.forget_after;
+  });
+}
+
+}  // namespace
+
 std::vector<Telling> decide(std::span<const Episode> episodes, std::span<const Notice> notices,
                             std::span<const Said> said, const Policy& policy, Instant now) {
   std::vector<Telling> tellings;
   for (const Story& story : stories_of(episodes, said, now)) {
-    if (auto telling = telling_of(story, policy, now)) tellings.push_back(std::move(*telling));
+    auto telling = telling_of(story, policy, now);
+    if (!telling || waits_for_morning(*telling, policy, now)) continue;
+    if (!known_already(*telling, said, policy)) tellings.push_back(std::move(*telling));
   }
   for (Telling& telling : tellings_of(notices, said, policy, now)) {
     tellings.push_back(std::move(telling));

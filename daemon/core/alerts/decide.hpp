@@ -10,12 +10,14 @@
 //               seen); at once when it was said to be over and a re-fold shows that it is not
 //   eased       the end of a heat or humid_spell that was told as Severe
 //   ended       readings are back (no_data that was told, doubtful_sensor told as Moderate or
-//   more),
+//               more), told by day: at night it waits until 06:00 farm time;
 //               also when late readings filled the gap so that the episode is gone; letters go
 //               again (mail_trouble, of which nothing else is said)
 //   learned_late  what happened more than late_after before now, or was over before it was told
 // Nothing is said of changes older than forget_after or before first_start, then or later, except
-// of a no_data or doubtful_sensor that still lasts: the watch is blind now. Nothing is said of an
+// of a no_data or doubtful_sensor that still lasts: the watch is blind now. A doubtful sensor
+// outside the flowering window (Minor) is said once in 7 days, however often it comes and goes: the
+// review has it every week. Nothing is said of an
 // outlook (heat_ahead) that is over, of other levels that fall or episodes that close, nor of an
 // episode that a re-fold took away.
 #pragma once
@@ -71,6 +73,7 @@ struct Policy {
   Seconds late_after{12 * 3600};
   Seconds forget_after{7 * 24 * 3600};  // older: the review only
   std::optional<Instant> first_start;   // what is older than the first start is not told
+  const Calendar* calendar = nullptr;   // farm time, for what waits until morning
 };
 
 /// @param episodes  all episodes of the season so far, of any subjects; of stations at least the

@@ -9,6 +9,7 @@ namespace antherd::alerts {
 namespace {
 
 constexpr int hours_to_doubt = 6;
+constexpr int hours_to_trust = 24;  // a whole day: many faults come only by day or by night
 constexpr Seconds night_begins{22 * 3600};
 constexpr Seconds night_ends{6 * 3600};
 
@@ -44,17 +45,6 @@ std::vector<Span> joined(std::span<const Span> spans) {
     }
   }
   return result;
-}
-
-// The moment itself by day, the coming morning by night.
-Instant awake(Instant at, const Calendar* sleep) {
-  if (!sleep) return at;
-  const CivilTime reading = sleep->civil(at);
-  const CivilDay day = std::chrono::floor<std::chrono::days>(reading);
-  const Seconds clock = reading - CivilTime(day);
-  if (clock >= night_begins) return sleep->at(CivilTime(day + std::chrono::days{1}) + night_ends);
-  if (clock < night_ends) return sleep->at(CivilTime(day) + night_ends);
-  return at;
 }
 
 void add(Episode& episode, Instant at, Level level, const Manner& manner, const Trouble& trouble) {
@@ -145,7 +135,7 @@ std::vector<Trouble> troubles_of(const std::string& check, std::vector<const Fai
       continue;
     }
     if (run++ == 0) run_start = Instant(hour->hour);
-    if (run < hours_to_doubt) continue;
+    if (run < (open ? hours_to_trust : hours_to_doubt)) continue;
     run = 0;
     open = !open;
     if (open) {
@@ -176,6 +166,17 @@ std::vector<Trouble> together(std::vector<Trouble> troubles) {
 }
 
 }  // namespace
+
+Instant awake(Instant at, const Calendar* farm_time) {
+  if (!farm_time) return at;
+  const CivilTime reading = farm_time->civil(at);
+  const CivilDay day = std::chrono::floor<std::chrono::days>(reading);
+  const Seconds clock = reading - CivilTime(day);
+  if (clock >= night_begins)
+    return farm_time->at(CivilTime(day + std::chrono::days{1}) + night_ends);
+  if (clock < night_ends) return farm_time->at(CivilTime(day) + night_ends);
+  return at;
+}
 
 Seconds patience_of(const StationWatch& watch) {
   return std::max(watch.silent_after, 3 * watch.interval) +

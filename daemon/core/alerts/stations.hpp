@@ -35,6 +35,10 @@ struct Silence {
   bool operator==(const Silence&) const = default;
 };
 
+/// The moment itself by day, 06:00 of the coming morning between 22:00 and 06:00 farm time; always
+/// the moment itself without a calendar.
+Instant awake(Instant at, const Calendar* farm_time);
+
 /// How long a station may say nothing: max(silent_after, 3 intervals), and what a batch adds
 /// (arrives_every beyond the interval).
 Seconds patience_of(const StationWatch& watch);
@@ -63,9 +67,10 @@ struct FailingHour {
   bool has_data = false;  // false: the hour counts neither way and breaks nothing
 };
 
-/// Episodes of doubtful_sensor: a check that fails in 6 consecutive hours with data opens, 6 such
-/// hours without the failure close. Checks that fail at one time are one episode, whose detail
-/// names those that opened it. Moderate in the window, else none (Minor).
+/// Episodes of doubtful_sensor: a check that fails in 6 consecutive hours with data opens, 24
+/// such hours without the failure close: what fails every night, or at every noon, is one
+/// episode. Checks that fail at one time are one episode, whose detail names those that opened
+/// it. Moderate in the window, else none (Minor).
 std::vector<Episode> doubtful(const std::string& station, std::span<const FailingHour> hours,
                               std::span<const Span> in_window, std::span<const Span> watched,
                               Instant now);

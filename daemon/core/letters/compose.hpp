@@ -13,6 +13,8 @@
 #include "core/risk/rules.hpp"
 #include "core/season/status.hpp"
 #include "core/units/time.hpp"
+#include "core/weather/suspicion.hpp"
+#include "core/weather/verdict_count.hpp"
 
 namespace antherd::letters {
 
@@ -67,11 +69,23 @@ struct FieldReview {
   int warm_nights = 0;
   double affected_low = 0, affected_high = 0;  // 0…1, indicative
 };
+/// What a station's own hours were worth in the period.
+struct StationReview {
+  std::string station;
+  weather::VerdictCount verdicts;
+};
+/// Two stations that no longer differ as they did.
+struct DriftReview {
+  std::string one, other;
+  weather::Drift drift;  // one less the other
+};
 struct Review {
   std::string title;         // "Week 2026-W28" or "Season 2026"
   CivilDay first{}, last{};  // both included
   std::vector<FieldReview> fields;
   std::vector<alerts::Said> said_of_stations;
+  std::vector<StationReview> stations;
+  std::vector<DriftReview> drifts;  // only the large ones
   int letters_sent = 0, letters_waiting = 0, letters_parked = 0;
   std::vector<std::string> parked;             // one line each: who, what, why
   std::vector<alerts::Episode> mail_troubles;  // that touch the period
@@ -89,6 +103,12 @@ Letter compose_digest(std::span<const Letter> waited, const Recipient& recipient
 /// The one screen of `antherd now`.
 std::string compose_now(const Desk& desk, std::span<const alerts::Said> unclosed,
                         std::span<const std::string> attention);
+
+/// What is doubtful at a station: "temperature looks like °F read as °C"; empty for nothing.
+std::string doubts_of(const StationStory& station);
+
+/// "bench and creek have drifted apart: bench is 2.1 °C warmer against creek than …".
+std::string drift_sentence(const DriftReview& drift, const Desk& desk);
 
 /// The standing caution of every letter and page.
 std::string standing_caution(Language language);

@@ -25,8 +25,34 @@ std::string reason_words(weather::Reason reason) {
       return "dew point above the temperature";
     case weather::Reason::rain_in_dry_air:
       return "rain in dry air";
+    case weather::Reason::not_air_temperature:
+      return "cannot be air temperature";
+    case weather::Reason::fahrenheit_as_celsius:
+      return "looks like °F read as °C";
+    case weather::Reason::celsius_as_fahrenheit:
+      return "looks like °C read as °F";
+    case weather::Reason::columns_swapped:
+      return "temperature and humidity look swapped";
+    case weather::Reason::clock_off:
+      return "clock or zone off";
+    case weather::Reason::humidity_low_top:
+      return "never near saturation";
+    case weather::Reason::humidity_high_top:
+      return "at saturation in the sun";
   }
   return "in doubt";
+}
+
+/// Faults that are named whole, without the element before them.
+bool names_itself(weather::Reason reason) {
+  return reason == weather::Reason::dew_above_temperature ||
+         reason == weather::Reason::rain_in_dry_air || reason == weather::Reason::columns_swapped ||
+         reason == weather::Reason::clock_off;
+}
+
+std::string hours_off(double late) {
+  const int hours = static_cast<int>(late < 0 ? -late + 0.5 : late + 0.5);
+  return "stamps about " + std::to_string(hours) + glue + "h " + (late < 0 ? "early" : "late");
 }
 
 }  // namespace
@@ -62,11 +88,55 @@ std::string flags_named(const std::vector<weather::Flag>& flags) {
   return list(named);
 }
 
+std::string doubts_of(const StationStory& station) {
+  std::vector<std::string> named;
+  for (const weather::Flag& flag : station.flags_24) {
+    if (flag.verdict == weather::Verdict::good) continue;
+    const std::string words = fault_words(flag);
+    const bool known = std::find(named.begin(), named.end(), words) != named.end();
+    if (!known && named.size() < 3) named.push_back(words);
+  }
+  return unglued(list(named));
+}
+
 std::string fault_words(const weather::Flag& flag) {
-  return flag.reason == weather::Reason::dew_above_temperature ||
-                 flag.reason == weather::Reason::rain_in_dry_air
-             ? reason_words(flag.reason)
-             : element_words(flag.element) + " " + reason_words(flag.reason);
+  if (flag.reason == weather::Reason::clock_off) {
+    return reason_words(flag.reason) + ", " + hours_off(flag.value);
+  }
+  return names_itself(flag.reason) ? reason_words(flag.reason)
+                                   : element_words(flag.element) + " " + reason_words(flag.reason);
+}
+
+std::string what_to_mend(const weather::Flag& flag) {
+  switch (flag.reason) {
+    case weather::Reason::not_air_temperature:
+    case weather::Reason::fahrenheit_as_celsius:
+      return "Look at the temperature's column and unit in the settings: these are not °C"
+             " of air, they look like °F. While they are left out no heat is seen, and no heat "
+             "warning can come.";
+    case weather::Reason::celsius_as_fahrenheit:
+      return "Look at the temperature's unit in the settings: it looks like °C read as °F."
+             " While the values are left out no heat is seen, and no heat warning can come.";
+    case weather::Reason::columns_swapped:
+      return "Look at the columns in the settings: temperature and humidity look exchanged. Both "
+             "are left out, and neither heat nor wet leaves are seen.";
+    case weather::Reason::clock_off:
+      return "Look at the station's clock, at zone and longitude in the settings: " +
+             hours_off(flag.value) +
+             ", by the sun. Heat is seen, but days and nights of wet leaves are cut at the wrong "
+             "hours.";
+    case weather::Reason::humidity_low_top:
+      return "In 30 nights with dew or rain the humidity never passed " + number(flag.value, 0) +
+             glue +
+             "%: the sensor reads low at its top, and wet leaves are seen too seldom. Clean "
+             "it, compare it, or exchange it.";
+    case weather::Reason::humidity_high_top:
+      return "The humidity stays at 100" + std::string(1, glue) +
+             "% while the sun warms the air: the sensor reads high at its top, and leaves seem wet "
+             "too long. Clean it, compare it, or exchange it.";
+    default:
+      return "";
+  }
 }
 
 std::string flag_words(const weather::Flag& flag) {
@@ -101,6 +171,28 @@ std::string wetness_source(const season::HumidStatus& humid) {
 
 }  // namespace
 
+/// A level that hangs on three per cent of humidity is said to.
+std::string humidity_doubt(const FieldStatus& status) {
+  const season::HumidStatus& humid = status.humid;
+  if (!humid.last || !humid.if_drier || !humid.if_damper) return "";
+  const Level level = humid.last->level, drier = *humid.if_drier, damper = *humid.if_damper;
+  if (drier == level && damper == level) return "";
+  const auto words = [](Level other) {
+    return other == Level::none ? std::string("below Moderate") : level_word(other);
+  };
+  const std::string three = std::string("3") + glue + "%";
+  std::string said;
+  if (drier == damper) {
+    said = words(drier) + " were it " + three + " lower or higher";
+  } else {
+    std::vector<std::string> cases;
+    if (drier != level) cases.push_back(words(drier) + " were it " + three + " lower");
+    if (damper != level) cases.push_back(words(damper) + " were it " + three + " higher");
+    said = list(cases);
+  }
+  return "A hygrometer is good to about " + three + ": the mildew level would be " + said + ".";
+}
+
 std::string data_paragraph(const FieldStatus& status, const Words& words, bool heat) {
   const season::DataStatus& data = status.data;
   std::vector<std::string> said;
@@ -124,6 +216,10 @@ std::string data_paragraph(const FieldStatus& status, const Words& words, bool h
   if (heat && data.whole_degrees) {
     said.push_back("The station sends whole degrees: Severe waits for a reading above " +
                    words.threshold(words.heat_rules(status.field).severe) + ".");
+  }
+  if (!heat) {
+    const std::string doubt = humidity_doubt(status);
+    if (!doubt.empty()) said.push_back(doubt);
   }
   if (!heat && !data.rain_measured) {
     said.push_back("Rain is not measured here: rain that fell is not in this.");

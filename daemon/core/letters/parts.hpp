@@ -94,6 +94,8 @@ std::string unseen_since(const FieldStatus& status, const Words& words);
 /// "temperature stuck (used)"; `fault_words` without what became of the value.
 std::string flag_words(const weather::Flag& flag);
 std::string fault_words(const weather::Flag& flag);
+/// What to look at when a fault has a likely cause in settings, clock or sensor; else empty.
+std::string what_to_mend(const weather::Flag& flag);
 /// "temperature stuck (used) and rain in dry air (used)": at most four, each once; empty for none.
 std::string flags_named(const std::vector<weather::Flag>& flags);
 std::string element_words(weather::Element element);

@@ -2,6 +2,7 @@
 #include "core/letters/review.hpp"
 
 #include <algorithm>
+#include <cmath>
 
 #include "core/letters/parts.hpp"
 #include "core/letters/wrap.hpp"
@@ -69,8 +70,27 @@ bool quiet(const Review& review) {
          });
 }
 
+std::string verdicts_line(const StationReview& station) {
+  const weather::VerdictCount& count = station.verdicts;
+  std::string text = plain(station.station) + ": " + std::to_string(count.seen()) + " h of " +
+                     std::to_string(count.expected) + " seen, " + std::to_string(count.good) +
+                     " good, " + std::to_string(count.suspect) + " suspect, " +
+                     std::to_string(count.wrong) + " wrong";
+  std::vector<std::string> reasons;
+  for (const auto& [reason, hours] : count.reasons) {
+    reasons.push_back(reason + " " + std::to_string(hours) + " h");
+  }
+  return text + (reasons.empty() ? "." : " (" + list(reasons) + ").");
+}
+
 std::string stations(const Review& review, const Words& words) {
   Section section{"STATIONS", "", {}, true, {}};
+  for (const StationReview& station : review.stations) {
+    section.lines.push_back(verdicts_line(station));
+  }
+  for (const DriftReview& drift : review.drifts) {
+    section.lines.push_back(drift_sentence(drift, words.desk()));
+  }
   for (const alerts::Said& said : review.said_of_stations) {
     section.lines.push_back(said_line(said, words));
   }
@@ -161,6 +181,30 @@ std::string weekly_summary(const Review& review) {
 }
 
 }  // namespace
+
+std::string drift_sentence(const DriftReview& drift, const Desk& desk) {
+  const bool us = desk.units == Units::us;
+  std::vector<std::string> moved;
+  weather::Drift warmth, damp;
+  warmth.temperature = drift.drift.temperature;
+  damp.humidity = drift.drift.humidity;
+  const auto direction = [](double by, const char* up, const char* down) {
+    return by > 0 ? up : down;
+  };
+  if (warmth.large()) {
+    const double by = warmth.temperature * (us ? 1.8 : 1.0);
+    moved.push_back(number(std::abs(by), 1) + glue + (us ? "°F" : "°C") +
+                    direction(by, " warmer", " cooler"));
+  }
+  if (damp.large()) {
+    moved.push_back(number(std::abs(damp.humidity), 0) + glue + "%" +
+                    direction(damp.humidity, " damper", " drier"));
+  }
+  return plain(drift.one) + " and " + plain(drift.other) + " have drifted apart: against " +
+         plain(drift.other) + ", " + plain(drift.one) + " read " + list(moved) +
+         " in the last 14 days than in the 14 before. One of the two sensors, shields or places "
+         "has changed.";
+}
 
 std::string compose_review(const Review& review, const Desk& desk) {
   const Words words(desk);

@@ -212,17 +212,32 @@ Part no_data_ended(const Telling& telling, const Words& words) {
   return part;
 }
 
+/// The flag behind a telling: one whose cause is known before the others.
+const weather::Flag* failing_flag(const Telling& telling, const StationStory* story) {
+  const weather::Flag* found = nullptr;
+  if (story == nullptr) return found;
+  for (const weather::Flag& flag : story->flags_24) {
+    if (flag.verdict == weather::Verdict::good) continue;
+    const bool meant =
+        telling.detail.empty() || telling.detail.find(weather::describe(flag)) != std::string::npos;
+    if (!what_to_mend(flag).empty()) return &flag;
+    if (meant && found == nullptr) found = &flag;
+  }
+  return found;
+}
+
 /// The check that fails, with what it is about where the flags tell.
 std::string failing_check(const Telling& telling, const StationStory* story) {
-  if (story != nullptr) {
-    for (const weather::Flag& flag : story->flags_24) {
-      if (flag.verdict == weather::Verdict::good) continue;
-      if (telling.detail.empty() || weather::describe(flag) == telling.detail) {
-        return fault_words(flag);
-      }
-    }
-  }
+  if (const auto* flag = failing_flag(telling, story)) return fault_words(*flag);
   return telling.detail.empty() ? "a quality check keeps failing" : plain(telling.detail);
+}
+
+std::string sensor_check(const Telling& telling, const StationStory* story) {
+  const auto* flag = failing_flag(telling, story);
+  const std::string cause = flag == nullptr ? "" : what_to_mend(*flag);
+  if (!cause.empty()) return cause;
+  return "Hold a second thermometer in the shade beside it. Is the shield clean, the fan turning, "
+         "the plug dry? Is the column or unit in the settings right?";
 }
 
 Part doubtful(const Telling& telling, const Words& words) {
@@ -260,13 +275,13 @@ Part doubtful(const Telling& telling, const Words& words) {
        {},
        true},
       each_field(words, story, false),
-      {"CHECK",
-       "Hold a second thermometer in the shade beside it. Is the shield clean, the fan turning, "
-       "the plug dry? Is the column or unit in the settings right?",
-       {},
-       false}};
-  part.next = "Word when it passes again; a reminder after " + duration(words.desk().remind_after) +
-              " while it lasts.";
+      {"CHECK", sensor_check(telling, story), {}, false}};
+  // Outside the window there are no reminders, and no word of its end: the review has it.
+  part.next = telling.level >= Level::moderate
+                  ? "Word when it has passed for a day; a reminder after " +
+                        duration(words.desk().remind_after) + " while it lasts."
+                  : "The weekly review names it while it lasts; a letter comes again when a "
+                    "flowering window opens.";
   part.brief = "Warnings may be wrong or late. Check sensor and shield.";
   part.still = "The sensor was in doubt when this was decided.";
   return part;

@@ -25,9 +25,9 @@ double solar_of(const State& state, const Plan& plan, const Air& air) {
                                   plan.stations[station].radiation_coefficient);
 }
 
-void add_energy_terms(HourRecord& record, State& state, const Plan& plan) {
+Drying add_energy_terms(HourRecord& record, State& state, const Plan& plan) {
   const Air& air = record.air;
-  if (!air.valid()) return;
+  if (!air.valid()) return {};
   weather::HourAir terms;
   terms.temperature = *air.temperature;
   terms.humidity = *air.humidity;
@@ -35,10 +35,19 @@ void add_energy_terms(HourRecord& record, State& state, const Plan& plan) {
   terms.solar = solar_of(state, plan, air);
   terms.clear_sky = weather::clear_sky_radiation(air.extraterrestrial, plan.field.elevation);
   terms.elevation = plan.field.elevation;
-  record.leaf.drying = weather::potential_drying(terms);
   weather::look_up(state.sky, air.start, terms, air.extraterrestrial);
-  record.leaf.exchange = weather::leaf_exchange(terms, weather::clearness_at(state.sky, air.start));
+  const double clearness = weather::clearness_at(state.sky, air.start);
+  const auto leaf_with = [&](double humidity) {
+    terms.humidity = Percent(std::clamp(humidity, 0.0, 100.0));
+    return LeafWeather{weather::potential_drying(terms), weather::leaf_exchange(terms, clearness)};
+  };
+  const double humidity = air.humidity->value;
+  Drying drying;
+  drying.drier = leaf_with(humidity - humidity_doubt);
+  drying.damper = leaf_with(humidity + humidity_doubt);
+  record.leaf = drying.measured = leaf_with(humidity);
   if (air.wind && air.solar) record.eto = weather::reference_evapotranspiration(terms);
+  return drying;
 }
 
 void remember_temperature(State& state, const Air& air) {
@@ -105,7 +114,7 @@ Step advance(State& state, const Plan& plan, const DiaryView& diary, const Air& 
   Step step;
   HourRecord& record = step.hour;
   record.air = air;
-  add_energy_terms(record, state, plan);
+  const Drying drying = add_energy_terms(record, state, plan);
   const PhenologyHour grown = advance(state.crop, plan, diary, air, state.day);
   update_watch(state, plan);
 
@@ -117,7 +126,7 @@ Step advance(State& state, const Plan& plan, const DiaryView& diary, const Air& 
                          end_of(air.start) >= state.next_day,
                          state.watch == Watch::watched};
   step.day = advance(state.heat, state.episodes, hour, grown.flower_share);
-  step.humid_day = advance(state.humid, state.episodes, hour, record.leaf, record.wet);
+  step.humid_day = advance(state.humid, state.episodes, hour, drying, record.wet);
   advance(state.water, hour, record.eto);
   if (step.day) step.day->ks = state.water.ks;
   give_notices(state, plan, diary, hour, grown.note_was_held);

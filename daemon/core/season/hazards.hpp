@@ -41,15 +41,22 @@ struct HeatHazard {
   std::optional<std::size_t> episode;  // index of the open one
 };
 
-struct HumidHazard {
+/// Wetness and spell by one reading of the humidity.
+struct HumidTrack {
   std::vector<risk::DayHour> hours;  // of the humid day so far
   risk::LeafState leaf;
   risk::SensorRecord sensor;  // of the season
   risk::Spell spell;
   bool yesterday_hot = false;
+  bool had_emerged = false, had_buds = false;  // when the stage was last known
+};
+
+/// As measured, and the same had every humidity been 3 % lower or higher: what a good hygrometer
+/// may be off by.
+struct HumidHazard : HumidTrack {
+  HumidTrack drier, damper;
   std::vector<HumidDay> last_five;
   std::optional<std::size_t> episode;
-  bool had_emerged = false, had_buds = false;  // when the stage was last known
 };
 
 struct HourContext {
@@ -72,10 +79,16 @@ struct LeafWeather {
   Millimetre exchange{0};  // of a wet leaf at the top of the crop, below 0 dew
 };
 
+constexpr double humidity_doubt = 3.0;  // % (common practice: accuracy of a field hygrometer)
+
+/// The same as measured and with the humidity 3 % lower or higher.
+struct Drying {
+  LeafWeather measured, drier, damper;
+};
+
 /// One hour of wetness. @return the humid day when it ends with this hour
 std::optional<HumidDay> advance(HumidHazard& humid, std::vector<alerts::Episode>& episodes,
-                                const HourContext& hour, const LeafWeather& weather,
-                                risk::Wet& wet);
+                                const HourContext& hour, const Drying& drying, risk::Wet& wet);
 
 /// The day so far as a record. @param track  0 as measured
 HeatDay day_so_far(const HeatHazard& heat);

@@ -4,6 +4,7 @@
 #include "core/crop/development.hpp"
 #include "core/risk/infection.hpp"
 #include "core/season/hazards.hpp"
+#include "core/weather/air.hpp"
 #include "core/weather/sun.hpp"
 
 namespace antherd::season {
@@ -20,7 +21,7 @@ bool disease_was_seen(const HourContext& hour) {
 
 /// While the stage is unknown the days since sowing must do (science §5, "Stage unknown"), but a
 /// gap makes no crop younger: else it would lower a level.
-void place_in_season(HumidHazard& humid, risk::DayContext& context, const HourContext& hour) {
+void place_in_season(HumidTrack& humid, risk::DayContext& context, const HourContext& hour) {
   const auto& needs = hour.plan.traits.needs;
   if (!hour.crop.known()) {
     const auto since = (hour.day - hour.plan.field.sown).count();
@@ -48,8 +49,8 @@ risk::DayHour day_hour(const Air& air, const risk::Wet& wet) {
   return hour;
 }
 
-risk::Wet wetness_of(HumidHazard& humid, const HourContext& hour, const LeafWeather& weather) {
-  const Air& air = hour.air;
+risk::Wet wetness_of(HumidTrack& humid, const HourContext& hour, const Air& air,
+                     const LeafWeather& weather) {
   if (!air.valid()) {
     risk::after_gap(humid.leaf);
     return {};
@@ -87,7 +88,7 @@ HumidDay record_of(const risk::SpellDay& spell, const risk::DayWetness& wetness)
   return day;
 }
 
-HumidDay end_humid_day(HumidHazard& humid, const HourContext& hour, CivilDay date) {
+HumidDay end_humid_day(HumidTrack& humid, const HourContext& hour, CivilDay date) {
   const Plan& plan = hour.plan;
   const auto sunrise = weather::sun_day(date, plan.place()).rise;
   const auto wetness =
@@ -107,17 +108,36 @@ HumidDay end_humid_day(HumidHazard& humid, const HourContext& hour, CivilDay dat
   return record_of(spell, wetness);
 }
 
+/// The hour's air, had its humidity been otherwise. What touches neither end stays there.
+Air shifted(const Air& air, double by) {
+  Air other = air;
+  if (!air.valid()) return other;
+  other.humidity = Percent(std::clamp(air.humidity->value + by, 0.0, 100.0));
+  other.dew_point = weather::dew_point(*air.temperature, *other.humidity);
+  return other;
+}
+
+/// One hour of one track. @return the humid day when it ends with this hour
+std::optional<HumidDay> follow(HumidTrack& track, const HourContext& hour, const Air& air,
+                               const LeafWeather& weather, risk::Wet& wet) {
+  wet = wetness_of(track, hour, air, weather);
+  track.hours.push_back(day_hour(air, wet));
+  const Degree longitude = hour.plan.field.longitude;
+  if (!risk::ends_humid_day(air.start, longitude)) return std::nullopt;
+  return end_humid_day(track, hour, risk::humid_day_of(air.start, longitude));
+}
+
 }  // namespace
 
 std::optional<HumidDay> advance(HumidHazard& humid, std::vector<alerts::Episode>& episodes,
-                                const HourContext& hour, const LeafWeather& weather,
-                                risk::Wet& wet) {
-  wet = wetness_of(humid, hour, weather);
+                                const HourContext& hour, const Drying& drying, risk::Wet& wet) {
+  risk::Wet other;
+  follow(humid.drier, hour, shifted(hour.air, -humidity_doubt), drying.drier, other);
+  follow(humid.damper, hour, shifted(hour.air, humidity_doubt), drying.damper, other);
+  const auto ended = follow(humid, hour, hour.air, drying.measured, wet);
   risk::compare(humid.sensor, wet);
-  humid.hours.push_back(day_hour(hour.air, wet));
-  const Degree longitude = hour.plan.field.longitude;
-  if (!risk::ends_humid_day(hour.air.start, longitude)) return std::nullopt;
-  const HumidDay day = end_humid_day(humid, hour, risk::humid_day_of(hour.air.start, longitude));
+  if (!ended) return std::nullopt;
+  const HumidDay& day = *ended;
   humid.last_five.push_back(day);
   if (humid.last_five.size() > 5) humid.last_five.erase(humid.last_five.begin());
   std::optional<double> figure = day.r;

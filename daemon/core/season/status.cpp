@@ -142,6 +142,10 @@ HumidStatus humid_status(const State& state, const Plan& plan, const DiaryView& 
   humid.sensor_hours_24 = static_cast<int>(
       std::count_if(state.last_day.begin(), state.last_day.end(),
                     [](const Air& air) { return air.valid() && air.wet_minutes; }));
+  if (humid.last) {
+    humid.if_drier = state.humid.drier.spell.level;
+    humid.if_damper = state.humid.damper.spell.level;
+  }
   const Instant now = end_of(*state.last);
   const CivilDay today = state.day;
   std::vector<CivilDay> mornings;

@@ -95,6 +95,8 @@ struct HumidStatus {
   int streak = 0;                          // consecutive evenings of overhead irrigation, to now
   Level if_watered_tonight = Level::none;  // were tonight watered overhead and tomorrow like today
   Level if_not_watered = Level::none;      // … and were it not
+  std::optional<Level> if_drier;   // the spell's level had every humidity been 3 % lower
+  std::optional<Level> if_damper;  // … 3 % higher; both nothing before the first humid day
   bool close_to_sunset_limit = false;  // a set that ended an hour earlier would not have counted
   bool disease_seen = false;
   risk::Film film = risk::Film::humidity;  // the rule that stands in for a sensor

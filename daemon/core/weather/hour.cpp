@@ -28,6 +28,20 @@ std::string describe(const Flag& flag) {
       return "dew point above air temperature, left out";
     case Reason::rain_in_dry_air:
       return "rain while the air reads dry";
+    case Reason::not_air_temperature:
+      return "cannot be air temperature, left out";
+    case Reason::fahrenheit_as_celsius:
+      return "looks like °F read as °C, left out";
+    case Reason::celsius_as_fahrenheit:
+      return "looks like °C read as °F, left out";
+    case Reason::columns_swapped:
+      return "looks swapped with humidity, left out";
+    case Reason::clock_off:
+      return "comes at the wrong time of day: clock or zone";
+    case Reason::humidity_low_top:
+      return "never near saturation in 30 humid nights";
+    case Reason::humidity_high_top:
+      return "stays at saturation in the sun";
   }
   return "good";
 }
@@ -82,6 +96,20 @@ const char* name_of(Reason reason) {
       return "dew point above temperature";
     case Reason::rain_in_dry_air:
       return "rain in dry air";
+    case Reason::not_air_temperature:
+      return "not air temperature";
+    case Reason::fahrenheit_as_celsius:
+      return "fahrenheit as celsius";
+    case Reason::celsius_as_fahrenheit:
+      return "celsius as fahrenheit";
+    case Reason::columns_swapped:
+      return "columns swapped";
+    case Reason::clock_off:
+      return "clock off";
+    case Reason::humidity_low_top:
+      return "humidity low at its top";
+    case Reason::humidity_high_top:
+      return "humidity high at its top";
   }
   return "none";
 }

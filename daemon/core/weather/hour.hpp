@@ -26,6 +26,14 @@ enum class Reason {
   stuck,
   dew_above_temperature,
   rain_in_dry_air,
+  // What shows only over days (suspicion.hpp); `value` of the flag is what its comment says.
+  not_air_temperature,    // coolest reading of the last 24 h, °C
+  fahrenheit_as_celsius,  // likewise
+  celsius_as_fahrenheit,  // this hour's highest reading, °C
+  columns_swapped,
+  clock_off,          // hours by which the stamps are late; negative: early
+  humidity_low_top,   // highest reading of the last 30 humid nights, %
+  humidity_high_top,  // this hour's highest reading, %
 };
 
 /// What quality control said of one element in one hour. `count` values of the hour got this

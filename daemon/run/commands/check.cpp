@@ -6,6 +6,7 @@
 #include "core/season/fold.hpp"
 #include "edge/clock/clock.hpp"
 #include "run/commands/common.hpp"
+#include "run/service/review.hpp"
 #include "run/settings/plan.hpp"
 
 namespace antherd::commands {
@@ -78,10 +79,36 @@ void print_windows(const service::Lookout& lookout, const settings::FieldPlan& f
   }
 }
 
+/// The newest reading, the day's shape, and what is doubtful in its newest day.
+void print_station(const service::Lookout& lookout, const std::string& name) {
+  const settings::Settings& settings = lookout.settings();
+  const auto last = lookout.last_sample(name);
+  std::cout << "  Station " << name << ": "
+            << (last ? "newest reading " + farm_text(settings.calendar, *last)
+                     : std::string("no reading yet"))
+            << "; " << day_shape(lookout.station_hours(name), settings.calendar, settings.units)
+            << "\n";
+  if (!last) return;
+  const letters::Desk desk = lookout.desk(*last);
+  const letters::StationStory& story = desk.stations.at(name);
+  const std::string doubts = letters::doubts_of(story);
+  if (!doubts.empty()) std::cout << "    doubtful in its last 24 h: " << doubts << "\n";
+  const auto& hours = lookout.judged_hours(name);
+  if (!hours.empty() && hours.back().whole_degrees) {
+    std::cout << "    sends whole degrees: Severe heat waits for a reading above the threshold\n";
+  }
+}
+
 }  // namespace
 
 Exit check(const Invocation& call) {
   if (!call.sample.empty()) return check_sample(call);
+  if (call.stations) return check_stations(call);
+  if (call.lines || call.csv || !call.station_files.empty()) {
+    std::cerr << "antherd: --lines, --csv and --station of check belong to --stations; nothing was "
+                 "done\n";
+    return Exit::usage;
+  }
   const std::string file = settings::choose_file(call.settings);
   const settings::Reading reading = settings::read_file(file);
   for (const auto& complaint : reading.complaints) std::cout << complaint.sentence() << "\n";
@@ -105,14 +132,9 @@ Exit check(const Invocation& call) {
             << (past ? ":" : " (from the drop folders; the service has not run yet):") << "\n";
   if (!past) past = past_from_folders(settings, now);
   const service::Lookout lookout = lookout_over(*past);
-  for (const auto& station : settings->stations) {
-    const std::string& name = station.station.name;
-    const auto last = lookout.last_sample(name);
-    std::cout << "  Station " << name << ": "
-              << (last ? "newest reading " + farm_text(settings->calendar, *last)
-                       : std::string("no reading yet"))
-              << "; " << day_shape(lookout.station_hours(name), settings->calendar, settings->units)
-              << "\n";
+  for (const auto& station : settings->stations) print_station(lookout, station.station.name);
+  for (const auto& drift : service::drifts_of(lookout, past->last().value_or(now))) {
+    std::cout << "  " << letters::drift_sentence(drift, lookout.desk(now)) << "\n";
   }
   const auto newest = past->last();
   const HourStart until = newest ? hour_of(*newest) : hour_of(now);

@@ -48,6 +48,10 @@ void add_service(CLI::App& app, Invocation& call) {
           "antherd check --settings config/shortest.toml");
   check->add_option("--sample", call.sample,
                     "look at a station's CSV file and print a settings block that reads it");
+  check->add_flag("--stations", call.stations,
+                  "each station's hours by ISO week: seen, good, suspect, wrong, and why");
+  add_tables(check, call);
+  add_files(check, call);
   add(app, "mailtest", "send one letter to each recipient and explain what fails",
       "antherd mailtest --settings /etc/antherd/antherd.toml");
 }

@@ -20,6 +20,7 @@ struct Invocation {
   bool lines = false, csv = false;
   // check
   std::string sample;
+  bool stations = false;
   // hours, replay
   std::vector<std::string> station_files;  // "bench=FILE.csv"
   std::string from, to;                    // farm days, both included
@@ -45,7 +46,8 @@ struct Invocation {
 
 Exit run(const Invocation& call);
 Exit check(const Invocation& call);
-Exit check_sample(const Invocation& call);  // check --sample FILE
+Exit check_sample(const Invocation& call);    // check --sample FILE
+Exit check_stations(const Invocation& call);  // check --stations
 Exit now(const Invocation& call);
 Exit water(const Invocation& call);
 Exit scout(const Invocation& call);

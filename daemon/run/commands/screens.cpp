@@ -31,8 +31,14 @@ std::vector<std::string> attention_of(const service::Lookout& lookout, const sto
                           farm_text(lookout.settings().calendar, episode.start) +
                           ": do not count on letters.");
     } else if (episode.kind == alerts::Kind::doubtful_sensor) {
-      sentences.push_back("Station " + episode.subject + " reports doubtful values.");
+      const std::string named = letters::doubts_of(desk.stations.at(episode.subject));
+      sentences.push_back("Station " + episode.subject + " reports doubtful values" +
+                          (named.empty() ? "" : ": " + named) + ".");
     }
+  }
+  for (const auto& drift : service::drifts_of(lookout, now)) {
+    sentences.push_back("Stations " + drift.one + " and " + drift.other +
+                        " have drifted apart: see antherd check.");
   }
   const auto open = store.letters_open();
   if (!open) {

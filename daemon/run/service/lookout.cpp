@@ -4,6 +4,7 @@
 #include <algorithm>
 #include <utility>
 
+#include "core/weather/suspicion.hpp"
 #include "run/service/farm.hpp"
 
 namespace antherd::service {
@@ -29,6 +30,7 @@ bool wakes_nobody(const alerts::Telling& telling) {
 
 Lookout::Lookout(std::shared_ptr<const settings::Settings> settings)
     : settings_(std::move(settings)), policy_(settings_->policy) {
+  policy_.calendar = &settings_->calendar;
   for (const settings::Station& station : settings_->stations) {
     stations_[station.station.name].station = station.station;
   }
@@ -46,22 +48,25 @@ void Lookout::replace_hours(const std::string& station, HourStart from, HourStar
   const auto last = std::lower_bound(first, hours.end(), to, before);
   const bool same = std::equal(first, last, fresh.begin(), fresh.end());
   if (same) return;
-  std::optional<HourStart> changed;  // the first hour that is not as it was
-  auto old_hour = first;
-  auto new_hour = fresh.begin();
-  for (; old_hour != last && new_hour != fresh.end() && *old_hour == *new_hour;
-       ++old_hour, ++new_hour) {
-  }
-  if (old_hour != last) changed = old_hour->start;
-  if (new_hour != fresh.end()) {
-    changed = changed ? std::min(*changed, new_hour->start) : new_hour->start;
-  }
   const auto at = hours.erase(first, last);
   hours.insert(at, std::make_move_iterator(fresh.begin()), std::make_move_iterator(fresh.end()));
-  for (auto& [name, field] : fields_) {
+  judge_anew(station, memory);
+}
+
+/// A late hour may change what is to be thought of later ones: the first that is not as it was
+/// decides what is folded again.
+void Lookout::judge_anew(const std::string& name, StationMemory& station) {
+  auto judged = weather::with_suspicions(station.hours, station.station);
+  const auto [old_hour, new_hour] =
+      std::mismatch(station.judged.begin(), station.judged.end(), judged.begin(), judged.end());
+  HourStart changed = HourStart::max();
+  if (old_hour != station.judged.end()) changed = old_hour->start;
+  if (new_hour != judged.end()) changed = std::min(changed, new_hour->start);
+  station.judged = std::move(judged);
+  for (auto& [field_name, field] : fields_) {
     const auto& used = field.plan.field.stations;
-    if (std::find(used.begin(), used.end(), station) == used.end()) continue;
-    if (*changed < field.folded_until) field.stale = true;
+    if (std::find(used.begin(), used.end(), name) == used.end()) continue;
+    if (changed < field.folded_until) field.stale = true;
   }
 }
 
@@ -99,7 +104,7 @@ void Lookout::fold_field(FieldMemory& field, const Closed& closed) {
   }
   season::StationHours hours;
   for (const std::string& station : field.plan.field.stations) {
-    hours.emplace_back(stations_.at(station).hours);
+    hours.emplace_back(stations_.at(station).judged);
   }
   if (field.stale || field.folded_until == HourStart{}) {
     field.state = season::fold(field.plan, field.diary, hours, until);
@@ -174,7 +179,7 @@ letters::StationStory Lookout::story_of(const StationMemory& station, Instant no
   story.refused_rows = station.news.refused_rows_24;
   story.last_trouble = station.news.last_trouble;
   const Instant since = now - std::chrono::days{1};
-  for (auto hour = station.hours.rbegin(); hour != station.hours.rend(); ++hour) {
+  for (auto hour = station.judged.rbegin(); hour != station.judged.rend(); ++hour) {
     if (Instant(hour->start) < since) break;
     if (Instant(hour->start) > now) continue;
     story.flags_24.insert(story.flags_24.end(), hour->flags.begin(), hour->flags.end());
@@ -216,10 +221,14 @@ const std::vector<weather::Hour>& Lookout::station_hours(const std::string& stat
   return stations_.at(station).hours;
 }
 
+const std::vector<weather::Hour>& Lookout::judged_hours(const std::string& station) const {
+  return stations_.at(station).judged;
+}
+
 season::StationHours Lookout::hours_of(const std::string& field) const {
   season::StationHours hours;
   for (const std::string& station : fields_.at(field).plan.field.stations) {
-    hours.emplace_back(stations_.at(station).hours);
+    hours.emplace_back(stations_.at(station).judged);
   }
   return hours;
 }

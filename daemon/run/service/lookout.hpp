@@ -60,7 +60,10 @@ class Lookout {
   const season::Plan& plan(const std::string& field) const;
   const season::DiaryView& diary(const std::string& field) const;
   season::StationHours hours_of(const std::string& field) const;
+  /// As gathered: what is stored.
   const std::vector<weather::Hour>& station_hours(const std::string& station) const;
+  /// The same with what shows only over days (weather/suspicion.hpp): what is folded and shown.
+  const std::vector<weather::Hour>& judged_hours(const std::string& station) const;
   std::optional<Instant> last_sample(const std::string& station) const;
   /// The newest sample that follows another within two intervals, of any station: by these a
   /// computer whose clock is not set may tell the time. A stray stamp moves no clock.
@@ -80,11 +83,13 @@ class Lookout {
   };
   struct StationMemory {
     weather::Station station;
-    std::vector<weather::Hour> hours;
+    std::vector<weather::Hour> hours;   // as gathered
+    std::vector<weather::Hour> judged;  // with suspicions
     std::vector<Instant> times;
     SourceNews news;
   };
 
+  void judge_anew(const std::string& name, StationMemory& station);
   void fold_field(FieldMemory& field, const Closed& closed);
   void gather_station_episodes(const StationMemory& station, Instant now);
   letters::StationStory story_of(const StationMemory& station, Instant now) const;

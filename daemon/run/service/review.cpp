@@ -2,8 +2,10 @@
 #include "run/service/review.hpp"
 
 #include <algorithm>
+#include <cmath>
 #include <cstdio>
 #include <map>
+#include <numbers>
 
 namespace antherd::service {
 namespace {
@@ -20,9 +22,29 @@ std::pair<int, int> iso_week_of(CivilDay day) {
   return {static_cast<int>(year), static_cast<int>((thursday - first).count() / 7) + 1};
 }
 
-std::string week_title(std::pair<int, int> week) {
+std::string week_text(std::pair<int, int> week) {
   const std::string number = std::to_string(week.second);
-  return "Week " + std::to_string(week.first) + "-W" + (number.size() < 2 ? "0" : "") + number;
+  return std::to_string(week.first) + "-W" + (number.size() < 2 ? "0" : "") + number;
+}
+
+std::string week_title(std::pair<int, int> week) { return "Week " + week_text(week); }
+
+/// Whether two stations see about the same air.
+bool are_neighbours(const settings::Settings& settings, const weather::Station& a,
+                    const weather::Station& b) {
+  for (const auto& plan : settings.fields) {
+    const auto& used = plan.field.stations;
+    if (std::find(used.begin(), used.end(), a.name) != used.end() &&
+        std::find(used.begin(), used.end(), b.name) != used.end()) {
+      return true;
+    }
+  }
+  constexpr double km_of_a_degree = 111.2, near_km = 10.0, near_m = 150.0;
+  const double north = (a.place.latitude - b.place.latitude).value * km_of_a_degree;
+  const double east = (a.place.longitude - b.place.longitude).value * km_of_a_degree *
+                      std::cos(a.place.latitude.value * std::numbers::pi / 180.0);
+  const double height = (a.place.elevation - b.place.elevation).value;
+  return std::hypot(north, east) <= near_km && std::abs(height) <= near_m;
 }
 
 template <class Record>
@@ -156,6 +178,23 @@ std::vector<alerts::Said> unclosed_of(const Lookout& lookout) {
   return unclosed;
 }
 
+std::vector<letters::DriftReview> drifts_of(const Lookout& lookout, Instant now) {
+  const auto& stations = lookout.settings().stations;
+  std::vector<letters::DriftReview> drifts;
+  for (std::size_t i = 0; i < stations.size(); ++i) {
+    for (std::size_t j = i + 1; j < stations.size(); ++j) {
+      const weather::Station &one = stations[i].station, &other = stations[j].station;
+      if (!are_neighbours(lookout.settings(), one, other)) continue;
+      const auto drift = weather::drift_between(lookout.judged_hours(one.name),
+                                                lookout.judged_hours(other.name), now);
+      if (drift && drift->large()) drifts.push_back({one.name, other.name, *drift});
+    }
+  }
+  return drifts;
+}
+
+std::string week_name(CivilDay day) { return week_text(iso_week_of(day)); }
+
 Period week_before(const Calendar& calendar, Instant now) {
   const CivilDay today = calendar.day_of(now);
   Period period{"Last 7 days", today - days{7}, today - days{1}};
@@ -204,6 +243,13 @@ letters::Review make_review(const Lookout& lookout, const store::Store& store, c
   for (const auto& field : settings.fields) {
     review.fields.push_back(review_field(lookout, field.field.name, period, span));
   }
+  const HourStart first_hour = hour_of(span.from), end_hour = hour_of(span.to);
+  for (const auto& station : settings.stations) {
+    const std::string& name = station.station.name;
+    review.stations.push_back(
+        {name, weather::count_verdicts(lookout.judged_hours(name), first_hour, end_hour)});
+  }
+  review.drifts = drifts_of(lookout, span.to);
   for (const alerts::Said& said : lookout.ledger()) {
     if (said.at < span.from || said.at >= span.to) continue;
     const auto field = std::find_if(review.fields.begin(), review.fields.end(),

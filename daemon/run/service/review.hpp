@@ -20,6 +20,13 @@ struct Period {
 /// What was last said of each episode that is still open.
 std::vector<alerts::Said> unclosed_of(const Lookout& lookout);
 
+/// Pairs of stations that serve one field, or stand within 10 km and 150 m of height of each other,
+/// and have drifted apart until `now` (weather/suspicion.hpp); only the large ones.
+std::vector<letters::DriftReview> drifts_of(const Lookout& lookout, Instant now);
+
+/// "2026-W28": the ISO 8601 week of a civil day.
+std::string week_name(CivilDay day);
+
 /// The seven whole days before the day of `now`, named after the ISO 8601 week of the first.
 Period week_before(const Calendar& calendar, Instant now);
 /// The ISO 8601 week of "2026-W28"; nothing for another text or a week that does not exist.

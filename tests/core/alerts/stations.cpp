@@ -139,19 +139,73 @@ std::string doubt(const std::string& marks, const std::vector<Span>& window = {}
 }
 }  // namespace
 
-TEST_CASE("six failing hours with data open, six good ones close") {
+TEST_CASE("six failing hours with data open, a day of good ones closes") {
+  const std::string day(24, '.');
   CHECK(doubt("xxxxx.xxxxx").empty());
   CHECK(doubt("xxxxxx") == "opened none@6 | ");
   CHECK(doubt("..xxxxxx") == "opened none@8 | ");
   CHECK(doubt("xxx__xxx") == "opened none@8 | ");  // hours without data count neither way
-  CHECK(doubt("xxxxxx.....x......") == "opened none@6 closed none@18 | ");
-  CHECK(doubt("xxxxxx...___...") == "opened none@6 closed none@15 | ");
-  CHECK(doubt("xxxxxx______") == "opened none@6 | ");  // silence mends nothing
-  CHECK(doubt("xxxxxx......xxxxxx") == "opened none@6 closed none@12 | opened none@18 | ");
+  CHECK(doubt("xxxxxx" + day.substr(1)) == "opened none@6 | ");
+  CHECK(doubt("xxxxxx.....x" + day) == "opened none@6 closed none@36 | ");
+  CHECK(doubt("xxxxxx......___......" + day.substr(12)) == "opened none@6 closed none@33 | ");
+  CHECK(doubt("xxxxxx" + std::string(30, '_')) == "opened none@6 | ");  // silence mends nothing
+  CHECK(doubt("xxxxxx" + day + "xxxxxx") == "opened none@6 closed none@30 | opened none@36 | ");
+}
+
+TEST_CASE("what fails every night and passes by day is one episode and one letter") {
+  // A humidity above 102 % from eight in the evening to six in the morning, for twelve nights.
+  std::string marks;
+  for (int night = 0; night < 12; ++night) marks += std::string(14, '.') + std::string(10, 'x');
+  CHECK(doubt(marks) == "opened none@20 | ");
+  const auto hours = hours_of("above 102 %", marks);
+  Service service;
+  std::string heard;
+  for (double hour = 0; hour <= 288; hour += 1) {
+    const std::vector<FailingHour> known(hours.begin(), hours.begin() + static_cast<int>(hour));
+    const auto episodes =
+        doubtful("bench", known, span(farm(200), farm(900)), always, at(farm(hour)));
+    for (const Telling& t : service.tick(episodes, at(farm(hour)))) heard += line(t, hour);
+  }
+  // Once outside the window, once more at its opening, then the usual reminders.
+  CHECK(heard ==
+        "opened none@20 raised Moderate@200 reminder Moderate@224 reminder Moderate@248 "
+        "reminder Moderate@272 ");
+}
+
+TEST_CASE("a fault that comes and goes is told once in seven days outside the window") {
+  // Six hours of failing every third day, for thirty days.
+  std::string marks;
+  for (int i = 0; i < 10; ++i) marks += std::string(66, '.') + "xxxxxx";
+  const auto hours = hours_of("temperature stuck", marks);
+  Service service;
+  std::string heard;
+  for (double hour = 0; hour <= 720; hour += 1) {
+    const std::vector<FailingHour> known(hours.begin(), hours.begin() + static_cast<int>(hour));
+    const auto episodes = doubtful("bench", known, {}, always, at(farm(hour)));
+    for (const Telling& t : service.tick(episodes, at(farm(hour)))) heard += line(t, hour);
+  }
+  CHECK(heard == "opened none@72 opened none@288 opened none@504 opened none@720 ");
+}
+
+TEST_CASE("that readings are back is told by day") {
+  Service service;
+  service.policy.calendar = &pacific;
+  std::string heard;
+  for (double hour = 12; hour <= 40; hour += 1) {
+    std::vector<Silence> gaps{{at(farm(12)), std::nullopt}};
+    if (hour >= 23) gaps[0].back = at(farm(23));  // at eleven at night
+    const auto episodes = silences(bench(), gaps, {}, always, at(farm(hour)));
+    for (const Telling& t : service.tick(episodes, at(farm(hour)))) {
+      heard += line(t, hour);
+      if (t.saying == Saying::ended) CHECK(t.about == at(farm(23)));  // the true time is kept
+    }
+  }
+  CHECK(heard == "opened Moderate@13 ended none@30 ");
 }
 
 TEST_CASE("a doubtful sensor is Moderate in the window") {
-  CHECK(doubt("xxxxxx......", span(farm(0), farm(100))) == "opened Moderate@6 closed none@12 | ");
+  CHECK(doubt("xxxxxx" + std::string(24, '.'), span(farm(0), farm(100))) ==
+        "opened Moderate@6 closed none@30 | ");
   CHECK(doubt("xxxxxx", span(farm(9), farm(20))) ==
         "opened none@6 raised Moderate@9 lowered none@20 | ");
   const auto episodes =
@@ -164,11 +218,11 @@ TEST_CASE("a doubtful sensor is Moderate in the window") {
 }
 
 TEST_CASE("checks that fail together are one episode, in whatever order the hours come") {
-  auto hours = hours_of("temperature stuck", "xxxxxx......");
-  const auto more = hours_of("humidity stuck", "xxxxxxxxx......");
+  auto hours = hours_of("temperature stuck", "xxxxxx" + std::string(24, '.'));
+  const auto more = hours_of("humidity stuck", "xxxxxxxxx" + std::string(24, '.'));
   hours.insert(hours.end(), more.begin(), more.end());
   const auto one = doubtful("bench", hours, {}, always, at(farm(100)));
-  CHECK(told(one) == "opened none@6 closed none@15 | ");
+  CHECK(told(one) == "opened none@6 closed none@33 | ");
   CHECK(one[0].changes[0].detail == "humidity stuck; temperature stuck");
   std::reverse(hours.begin(), hours.end());
   CHECK(doubtful("bench", hours, {}, always, at(farm(100))) == one);

@@ -127,6 +127,8 @@ TEST_CASE("mildew letters read as written") {
     status.humid.last = status.humid.last_five.back();
     status.humid.night_sets_last_five = 4;
     status.humid.if_watered_tonight = Level::extreme;
+    status.humid.if_drier = Level::moderate;
+    status.humid.if_damper = Level::severe;
     status.humid.if_not_watered = Level::moderate;
     status.humid.close_to_sunset_limit = true;
     compare("humid-raised", {scene::humid(Saying::raised, Level::severe)}, desk);
@@ -179,6 +181,16 @@ TEST_CASE("letters about the watch itself read as written") {
     flag.reason = weather::Reason::stuck;
     desk.stations["bench"].flags_24 = {flag};
     compare("doubtful", {scene::doubtful()}, desk);
+  }
+  SECTION("a temperature in the wrong unit") {
+    weather::Flag flag;
+    flag.verdict = weather::Verdict::wrong;
+    flag.reason = weather::Reason::fahrenheit_as_celsius;
+    flag.value = 46;
+    desk.stations["bench"].flags_24 = {flag};
+    alerts::Telling telling = scene::doubtful();
+    telling.detail = weather::describe(flag);
+    compare("doubtful-unit", {telling}, desk);
   }
   SECTION("learned late") {
     alerts::Telling telling = scene::heat(Saying::learned_late, Level::severe);
