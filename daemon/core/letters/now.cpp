@@ -109,8 +109,8 @@ std::string water_line(const FieldStatus& status, const Words& words) {
   }
   text += status.last_irrigation_end ? "; last " + words.when(*status.last_irrigation_end)
                                      : "; none in the log";
-  if (status.days_to_stress) {
-    text += "; " + std::to_string(std::max(0, *status.days_to_stress)) + " d to stress";
+  if (status.water.days_to_stress) {
+    text += "; " + std::to_string(std::max(0, *status.water.days_to_stress)) + " d to stress";
   }
   return text;
 }

@@ -175,8 +175,8 @@ std::string heat_side(const FieldStatus& status, const Words& words) {
 
 std::string water_in_heat(const FieldStatus& status, const Words& words) {
   const bool logged = status.last_irrigation_end.has_value();
-  if (logged && status.days_to_stress && *status.days_to_stress <= 2) {
-    const int days = *status.days_to_stress;
+  if (logged && status.water.days_to_stress && *status.water.days_to_stress <= 2) {
+    const int days = *status.water.days_to_stress;
     return "By your log the root zone is " +
            (days <= 0 ? std::string("at the edge of water stress")
                       : std::to_string(days) + glue + "d from water stress") +
@@ -214,9 +214,9 @@ std::string water_in_humid(const FieldStatus& status, const Words& words) {
       said.push_back("No irrigation is set for this field.");
       break;
   }
-  if (status.days_to_stress && *status.days_to_stress <= 2 && status.last_irrigation_end) {
+  if (status.water.days_to_stress && *status.water.days_to_stress <= 2 && status.last_irrigation_end) {
     said.push_back("By the log the root zone is near water stress (about " +
-                   std::to_string(std::max(0, *status.days_to_stress)) + glue + "d).");
+                   std::to_string(std::max(0, *status.water.days_to_stress)) + glue + "d).");
   }
   return join(said);
 }

@@ -51,6 +51,8 @@ struct HourRecord {
   bool known = true;
   Part part = Part::before;
   double stage = 0;
+  std::optional<Millimetre> missing;  // from the root zone, at the last midnight
+  std::optional<double> ks;           // water stress of the last whole day
 };
 
 /// What an hour closed.
@@ -58,6 +60,7 @@ struct Step {
   HourRecord hour;
   std::optional<HeatDay> day;
   std::optional<HumidDay> humid_day;
+  std::vector<Watered> watered;  // irrigations that were booked with the day's end
 };
 
 /// The only step: one more hour. Hours come one after the other without a hole; an hour without
@@ -68,6 +71,7 @@ Step advance(State& state, const Plan& plan, const DiaryView& diary, const Air& 
 struct Chronicle {
   std::vector<HeatDay> days;
   std::vector<HumidDay> humid_days;
+  std::vector<Watered> watered;
 };
 
 /// Folds from sowing up to (not including) `until`.
@@ -82,6 +86,9 @@ FieldStatus status(const State& state, const Plan& plan, const DiaryView& diary)
 /// Emits the notices that fall due with this hour (contracts "Alerts and notices").
 void give_notices(State& state, const Plan& plan, const DiaryView& diary, const HourContext& hour,
                   bool note_was_held);
+
+/// The state carried on to a moment with the last 24 hours' weather again, where there are any.
+State carried_to(const State& state, const Plan& plan, const DiaryView& diary, Instant until);
 
 /// The day on which thermal time will cross a value, at the mean daily units of the last 14 days;
 /// nothing with fewer than 5 days of data or when it is already crossed.

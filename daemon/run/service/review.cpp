@@ -69,8 +69,9 @@ letters::FieldReview review_field(const Lookout& lookout, const std::string& nam
   review.hours_expected =
       static_cast<int>(std::max<long>(0, (hour_of(span.to) - expected_from).count()));
   review.warm_nights = state.heat.warm_nights - warm_before;
-  review.affected_low = state.heat.affected_low;
-  review.affected_high = state.heat.affected_high;
+  const season::Exposure met = season::exposure_of(state.heat, state.crop, plan);
+  review.affected_low = met.low;
+  review.affected_high = met.high;
   for (const auto& episode : state.episodes) {
     const bool touches =
         episode.start < span.to && (!episode.closed || *episode.closed > span.from);

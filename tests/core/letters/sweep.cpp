@@ -83,7 +83,7 @@ void set_weather(season::FieldStatus& status, Case& one) {
   status.data.rain_measured = one.yes();
   status.data.whole_degrees = one.yes();
   status.data.shield_may_read_high = one.yes();
-  if (one.yes()) status.days_to_stress = static_cast<int>(one.pick(5));
+  if (one.yes()) status.water.days_to_stress = static_cast<int>(one.pick(5));
   if (one.yes()) status.last_irrigation_end.reset();
   if (one.yes()) {
     weather::Flag flag;
