@@ -33,6 +33,8 @@ FlowerStatus flower_status(const State& state, const Plan& plan) {
   flower.p_over = odds.over(crop.time);
   flower.p_flower = odds.in_flower(crop.time);
   if (!flower.window_first) flower.window_first = expected_day(state, edges.opens.value);
+  // A note moves the window's first day as it moves the other dates.
+  if (const auto opened = crossed_on(crop, edges.opens.value)) flower.window_first = opened;
   if (!flower.window_last) flower.window_last = expected_day(state, edges.closes.value);
   if (crop.done) flower.window_last = crop.done;
   const auto crossing = [&](double needed, std::size_t stage) {
@@ -44,8 +46,8 @@ FlowerStatus flower_status(const State& state, const Plan& plan) {
   flower.flower_last = crossing(odds.begins + odds.lasts, 4);
   const double daily = crop.units.mean_14_days();
   if (daily > 0) flower.flower_first_days = odds.sd_begin / daily;
-  if (crop.part == Part::window && crop.window_first) {
-    flower.day_of_window = static_cast<int>((state.day - *crop.window_first).count()) + 1;
+  if (crop.part == Part::window && flower.window_first && *flower.window_first <= state.day) {
+    flower.day_of_window = static_cast<int>((state.day - *flower.window_first).count()) + 1;
   }
   if (flower.window_first && flower.window_last) {
     flower.days_in_window =

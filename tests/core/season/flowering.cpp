@@ -224,4 +224,12 @@ TEST_CASE("a note moves the date of first anthers back to where it puts it") {
   CHECK(day == static_cast<long>(std::ceil(needed / 10.0)) - 1);
   CHECK(day > 72);  // without the history it would still be day 69
   CHECK(day <= 76);
+  // So does the day on which the window opened: the prior had opened it at 527.29, on day 52.
+  const double opens = window_edges(told.state.crop, plan).opens.value;
+  REQUIRE(seen.flower.window_first);
+  CHECK(*seen.flower.window_first ==
+        plan.field.sown + days{static_cast<int>(std::ceil(opens / 10.0)) - 1});
+  CHECK(*seen.flower.window_first > plan.field.sown + days{60});
+  CHECK(*seen.flower.day_of_window ==
+        80 - (*seen.flower.window_first - plan.field.sown).count());
 }
