@@ -227,8 +227,8 @@ TEST_CASE("scout shows the flowering window before and after a note, also of one
               "before the note: " + after));
 
   // A few days from sowing nothing can be done flowering: the note is held.
-  const auto odd = season.run({"scout", "north", "--date", "2026-06-27", "--stage", "flowers-done",
-                               "--began"});
+  const auto odd =
+      season.run({"scout", "north", "--date", "2026-06-27", "--stage", "flowers-done", "--began"});
   INFO(odd.out << odd.err);
   CHECK(holds(odd.out, "both windows are watched"));
   CHECK(!holds(season.run({"scout", "north", "--date", "2026-07-13", "--disease", "no"}).out,

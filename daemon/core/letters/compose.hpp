@@ -65,14 +65,14 @@ struct SeedCount {
 
 /// One field's week (or season) as the review tells it: seen, not seen, decided, told.
 struct FieldReview {
-  season::FieldStatus status;                // at the end
-  std::vector<season::HeatDay> days;         // of the period, oldest first
-  std::vector<season::HumidDay> humid_days;  // likewise
-  std::map<CivilDay, Celsius> coolest;       // lowest hourly mean of a day, where measured
-  std::vector<alerts::Episode> episodes;     // that touch the period
-  std::vector<alerts::Said> said;            // in the period
-  std::vector<season::Watered> irrigations;  // and what each did
-  std::vector<SeedCount> seed_counts;        // of the period; of a season all that are kept
+  season::FieldStatus status;                     // at the end
+  std::vector<season::HeatDay> days;              // of the period, oldest first
+  std::vector<season::HumidDay> humid_days;       // likewise
+  std::map<CivilDay, Celsius> coolest;            // lowest hourly mean of a day, where measured
+  std::vector<alerts::Episode> episodes;          // that touch the period
+  std::vector<alerts::Said> said;                 // in the period
+  std::vector<season::Watered> irrigations;       // and what each did
+  std::vector<SeedCount> seed_counts;             // of the period; of a season all that are kept
   std::vector<season::DayExposure> exposed_days;  // of the period, severe ones, by what is believed
   std::vector<field::Scouting> notes;
   int hours_expected = 0, hours_valid = 0;

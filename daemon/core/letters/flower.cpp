@@ -121,7 +121,8 @@ std::string window_words(const FlowerStatus& flower, const Words& words) {
         window_range(flower.without_note_first, flower.without_note_last, flower, words);
     const std::string with =
         window_range(flower.with_note_first, flower.with_note_last, flower, words);
-    if (!without.empty() && !with.empty()) return without + " without the note, " + with + " with it";
+    if (!without.empty() && !with.empty())
+      return without + " without the note, " + with + " with it";
   }
   const std::string range = window_range(flower.window_first, flower.window_last, flower, words);
   if (range.empty()) return "not yet known";

@@ -151,10 +151,9 @@ Section look(const FieldStatus& status) {
       "Next morning before 9 am, in the cool: are yellow anthers out, are they plump or "
       "dried up? In 10 to 14 days, open clusters on 20 heads: how many hold a swelling "
       "seed? Note both.";
-  section.commands = {
-      scout_command(status.field, seen_in_flower(status) ? "--stage full-flower"
-                                                         : "--stage first-anthers"),
-      scout_command(status.field, "--seed-set 14/20")};
+  section.commands = {scout_command(status.field, seen_in_flower(status) ? "--stage full-flower"
+                                                                         : "--stage first-anthers"),
+                      scout_command(status.field, "--seed-set 14/20")};
   return section;
 }
 

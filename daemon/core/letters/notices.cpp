@@ -213,8 +213,7 @@ void seed_set(Part& part, const Telling& telling, const FieldStatus* status, con
   part.rest = "after " + heat + ", " + tag_of(status);
   part.first = part.name + ": " + state_of(status) + ", time to count seeds after " + heat + ".";
   part.tonight = "Tonight: nothing to switch; a morning's look in the next four days is enough.";
-  const bool exposed =
-      status != nullptr && status->flower.known && status->heat.exposed_share > 0;
+  const bool exposed = status != nullptr && status->flower.known && status->heat.exposed_share > 0;
   part.sections = {
       {"WHY",
        "That day's heat was Severe inside the flowering window. Whether it did harm no weather "

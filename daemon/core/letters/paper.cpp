@@ -137,7 +137,8 @@ std::string body_of(const Part& worst, const std::vector<Part>& others, const st
                     const Desk& desk) {
   std::string text = first_line(worst) + paragraph(worst.tonight) + marks(desk);
   for (const Section& section : worst.sections) text += section_text(section);
-  for (std::size_t i = 0; i < others.size() && i < in_short; ++i) text += other_part(others[i], worst);
+  for (std::size_t i = 0; i < others.size() && i < in_short; ++i)
+    text += other_part(others[i], worst);
   if (others.size() > in_short) {
     text += "\n" + std::string(page_width, '-') + "\n";
     const std::size_t end = std::min(others.size(), in_short + in_lines);

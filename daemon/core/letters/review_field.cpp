@@ -120,8 +120,7 @@ std::string seed_line(const SeedCount& count_of, const FieldReview& field, const
   if (!count_of.hot_days) return text + "; its weather is not kept here";
   return text + "; " +
          (*count_of.hot_days == 0 ? std::string("no day") : count(*count_of.hot_days, "day")) +
-         " at " +
-         words.threshold(words.heat_rules(field.status.field).severe) +
+         " at " + words.threshold(words.heat_rules(field.status.field).severe) +
          " or more in the 30 days before";
 }
 
@@ -132,8 +131,9 @@ Section seed_set(const FieldReview& field, const Words& words) {
     section.lines.push_back(seed_line(one, field, words));
   }
   if (!section.lines.empty()) {
-    section.text = "Clusters with a swelling seed, of those that were opened; a record of this "
-                   "farm, not a measure of harm.";
+    section.text =
+        "Clusters with a swelling seed, of those that were opened; a record of this "
+        "farm, not a measure of harm.";
   }
   return section;
 }

@@ -60,7 +60,7 @@ struct WaterAccount {
   double crop_use = 0;          // ETc of the last days, mm/d, running mean
   int days = 0;
   bool unknown_start = false;
-  bool ran_dry = false;              // of an unknown start: not known again before it is filled
+  bool ran_dry = false;  // of an unknown start: not known again before it is filled
 
   Millimetre total() const { return Millimetre(water_per_metre * roots.value); }
   /// Both accounts within a twentieth of the total: the depletion is known. Of an unknown start two

@@ -53,9 +53,8 @@ const DayHeat* worst_before(std::span<const DayHeat> heat, CivilDay day) {
 }
 
 DayExposure& day_of(std::vector<DayExposure>& all, CivilDay day) {
-  const auto at =
-      std::lower_bound(all.begin(), all.end(), day,
-                       [](const DayExposure& one, CivilDay d) { return one.date < d; });
+  const auto at = std::lower_bound(all.begin(), all.end(), day,
+                                   [](const DayExposure& one, CivilDay d) { return one.date < d; });
   if (at != all.end() && at->date == day) return *at;
   DayExposure fresh;
   fresh.date = day;

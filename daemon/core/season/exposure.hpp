@@ -1,5 +1,5 @@
-// Which share of a season's flowers heat has met, reckoned anew from the days' heat and from what is
-// believed of flowering now (science §6, "Flowers exposed"). It must not know letters or levels.
+// Which share of a season's flowers heat has met, reckoned anew from the days' heat and from what
+// is believed of flowering now (science §6, "Flowers exposed"). It must not know letters or levels.
 #pragma once
 
 #include <optional>
@@ -14,16 +14,16 @@ namespace antherd::season {
 struct DayHeat {
   CivilDay date{};
   bool severe = false;  // had an hour at 35.0 °C or more
-  double low = 0;       // sterile share of flowers open that day, 0…1: T50 40, about sunrise + 6 h
-  double high = 0;      // likewise: T50 35, all daylight hours alike
+  double low = 0;   // sterile share of flowers open that day, 0…1: T50 40, about sunrise + 6 h
+  double high = 0;  // likewise: T50 35, all daylight hours alike
 };
 
 /// Shares of the season's flowers, 0…1, of one day.
 struct DayExposure {
   CivilDay date{};
   bool severe = false;
-  double share = 0;               // opened this day
-  double low = 0, high = 0;       // affected by this day's heat, indicative
+  double share = 0;          // opened this day
+  double low = 0, high = 0;  // affected by this day's heat, indicative
 };
 
 struct Exposure {

@@ -82,8 +82,7 @@ bool is_ripe(const Phenology& crop, const Plan& plan) {
 void update_watch(State& state, const Plan& plan) {
   constexpr auto sown_long_ago = std::chrono::days{240};
   // What was ripe stays so when the station falls silent afterwards: a gap makes no crop younger.
-  const bool ripe =
-      state.crop.known() ? is_ripe(state.crop, plan) : state.ripe_since.has_value();
+  const bool ripe = state.crop.known() ? is_ripe(state.crop, plan) : state.ripe_since.has_value();
   if (!ripe) {
     state.ripe_since.reset();
   } else if (!state.ripe_since) {

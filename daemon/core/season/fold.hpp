@@ -20,33 +20,33 @@ namespace antherd::season {
 
 /// Everything the fold carries from hour to hour; a plain value.
 struct State {
-  std::optional<HourStart> last;             // last folded hour
-  CivilDay day{};                            // its civil day
-  Instant next_day{};                        // first instant of the next civil day
+  std::optional<HourStart> last;  // last folded hour
+  CivilDay day{};                 // its civil day
+  Instant next_day{};             // first instant of the next civil day
   Watch watch = Watch::before_sowing;
   std::optional<CivilDay> ripe_since;
   Phenology crop;
   HeatHazard heat;
   HumidHazard humid;
   WaterBalance water;
-  std::vector<double> temperatures;          // of the last 24 hours in a row, °C
+  std::vector<double> temperatures;  // of the last 24 hours in a row, °C
   std::vector<alerts::Episode> episodes;
   std::vector<alerts::Notice> notices;
-  std::size_t next_set = 0;                  // index into the diary's night sets
+  std::size_t next_set = 0;                           // index into the diary's night sets
   std::optional<CivilDay> streak_first, streak_last;  // nights of overhead irrigation, by morning
-  std::vector<Air> last_day;                 // the last 24 hours, gaps included, oldest first
+  std::vector<Air> last_day;  // the last 24 hours, gaps included, oldest first
   std::vector<std::vector<weather::Flag>> last_flags;  // of the same hours
-  std::optional<Instant> last_reading;       // end of the last hour with data
+  std::optional<Instant> last_reading;                 // end of the last hour with data
 };
 
 /// What one hour became: one line of `hours`.
 struct HourRecord {
   Air air;
   Millimetre drying{0};
-  std::optional<Millimetre> eto;             // hourly, where wind and solar are measured
+  std::optional<Millimetre> eto;  // hourly, where wind and solar are measured
   risk::Wet wet;
-  double unit = 0;                           // °C
-  ThermalTime time;                          // thermal time at the hour's end
+  double unit = 0;   // °C
+  ThermalTime time;  // thermal time at the hour's end
   double p_flower = 0;
   bool known = true;
   Part part = Part::before;

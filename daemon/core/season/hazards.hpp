@@ -34,7 +34,7 @@ struct HeatHazard {
   std::optional<HeatDay> yesterday;
   std::vector<DayHeat> days;  // whole days, oldest first
   int hot_days = 0;           // with an hour at 35.0 °C or more, in the window as then believed
-  std::deque<double> nights;        // means of the last 20 nights, °C
+  std::deque<double> nights;  // means of the last 20 nights, °C
   double night_sum = 0;
   int night_hours = 0;
   int warm_nights = 0;
@@ -57,8 +57,8 @@ struct HourContext {
   const DiaryView& diary;
   const Air& air;
   const Phenology& crop;
-  CivilDay day;              // civil day of the hour's start
-  bool day_ends = false;     // the next hour belongs to another civil day
+  CivilDay day;           // civil day of the hour's start
+  bool day_ends = false;  // the next hour belongs to another civil day
   bool watched = true;
 };
 
@@ -81,8 +81,8 @@ void move_episode(std::vector<alerts::Episode>& episodes, std::optional<std::siz
                   alerts::Kind kind, const std::string& subject, HourStart hour, Level level,
                   Certainty certainty, std::optional<double> figure);
 
-/// How sure an alert of heat is at this moment: Observed where a note of flowers (stage 60 or later)
-/// stands, Likely where the odds of being in flower are even or better, else Possible.
+/// How sure an alert of heat is at this moment: Observed where a note of flowers (stage 60 or
+/// later) stands, Likely where the odds of being in flower are even or better, else Possible.
 Certainty certainty_of(const Phenology& crop, const Plan& plan);
 
 }  // namespace antherd::season

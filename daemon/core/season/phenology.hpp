@@ -55,7 +55,7 @@ struct Phenology {
   int filled = 0;    // of these, filled from neighbouring days
   bool scouted = false;
   crop::Belief belief;
-  std::vector<HeldNote> held;  // until a note agrees with the belief or with one of them
+  std::vector<HeldNote> held;    // until a note agrees with the belief or with one of them
   std::size_t next_note = 0;     // index into the diary's notes
   std::optional<CivilDay> done;  // "flowers-done" began: the window closes at this day's end
   std::optional<CivilDay> last_note;
@@ -64,7 +64,7 @@ struct Phenology {
   std::array<ClockHour, 24> by_clock;  // by UTC hour of day, which keeps to the sun
   std::array<std::optional<CivilDay>, told_stages.size()> reached;
   std::vector<std::pair<CivilDay, double>> day_ends;  // thermal time so far
-  std::optional<CivilDay> seen_since;  // after the last day with many unseen hours
+  std::optional<CivilDay> seen_since;                 // after the last day with many unseen hours
   int unseen_today = 0;
   std::optional<CivilDay> window_first, window_last;
   Part part = Part::before;

@@ -115,10 +115,10 @@ struct HumidStatus {
 
 /// Soil water as of the last midnight (science §9); nothing where it is not known.
 struct WaterStatus {
-  std::optional<double> ks;              // 1 no stress … 0 full
+  std::optional<double> ks;  // 1 no stress … 0 full
   std::optional<int> days_to_stress;
-  std::optional<Millimetre> missing;     // from the root zone
-  std::optional<Millimetre> root_zone;   // what it holds between full and wilting
+  std::optional<Millimetre> missing;        // from the root zone
+  std::optional<Millimetre> root_zone;      // what it holds between full and wilting
   std::optional<CelsiusDifference> canopy;  // warmer than the air in today's hottest sunny hour
 };
 

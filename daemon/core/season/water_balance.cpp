@@ -41,8 +41,8 @@ std::vector<field::Irrigation> ended_today(const HourContext& hour) {
   std::vector<field::Irrigation> ended;
   for (const field::Irrigation& irrigation : hour.diary.irrigations) {
     if (irrigation.start >= end) break;
-    const bool today = irrigation.end <= end &&
-                       hour.plan.calendar.day_of(irrigation.end - Seconds{1}) == hour.day;
+    const bool today =
+        irrigation.end <= end && hour.plan.calendar.day_of(irrigation.end - Seconds{1}) == hour.day;
     if (today) ended.push_back(irrigation);
   }
   return ended;

@@ -20,8 +20,8 @@ struct WaterBalance {
   double extraterrestrial = 0;  // MJ m⁻² of the day
   std::optional<Celsius> highest, lowest;
   Millimetre rain{0};
-  std::optional<Millimetre> last_eto;  // of the last day that had one: stands in for a gap
-  std::optional<double> ks;            // of the last whole day
+  std::optional<Millimetre> last_eto;       // of the last day that had one: stands in for a gap
+  std::optional<double> ks;                 // of the last whole day
   std::optional<Celsius> sunny_hottest;     // of today's hours with more than 400 W/m²
   std::optional<Kilopascal> sunny_deficit;  // vapour pressure deficit of that hour
 };
@@ -30,7 +30,8 @@ struct WaterBalance {
 /// At the day's end the day is booked: hourly ETo where 20 hours have it (FAO-56 eq. 53), else
 /// Hargreaves (eq. 52), else the last day's.
 /// @return what the irrigations did that were booked with this hour
-std::vector<Watered> advance(WaterBalance& water, const HourContext& hour, std::optional<Millimetre> eto);
+std::vector<Watered> advance(WaterBalance& water, const HourContext& hour,
+                             std::optional<Millimetre> eto);
 
 /// An irrigation as far as its night tells, without the soil's side.
 Watered night_of(const field::Irrigation& irrigation, const DiaryView& diary);

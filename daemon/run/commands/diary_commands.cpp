@@ -54,10 +54,9 @@ std::string depth_text(const settings::Settings& settings, const std::optional<M
 
 std::string sentence_of(const settings::Settings& settings, const field::Irrigation& irrigation) {
   const Calendar& calendar = settings.calendar;
-  std::string text = farm_text(calendar, irrigation.start) + " to " +
-                     farm_text(calendar, irrigation.end) + ", " +
-                     field::name_of(irrigation.method) + ", " +
-                     depth_text(settings, irrigation.depth);
+  std::string text =
+      farm_text(calendar, irrigation.start) + " to " + farm_text(calendar, irrigation.end) + ", " +
+      field::name_of(irrigation.method) + ", " + depth_text(settings, irrigation.depth);
   if (irrigation.set > 0) text += ", set " + std::to_string(irrigation.set);
   return text;
 }
@@ -198,9 +197,10 @@ Exit list_water(const SettingsPointer& settings, const store::Store& store,
 
 /// The flowering window without and with a note, as of the newest reading. A note counts from noon
 /// of its day: before that the weather of the last day is carried on.
-void say_window(const SettingsPointer& settings, const field::Scouting& note, std::int64_t written) {
-  const bool of_flowers = note.stage && *note.stage >= field::stage::buds &&
-                          *note.stage <= field::stage::flowers_done;
+void say_window(const SettingsPointer& settings, const field::Scouting& note,
+                std::int64_t written) {
+  const bool of_flowers =
+      note.stage && *note.stage >= field::stage::buds && *note.stage <= field::stage::flowers_done;
   const auto store = open_to_read(*settings);
   if (!of_flowers || !store) return;
   const Instant now = present(*settings, store);

@@ -59,9 +59,8 @@ std::optional<int> hot_days_before(const season::Plan& plan, const store::Store&
 /// The counts of the period beside the heat before them; of a whole season those of all years.
 std::vector<letters::SeedCount> seed_counts(const season::Plan& plan,
                                             const season::DiaryView& diary,
-                                            const season::State& state,
-                                            const season::Exposure& met, const Period& period,
-                                            const store::Store& store) {
+                                            const season::State& state, const season::Exposure& met,
+                                            const Period& period, const store::Store& store) {
   std::vector<letters::SeedCount> counts;
   for (const field::Scouting& note : diary.notes) {
     const bool wanted =
@@ -98,8 +97,7 @@ std::vector<season::Watered> watered_in(const Span& span, const season::DiaryVie
 }
 
 letters::FieldReview review_field(const Lookout& lookout, const store::Store& store,
-                                  const std::string& name, const Period& period,
-                                  const Span& span) {
+                                  const std::string& name, const Period& period, const Span& span) {
   const season::Plan& plan = lookout.plan(name);
   const season::DiaryView& diary = lookout.diary(name);
   season::Chronicle chronicle;

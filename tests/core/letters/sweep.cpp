@@ -226,8 +226,8 @@ TEST_CASE("letters about heat and mildew keep the rules in every state") {
 TEST_CASE("letters of the other kinds keep the rules in every state") {
   std::vector<alerts::Telling> kinds{scene::silent(Saying::opened), scene::silent(Saying::ended),
                                      scene::silent(Saying::reminder), scene::doubtful()};
-  for (const char* key : {"window-near", "window-opens", "window-closes", "note-held-2026-07-08",
-                          "seed-set"}) {
+  for (const char* key :
+       {"window-near", "window-opens", "window-closes", "note-held-2026-07-08", "seed-set"}) {
     kinds.push_back(scene::notice(Kind::stage, key));
     kinds.push_back(kinds.back());
     kinds.back().day = scene::july(16);

@@ -101,9 +101,7 @@ TEST_CASE("heat before the note that anchors an unknown stage counts as far as d
         Approx(expected).margin(0.001));
   CHECK(expected > 0.03);
   // With a day of 19 hours between, what lay before it is not known.
-  const auto holed = [&](int n) {
-    return n / 24 == 68 && n % 24 < 5 ? std::nullopt : late(n);
-  };
+  const auto holed = [&](int n) { return n / 24 == 68 && n % 24 < 5 ? std::nullopt : late(n); };
   const Told cut = tell(plan, 72 * 24, holed, {{}, {note(plan, 70, 65, true)}});
   CHECK(exposure_of(cut.state.heat, cut.state.crop, plan).exposed == 0);
 }

@@ -230,6 +230,5 @@ TEST_CASE("a note moves the date of first anthers back to where it puts it") {
   CHECK(*seen.flower.window_first ==
         plan.field.sown + days{static_cast<int>(std::ceil(opens / 10.0)) - 1});
   CHECK(*seen.flower.window_first > plan.field.sown + days{60});
-  CHECK(*seen.flower.day_of_window ==
-        80 - (*seen.flower.window_first - plan.field.sown).count());
+  CHECK(*seen.flower.day_of_window == 80 - (*seen.flower.window_first - plan.field.sown).count());
 }
