@@ -3,22 +3,25 @@
 namespace demo {
 
 std::string irrigation_csv() {
-  // Overhead sets on the bench once a week, by day; then five evenings in a row before the heat.
-  // The creek field has drip lines.
+  // Overhead sets on the bench once a week, by day, deep enough for a field that is well watered;
+  // then short ones on five evenings in a row before the heat. The creek field has drip lines.
   return R"(field,start,end,method,depth,set
-north bench,2026-06-02 08:00,2026-06-02 11:00,overhead,0.4 in,1
-north bench,2026-06-10 08:00,2026-06-10 11:00,overhead,0.4 in,1
-north bench,2026-06-18 08:00,2026-06-18 11:00,overhead,0.5 in,1
-north bench,2026-06-27 08:00,2026-06-27 11:00,overhead,0.5 in,1
-north bench,2026-07-04 08:00,2026-07-04 11:00,overhead,0.5 in,1
-north bench,2026-07-09 20:00,2026-07-09 23:00,overhead,0.3 in,1
-north bench,2026-07-10 20:00,2026-07-10 23:00,overhead,0.3 in,1
-north bench,2026-07-11 20:00,2026-07-11 23:00,overhead,0.3 in,1
-north bench,2026-07-12 20:00,2026-07-12 23:00,overhead,0.3 in,1
-north bench,2026-07-13 20:00,2026-07-13 23:00,overhead,0.3 in,1
-north bench,2026-07-22 08:00,2026-07-22 11:00,overhead,0.5 in,1
-north bench,2026-07-29 08:00,2026-07-29 11:00,overhead,0.5 in,1
-north bench,2026-08-05 08:00,2026-08-05 11:00,overhead,0.4 in,1
+north bench,2026-06-02 06:00,2026-06-02 15:00,overhead,1.0 in,1
+north bench,2026-06-10 06:00,2026-06-10 15:00,overhead,1.2 in,1
+north bench,2026-06-17 06:00,2026-06-17 15:00,overhead,1.4 in,1
+north bench,2026-06-26 06:00,2026-06-26 15:00,overhead,1.6 in,1
+north bench,2026-06-30 06:00,2026-06-30 15:00,overhead,1.8 in,1
+north bench,2026-07-05 06:00,2026-07-05 15:00,overhead,1.8 in,1
+north bench,2026-07-09 20:00,2026-07-09 23:00,overhead,0.4 in,1
+north bench,2026-07-10 20:00,2026-07-10 23:00,overhead,0.4 in,1
+north bench,2026-07-11 20:00,2026-07-11 23:00,overhead,0.4 in,1
+north bench,2026-07-12 20:00,2026-07-12 23:00,overhead,0.4 in,1
+north bench,2026-07-13 20:00,2026-07-13 23:00,overhead,0.4 in,1
+north bench,2026-07-18 06:00,2026-07-18 15:00,overhead,1.8 in,1
+north bench,2026-07-23 06:00,2026-07-23 15:00,overhead,1.8 in,1
+north bench,2026-07-28 06:00,2026-07-28 15:00,overhead,1.8 in,1
+north bench,2026-08-02 06:00,2026-08-02 15:00,overhead,1.6 in,1
+north bench,2026-08-08 06:00,2026-08-08 15:00,overhead,1.4 in,1
 creek field,2026-06-05 06:00,2026-06-05 18:00,drip,1.2 in,0
 creek field,2026-06-13 06:00,2026-06-13 18:00,drip,1.2 in,0
 creek field,2026-06-19 06:00,2026-06-19 18:00,drip,1.2 in,0
@@ -133,6 +136,7 @@ sown = 2026-04-20
 crop_type = "coastal"
 irrigation = { method = "overhead", sets = 1 }
 soil = "silt loam"
+soil_water_at_sowing = "full"
 
 [[field]]
 name = "creek field"

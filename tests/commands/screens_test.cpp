@@ -19,9 +19,9 @@ Farm july() {
 }
 
 struct Season {
-  Bench bench{july()};
+  Bench bench;
   Instant now = farm_time("2026-07-13 20:00");
-  Season() {
+  explicit Season(const Farm& farm = july()) : bench(farm) {
     const Instant sown = farm_time("2026-06-25 00:00");
     const Instant from = farm_time("2026-07-11 12:00");
     bench.open(sown);
@@ -165,6 +165,84 @@ TEST_CASE("water says what the entry changes, at the time of the newest reading"
   INFO(written.out << written.err);
   CHECK(written.out.substr(written.out.find("Sprinkler")) ==
         tried.out.substr(tried.out.find("Sprinkler")));
+}
+
+TEST_CASE("water --list tells what each irrigation did, in the farm's units") {
+  Farm farm = july();
+  farm.more = "soil = \"silt loam\"\nsoil_water_at_sowing = \"full\"\n";
+  Season season(farm);
+  const auto log = [&](const char* start, const char* end, const char* depth) {
+    return season.run({"water", "north", "--start", start, "--end", end, "--depth", depth}).out;
+  };
+  CHECK(holds(log("2026-07-10 20:00", "23:00", "0.2 in"), "0.20 in"));
+  log("2026-07-12 08:00", "11:00", "12 in");
+  log("2026-07-13 19:00", "19:45", "0.2 in");
+  const auto list = season.run({"water", "north", "--list"});
+  INFO(list.out << list.err);
+  CHECK(list.status == 0);
+  const auto entry = [&](int number) {
+    const std::string from = std::to_string(number) + "  2026";
+    const auto at = list.out.find(from);
+    const auto next = list.out.find(std::to_string(number + 1) + "  2026");
+    return at == std::string::npos ? "" : list.out.substr(at, next - at);
+  };
+  CHECK(holds(entry(1), "short before"));
+  CHECK(holds(entry(1), "leaves wet until sunrise"));
+  CHECK(holds(entry(2), "full after"));
+  CHECK(holds(entry(2), "drained below the roots"));
+  CHECK(!holds(entry(2), "leaves wet"));
+  CHECK(!holds(entry(3), "short"));  // the day is not over
+  CHECK(holds(entry(3), "leaves wet until sunrise"));
+
+  const auto hours = season.run({"hours", "north", "--lines"});
+  std::istringstream lines(hours.out);
+  std::optional<double> missing;
+  for (std::string line; std::getline(lines, line);) {
+    const auto row = nlohmann::json::parse(line);
+    if (row["hour"] == "2026-07-13T12:00:00Z") missing = row["depletion_mm"].get<double>();
+    if (row["ks"].is_number()) CHECK(row["ks"].get<double>() <= 1.0);
+  }
+  REQUIRE(missing);  // filled on the 12th: since then a day's use
+  CHECK(*missing > 1);
+  CHECK(*missing < 12);
+}
+
+TEST_CASE("scout shows the flowering window before and after a note, also of one that is held") {
+  Season season;
+  const auto noted =
+      season.run({"scout", "north", "--date", "2026-07-12", "--stage", "first-anthers"});
+  INFO(noted.out << noted.err);
+  CHECK(noted.status == 0);
+  const auto window = [](const std::string& text, const std::string& label) {
+    const auto at = text.find(label);
+    if (at == std::string::npos) return std::string("?");
+    return text.substr(at + label.size(), text.find('\n', at) - at - label.size());
+  };
+  const auto before = window(noted.out, "before the note: ");
+  const auto after = window(noted.out, "after the note:  ");
+  CHECK(holds(before, " to "));
+  CHECK(holds(after, " to "));
+  CHECK(before != after);
+  CHECK(holds(season.run({"scout", "north", "--date", "2026-07-13", "--stage", "full-flower"}).out,
+              "before the note: " + after));
+
+  // A few days from sowing nothing can be done flowering: the note is held.
+  const auto odd =
+      season.run({"scout", "north", "--date", "2026-06-27", "--stage", "flowers-done", "--began"});
+  INFO(odd.out << odd.err);
+  CHECK(holds(odd.out, "both windows are watched"));
+  CHECK(!holds(season.run({"scout", "north", "--date", "2026-07-13", "--disease", "no"}).out,
+               "Flowering window"));
+}
+
+TEST_CASE("a seed count stands in the review of its week and of the season") {
+  Season season;
+  const auto noted = season.run({"scout", "north", "--date", "2026-07-12", "--seed-set", "14/20"});
+  CHECK(holds(noted.out, "seed in 14 of 20 clusters"));
+  const std::string line = "Sun 12 Jul 2026: 14 of 20 hold a seed";
+  CHECK(holds(season.run({"review", "--season"}).out, line));
+  CHECK(holds(season.run({"review", "--week", "2026-W28"}).out, line));
+  CHECK(!holds(season.run({"review", "--week", "2026-W27"}).out, line));
 }
 
 TEST_CASE("only from a Monday on are seven days named after a week") {

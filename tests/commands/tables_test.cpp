@@ -66,7 +66,9 @@ const Keys hour_keys{"hour",
                      "p_flower",
                      "in_window",
                      "stage",
-                     "verdict"};
+                     "verdict",
+                     "depletion_mm",
+                     "ks"};
 
 }  // namespace
 

@@ -141,7 +141,7 @@ TEST_CASE("heat with sprinklers: both hazards speak, and each in its own episode
   }
   CHECK(heat == 1);
   CHECK(humid == 1);
-  CHECK(season.state.heat.exposed_share > 0);
+  CHECK(exposure_of(season.state.heat, season.state.crop, plan).exposed > 0);
   const auto status = season::status(
       season.state, plan, season::DiaryView(sprinklers(plan, 70, 9, 20, 23), plan.place()));
   CHECK(status.humid.night_sets_last_five >= 4);

@@ -45,7 +45,9 @@ class Answers {
     } else if (e.what == "hot days in the window") {
       check_number(e, field(e).state.heat.hot_days);
     } else if (e.what == "flowers exposed, %") {
-      check_number(e, field(e).state.heat.exposed_share * 100);
+      const FieldSeason& one = field(e);
+      const auto met = season::exposure_of(one.state.heat, one.state.crop, one.plan);
+      check_number(e, met.exposed * 100);
     } else if (e.what == "warm nights") {
       check_number(e, field(e).state.heat.warm_nights);
     } else if (e.what == "days in the window") {

@@ -137,8 +137,8 @@ std::string sum_text(const Lived& lived) {
     text += name + ": " + std::to_string(state.crop.hours - state.crop.unseen) + " hours seen, " +
             std::to_string(state.crop.unseen) + " not; days of 35 °C in the window " +
             std::to_string(state.heat.hot_days) + "; flowers exposed " +
-            in_places(state.heat.exposed_share * 100, 1) + " %; warm nights " +
-            std::to_string(state.heat.warm_nights) + "\n";
+            in_places(season::exposure_of(state.heat, state.crop, field.plan).exposed * 100, 1) +
+            " %; warm nights " + std::to_string(state.heat.warm_nights) + "\n";
   }
   return text;
 }

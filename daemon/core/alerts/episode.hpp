@@ -64,7 +64,8 @@ struct Notice {
   Kind kind = Kind::stage;
   std::string subject;
   Instant at;
-  std::string key;  // stage: "window-near" | "window-opens" | "window-closes" | "note-held";
+  std::string key;  // stage: "window-near" | "window-opens" | "window-closes" | "note-held-DATE" |
+                    // "seed-set";
                     // streak: date; diary_gap: date; season: "ripe" | "sown-long-ago"
   std::optional<CivilDay> day;  // the date it speaks of
   double figure = 0;            // streak: evenings; diary_gap: days

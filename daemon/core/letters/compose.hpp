@@ -11,6 +11,7 @@
 #include "core/field/diary.hpp"
 #include "core/letters/letter.hpp"
 #include "core/risk/rules.hpp"
+#include "core/season/exposure.hpp"
 #include "core/season/status.hpp"
 #include "core/units/time.hpp"
 #include "core/weather/suspicion.hpp"
@@ -55,15 +56,26 @@ std::vector<Letter> compose(std::span<const alerts::Telling> tellings,
 /// The daily line: one line a field that is in its flowering window. Nothing when none is.
 std::vector<Letter> compose_daily(std::span<const Recipient> recipients, const Desk& desk);
 
+/// One count of seeds and the heat that went before it.
+struct SeedCount {
+  CivilDay date{};
+  int held = 0, looked = 0;       // clusters with a swelling seed, of so many
+  std::optional<double> exposed;  // 0…1 of that season's flowers, to that day; this season only
+  std::optional<int> hot_days;    // with an hour at the severe threshold in the 30 days before,
+                                  // where the weather is kept
+};
+
 /// One field's week (or season) as the review tells it: seen, not seen, decided, told.
 struct FieldReview {
-  season::FieldStatus status;                // at the end
-  std::vector<season::HeatDay> days;         // of the period, oldest first
-  std::vector<season::HumidDay> humid_days;  // likewise
-  std::map<CivilDay, Celsius> coolest;       // lowest hourly mean of a day, where measured
-  std::vector<alerts::Episode> episodes;     // that touch the period
-  std::vector<alerts::Said> said;            // in the period
-  std::vector<field::Irrigation> irrigations;
+  season::FieldStatus status;                     // at the end
+  std::vector<season::HeatDay> days;              // of the period, oldest first
+  std::vector<season::HumidDay> humid_days;       // likewise
+  std::map<CivilDay, Celsius> coolest;            // lowest hourly mean of a day, where measured
+  std::vector<alerts::Episode> episodes;          // that touch the period
+  std::vector<alerts::Said> said;                 // in the period
+  std::vector<season::Watered> irrigations;       // and what each did
+  std::vector<SeedCount> seed_counts;             // of the period; of a season all that are kept
+  std::vector<season::DayExposure> exposed_days;  // of the period, severe ones, by what is believed
   std::vector<field::Scouting> notes;
   int hours_expected = 0, hours_valid = 0;
   int warm_nights = 0;
@@ -91,6 +103,10 @@ struct Review {
   std::vector<alerts::Episode> mail_troubles;  // that touch the period
   std::vector<std::string> troubles;           // service troubles of the period, one line each
 };
+/// What an irrigation did, without its time and depth: "root zone 1.90 in short before, 1.40 in
+/// after; leaves wet until sunrise"; empty where nothing is known of it.
+std::string effect_words(const season::Watered& watered, const Desk& desk);
+
 std::string compose_review(const Review& review, const Desk& desk);
 std::vector<Letter> compose_weekly(const Review& review, std::span<const Recipient> recipients,
                                    const Desk& desk);

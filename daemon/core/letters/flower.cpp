@@ -19,22 +19,20 @@ std::string note_words(const FlowerStatus& flower, const Words& words) {
   const std::string note =
       stage_words(*flower.last_note_stage) + " on " + words.day(*flower.last_note);
   if (flower.note_held) {
-    return "Your note (" + note +
-           ") does not fit the warmth since sowing. Until a second note agrees with one of the "
-           "two, both are watched.";
+    const std::string without =
+        window_range(flower.without_note_first, flower.without_note_last, flower, words);
+    const std::string with =
+        window_range(flower.with_note_first, flower.with_note_last, flower, words);
+    return "Your note (" + note + ") does not fit the warmth since sowing." +
+           (without.empty() || with.empty()
+                ? std::string()
+                : " Without it the window runs " + without + "; with it " + with + ".") +
+           " Until a second note agrees with one of the two, both are watched.";
   }
   return "Your last note: " + note + ".";
 }
 
-std::string window_day(const FlowerStatus& flower) {
-  if (!flower.day_of_window) return "The field is inside its flowering window.";
-  std::string text = "Day" + std::string(1, glue) + std::to_string(*flower.day_of_window);
-  if (flower.days_in_window) {
-    text += " of about" + std::string(1, glue) + std::to_string(*flower.days_in_window);
-  }
-  return text + " of the flowering window.";
-}
-
+/// Since when the window is open and until when, or when it will be.
 std::string window_dates(const FlowerStatus& flower, const Words& words) {
   std::vector<std::string> parts;
   if (flower.window_first) {
@@ -48,7 +46,21 @@ std::string window_dates(const FlowerStatus& flower, const Words& words) {
                     (past ? words.day(*flower.window_last)
                           : words.about(*flower.window_last, flower_last_days(flower))));
   }
-  return parts.empty() ? "" : "Window " + list(parts) + ".";
+  std::string text;
+  for (const std::string& part : parts) text += (text.empty() ? "" : ", ") + part;
+  return text;
+}
+
+std::string window_sentence(const FlowerStatus& flower, const Words& words) {
+  const std::string dates = window_dates(flower, words);
+  if (!flower.day_of_window || wide_window(flower)) {
+    return "The field is inside its flowering window" + (dates.empty() ? "" : ": " + dates) + ".";
+  }
+  std::string text = "Day" + std::string(1, glue) + std::to_string(*flower.day_of_window);
+  if (flower.days_in_window) {
+    text += " of about" + std::string(1, glue) + std::to_string(*flower.days_in_window);
+  }
+  return text + " of the flowering window" + (dates.empty() ? "" : ": " + dates) + ".";
 }
 
 std::string odds(const FlowerStatus& flower) {
@@ -80,7 +92,44 @@ std::string first_anthers_estimate(const FlowerStatus& flower, const Words& word
          words.about(*flower.flower_first, flower.flower_first_days) + ".";
 }
 
+/// Why the window is longer than flowers last, and what narrows it.
+std::string wide(const FlowerStatus& flower, const Words& words) {
+  if (!wide_window(flower) || flower.scouted) return "";
+  return first_anthers_estimate(flower, words) +
+         " The window is wide because the estimate alone can be off by that much to either side: "
+         "one note of first anthers narrows it.";
+}
+
 }  // namespace
+
+bool wide_window(const FlowerStatus& flower) {
+  constexpr int longest_flowering = 35;  // days
+  return flower.days_in_window.value_or(0) > longest_flowering;
+}
+
+std::string window_range(const std::optional<CivilDay>& first, const std::optional<CivilDay>& last,
+                         const FlowerStatus& flower, const Words& words) {
+  if (!first || !last) return "";
+  return words.past_or_about(*first, flower.flower_first_days) + " to " +
+         words.past_or_about(*last, flower_last_days(flower));
+}
+
+std::string window_words(const FlowerStatus& flower, const Words& words) {
+  if (!flower.known) return "not known";
+  if (flower.note_held) {
+    const std::string without =
+        window_range(flower.without_note_first, flower.without_note_last, flower, words);
+    const std::string with =
+        window_range(flower.with_note_first, flower.with_note_last, flower, words);
+    if (!without.empty() && !with.empty())
+      return without + " without the note, " + with + " with it";
+  }
+  const std::string range = window_range(flower.window_first, flower.window_last, flower, words);
+  if (range.empty()) return "not yet known";
+  if (!flower.flower_first) return range;
+  return range + ", first anthers about " +
+         words.about(*flower.flower_first, flower.flower_first_days);
+}
 
 double flower_last_days(const FlowerStatus& flower) {
   if (!flower.flower_first || !flower.flower_last) return flower.flower_first_days;
@@ -143,8 +192,8 @@ std::string flower_paragraph(const FieldStatus& status, const Words& words) {
           first_anthers_estimate(flower, words), note_words(flower, words)};
       break;
     case SeasonPart::window:
-      said = {window_day(flower), window_dates(flower, words), note_words(flower, words),
-              seen_in_flower(status) ? "" : odds(flower)};
+      said = {window_sentence(flower, words), note_words(flower, words),
+              seen_in_flower(status) ? "" : odds(flower), wide(flower, words)};
       break;
     case SeasonPart::shoulder_after:
       said = {

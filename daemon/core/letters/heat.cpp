@@ -99,6 +99,9 @@ std::string one_degree_away(const Telling& telling, const FieldStatus& status, c
   if (status.heat.if_cooler < now) {
     said.push_back("Had the air been " + words.one_degree() + " cooler, today would be " +
                    level_word(status.heat.if_cooler));
+  } else if (status.data.shield_may_read_high && now > Level::none) {
+    said.push_back("Had the air been " + words.one_degree() + " cooler, today would still be " +
+                   level_word(now));
   }
   if (status.heat.if_hotter > now) {
     said.push_back(std::string(said.empty() ? "Had the air been " + words.one_degree() : "") +
@@ -110,18 +113,24 @@ std::string one_degree_away(const Telling& telling, const FieldStatus& status, c
   return text.empty() ? "" : text + ".";
 }
 
-std::string harm(const FieldStatus& status, const Words& words) {
-  std::vector<std::string> said{
-      "Somewhere from little to heavy; trials disagree, also between "
-      "varieties."};
+Section harm(const FieldStatus& status, const Words& words) {
+  std::vector<std::string> said;
   if (status.flower.known && status.heat.exposed_share > 0) {
-    said.push_back("Exposed so far: " + exposed_words(status, words) + ".");
+    const bool today = status.heat.today.hours_35.value_or(0) > 0;
+    said.push_back(std::string(today ? "Exposed so far, today counted: " : "Exposed so far: ") +
+                   exposed_words(status, words) + ".");
   }
   if (status.flower.known && status.heat.today.flower_share > 0) {
-    said.push_back("Today's share of the season's flowers: " +
-                   in_hundred(status.heat.today.flower_share) + ".");
+    said.push_back("Opened today: " + in_hundred(status.heat.today.flower_share) +
+                   " of the season's flowers.");
   }
-  return join(said);
+  return {"HARM",
+          join(said),
+          {},
+          true,
+          {},
+          "What heat does is somewhere from little to heavy; trials disagree, also between "
+          "varieties."};
 }
 
 Section look(const FieldStatus& status) {
@@ -142,7 +151,8 @@ Section look(const FieldStatus& status) {
       "Next morning before 9 am, in the cool: are yellow anthers out, are they plump or "
       "dried up? In 10 to 14 days, open clusters on 20 heads: how many hold a swelling "
       "seed? Note both.";
-  section.commands = {scout_command(status.field, "--stage full-flower"),
+  section.commands = {scout_command(status.field, seen_in_flower(status) ? "--stage full-flower"
+                                                                         : "--stage first-anthers"),
                       scout_command(status.field, "--seed-set 14/20")};
   return section;
 }
@@ -229,15 +239,16 @@ Part heat_part(const Telling& telling, const Words& words) {
     part.sections = {
         {"HEAT", heat_so_far(telling, *status, words), {}, true},
         flower_section(*status, words),
-        {"HARM", harm(*status, words), {}, true},
+        harm(*status, words),
         {"MILDEW", mildew_side(*status, words), {}, true},
         {"WATER", water_in_heat(*status, words), {}, true},
         look(*status),
         {"SURE?",
-         join({data_paragraph(*status, words, true), one_degree_away(telling, *status, words),
-               "The limits are farm experience and judgement, not a law of the plant."}),
+         join({data_paragraph(*status, words, true), one_degree_away(telling, *status, words)}),
          {},
-         true}};
+         true,
+         {},
+         "The limits are farm experience and judgement, not a law of the plant."}};
     part.brief = tonight_in_brief(*status) + " Look in the cool.";
   }
   part.lead = eased                                ? "Heat eased from " + level_word(telling.peak)

@@ -93,18 +93,25 @@ std::vector<std::string> days_listed(const FieldStatus& status, const Words& wor
   return lines;
 }
 
+const char* const harm_in_general =
+    "Somewhere from little to heavy. The station sees wet leaves, not mildew; whether any is there "
+    "only you can see.";
+
 std::string harm(const FieldStatus& status) {
-  std::vector<std::string> said{
-      "Somewhere from little to heavy. The station sees wet leaves, not "
-      "mildew; whether any is there only you can see."};
-  if (status.humid.last && status.humid.last->score < status.humid.last->score_before_halving) {
-    said.push_back("A hot day before halved the last score.");
-  }
-  return join(said);
+  const bool halved =
+      status.humid.last && status.humid.last->score < status.humid.last->score_before_halving;
+  return halved ? "A hot day before halved the last score." : "";
+}
+
+/// The first line has told a further field's flowers already, where they are known.
+Section flower_in_short(const FieldStatus& status, const Words& words) {
+  Section section = flower_section(status, words);
+  section.own = !status.flower.known;
+  return section;
 }
 
 Section look(const Telling& telling, const FieldStatus& status, const Words& words) {
-  Section section{"LOOK", "", {}, true};
+  Section section{"LOOK", "", {}, false};
   std::string text =
       "In the cool of the morning, low in the canopy where it dries last: pale or "
       "pinkish blotches on top of leaves, grey-violet fuzz underneath. Note what "
@@ -126,10 +133,14 @@ Section look(const Telling& telling, const FieldStatus& status, const Words& wor
   return section;
 }
 
-std::string sure(const FieldStatus& status, const Words& words) {
-  return join({data_paragraph(status, words, false),
-               "No wetness figures are published for this mildew: the ones used are surrogates "
-               "from its relatives."});
+Section sure(const FieldStatus& status, const Words& words) {
+  return {"SURE?",
+          data_paragraph(status, words, false),
+          {},
+          true,
+          {},
+          "No wetness figures are published for this mildew: the ones used are surrogates from its "
+          "relatives."};
 }
 
 std::string tonight(const FieldStatus& status) {
@@ -164,13 +175,13 @@ std::string decided_still(const Telling& telling, const Words& words) {
 void open_sections(Part& part, const Telling& telling, const FieldStatus& status,
                    const Words& words) {
   part.sections.push_back({"MILDEW", mildew_so_far(telling, status, words), {}, true});
-  part.sections.push_back({"DAYS", "", {}, true, days_listed(status, words)});
-  part.sections.push_back(flower_section(status, words));
-  part.sections.push_back({"HARM", harm(status), {}, true});
-  part.sections.push_back({"HEAT", heat_side(status, words), {}, true});
-  part.sections.push_back({"WATER", water_in_humid(status, words), {}, true});
+  part.sections.push_back({"DAYS", "", {}, false, days_listed(status, words)});
+  part.sections.push_back(flower_in_short(status, words));
+  part.sections.push_back({"HARM", harm(status), {}, true, {}, harm_in_general});
+  part.sections.push_back(heat_side(status, words));
+  part.sections.push_back(water_in_humid(status, words));
   part.sections.push_back(look(telling, status, words));
-  part.sections.push_back({"SURE?", sure(status, words), {}, true});
+  part.sections.push_back(sure(status, words));
 }
 
 void eased_sections(Part& part, const Telling& telling, const FieldStatus& status,
@@ -183,11 +194,11 @@ void eased_sections(Part& part, const Telling& telling, const FieldStatus& statu
                            {},
                            true,
                            days_listed(status, words)});
-  part.sections.push_back(flower_section(status, words));
-  part.sections.push_back({"HEAT", heat_side(status, words), {}, true});
-  part.sections.push_back({"WATER", water_in_humid(status, words), {}, true});
+  part.sections.push_back(flower_in_short(status, words));
+  part.sections.push_back(heat_side(status, words));
+  part.sections.push_back(water_in_humid(status, words));
   part.sections.push_back(look(telling, status, words));
-  part.sections.push_back({"SURE?", sure(status, words), {}, true});
+  part.sections.push_back(sure(status, words));
 }
 
 Part unknown_field(const Telling& telling, const Words& words) {

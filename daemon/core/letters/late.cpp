@@ -100,7 +100,8 @@ std::vector<Section> as_it_stands(const std::vector<Telling>& tellings, const Wo
     }
     done.push_back(telling.subject);
     const std::string name = plain(telling.subject);
-    sections.push_back({"HEAT (" + name + ")", heat_side(*status, words), {}, true});
+    sections.push_back(heat_side(*status, words));
+    sections.back().heading = "HEAT (" + name + ")";
     sections.push_back({"MILDEW (" + name + ")", mildew_side(*status, words), {}, true});
     sections.push_back({"FLOWER (" + name + ")", flower_paragraph(*status, words), {}, true});
   }

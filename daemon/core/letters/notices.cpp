@@ -160,8 +160,8 @@ void streak(Part& part, const Telling& telling, const FieldStatus* status, const
            (status == nullptr ? "" : " " + mildew_side(*status, words)),
        {},
        true},
-      {"HEAT", status == nullptr ? "Not known." : heat_side(*status, words), {}, true},
-      {"WATER", status == nullptr ? "" : water_in_humid(*status, words), {}, true},
+      status == nullptr ? Section{"HEAT", "Not known.", {}, true} : heat_side(*status, words),
+      status == nullptr ? Section{"WATER", "", {}, true} : water_in_humid(*status, words),
       {"LOG",
        "Not so? See what is logged and take back what did not run.",
        {water_command(telling.subject, "--list"), water_command(telling.subject, "--undo NUMBER")},
@@ -203,6 +203,40 @@ void diary_gap(Part& part, const Telling& telling, const FieldStatus* status, co
   part.next = "Not repeated until the log has had an entry and another gap.";
   part.brief = "Enter what ran: antherd water.";
   part.still = "The log had no newer entry when this was decided.";
+}
+
+/// Ten days after Severe heat in flower: whether seeds swell, only a look can tell.
+void seed_set(Part& part, const Telling& telling, const FieldStatus* status, const Words& words) {
+  const bool known = telling.day && *telling.day <= words.today();
+  const std::string heat = "the heat of " + (known ? words.day(*telling.day) : "ten days ago");
+  part.lead = "Count seeds";
+  part.rest = "after " + heat + ", " + tag_of(status);
+  part.first = part.name + ": " + state_of(status) + ", time to count seeds after " + heat + ".";
+  part.tonight = "Tonight: nothing to switch; a morning's look in the next four days is enough.";
+  const bool exposed = status != nullptr && status->flower.known && status->heat.exposed_share > 0;
+  part.sections = {
+      {"WHY",
+       "That day's heat was Severe inside the flowering window. Whether it did harm no weather "
+       "station can tell, and trials disagree; ten to fourteen days later the seeds can. Your "
+       "count is kept beside the season's heat: over the years the farm has a record of its own.",
+       {},
+       false},
+      {"COUNT",
+       "",
+       {},
+       false,
+       {"1. In the cool of a morning, go to 5 places of the field, away from its edges.",
+        "2. At each take 4 heads that flowered in that heat, and from the middle of each head one "
+        "cluster: 20 in all.",
+        "3. Rub the cluster open in the hand. A swelling seed, watery to milky, counts; empty "
+        "husks do not.",
+        "4. Note how many of the 20 hold one. A full count is worth as much as a poor one."}},
+      {"NOTE IT", "", {scout_command(telling.subject, "--seed-set 14/20")}, true},
+      {"HEAT", exposed ? "Exposed so far: " + exposed_words(*status, words) + "." : "", {}, true},
+      both_sides(status)};
+  part.next = "Asked once for this heat. The review shows the count.";
+  part.brief = "Open 20 clusters at 5 places: how many hold a seed? antherd scout --seed-set.";
+  part.still = "The count was due when this was decided.";
 }
 
 void season_end(Part& part, const Telling& telling, const Words& words) {
@@ -249,6 +283,8 @@ Part notice_part(const Telling& telling, const Words& words) {
         window_near(part, telling, status, words);
       } else if (telling.key == "window-closes") {
         window_closes(part, telling, status, words);
+      } else if (telling.key == "seed-set") {
+        seed_set(part, telling, status, words);
       } else if (telling.key.starts_with("note-held")) {
         note_held(part, telling, status, words);
       } else {

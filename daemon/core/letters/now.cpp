@@ -41,13 +41,14 @@ std::string stage_line(const FieldStatus& status, const Words& words) {
   std::string text = flower_state(status);
   if (!flower.known) return text + ": note a stage (antherd scout)";
   text += ", stage " + number(flower.stage, 0);
-  if (flower.part == season::Part::window && flower.day_of_window) {
+  if (flower.part == season::Part::window && wide_window(flower) && !flower.scouted) {
+    text += ", chance of flower " + in_ten(flower.p_flower);
+  } else if (flower.part == season::Part::window && flower.day_of_window) {
     text += ", window day " + std::to_string(*flower.day_of_window);
     if (flower.days_in_window) text += " of about " + std::to_string(*flower.days_in_window);
   } else if (flower.flower_first && *flower.flower_first > words.today()) {
     text += ", first anthers " + words.about(*flower.flower_first, flower.flower_first_days);
   }
-  if (flower.note_held) text += ", a note is held";
   if (flower.implausible) text += ", check the sowing date";
   return text;
 }
@@ -109,10 +110,28 @@ std::string water_line(const FieldStatus& status, const Words& words) {
   }
   text += status.last_irrigation_end ? "; last " + words.when(*status.last_irrigation_end)
                                      : "; none in the log";
-  if (status.days_to_stress) {
-    text += "; " + std::to_string(std::max(0, *status.days_to_stress)) + " d to stress";
-  }
   return text;
+}
+
+/// The roots' side, where the account is known.
+std::string soil_line(const FieldStatus& status, const Words& words) {
+  const auto& water = status.water;
+  if (!water.ks || !water.missing || !water.root_zone) return "";
+  std::string text = words.depth(*water.missing) + " of " + words.depth(*water.root_zone) +
+                     " missing in the root zone, Ks " + number(*water.ks, 2);
+  if (*water.ks < 0.995) return text + ": short of water";
+  if (water.days_to_stress) text += ", " + std::to_string(*water.days_to_stress) + " d to stress";
+  return text;
+}
+
+std::string held_line(const FieldStatus& status, const Words& words) {
+  const season::FlowerStatus& flower = status.flower;
+  const std::string without =
+      window_range(flower.without_note_first, flower.without_note_last, flower, words);
+  const std::string with =
+      window_range(flower.with_note_first, flower.with_note_last, flower, words);
+  if (without.empty() || with.empty()) return "held: it does not fit the warmth since sowing";
+  return "held; window without it " + without;
 }
 
 std::string data_line(const FieldStatus& status, const Words& words) {
@@ -134,9 +153,18 @@ std::string data_line(const FieldStatus& status, const Words& words) {
 std::string field_block(const FieldStatus& status, const Words& words) {
   std::string text = cut(plain(status.field) + ": " + stage_line(status, words));
   if (status.watch != season::Watch::watched) return text;
-  return text + labelled("heat", heat_line(status, words)) +
-         labelled("mildew", mildew_line(status)) + labelled("water", water_line(status, words)) +
-         labelled("data", data_line(status, words));
+  if (status.flower.note_held) {
+    const season::FlowerStatus& flower = status.flower;
+    text += labelled("note", held_line(status, words));
+    const std::string with =
+        window_range(flower.with_note_first, flower.with_note_last, flower, words);
+    if (!with.empty()) text += labelled("", "      window with it " + with);
+  }
+  text += labelled("heat", heat_line(status, words)) + labelled("mildew", mildew_line(status)) +
+          labelled("water", water_line(status, words));
+  const std::string soil = soil_line(status, words);
+  if (!soil.empty()) text += labelled("soil", soil);
+  return text + labelled("data", data_line(status, words));
 }
 
 /// One line an open episode: the last of what was said of it, gravest first.

@@ -61,11 +61,19 @@ std::string marks(const Desk& desk) {
   return text;
 }
 
-std::string other_part(const Part& part) {
+/// Another field in short: what is its own, without what the worst field's part has told already.
+std::string other_part(const Part& part, const Part& worst) {
   std::string text =
       "\n" + std::string(page_width, '-') + "\n" + first_line(part) + paragraph(part.tonight);
-  for (const Section& section : part.sections) {
-    if (section.own) text += section_text(section);
+  const auto told = [&](const Section& section) {
+    return std::any_of(worst.sections.begin(), worst.sections.end(), [&](const Section& other) {
+      return other.heading == section.heading && other.text == section.text &&
+             other.lines == section.lines;
+    });
+  };
+  for (Section section : part.sections) {
+    section.once.clear();
+    if (section.own && !told(section)) text += section_text(section);
   }
   return text;
 }
@@ -91,10 +99,11 @@ std::string more(std::size_t others) { return " +" + std::to_string(others) + " 
 std::string paragraph(const std::string& text) { return lines_of(wrap(text, page_width)); }
 
 std::string section_text(const Section& section) {
-  if (section.text.empty() && section.lines.empty() && section.commands.empty()) return "";
+  const std::string said = join({section.text, section.once});
+  if (said.empty() && section.lines.empty() && section.commands.empty()) return "";
   std::string text = "\n" + section.heading + "\n";
   for (const std::string& line : section.lines) text += lines_of(wrap(line, page_width, 2, 6));
-  text += paragraph(section.text);
+  text += paragraph(said);
   for (const std::string& command : section.commands) text += command_text(command);
   return text;
 }
@@ -128,7 +137,8 @@ std::string body_of(const Part& worst, const std::vector<Part>& others, const st
                     const Desk& desk) {
   std::string text = first_line(worst) + paragraph(worst.tonight) + marks(desk);
   for (const Section& section : worst.sections) text += section_text(section);
-  for (std::size_t i = 0; i < others.size() && i < in_short; ++i) text += other_part(others[i]);
+  for (std::size_t i = 0; i < others.size() && i < in_short; ++i)
+    text += other_part(others[i], worst);
   if (others.size() > in_short) {
     text += "\n" + std::string(page_width, '-') + "\n";
     const std::size_t end = std::min(others.size(), in_short + in_lines);

@@ -24,6 +24,7 @@ struct Section {
   std::vector<std::string> commands;
   bool own = true;  // speaks of this field; false: the same for all, told once in a merged letter
   std::vector<std::string> lines{};  // one below the other, before the text
+  std::string once{};  // sentences after the text that hold for every field: told once in a letter
 };
 
 /// "about 12 in 100 of the season's flowers opened on days with an hour at 95 °F or more".
@@ -62,6 +63,14 @@ std::string flower_tag(const FieldStatus& status);
 std::string flower_state(const FieldStatus& status);
 /// Day of how many, window, how sure.
 std::string flower_paragraph(const FieldStatus& status, const Words& words);
+/// "Mon 22 Jun to Tue 25 Aug ± 9 d"; empty where either end is not known.
+std::string window_range(const std::optional<CivilDay>& first, const std::optional<CivilDay>& last,
+                         const season::FlowerStatus& flower, const Words& words);
+/// "Mon 22 Jun to Tue 25 Aug ± 9 d, first anthers about Wed 1 Jul ± 9 d"; both windows while a note
+/// is held; "not known" where it is not.
+std::string window_words(const season::FlowerStatus& flower, const Words& words);
+/// More than flowering itself can last: the estimate is wide, and a count of days misleads.
+bool wide_window(const season::FlowerStatus& flower);
 /// FLOWER, with the command that settles it where flowering is not known.
 Section flower_section(const FieldStatus& status, const Words& words);
 /// ± days of the middle estimate of flowers done: the start's, and a quarter of the length.
@@ -73,10 +82,12 @@ std::string tonight_and_mildew(const FieldStatus& status);
 std::string tonight_in_brief(const FieldStatus& status);
 /// The MILDEW paragraph of a heat letter: sprinkler nights, level, what tonight would do.
 std::string mildew_side(const FieldStatus& status, const Words& words);
-/// The HEAT paragraph of a humid letter.
-std::string heat_side(const FieldStatus& status, const Words& words);
+/// The HEAT section of a humid letter.
+Section heat_side(const FieldStatus& status, const Words& words);
 std::string water_in_heat(const FieldStatus& status, const Words& words);
-std::string water_in_humid(const FieldStatus& status, const Words& words);
+Section water_in_humid(const FieldStatus& status, const Words& words);
+/// "1.90 in short of the 6.30 in that roots can reach (about 30 in 100)"; empty while unknown.
+std::string root_zone(const FieldStatus& status, const Words& words);
 bool waters_leaves(const FieldStatus& status);  // overhead by its settings
 
 // Heat of one day (heat_words.cpp).

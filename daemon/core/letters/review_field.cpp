@@ -57,29 +57,47 @@ Section flower(const FieldReview& field, const Words& words) {
     std::vector<std::string> parts;
     if (note.stage) parts.push_back(stage_words(*note.stage) + (note.began ? " began" : ""));
     if (note.disease) parts.push_back(*note.disease ? "mildew seen" : "no mildew seen");
-    if (note.seed_set && note.seed_looked) {
-      parts.push_back("seed in " + std::to_string(*note.seed_set) + " of " +
-                      std::to_string(*note.seed_looked));
-    }
     if (!note.note.empty()) parts.push_back(plain(note.note));
     std::string line;
     for (const std::string& part : parts) line += (line.empty() ? "" : ", ") + part;
-    section.lines.push_back(words.day(note.date) + ": " + line);
+    if (!line.empty()) section.lines.push_back(words.day(note.date) + ": " + line);
   }
   return section;
 }
 
+const char* const indicative =
+    " (indicative: no dose–response curve has been published for this crop)";
+
+/// One hot day in flower: what opened, and what it may have affected.
+std::string exposed_day(const season::DayExposure& day, const FieldReview& field,
+                        const Words& words) {
+  std::string hours;
+  for (const season::HeatDay& heat : field.days) {
+    if (heat.date != day.date || !heat.hours_35) continue;
+    hours = std::to_string(*heat.hours_35) + glue + "h at " +
+            words.threshold(words.heat_rules(field.status.field).severe) + " or more; ";
+  }
+  return words.day(day.date) + ": " + hours + in_hundred(day.share) +
+         " of the flowers opened, affected " + in_hundred(day.low) + " to " + in_hundred(day.high);
+}
+
 Section exposure(const FieldReview& field, const Words& words) {
   const FieldStatus& status = field.status;
+  Section section{"HEAT AND FLOWERS", "", {}, true, {}, ""};
   std::vector<std::string> said;
   if (!status.flower.known) {
     said.push_back("Flowers met by heat: not known while flowering is not known.");
   } else {
+    for (const season::DayExposure& day : field.exposed_days) {
+      section.lines.push_back(exposed_day(day, field, words));
+    }
     said.push_back("Exposed this season: " + exposed_words(status, words) + ".");
     if (field.affected_high > 0) {
-      said.push_back("Affected: " + in_hundred(field.affected_low) + " to " +
-                     in_hundred(field.affected_high) +
-                     " (indicative: no dose–response curve has been published for this crop).");
+      said.push_back("Affected this season: " + in_hundred(field.affected_low) + " to " +
+                     in_hundred(field.affected_high) + indicative + ".");
+    }
+    if (!section.lines.empty()) {
+      said.push_back("A day's affected range also counts buds that open within a week of it.");
     }
   }
   if (field.warm_nights > 0) {
@@ -89,7 +107,35 @@ Section exposure(const FieldReview& field, const Words& words) {
   } else {
     said.push_back("No warm night counted between flower and ripe.");
   }
-  return {"HEAT AND FLOWERS", join(said), {}, true, {}};
+  section.text = join(said);
+  return section;
+}
+
+std::string seed_line(const SeedCount& count_of, const FieldReview& field, const Words& words) {
+  const int year = static_cast<int>(CivilDate{count_of.date}.year());
+  std::string text = words.day(count_of.date) + " " + std::to_string(year) + ": " +
+                     std::to_string(count_of.held) + " of " + std::to_string(count_of.looked) +
+                     " hold a seed";
+  if (count_of.exposed) text += "; exposed by then " + in_hundred(*count_of.exposed);
+  if (!count_of.hot_days) return text + "; its weather is not kept here";
+  return text + "; " +
+         (*count_of.hot_days == 0 ? std::string("no day") : count(*count_of.hot_days, "day")) +
+         " at " + words.threshold(words.heat_rules(field.status.field).severe) +
+         " or more in the 30 days before";
+}
+
+/// The farm's own record: what was counted beside what the heat was.
+Section seed_set(const FieldReview& field, const Words& words) {
+  Section section{"SEED SET", "", {}, true, {}, ""};
+  for (const SeedCount& one : field.seed_counts) {
+    section.lines.push_back(seed_line(one, field, words));
+  }
+  if (!section.lines.empty()) {
+    section.text =
+        "Clusters with a swelling seed, of those that were opened; a record of this "
+        "farm, not a measure of harm.";
+  }
+  return section;
 }
 
 std::string method_words(field::Method method) {
@@ -108,14 +154,17 @@ std::string method_words(field::Method method) {
 
 Section water_log(const FieldReview& field, const Words& words) {
   Section section{"WATER", "", {}, true, {}};
-  for (const field::Irrigation& one : field.irrigations) {
+  for (const season::Watered& watered : field.irrigations) {
+    const field::Irrigation& one = watered.irrigation;
+    const std::string effect = effect_words(watered, words.desk());
     const Calendar& calendar = words.calendar();
     const bool same_day = calendar.day_of(one.start) == words.day_of_end(one.end);
     section.lines.push_back(words.day(calendar.day_of(one.start)) + " " + words.clock(one.start) +
                             " to " + (same_day ? "" : words.day(words.day_of_end(one.end)) + " ") +
                             words.clock(one.end) + ", " + method_words(one.method) +
                             (one.depth ? ", " + words.depth(*one.depth) : ", depth unknown") +
-                            (one.set > 0 ? ", set " + std::to_string(one.set) : ""));
+                            (one.set > 0 ? ", set " + std::to_string(one.set) : "") +
+                            (effect.empty() ? "" : ": " + effect));
   }
   if (section.lines.empty()) {
     section.text = field.status.irrigation == field::Method::none
@@ -190,13 +239,37 @@ std::string said_line(const alerts::Said& said, const Words& words) {
   return text;
 }
 
+std::string effect_words(const season::Watered& watered, const Desk& desk) {
+  const Words words(desk);
+  std::vector<std::string> said;
+  if (watered.before && watered.after) {
+    const auto missing = [&](Millimetre depth) {
+      return depth.value < 0.05 ? std::string("full") : words.depth(depth) + " short";
+    };
+    said.push_back("root zone " + missing(*watered.before) + " before, " + missing(*watered.after) +
+                   " after");
+  }
+  if (watered.drained && watered.drained->value >= 0.5) {
+    said.push_back(words.depth(*watered.drained) + " drained below the roots");
+  }
+  if (watered.wet_until) {
+    said.push_back(std::string("leaves wet until sunrise") +
+                   (watered.limit_near
+                        ? " (had it ended an hour earlier it would not count as a night set)"
+                        : ""));
+  }
+  std::string text;
+  for (const std::string& part : said) text += (text.empty() ? "" : "; ") + part;
+  return unglued(text);
+}
+
 std::string field_chapter(const FieldReview& field, const Words& words) {
   const std::string name = clip(plain(field.status.field), page_width);
   std::string text =
       "\n" + std::string(page_width, '=') + "\n" + name + "\n\n" + day_table(field, words);
   for (const Section& section :
-       {seen(field), flower(field, words), exposure(field, words), water_log(field, words),
-        decided(field, words), told(field, words)}) {
+       {seen(field), flower(field, words), exposure(field, words), seed_set(field, words),
+        water_log(field, words), decided(field, words), told(field, words)}) {
     text += section_text(section);
   }
   text += leaf_sensor(field.status.humid);

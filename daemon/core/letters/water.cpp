@@ -87,7 +87,41 @@ std::string sunset_limit(const FieldStatus& status) {
          "before sunset, is a judgement.";
 }
 
+/// How the roots stand, as a sentence; nothing while the account is not known.
+std::string soil_sentence(const FieldStatus& status, const Words& words) {
+  const std::string roots = root_zone(status, words);
+  const auto& water = status.water;
+  if (roots.empty() || !water.ks) return "";
+  std::string text = "By your log, at last midnight the root zone was " + roots;
+  if (*water.ks < 0.995) {
+    return text + ": the crop is short of water (stress factor Ks " + number(*water.ks, 2) +
+           "; 1 is none).";
+  }
+  if (!water.days_to_stress) return text + ".";
+  if (*water.days_to_stress == 0) return text + ": at the edge of water stress.";
+  return text + ": " + count(*water.days_to_stress, "day") +
+         " from water stress at the present use.";
+}
+
+/// A thirsty crop cools itself less; shown where the shortage is plain.
+std::string canopy_sentence(const FieldStatus& status, const Words& words) {
+  const bool thirsty = status.water.ks.value_or(1) < 0.8;
+  if (!thirsty || !status.water.canopy || status.water.canopy->value < 0.5) return "";
+  return "A thirsty crop can be warmer than the air, in today's hottest sunny hour by about " +
+         words.difference(*status.water.canopy) +
+         " (a judgement, after a related crop); the levels go by the air.";
+}
+
 }  // namespace
+
+std::string root_zone(const FieldStatus& status, const Words& words) {
+  const auto& water = status.water;
+  if (!water.missing || !water.root_zone || water.root_zone->value <= 0) return "";
+  const double share = *water.missing / *water.root_zone;
+  if (share < 0.005) return "full";
+  return words.depth(*water.missing) + " short of the " + words.depth(*water.root_zone) +
+         " that roots can reach (" + in_hundred(share) + ")";
+}
 
 bool waters_leaves(const FieldStatus& status) { return status.irrigation == Method::overhead; }
 
@@ -148,9 +182,10 @@ std::string mildew_side(const FieldStatus& status, const Words&) {
   return join(said);
 }
 
-std::string heat_side(const FieldStatus& status, const Words& words) {
+Section heat_side(const FieldStatus& status, const Words& words) {
   const season::HeatDay& today = status.heat.today;
   const risk::HeatRules& rules = words.heat_rules(status.field);
+  Section section{"HEAT", "", {}, true, {}, ""};
   std::vector<std::string> said;
   if (today.t_max) {
     said.push_back("Today so far at most " + words.temperature(*today.t_max, rules) + ": " +
@@ -158,52 +193,62 @@ std::string heat_side(const FieldStatus& status, const Words& words) {
   } else {
     said.push_back("Today's heat: nothing measured yet.");
   }
-  if (status.heat.episode && status.heat.episode->open()) {
+  const bool open = status.heat.episode && status.heat.episode->open();
+  if (open) {
     said.push_back("A heat warning is open at " + level_word(status.heat.episode->level) + ".");
   }
-  if (today.level != Level::none || (status.heat.episode && status.heat.episode->open())) {
-    said.push_back(
-        "Heat by itself does not call for water; sprinklers in the evening would feed "
-        "mildew.");
-    if (!waters_leaves(status)) said.pop_back();
+  if ((today.level != Level::none || open) && waters_leaves(status)) {
+    section.once =
+        "Heat by itself does not call for water; sprinklers in the evening would feed mildew.";
   }
   if (status.heat.hot_days > 0 && status.flower.known) {
     said.push_back("Exposed so far: " + exposed_words(status, words) + ".");
   }
-  return join(said);
+  section.text = join(said);
+  return section;
 }
 
 std::string water_in_heat(const FieldStatus& status, const Words& words) {
   const bool logged = status.last_irrigation_end.has_value();
-  if (logged && status.days_to_stress && *status.days_to_stress <= 2) {
-    const int days = *status.days_to_stress;
-    return "By your log the root zone is " +
-           (days <= 0 ? std::string("at the edge of water stress")
-                      : std::to_string(days) + glue + "d from water stress") +
-           ". Water may be due on its own account; last water ended " +
-           words.when(*status.last_irrigation_end) + "." +
-           (waters_leaves(status)
-                ? " A set that ends more than 3 h before sunset lets the leaves dry."
-                : "");
+  const std::string soil = logged ? soil_sentence(status, words) : "";
+  const std::string last =
+      logged ? "Last water in the log ended " + words.when(*status.last_irrigation_end) + "." : "";
+  if (logged && status.water.days_to_stress && *status.water.days_to_stress <= 2) {
+    const int days = *status.water.days_to_stress;
+    const std::string plain = "By your log the root zone is " +
+                              (days <= 0 ? std::string("at the edge of water stress")
+                                         : std::to_string(days) + glue + "d from water stress") +
+                              ".";
+    return join({soil.empty() ? plain : soil,
+                 "Water may be due on its own account, whatever the heat.", last,
+                 waters_leaves(status)
+                     ? "A set that ends more than 3 h before sunset lets the leaves dry."
+                     : "",
+                 canopy_sentence(status, words)});
   }
-  std::string text = "This heat by itself does not call for water.";
-  if (logged)
-    text += " Last water in the log ended " + words.when(*status.last_irrigation_end) + ".";
-  return text;
+  return join({"This heat by itself does not call for water.", soil, last});
 }
 
-std::string water_in_humid(const FieldStatus& status, const Words& words) {
+Section water_in_humid(const FieldStatus& status, const Words& words) {
+  Section section{"WATER", "", {}, true, {}, ""};
   std::vector<std::string> said;
   if (status.last_irrigation_end) {
     said.push_back("Last water in the log ended " + words.when(*status.last_irrigation_end) + ".");
+    const std::string soil = soil_sentence(status, words);
+    const bool near = status.water.days_to_stress && *status.water.days_to_stress <= 2;
+    said.push_back(!soil.empty() || !near
+                       ? soil
+                       : "By the log the root zone is near water stress (about " +
+                             std::to_string(std::max(0, *status.water.days_to_stress)) + glue +
+                             "d).");
   } else if (status.irrigation != Method::none) {
     said.push_back("No water is in the log.");
   }
   switch (status.irrigation) {
     case Method::overhead:
-      said.push_back(
-          "If the field needs water, a set that ends more than 3 h before sunset lets "
-          "the leaves dry before night.");
+      section.once =
+          "If the field needs water, a set that ends more than 3 h before sunset lets the leaves "
+          "dry before night.";
       said.push_back(sunset_limit(status));
       break;
     case Method::drip:
@@ -214,11 +259,8 @@ std::string water_in_humid(const FieldStatus& status, const Words& words) {
       said.push_back("No irrigation is set for this field.");
       break;
   }
-  if (status.days_to_stress && *status.days_to_stress <= 2 && status.last_irrigation_end) {
-    said.push_back("By the log the root zone is near water stress (about " +
-                   std::to_string(std::max(0, *status.days_to_stress)) + glue + "d).");
-  }
-  return join(said);
+  section.text = join(said);
+  return section;
 }
 
 }  // namespace antherd::letters

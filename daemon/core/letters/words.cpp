@@ -214,6 +214,10 @@ std::string Words::threshold_number(Celsius t) const { return number(shown(t), 0
 
 std::string Words::one_degree() const { return glued(us() ? "2 °F (1 °C)" : "1 °C"); }
 
+std::string Words::difference(CelsiusDifference d) const {
+  return number(us() ? d.value * 1.8 : d.value, 0) + glue + unit();
+}
+
 std::string Words::depth(Millimetre water) const {
   if (!us()) return number(water.value, whole(water.value) ? 0 : 1) + glue + "mm";
   return number(water.value / 25.4, water.value < 25.4 ? 2 : 1) + glue + "in";

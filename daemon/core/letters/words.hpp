@@ -35,6 +35,8 @@ class Words {
   std::string unit() const { return us() ? "°F" : "°C"; }
   /// One degree of the what-if: "2 °F (1 °C)" or "1 °C".
   std::string one_degree() const;
+  /// "4 °F" or "2 °C" of a difference.
+  std::string difference(CelsiusDifference d) const;
   /// "0.5 in" or "12 mm".
   std::string depth(Millimetre water) const;
 

@@ -15,6 +15,14 @@ double between(double x, double x0, double y0, double x1, double y1) {
   return y0 + (y1 - y0) * (std::clamp(x, x0, x1) - x0) / (x1 - x0);
 }
 
+/// Roots reach new soil, and what is missing there. @return how much soil water it could hold, mm
+double grow(WaterAccount& account, double stage) {
+  const Metre roots = std::max(account.roots, root_depth(stage));
+  const double grown = account.water_per_metre * (roots - account.roots).value;
+  account.roots = roots;
+  return grown;
+}
+
 /// One account's day. @return its stress before the day's use
 double book(Millimetre& depletion, Millimetre new_soil, Millimetre total, double share,
             Millimetre use, Millimetre income) {
@@ -76,6 +84,11 @@ bool WaterAccount::known() const {
   return !unknown_start || !ran_dry;
 }
 
+std::optional<Millimetre> WaterAccount::missing() const {
+  if (!known()) return std::nullopt;
+  return (depletion + depletion_dry) / 2.0;
+}
+
 WaterAccount open_account(double water_per_metre, std::optional<double> held_at_sowing) {
   WaterAccount account;
   account.water_per_metre = water_per_metre;
@@ -86,9 +99,7 @@ WaterAccount open_account(double water_per_metre, std::optional<double> held_at_
 }
 
 std::optional<double> book_day(WaterAccount& account, const WaterDay& day) {
-  const Metre roots = std::max(account.roots, root_depth(day.stage));
-  const double grown = account.water_per_metre * (roots - account.roots).value;
-  account.roots = roots;
+  const double grown = grow(account, day.stage);
   const Millimetre use = day.reference * crop_coefficient(day.stage);
   account.crop_use = account.days == 0
                          ? use.value
@@ -108,6 +119,29 @@ std::optional<double> book_day(WaterAccount& account, const WaterDay& day) {
   if (account.depletion_dry.value - use.value <= all / 20.0) account.ran_dry = false;
   if (!account.known()) return std::nullopt;
   return (ks + ks_dry) / 2.0;
+}
+
+std::vector<std::optional<Poured>> pour(const WaterAccount& account, const WaterDay& day,
+                                        std::span<const std::optional<Millimetre>> depths) {
+  std::vector<std::optional<Poured>> poured(depths.size());
+  WaterAccount filled = account;
+  const double grown = grow(filled, day.stage);
+  filled.depletion += Millimetre(grown * (1 - filled.initial_share));
+  filled.depletion_dry += Millimetre(grown * (1 - filled.initial_share_dry));
+  const auto missing = filled.missing();
+  if (!missing) return poured;
+  Millimetre depletion = std::max(Millimetre(0), *missing - day.rain);
+  for (std::size_t i = 0; i < depths.size() && depths[i]; ++i) {
+    const Millimetre after = std::max(Millimetre(0), depletion - *depths[i]);
+    poured[i] = Poured{depletion, after, *depths[i] - (depletion - after)};
+    depletion = after;
+  }
+  return poured;
+}
+
+CelsiusDifference canopy_minus_air(Kilopascal deficit, double ks) {
+  const double watered = 2.5 - 1.9 * deficit.value;
+  return CelsiusDifference(std::clamp(watered + (1 - ks) * (5 - watered), -5.0, 5.0));
 }
 
 std::optional<int> days_to_stress(const WaterAccount& account) {

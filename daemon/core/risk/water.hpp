@@ -4,7 +4,9 @@
 #pragma once
 
 #include <optional>
+#include <span>
 #include <string_view>
+#include <vector>
 
 #include "core/units/quantity.hpp"
 
@@ -58,12 +60,15 @@ struct WaterAccount {
   double crop_use = 0;          // ETc of the last days, mm/d, running mean
   int days = 0;
   bool unknown_start = false;
-  bool ran_dry = false;              // of an unknown start: not known again before it is filled
+  bool ran_dry = false;  // of an unknown start: not known again before it is filled
 
   Millimetre total() const { return Millimetre(water_per_metre * roots.value); }
   /// Both accounts within a twentieth of the total: the depletion is known. Of an unknown start two
   /// accounts that met by running dry know nothing: a crop that lives has had water not logged.
   bool known() const;
+  /// Water missing from the root zone, mm: the middle of the two accounts; nothing while unknown.
+  /// Source: FAO-56 eq. 85, the root zone's depletion Dr at the day's end.
+  std::optional<Millimetre> missing() const;
 };
 
 /// @param held_at_sowing  1 full, 0.5 half, nothing: unknown (between wilting point and full)
@@ -72,6 +77,26 @@ WaterAccount open_account(double water_per_metre, std::optional<double> held_at_
 /// Books one day. @return Ks of the day, nothing while the accounts have not met
 /// Source: FAO-56 eq. 85 without capillary rise and runoff; surplus drains.
 std::optional<double> book_day(WaterAccount& account, const WaterDay& day);
+
+/// What one irrigation did to the root zone.
+struct Poured {
+  Millimetre before{0};   // depletion
+  Millimetre after{0};    // depletion
+  Millimetre drained{0};  // more than the roots can hold
+};
+
+/// What irrigations of a day do, one after the other and after the day's rain, before the crop uses
+/// any of it; asked before the day is booked. Nothing of one while the depletion is unknown, and
+/// from the first of unknown depth on.
+/// @param depths  in their order; their sum is the day's irrigation
+std::vector<std::optional<Poured>> pour(const WaterAccount& account, const WaterDay& day,
+                                        std::span<const std::optional<Millimetre>> depths);
+
+/// How much warmer the canopy is than the air in a sunny hour (more than 400 W/m²), −5…5 °C:
+/// d0 + (1 − Ks)(5 − d0), d0 = 2.5 − 1.9 VPD. At 2 kPa: −1.3 at Ks 1, 1.85 at Ks 0.5.
+/// Source: baseline of sugar beet, a relative, Idso 1982 (from memory); the transfer to this crop
+/// is a judgement (science §9).
+CelsiusDifference canopy_minus_air(Kilopascal deficit, double ks);
 
 /// Whole days until the readily available water is gone at the present use, 0 when it is; nothing
 /// while unknown or without use.

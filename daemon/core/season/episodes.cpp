@@ -37,7 +37,9 @@ void move_episode(std::vector<alerts::Episode>& episodes, std::optional<std::siz
 
 Certainty certainty_of(const Phenology& crop, const Plan& plan) {
   if (!crop.known()) return Certainty::possible;
-  if (crop.scouted) return Certainty::observed;
+  const bool flowers_noted =
+      crop.scouted && crop.last_note_stage.value_or(0) >= field::stage::first_anthers;
+  if (flowers_noted) return Certainty::observed;
   return crop.odds(plan).in_flower(crop.time) >= 0.5 ? Certainty::likely : Certainty::possible;
 }
 

@@ -83,9 +83,10 @@ void enter_day(State& state, const Plan& plan, HourStart start) {
 /// who has just seen open flowers is not left alone.
 bool is_ripe(const Phenology& crop, const Plan& plan) {
   if (!crop.known()) return false;
-  const double held = crop.held ? crop.held->with.mean : 0.0;
-  return crop.time.value >= plan.traits.needs.ripe.value * std::max(crop.belief.mean, held) &&
-         (!crop.held || crop.part != Part::window);
+  double latest = crop.belief.mean;
+  for (const HeldNote& held : crop.held) latest = std::max(latest, held.with.mean);
+  return crop.time.value >= plan.traits.needs.ripe.value * latest &&
+         (crop.held.empty() || crop.part != Part::window);
 }
 
 /// A field past ripe, or sown long ago, or harvested is not watched.
@@ -127,7 +128,7 @@ Step advance(State& state, const Plan& plan, const DiaryView& diary, const Air& 
                          state.watch == Watch::watched};
   step.day = advance(state.heat, state.episodes, hour, grown.flower_share);
   step.humid_day = advance(state.humid, state.episodes, hour, drying, record.wet);
-  advance(state.water, hour, record.eto);
+  step.watered = advance(state.water, hour, record.eto);
   if (step.day) step.day->ks = state.water.ks;
   give_notices(state, plan, diary, hour, grown.note_was_held);
   remember_temperature(state, air);
@@ -138,6 +139,8 @@ Step advance(State& state, const Plan& plan, const DiaryView& diary, const Air& 
   record.known = state.crop.known();
   record.part = state.crop.part;
   record.stage = state.crop.stage(plan);
+  record.ks = state.water.ks;
+  if (state.water.ks) record.missing = state.water.account->missing();
   if (record.known) record.p_flower = state.crop.odds(plan).in_flower(state.crop.time);
   return step;
 }
@@ -154,6 +157,7 @@ State fold(const Plan& plan, const DiaryView& diary, const StationHours& hours, 
     if (chronicle != nullptr) {
       if (step.day) chronicle->days.push_back(*step.day);
       if (step.humid_day) chronicle->humid_days.push_back(*step.humid_day);
+      chronicle->watered.insert(chronicle->watered.end(), step.watered.begin(), step.watered.end());
     }
     if (look) look(state, step);
   }

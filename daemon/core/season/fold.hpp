@@ -21,38 +21,40 @@ namespace antherd::season {
 
 /// Everything the fold carries from hour to hour; a plain value.
 struct State {
-  std::optional<HourStart> last;             // last folded hour
-  CivilDay day{};                            // its civil day
-  Instant next_day{};                        // first instant of the next civil day
+  std::optional<HourStart> last;  // last folded hour
+  CivilDay day{};                 // its civil day
+  Instant next_day{};             // first instant of the next civil day
   Watch watch = Watch::before_sowing;
   std::optional<CivilDay> ripe_since;
   Phenology crop;
   HeatHazard heat;
   HumidHazard humid;
   WaterBalance water;
-  std::vector<double> temperatures;          // of the last 24 hours in a row, °C
-  weather::Sky sky;                          // for nights
+  std::vector<double> temperatures;  // of the last 24 hours in a row, °C
+  weather::Sky sky;                  // for nights
   std::vector<alerts::Episode> episodes;
   std::vector<alerts::Notice> notices;
-  std::size_t next_set = 0;                  // index into the diary's night sets
+  std::size_t next_set = 0;                           // index into the diary's night sets
   std::optional<CivilDay> streak_first, streak_last;  // nights of overhead irrigation, by morning
-  std::vector<Air> last_day;                 // the last 24 hours, gaps included, oldest first
+  std::vector<Air> last_day;  // the last 24 hours, gaps included, oldest first
   std::vector<std::vector<weather::Flag>> last_flags;  // of the same hours
-  std::optional<Instant> last_reading;       // end of the last hour with data
+  std::optional<Instant> last_reading;                 // end of the last hour with data
 };
 
 /// What one hour became: one line of `hours`.
 struct HourRecord {
   Air air;
   LeafWeather leaf;
-  std::optional<Millimetre> eto;             // hourly, where wind and solar are measured
+  std::optional<Millimetre> eto;  // hourly, where wind and solar are measured
   risk::Wet wet;
-  double unit = 0;                           // °C
-  ThermalTime time;                          // thermal time at the hour's end
+  double unit = 0;   // °C
+  ThermalTime time;  // thermal time at the hour's end
   double p_flower = 0;
   bool known = true;
   Part part = Part::before;
   double stage = 0;
+  std::optional<Millimetre> missing;  // from the root zone, at the last midnight
+  std::optional<double> ks;           // water stress of the last whole day
 };
 
 /// What an hour closed.
@@ -60,6 +62,7 @@ struct Step {
   HourRecord hour;
   std::optional<HeatDay> day;
   std::optional<HumidDay> humid_day;
+  std::vector<Watered> watered;  // irrigations that were booked with the day's end
 };
 
 /// The only step: one more hour. Hours come one after the other without a hole; an hour without
@@ -70,6 +73,7 @@ Step advance(State& state, const Plan& plan, const DiaryView& diary, const Air& 
 struct Chronicle {
   std::vector<HeatDay> days;
   std::vector<HumidDay> humid_days;
+  std::vector<Watered> watered;
 };
 
 /// Folds from sowing up to (not including) `until`.
@@ -84,6 +88,9 @@ FieldStatus status(const State& state, const Plan& plan, const DiaryView& diary)
 /// Emits the notices that fall due with this hour (contracts "Alerts and notices").
 void give_notices(State& state, const Plan& plan, const DiaryView& diary, const HourContext& hour,
                   bool note_was_held);
+
+/// The state carried on to a moment with the last 24 hours' weather again, where there are any.
+State carried_to(const State& state, const Plan& plan, const DiaryView& diary, Instant until);
 
 /// The day on which thermal time will cross a value, at the mean daily units of the last 14 days;
 /// nothing with fewer than 5 days of data or when it is already crossed.

@@ -10,6 +10,7 @@
 #include "core/alerts/episode.hpp"
 #include "core/risk/heat.hpp"
 #include "core/risk/humid.hpp"
+#include "core/season/exposure.hpp"
 #include "core/season/phenology.hpp"
 #include "core/season/plan.hpp"
 #include "core/season/status.hpp"
@@ -31,14 +32,15 @@ struct HeatHazard {
   bool in_window = false;
   std::vector<std::pair<HourStart, double>> hours;  // of the day, with their temperatures
   std::optional<HeatDay> yesterday;
-  double exposed_share = 0;
-  int hot_days = 0;
-  double affected_low = 0, affected_high = 0;
+  std::vector<DayHeat> days;  // whole days, oldest first
+  int hot_days = 0;           // with an hour at 35.0 °C or more, in the window as then believed
   std::deque<double> nights;  // means of the last 20 nights, °C
   double night_sum = 0;
   int night_hours = 0;
   int warm_nights = 0;
   std::optional<std::size_t> episode;  // index of the open one
+  bool episode_severe = false;         // it has had a Severe hour in the window
+  std::vector<CivilDay> severe_since;  // of each episode the day of its first such hour
 };
 
 /// Wetness and spell by one reading of the humidity.
@@ -93,12 +95,16 @@ std::optional<HumidDay> advance(HumidHazard& humid, std::vector<alerts::Episode>
 /// The day so far as a record. @param track  0 as measured
 HeatDay day_so_far(const HeatHazard& heat);
 
+/// Which flowers heat has met, by what is believed now; today's counts so far.
+Exposure exposure_of(const HeatHazard& heat, const Phenology& crop, const Plan& plan);
+
 /// Moves an episode to a level, opening or closing it as needed.
 void move_episode(std::vector<alerts::Episode>& episodes, std::optional<std::size_t>& open,
                   alerts::Kind kind, const std::string& subject, HourStart hour, Level level,
                   Certainty certainty, std::optional<double> figure);
 
-/// How sure an alert of this moment is: scouted is Observed, else by the odds of flowering.
+/// How sure an alert of heat is at this moment: Observed where a note of flowers (stage 60 or
+/// later) stands, Likely where the odds of being in flower are even or better, else Possible.
 Certainty certainty_of(const Phenology& crop, const Plan& plan);
 
 }  // namespace antherd::season

@@ -1,8 +1,6 @@
 // Heat over a season, day by day; see hazards.hpp.
 #include <algorithm>
-#include <cmath>
 
-#include "core/crop/flowers.hpp"
 #include "core/season/hazards.hpp"
 #include "core/weather/sun.hpp"
 
@@ -50,35 +48,18 @@ void shift_days(HeatTrack& track) {
   track.level = track.weather_level = Level::none;
 }
 
-/// Indicative sterile share of the day's flowers, low and high (science §6, "Affected").
-void add_affected(HeatHazard& heat, const HourContext& hour) {
-  const Plan& plan = hour.plan;
+/// What flowers open on the day met, or meet so far; nothing once they are cut.
+std::optional<DayHeat> heat_met(const HeatHazard& heat, const Plan& plan) {
+  const bool cut = plan.field.harvested && heat.day > *plan.field.harvested;
+  if (!heat.day || cut) return std::nullopt;
   const auto noon = plan.calendar.at(CivilTime(*heat.day) + std::chrono::hours{12});
   const auto solar_day =
       std::chrono::floor<std::chrono::days>(weather::solar_time(noon, plan.field.longitude));
   const auto sun = weather::sun_day(solar_day, plan.place());
-  if (!sun.rise || !sun.set || heat.flower_share <= 0 || !hour.crop.known()) return;
-  double low = 0, low_weight = 0, high = 0, high_weight = 0;
-  for (const auto& [start, t] : heat.hours) {
-    const Instant middle = middle_of(start);
-    if (middle < *sun.rise || middle > *sun.set) continue;
-    const double off = static_cast<double>((middle - *sun.rise).count()) / 3600.0 - 6.0;
-    const double weight = std::exp(-off * off / (2.0 * 2.0 * 2.0));
-    low += weight * risk::sterile_share(Celsius(t), Celsius(40));
-    low_weight += weight;
-    high += risk::sterile_share(Celsius(t), Celsius(35));
-    high_weight += 1;
-  }
-  if (high_weight == 0 || low_weight == 0) return;
-  const auto odds = hour.crop.odds(plan);
-  const double soon = hour.crop.time.value + 7.0 * hour.crop.units.mean_10_days();
-  const auto opened = [&](double t) {
-    return crop::share_opened(100.0 * (t - odds.begins) / odds.lasts);
-  };
-  const double due = opened(soon) - opened(hour.crop.time.value);
-  heat.affected_low += heat.flower_share * low / low_weight;
-  heat.affected_high =
-      std::min(1.0, heat.affected_high + (heat.flower_share + due) * high / high_weight);
+  const bool severe = heat.tracks[0].tally.hours_severe >= 1;
+  const DayHeat dark{*heat.day, severe, 0, 0};
+  if (!sun.rise || !sun.set) return dark;
+  return day_heat(*heat.day, severe, heat.hours, *sun.rise, *sun.set).value_or(dark);
 }
 
 /// Warm nights, 20:00–09:00 farm time, between stages 60 and 89 (Lesjak & Calderini 2017).
@@ -118,15 +99,22 @@ void settle_episode(HeatHazard& heat, std::vector<alerts::Episode>& episodes,
 
 HeatDay end_day(HeatHazard& heat, const HourContext& hour) {
   const HeatDay day = day_so_far(heat);
-  const bool cut = hour.plan.field.harvested && day.date > *hour.plan.field.harvested;
-  if (!cut) add_affected(heat, hour);
-  if (!cut && day.hours_35.value_or(0) >= 1) {
-    // A note may move the estimate back, and flowers counted before would open again.
-    heat.exposed_share = std::min(1.0, heat.exposed_share + day.flower_share);
-    if (day.in_window) ++heat.hot_days;
+  if (const auto met = heat_met(heat, hour.plan)) {
+    heat.days.push_back(*met);
+    if (day.hours_35.value_or(0) >= 1 && day.in_window) ++heat.hot_days;
   }
   heat.yesterday = day;
   return day;
+}
+
+/// Flowers that met a Severe hour are worth a count of seeds later: once an episode.
+void remember_severe(HeatHazard& heat, const HourContext& hour, bool opened_now) {
+  if (opened_now) heat.episode_severe = false;
+  const bool severe = heat.episode && heat.tracks[0].level >= Level::severe &&
+                      hour.crop.part == Part::window && hour.watched;
+  if (!severe || heat.episode_severe) return;
+  heat.episode_severe = true;
+  heat.severe_since.push_back(hour.day);
 }
 
 }  // namespace
@@ -152,6 +140,15 @@ HeatDay day_so_far(const HeatHazard& heat) {
   return day;
 }
 
+Exposure exposure_of(const HeatHazard& heat, const Phenology& crop, const Plan& plan) {
+  const bool day_is_over = !heat.days.empty() && heat.days.back().date == heat.day;
+  const auto today = day_is_over ? std::nullopt : heat_met(heat, plan);
+  if (!today) return exposure_of(crop, plan, heat.days);
+  std::vector<DayHeat> days = heat.days;
+  days.push_back(*today);
+  return exposure_of(crop, plan, days);
+}
+
 std::optional<HeatDay> advance(HeatHazard& heat, std::vector<alerts::Episode>& episodes,
                                const HourContext& hour, double flower_share) {
   if (heat.day != hour.day) {
@@ -172,6 +169,7 @@ std::optional<HeatDay> advance(HeatHazard& heat, std::vector<alerts::Episode>& e
   const auto figure =
       measured.tally.t_max ? std::optional<double>(measured.tally.t_max->value) : std::nullopt;
   const bool over = !hour.watched || hour.crop.part == Part::after;
+  const bool was_open = heat.episode.has_value();
   if (over) {
     move_episode(episodes, heat.episode, alerts::Kind::heat, name, hour.air.start, Level::none,
                  certainty, figure);
@@ -179,6 +177,7 @@ std::optional<HeatDay> advance(HeatHazard& heat, std::vector<alerts::Episode>& e
     move_episode(episodes, heat.episode, alerts::Kind::heat, name, hour.air.start, measured.level,
                  certainty, figure);
   }
+  remember_severe(heat, hour, !was_open && heat.episode);
   if (!hour.day_ends) return std::nullopt;
   const HeatDay day = end_day(heat, hour);
   if (!over) settle_episode(heat, episodes, hour, day);

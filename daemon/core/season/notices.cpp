@@ -87,6 +87,23 @@ void look_at_diary(State& state, const DiaryView& diary, const HourContext& hour
   give(state, hour, Kind::diary_gap, date_key(last), last, static_cast<double>(silent));
 }
 
+/// Ten days after an episode's first Severe hour in flower seeds can be counted. One count serves
+/// two episodes that lie closer together than it takes to look.
+void ask_for_count(State& state, const DiaryView& diary, const HourContext& hour) {
+  constexpr auto count_after = days{10}, one_count_serves = days{4};
+  std::optional<CivilDay> asked;
+  for (const CivilDay severe : state.heat.severe_since) {
+    if (asked && severe - *asked <= one_count_serves) continue;
+    asked = severe;
+    if (severe + count_after != hour.day) continue;
+    const bool counted =
+        std::any_of(diary.notes.begin(), diary.notes.end(), [&](const field::Scouting& note) {
+          return note.seed_set && note.date > severe && note.date < hour.day;
+        });
+    if (!counted) add(state, hour, Kind::stage, "seed-set", severe);
+  }
+}
+
 void look_at_window(State& state, const HourContext& hour) {
   if (!state.crop.known()) return;
   const WindowEdges edges = window_edges(state.crop, hour.plan);
@@ -128,6 +145,7 @@ void give_notices(State& state, const Plan& plan, const DiaryView& diary, const 
   if (!hour.watched) return;
   look_at_window(state, hour);
   look_at_diary(state, diary, hour);
+  ask_for_count(state, diary, hour);
 }
 
 }  // namespace antherd::season

@@ -18,12 +18,17 @@ Instant noon_of(const Plan& plan, CivilDay day) {
   return plan.calendar.at(CivilTime(day) + std::chrono::hours{12});
 }
 
-/// The field was not watched for too long: the note says where it stands, the past is forgotten.
+/// The field was not watched for too long: the note says where it stands. Of the past only the days
+/// that were seen since the last gap are kept, reckoned back from the note.
 void anchor(Phenology& crop, const crop::Observation& seen) {
+  const double moved = (seen.reached - crop.time).value;
+  std::erase_if(crop.day_ends, [&](const auto& day_end) {
+    return crop.seen_since && day_end.first < *crop.seen_since;
+  });
+  for (auto& [day, time] : crop.day_ends) time += moved;
   crop.time = seen.reached;
-  crop.day_ends.clear();
   crop.belief = crop::Belief{1.0, seen.sd};
-  crop.held.reset();
+  crop.held.clear();
   crop.unseen = 0;
   crop.filled = 0;
 }
@@ -35,19 +40,22 @@ double distance(const crop::Belief& belief, const crop::Observation& seen) {
 
 /// @return whether the note is held
 bool weigh(Phenology& crop, const crop::Observation& seen) {
-  const bool agrees = crop::agrees(crop.belief, seen);
-  const bool agrees_with_held =
-      crop.held && (crop::agrees(crop.held->with, seen) ||
-                    crop::agrees(crop::Belief{crop.held->seen.factor, crop.held->seen.sd}, seen));
-  // A prior is wide: a second note may agree with both, and speaks for the one it lies nearer to.
-  const bool take_held = agrees_with_held &&
-                         (!agrees || distance(crop.held->with, seen) < distance(crop.belief, seen));
-  if (agrees || take_held) {
-    crop.belief = crop::update(take_held ? crop.held->with : crop.belief, seen);
-    crop.held.reset();
+  const auto fits = [&](const HeldNote& held) {
+    return crop::agrees(held.with, seen) ||
+           crop::agrees(crop::Belief{held.seen.factor, held.seen.sd}, seen);
+  };
+  // A prior is wide: a note may agree with several accounts, and speaks for the nearest.
+  const crop::Belief* nearest = crop::agrees(crop.belief, seen) ? &crop.belief : nullptr;
+  for (const HeldNote& held : crop.held) {
+    const bool nearer = nearest == nullptr || distance(held.with, seen) < distance(*nearest, seen);
+    if (fits(held) && nearer) nearest = &held.with;
+  }
+  if (nearest != nullptr) {
+    crop.belief = crop::update(*nearest, seen);
+    crop.held.clear();
     return false;
   }
-  crop.held = HeldNote{seen, crop::update(crop.belief, seen)};
+  crop.held.push_back(HeldNote{seen, crop::update(crop.belief, seen)});
   return true;
 }
 
@@ -187,17 +195,17 @@ double Phenology::stage(const Plan& plan) const {
   return crop::stage_at(time, plan.traits.needs, belief.mean);
 }
 
-WindowEdges window_edges(const Phenology& crop, const Plan& plan) {
+WindowEdges window_edges(const Phenology& crop, const Plan& plan, const crop::Belief& belief) {
   const auto& needs = plan.traits.needs;
-  const auto edges = [&](const crop::Belief& belief) {
-    const auto odds = crop::odds(needs, belief, crop.filled_share());
-    const double seed_fill = 0.6 * (needs.ripe - needs.flowers_done).value;
-    return WindowEdges{odds.opens(), odds.closes(),
-                       ThermalTime(odds.begins + odds.lasts + seed_fill)};
-  };
-  WindowEdges result = edges(crop.belief);
-  if (crop.held) {
-    const WindowEdges other = edges(crop.held->with);
+  const auto odds = crop::odds(needs, belief, crop.filled_share());
+  const double seed_fill = 0.6 * (needs.ripe - needs.flowers_done).value;
+  return {odds.opens(), odds.closes(), ThermalTime(odds.begins + odds.lasts + seed_fill)};
+}
+
+WindowEdges window_edges(const Phenology& crop, const Plan& plan) {
+  WindowEdges result = window_edges(crop, plan, crop.belief);
+  for (const HeldNote& held : crop.held) {
+    const WindowEdges other = window_edges(crop, plan, held.with);
     result.opens = std::min(result.opens, other.opens);
     result.closes = std::max(result.closes, other.closes);
     result.seed_fill_ends = std::max(result.seed_fill_ends, other.seed_fill_ends);
@@ -229,10 +237,13 @@ PhenologyHour advance(Phenology& crop, const Plan& plan, const DiaryView& diary,
     result.flower_share = opened(crop.time) - opened(before);
   }
   if (crop.day_ends.empty() || crop.day_ends.back().first != day) {
+    crop.unseen_today = 0;
     crop.day_ends.emplace_back(day, crop.time.value);
   } else {
     crop.day_ends.back().second = crop.time.value;
   }
+  constexpr int many = 4;  // a day with 20 hours speaks for itself
+  if (!air.temperature && ++crop.unseen_today > many) crop.seen_since = day + std::chrono::days{1};
   const Part part = part_of(crop, plan, day);
   remember_dates(crop, plan, day, part);
   crop.part = part;

@@ -40,7 +40,7 @@ struct ClockHour {
   std::optional<double> mean() const;
 };
 
-/// A note that lies more than 3 combined σ from the belief, kept beside it.
+/// A note that lies more than 3 combined σ from the belief and from the notes held before it.
 struct HeldNote {
   crop::Observation seen;
   crop::Belief with;  // the belief had it been accepted
@@ -55,7 +55,7 @@ struct Phenology {
   int filled = 0;    // of these, filled from neighbouring days
   bool scouted = false;
   crop::Belief belief;
-  std::optional<HeldNote> held;
+  std::vector<HeldNote> held;    // until a note agrees with the belief or with one of them
   std::size_t next_note = 0;     // index into the diary's notes
   std::optional<CivilDay> done;  // "flowers-done" began: the window closes at this day's end
   std::optional<CivilDay> last_note;
@@ -63,7 +63,9 @@ struct Phenology {
   UnitMemory units;
   std::array<ClockHour, 24> by_clock;  // by UTC hour of day, which keeps to the sun
   std::array<std::optional<CivilDay>, told_stages.size()> reached;
-  std::vector<std::pair<CivilDay, double>> day_ends;  // thermal time so far, since sowing or anchor
+  std::vector<std::pair<CivilDay, double>> day_ends;  // thermal time so far
+  std::optional<CivilDay> seen_since;                 // after the last day with many unseen hours
+  int unseen_today = 0;
   std::optional<CivilDay> window_first, window_last;
   Part part = Part::before;
 
@@ -95,5 +97,7 @@ struct WindowEdges {
   ThermalTime opens, closes, seed_fill_ends;
 };
 WindowEdges window_edges(const Phenology& crop, const Plan& plan);
+/// The edges by one belief alone.
+WindowEdges window_edges(const Phenology& crop, const Plan& plan, const crop::Belief& belief);
 
 }  // namespace antherd::season

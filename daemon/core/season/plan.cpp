@@ -65,8 +65,8 @@ HourPicker::Pick HourPicker::pick(HourStart start) {
     if (at == hours_[i].size() || hours_[i][at].start != start) continue;
     const weather::Hour* hour = &hours_[i][at];
     if (hour->valid()) return {hour, static_cast<int>(i)};
-    const bool better = fallback.hour == nullptr ||
-                        (hour->has_temperature() && !fallback.hour->has_temperature());
+    const bool better =
+        fallback.hour == nullptr || (hour->has_temperature() && !fallback.hour->has_temperature());
     if (better) fallback = {hour, static_cast<int>(i)};
   }
   return fallback;

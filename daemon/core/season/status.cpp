@@ -20,7 +20,7 @@ FlowerStatus flower_status(const State& state, const Plan& plan) {
   flower.scouted = crop.scouted;
   flower.last_note = crop.last_note;
   flower.last_note_stage = crop.last_note_stage;
-  flower.note_held = crop.held.has_value();
+  flower.note_held = !crop.held.empty();
   flower.part = crop.part;
   flower.stage = crop.stage(plan);
   flower.filled_share = crop.filled_share();
@@ -33,6 +33,8 @@ FlowerStatus flower_status(const State& state, const Plan& plan) {
   flower.p_over = odds.over(crop.time);
   flower.p_flower = odds.in_flower(crop.time);
   if (!flower.window_first) flower.window_first = expected_day(state, edges.opens.value);
+  // A note moves the window's first day as it moves the other dates.
+  if (const auto opened = crossed_on(crop, edges.opens.value)) flower.window_first = opened;
   if (!flower.window_last) flower.window_last = expected_day(state, edges.closes.value);
   if (crop.done) flower.window_last = crop.done;
   const auto crossing = [&](double needed, std::size_t stage) {
@@ -44,8 +46,8 @@ FlowerStatus flower_status(const State& state, const Plan& plan) {
   flower.flower_last = crossing(odds.begins + odds.lasts, 4);
   const double daily = crop.units.mean_14_days();
   if (daily > 0) flower.flower_first_days = odds.sd_begin / daily;
-  if (crop.part == Part::window && crop.window_first) {
-    flower.day_of_window = static_cast<int>((state.day - *crop.window_first).count()) + 1;
+  if (crop.part == Part::window && flower.window_first && *flower.window_first <= state.day) {
+    flower.day_of_window = static_cast<int>((state.day - *flower.window_first).count()) + 1;
   }
   if (flower.window_first && flower.window_last) {
     flower.days_in_window =
@@ -58,6 +60,21 @@ FlowerStatus flower_status(const State& state, const Plan& plan) {
   return flower;
 }
 
+/// The two windows that a held note keeps apart.
+void add_held_windows(FlowerStatus& flower, const State& state, const Plan& plan) {
+  if (state.crop.held.empty() || !flower.known) return;
+  const auto day_of = [&](ThermalTime time) {
+    return state.crop.time < time ? expected_day(state, time.value)
+                                  : crossed_on(state.crop, time.value);
+  };
+  const WindowEdges without = window_edges(state.crop, plan, state.crop.belief);
+  const WindowEdges with = window_edges(state.crop, plan, state.crop.held.back().with);
+  flower.without_note_first = day_of(without.opens);
+  flower.without_note_last = day_of(without.closes);
+  flower.with_note_first = day_of(with.opens);
+  flower.with_note_last = day_of(with.closes);
+}
+
 std::optional<alerts::Episode> recent_episode(const State& state, alerts::Kind kind) {
   for (auto episode = state.episodes.rbegin(); episode != state.episodes.rend(); ++episode) {
     if (episode->kind != kind) continue;
@@ -67,14 +84,14 @@ std::optional<alerts::Episode> recent_episode(const State& state, alerts::Kind k
   return std::nullopt;
 }
 
-HeatStatus heat_status(const State& state) {
+HeatStatus heat_status(const State& state, const Plan& plan) {
   HeatStatus heat;
   heat.today = day_so_far(state.heat);
   heat.yesterday = state.heat.yesterday;
   const HeatTrack& track = state.heat.tracks[0];
   heat.degree_hours_3_days = track.tally.degree_hours + track.before[0] + track.before[1];
   heat.degree_hours_5_days = heat.degree_hours_3_days + track.before[2] + track.before[3];
-  heat.exposed_share = state.heat.exposed_share;
+  heat.exposed_share = exposure_of(state.heat, state.crop, plan).exposed;
   heat.hot_days = state.heat.hot_days;
   heat.if_cooler = state.heat.tracks[1].level;
   heat.if_hotter = state.heat.tracks[2].level;
@@ -108,14 +125,20 @@ Tonight tonight(const State& state, const Plan& plan) {
   return night;
 }
 
+/// One more hour of the last 24 hours' weather.
+Step advance_as_before(State& ahead, const Plan& plan, const DiaryView& diary,
+                       const std::vector<Air>& pattern, std::size_t hour) {
+  Air air = pattern[hour % pattern.size()];
+  air.start = *ahead.last + std::chrono::hours{1};
+  return advance(ahead, plan, diary, air);
+}
+
 /// Runs the fold on to the end of a humid day with the last 24 hours' weather again.
 Level level_after(const State& state, const Plan& plan, const DiaryView& diary, CivilDay morning) {
   State ahead = state;
   const std::vector<Air> pattern = state.last_day;
   for (std::size_t i = 0; i < 60; ++i) {
-    Air air = pattern[i % pattern.size()];
-    air.start = *ahead.last + std::chrono::hours{1};
-    const Step step = advance(ahead, plan, diary, air);
+    const Step step = advance_as_before(ahead, plan, diary, pattern, i);
     if (step.humid_day && step.humid_day->date >= morning) return step.humid_day->level;
   }
   return ahead.humid.spell.level;
@@ -175,6 +198,17 @@ HumidStatus humid_status(const State& state, const Plan& plan, const DiaryView& 
   return humid;
 }
 
+WaterStatus water_status(const WaterBalance& water) {
+  WaterStatus status;
+  if (!water.ks) return status;
+  status.ks = water.ks;
+  status.days_to_stress = risk::days_to_stress(*water.account);
+  status.missing = water.account->missing();
+  status.root_zone = water.account->total();
+  if (water.sunny_deficit) status.canopy = risk::canopy_minus_air(*water.sunny_deficit, *water.ks);
+  return status;
+}
+
 void merge_flags(std::vector<weather::Flag>& all, const std::vector<weather::Flag>& more) {
   for (const weather::Flag& flag : more) {
     const auto same = std::find_if(all.begin(), all.end(), [&](const weather::Flag& f) {
@@ -212,6 +246,16 @@ DataStatus data_status(const State& state, const Plan& plan) {
 
 }  // namespace
 
+State carried_to(const State& state, const Plan& plan, const DiaryView& diary, Instant until) {
+  State ahead = state;
+  const std::vector<Air> pattern = state.last_day;
+  if (pattern.empty()) return ahead;
+  for (std::size_t i = 0; end_of(*ahead.last) < until; ++i) {
+    advance_as_before(ahead, plan, diary, pattern, i);
+  }
+  return ahead;
+}
+
 std::optional<CivilDay> expected_day(const State& state, double thermal_time) {
   const double missing = thermal_time - state.crop.time.value;
   const double daily = state.crop.units.mean_14_days();
@@ -237,11 +281,11 @@ FieldStatus status(const State& state, const Plan& plan, const DiaryView& diary)
     }
   }
   result.flower = flower_status(state, plan);
-  result.heat = heat_status(state);
+  add_held_windows(result.flower, state, plan);
+  result.heat = heat_status(state, plan);
   result.humid = humid_status(state, plan, diary);
   result.data = data_status(state, plan);
-  result.water_stress = state.water.ks;
-  if (state.water.ks) result.days_to_stress = risk::days_to_stress(*state.water.account);
+  result.water = water_status(state.water);
   return result;
 }
 

@@ -7,6 +7,7 @@
 #include <vector>
 
 #include "core/alerts/episode.hpp"
+#include "core/field/diary.hpp"
 #include "core/field/field.hpp"
 #include "core/risk/wetness.hpp"
 #include "core/units/quantity.hpp"
@@ -28,6 +29,8 @@ struct FlowerStatus {
   std::optional<CivilDay> last_note;
   std::optional<int> last_note_stage;
   bool note_held = false;  // a note contradicts the estimate: the window is the union
+  // While a note is held: the window by the estimate alone, and by the last held note.
+  std::optional<CivilDay> without_note_first, without_note_last, with_note_first, with_note_last;
   Part part = Part::before;
   double stage = 0;  // BBCH, middle estimate, interpolated
   double p_begun = 0, p_over = 0, p_flower = 0;
@@ -59,6 +62,16 @@ struct HeatDay {
   std::optional<double> ks;  // water stress of the day, 1 none … 0 full (science §9)
 };
 
+/// What one irrigation did (science §7, §9). Depletions are nothing while unknown, and before the
+/// day is over on whose evening it is booked.
+struct Watered {
+  field::Irrigation irrigation;
+  std::optional<Millimetre> before, after;  // missing from the root zone
+  std::optional<Millimetre> drained;        // more than the roots could hold
+  std::optional<Instant> wet_until;         // a night set: the sunrise until which leaves stay wet
+  bool limit_near = false;                  // a night set that an end one hour earlier is not
+};
+
 /// One humid day, 18:00→18:00 solar, bearing the date on which it ends (science §8).
 struct HumidDay {
   CivilDay date{};
@@ -81,7 +94,8 @@ struct HeatStatus {
   HeatDay today;  // so far
   std::optional<HeatDay> yesterday;
   double degree_hours_3_days = 0, degree_hours_5_days = 0;
-  double exposed_share = 0;                // season: flowers opened on days with ≥ 1 h ≥ 35.0
+  double exposed_share = 0;                // season: flowers opened on days with ≥ 1 h ≥ 35.0,
+                                           // today's included, by what is believed now
   int hot_days = 0;                        // season, days with ≥ 1 h ≥ 35.0 in the window
   Level if_cooler = Level::none;           // today's level had every hour been 1 °C lower
   Level if_hotter = Level::none;           // … 1 °C higher
@@ -103,6 +117,15 @@ struct HumidStatus {
   risk::SensorRecord sensor;               // of the season: the rules beside the sensor
   int sensor_hours_24 = 0;                 // of the last 24 hours, with a sensor's word
   std::optional<alerts::Episode> episode;  // open, or closed within the last 24 h
+};
+
+/// Soil water as of the last midnight (science §9); nothing where it is not known.
+struct WaterStatus {
+  std::optional<double> ks;  // 1 no stress … 0 full
+  std::optional<int> days_to_stress;
+  std::optional<Millimetre> missing;        // from the root zone
+  std::optional<Millimetre> root_zone;      // what it holds between full and wilting
+  std::optional<CelsiusDifference> canopy;  // warmer than the air in today's hottest sunny hour
 };
 
 struct DataStatus {
@@ -127,8 +150,7 @@ struct FieldStatus {
   HeatStatus heat;
   HumidStatus humid;
   DataStatus data;
-  std::optional<double> water_stress;  // Ks, where the water balance is kept
-  std::optional<int> days_to_stress;
+  WaterStatus water;
 };
 
 }  // namespace antherd::season

@@ -36,32 +36,42 @@ std::optional<Millimetre> reference_of(const WaterBalance& water) {
 }
 
 /// Irrigations count on the civil day on which they end.
-void add_irrigation(risk::WaterDay& day, const HourContext& hour) {
+std::vector<field::Irrigation> ended_today(const HourContext& hour) {
   const Instant end = end_of(hour.air.start);
+  std::vector<field::Irrigation> ended;
   for (const field::Irrigation& irrigation : hour.diary.irrigations) {
     if (irrigation.start >= end) break;
-    if (irrigation.end > end ||
-        hour.plan.calendar.day_of(irrigation.end - Seconds{1}) != hour.day) {
-      continue;
-    }
-    if (irrigation.depth) {
-      day.irrigation += *irrigation.depth;
-    } else {
-      day.irrigation_unknown = true;
-    }
+    const bool today =
+        irrigation.end <= end && hour.plan.calendar.day_of(irrigation.end - Seconds{1}) == hour.day;
+    if (today) ended.push_back(irrigation);
   }
+  return ended;
 }
 
-void end_day(WaterBalance& water, const HourContext& hour) {
+std::vector<Watered> end_day(WaterBalance& water, const HourContext& hour) {
   const auto reference = reference_of(water);
   risk::WaterDay day;
   day.stage = hour.crop.stage(hour.plan);
   day.reference = reference.value_or(Millimetre(0));
   day.rain = water.rain;
-  add_irrigation(day, hour);
+  std::vector<Watered> watered;
+  std::vector<std::optional<Millimetre>> depths;
+  for (const field::Irrigation& irrigation : ended_today(hour)) {
+    watered.push_back(night_of(irrigation, hour.diary));
+    depths.push_back(depth_over_field(irrigation, hour.plan.field));
+    day.irrigation += depths.back().value_or(Millimetre(0));
+    day.irrigation_unknown = day.irrigation_unknown || !depths.back();
+  }
   // A stage that is not known gives no crop coefficient, and no reference gives no use.
   water.ks.reset();
   if (water.account && hour.crop.known() && reference) {
+    const auto poured = risk::pour(*water.account, day, depths);
+    for (std::size_t i = 0; i < poured.size(); ++i) {
+      if (!poured[i]) continue;
+      watered[i].before = poured[i]->before;
+      watered[i].after = poured[i]->after;
+      watered[i].drained = poured[i]->drained;
+    }
     water.ks = risk::book_day(*water.account, day);
   }
   water.last_eto = reference;
@@ -69,12 +79,24 @@ void end_day(WaterBalance& water, const HourContext& hour) {
   water.eto = water.extraterrestrial = 0;
   water.highest.reset();
   water.lowest.reset();
+  water.sunny_hottest.reset();
+  water.sunny_deficit.reset();
   water.rain = Millimetre(0);
+  return watered;
+}
+
+void remember_sun(WaterBalance& water, const Air& air) {
+  constexpr double strong_sun = 400;  // W/m²
+  const bool sunny = air.daylight && air.valid() && air.vpd && air.solar.value_or(0) > strong_sun;
+  if (!sunny || (water.sunny_hottest && *air.temperature < *water.sunny_hottest)) return;
+  water.sunny_hottest = air.temperature;
+  water.sunny_deficit = air.vpd;
 }
 
 }  // namespace
 
-void advance(WaterBalance& water, const HourContext& hour, std::optional<Millimetre> eto) {
+std::vector<Watered> advance(WaterBalance& water, const HourContext& hour,
+                             std::optional<Millimetre> eto) {
   open_once(water, hour.plan);
   const Air& air = hour.air;
   water.extraterrestrial += air.extraterrestrial;
@@ -87,7 +109,27 @@ void advance(WaterBalance& water, const HourContext& hour, std::optional<Millime
     water.eto += eto->value;
   }
   if (air.rain) water.rain += *air.rain;
-  if (hour.day_ends) end_day(water, hour);
+  remember_sun(water, air);
+  return hour.day_ends ? end_day(water, hour) : std::vector<Watered>{};
+}
+
+Watered night_of(const field::Irrigation& irrigation, const DiaryView& diary) {
+  Watered watered;
+  watered.irrigation = irrigation;
+  if (irrigation.method != field::Method::overhead) return watered;
+  for (const risk::NightSet& set : diary.sets) {
+    if (set.start != irrigation.start || set.end != irrigation.end || !set.enough) continue;
+    watered.wet_until = set.sunrise;
+    watered.limit_near = set.close_to_limit;
+  }
+  return watered;
+}
+
+std::optional<Millimetre> depth_over_field(const field::Irrigation& irrigation,
+                                           const field::Field& field) {
+  if (!irrigation.depth) return std::nullopt;
+  const bool one_of_several = irrigation.set > 0 && field.sets > 1;
+  return one_of_several ? *irrigation.depth / field.sets : *irrigation.depth;
 }
 
 }  // namespace antherd::season

@@ -3,6 +3,8 @@
 #include <cmath>
 #include <iostream>
 
+#include "core/letters/parts.hpp"
+#include "core/letters/wrap.hpp"
 #include "core/risk/rules.hpp"
 #include "edge/clock/clock.hpp"
 #include "run/commands/common.hpp"
@@ -41,16 +43,20 @@ Result<CivilTime> reading_of(const std::string& text, std::optional<CivilTime> l
   return settings::parse_civil_time(text);
 }
 
-std::string depth_text(const std::optional<Millimetre>& depth) {
+/// In the farm's own units.
+std::string depth_text(const settings::Settings& settings, const std::optional<Millimetre>& depth) {
   if (!depth) return "depth unknown";
-  std::string text = std::to_string(rounded(depth->value, 1));
-  return text.substr(0, text.find('.') + 2) + " mm";
+  letters::Desk desk;
+  desk.calendar = &settings.calendar;
+  desk.units = settings.units;
+  return letters::unglued(letters::Words(desk).depth(*depth));
 }
 
-std::string sentence_of(const field::Irrigation& irrigation, const Calendar& calendar) {
-  std::string text = farm_text(calendar, irrigation.start) + " to " +
-                     farm_text(calendar, irrigation.end) + ", " +
-                     field::name_of(irrigation.method) + ", " + depth_text(irrigation.depth);
+std::string sentence_of(const settings::Settings& settings, const field::Irrigation& irrigation) {
+  const Calendar& calendar = settings.calendar;
+  std::string text =
+      farm_text(calendar, irrigation.start) + " to " + farm_text(calendar, irrigation.end) + ", " +
+      field::name_of(irrigation.method) + ", " + depth_text(settings, irrigation.depth);
   if (irrigation.set > 0) text += ", set " + std::to_string(irrigation.set);
   return text;
 }
@@ -137,15 +143,95 @@ void say_what_it_does(const SettingsPointer& settings, const field::Irrigation& 
             << risk::name_of(before.if_not_watered) << "). An estimate: scout before acting.\n";
 }
 
-Exit list_water(const settings::Settings& settings, const store::Store& store,
+/// What is known of a field at a moment, with a diary of its own; nothing without weather.
+struct Standing {
+  service::Lookout lookout;
+  Instant now;
+
+  const season::State& state(const std::string& field) const { return lookout.state(field); }
+};
+
+std::optional<Standing> standing_of(const Past& past, Instant now) {
+  Standing standing{lookout_over(past), now};
+  standing.lookout.turn(now, closed_at(past, now));
+  return standing;
+}
+
+/// What the irrigations did that are booked, from the season folded once more.
+std::vector<season::Watered> effects_of(const SettingsPointer& settings, const store::Store& store,
+                                        const std::string& field) {
+  const Instant now = present(*settings, open_to_read(*settings));
+  const auto past = past_from_store(settings, store, now);
+  if (!past) return {};
+  const auto standing = standing_of(*past, now);
+  if (!standing->state(field).last) return {};
+  season::Chronicle chronicle;
+  season::fold(standing->lookout.plan(field), standing->lookout.diary(field),
+               standing->lookout.hours_of(field),
+               *standing->state(field).last + std::chrono::hours{1}, &chronicle);
+  return chronicle.watered;
+}
+
+Exit list_water(const SettingsPointer& settings, const store::Store& store,
                 const std::string& field) {
   const auto diary = store.diary(field);
   if (!diary) return say(diary.failure());
+  const field::Field& ground = settings->field(field)->field;
+  const season::DiaryView view(*diary, {ground.latitude, ground.longitude, ground.elevation});
+  const auto effects = effects_of(settings, store, field);
+  letters::Desk desk;
+  desk.calendar = &settings->calendar;
+  desk.units = settings->units;
   for (const auto& irrigation : diary->irrigations) {
-    std::cout << irrigation.id << "  " << sentence_of(irrigation, settings.calendar) << "\n";
+    std::cout << irrigation.id << "  " << sentence_of(*settings, irrigation) << "\n";
+    const auto booked = std::find_if(effects.begin(), effects.end(), [&](const auto& one) {
+      return one.irrigation.id == irrigation.id;
+    });
+    const std::string effect = letters::effect_words(
+        booked != effects.end() ? *booked : season::night_of(irrigation, view), desk);
+    if (!effect.empty()) std::cout << "     " << effect << "\n";
   }
   if (diary->irrigations.empty()) std::cout << field << ": nothing is logged.\n";
   return Exit::done;
+}
+
+/// The flowering window without and with a note, as of the newest reading. A note counts from noon
+/// of its day: before that the weather of the last day is carried on.
+void say_window(const SettingsPointer& settings, const field::Scouting& note,
+                std::int64_t written) {
+  const bool of_flowers =
+      note.stage && *note.stage >= field::stage::buds && *note.stage <= field::stage::flowers_done;
+  const auto store = open_to_read(*settings);
+  if (!of_flowers || !store) return;
+  const Instant now = present(*settings, store);
+  auto with = past_from_store(settings, *store, now);
+  if (!with) return;
+  Past without = *with;
+  std::erase_if(without.diaries[note.field].notes,
+                [&](const field::Scouting& known) { return known.id == written; });
+  const Instant noon = settings->calendar.at(CivilTime(note.date) + std::chrono::hours{12});
+  const auto flower_in = [&](const Past& facts) -> std::optional<season::FlowerStatus> {
+    const auto standing = standing_of(facts, now);
+    const season::State& state = standing->state(note.field);
+    if (!state.last) return std::nullopt;
+    const auto& plan = standing->lookout.plan(note.field);
+    const auto& diary = standing->lookout.diary(note.field);
+    const season::State then = season::carried_to(state, plan, diary, noon + one_hour);
+    return season::status(then, plan, diary).flower;
+  };
+  const auto before = flower_in(without), after = flower_in(*with);
+  if (!before || !after) return;
+  const letters::Desk desk = lookout_over(*with).desk(now);
+  const letters::Words words(desk);
+  const auto line = [&](const char* label, const season::FlowerStatus& flower) {
+    std::cout << label << letters::unglued(letters::window_words(flower, words)) << "\n";
+  };
+  line("Flowering window before the note: ", *before);
+  line("Flowering window after the note:  ", *after);
+  if (after->note_held) {
+    std::cout << "The note does not fit the warmth since sowing: both windows are watched until a "
+                 "second note agrees with one of the two.\n";
+  }
 }
 
 Result<field::Scouting> note_of(const settings::Settings& settings, const settings::FieldPlan& plan,
@@ -232,7 +318,7 @@ Exit water(const Invocation& call) {
   if (call.list || call.undo) {
     auto store = call.list ? open_to_read(*settings) : open_to_write(*settings);
     if (!store) return say(store.failure());
-    if (call.list) return list_water(*settings, *store, plan->field.name);
+    if (call.list) return list_water(settings, *store, plan->field.name);
     const auto diary = store->diary(plan->field.name);
     if (!diary) return say(diary.failure());
     if (!holds(diary->irrigations, *call.undo)) return not_there(*call.undo, plan->field.name);
@@ -246,7 +332,7 @@ Exit water(const Invocation& call) {
                  "antherd water north --start \"2026-07-14 20:00\" --end 23:00 --depth \"0.5 in\"");
   }
   std::optional<std::int64_t> written;
-  const std::string sentence = sentence_of(*irrigation, settings->calendar);
+  const std::string sentence = sentence_of(*settings, *irrigation);
   if (call.try_only) {
     std::cout << "Tried, not written: " << plan->field.name << ", " << sentence << ".\n";
   } else {
@@ -288,7 +374,12 @@ Exit scout(const Invocation& call) {
   const auto id = store->add(*note);
   if (!id) return say(id.failure());
   std::cout << "Written as note " << *id << ": " << plan->field.name << ", " << day_text(note->date)
-            << (note->stage ? ", " + field::word_for_stage(*note->stage) : "") << ".\n";
+            << (note->stage ? ", " + field::word_for_stage(*note->stage) : "")
+            << (note->seed_set ? ", seed in " + std::to_string(*note->seed_set) + " of " +
+                                     std::to_string(*note->seed_looked) + " clusters"
+                               : "")
+            << ".\n";
+  say_window(settings, *note, *id);
   return Exit::done;
 }
 

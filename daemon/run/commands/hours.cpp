@@ -65,6 +65,8 @@ ordered_json row_of(const season::Air& air, const season::HourRecord* record) {
       record ? ordered_json(record->part == season::Part::window) : ordered_json(nullptr);
   row["stage"] = known ? ordered_json(rounded(record->stage, 4)) : ordered_json(nullptr);
   row["verdict"] = air.measured ? verdict_of(*air.measured) : "no data";
+  row["depletion_mm"] = record ? number(record->missing) : ordered_json(nullptr);
+  row["ks"] = record && record->ks ? ordered_json(rounded(*record->ks, 4)) : ordered_json(nullptr);
   return row;
 }
 

@@ -124,9 +124,10 @@ Events events_of(const service::Lookout& lookout, const std::string& name, HourS
   sum["hours_seen"] = state.crop.hours - state.crop.unseen;
   sum["hours_unseen"] = state.crop.unseen;
   sum["hot_days"] = state.heat.hot_days;
-  sum["exposed_share"] = rounded(state.heat.exposed_share, 6);
-  sum["affected_low"] = rounded(state.heat.affected_low, 6);
-  sum["affected_high"] = rounded(state.heat.affected_high, 6);
+  const season::Exposure met = season::exposure_of(state.heat, state.crop, plan);
+  sum["exposed_share"] = rounded(met.exposed, 6);
+  sum["affected_low"] = rounded(met.low, 6);
+  sum["affected_high"] = rounded(met.high, 6);
   return events;
 }
 

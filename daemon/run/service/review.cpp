@@ -6,6 +6,7 @@
 #include <cstdio>
 #include <map>
 #include <numbers>
+#include <set>
 
 namespace antherd::service {
 namespace {
@@ -59,8 +60,66 @@ struct Span {
   Instant from, to;
 };
 
-letters::FieldReview review_field(const Lookout& lookout, const std::string& name,
-                                  const Period& period, const Span& span) {
+/// Days with an hour at the severe threshold in the 30 days up to a count of another season, from
+/// the stored hours of the field's first station; nothing where none are kept.
+std::optional<int> hot_days_before(const season::Plan& plan, const store::Store& store,
+                                   CivilDay day) {
+  if (plan.field.stations.empty()) return std::nullopt;
+  const HourStart from = hour_of(plan.calendar.start_of(day - days{30}));
+  const HourStart to = hour_of(plan.calendar.start_of(day + days{1}));
+  const auto hours = store.hours(plan.field.stations.front(), from, to);
+  if (!hours || hours->empty()) return std::nullopt;
+  std::set<CivilDay> hot;
+  for (const weather::Hour& hour : *hours) {
+    const season::Air air = season::air_at_field(plan, hour.start, &hour, 0);
+    const bool severe = air.temperature && *air.temperature >= plan.rules.heat.severe;
+    if (severe) hot.insert(plan.calendar.day_of(Instant(hour.start)));
+  }
+  return static_cast<int>(hot.size());
+}
+
+/// The counts of the period beside the heat before them; of a whole season those of all years.
+std::vector<letters::SeedCount> seed_counts(const season::Plan& plan,
+                                            const season::DiaryView& diary,
+                                            const season::State& state, const season::Exposure& met,
+                                            const Period& period, const store::Store& store) {
+  std::vector<letters::SeedCount> counts;
+  for (const field::Scouting& note : diary.notes) {
+    const bool wanted =
+        note.date <= period.last && (period.whole_season || note.date >= period.first);
+    if (!wanted || !note.seed_set || !note.seed_looked) continue;
+    letters::SeedCount count{note.date, *note.seed_set, *note.seed_looked, {}, {}};
+    if (note.date < plan.field.sown) {
+      count.hot_days = hot_days_before(plan, store, note.date);
+    } else {
+      if (state.crop.known()) count.exposed = met.exposed_until(note.date);
+      count.hot_days = static_cast<int>(std::count_if(
+          state.heat.days.begin(), state.heat.days.end(), [&](const season::DayHeat& day) {
+            return day.severe && day.date <= note.date && note.date - day.date <= days{30};
+          }));
+    }
+    counts.push_back(count);
+  }
+  return counts;
+}
+
+/// What each irrigation of the span did; one that is not booked yet is told without its soil.
+std::vector<season::Watered> watered_in(const Span& span, const season::DiaryView& diary,
+                                        const season::Chronicle& chronicle) {
+  std::vector<season::Watered> found;
+  for (const field::Irrigation& irrigation : diary.irrigations) {
+    if (irrigation.start < span.from || irrigation.start >= span.to) continue;
+    const auto booked = std::find_if(
+        chronicle.watered.begin(), chronicle.watered.end(),
+        [&](const season::Watered& one) { return one.irrigation.same_as(irrigation); });
+    found.push_back(booked != chronicle.watered.end() ? *booked
+                                                      : season::night_of(irrigation, diary));
+  }
+  return found;
+}
+
+letters::FieldReview review_field(const Lookout& lookout, const store::Store& store,
+                                  const std::string& name, const Period& period, const Span& span) {
   const season::Plan& plan = lookout.plan(name);
   const season::DiaryView& diary = lookout.diary(name);
   season::Chronicle chronicle;
@@ -91,18 +150,19 @@ letters::FieldReview review_field(const Lookout& lookout, const std::string& nam
   review.hours_expected =
       static_cast<int>(std::max<long>(0, (hour_of(span.to) - expected_from).count()));
   review.warm_nights = state.heat.warm_nights - warm_before;
-  review.affected_low = state.heat.affected_low;
-  review.affected_high = state.heat.affected_high;
+  const season::Exposure met = season::exposure_of(state.heat, state.crop, plan);
+  review.affected_low = met.low;
+  review.affected_high = met.high;
+  for (const season::DayExposure& day : within(met.days, period)) {
+    if (day.severe && day.share > 0) review.exposed_days.push_back(day);
+  }
+  review.seed_counts = seed_counts(plan, diary, state, met, period, store);
   for (const auto& episode : state.episodes) {
     const bool touches =
         episode.start < span.to && (!episode.closed || *episode.closed > span.from);
     if (touches) review.episodes.push_back(episode);
   }
-  for (const auto& irrigation : diary.irrigations) {
-    if (irrigation.start >= span.from && irrigation.start < span.to) {
-      review.irrigations.push_back(irrigation);
-    }
-  }
+  review.irrigations = watered_in(span, diary, chronicle);
   review.notes = within(diary.notes, period);
   return review;
 }
@@ -228,6 +288,7 @@ Period season_of(const settings::Settings& settings, Instant now) {
     period.first = std::min(period.first, field.field.sown);
   }
   period.title = "Season " + std::to_string(static_cast<int>(CivilDate{period.first}.year()));
+  period.whole_season = true;
   return period;
 }
 
@@ -241,7 +302,7 @@ letters::Review make_review(const Lookout& lookout, const store::Store& store, c
   const Span span{settings.calendar.start_of(period.first),
                   std::min(now, settings.calendar.start_of(period.last + days{1}))};
   for (const auto& field : settings.fields) {
-    review.fields.push_back(review_field(lookout, field.field.name, period, span));
+    review.fields.push_back(review_field(lookout, store, field.field.name, period, span));
   }
   const HourStart first_hour = hour_of(span.from), end_hour = hour_of(span.to);
   for (const auto& station : settings.stations) {

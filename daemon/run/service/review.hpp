@@ -13,8 +13,9 @@ namespace antherd::service {
 constexpr auto mail_looks_back = std::chrono::days{10};
 
 struct Period {
-  std::string title;         // "Week 2026-W28"
-  CivilDay first{}, last{};  // both included
+  std::string title;          // "Week 2026-W28"
+  CivilDay first{}, last{};   // both included
+  bool whole_season = false;  // with the seed counts of all years
 };
 
 /// What was last said of each episode that is still open.

@@ -1,5 +1,6 @@
 // Whole letters, compared with the texts in expected/. A changed letter is read before its text is
 // accepted: set ANTHERD_WRITE_EXPECTED to write what the code says now.
+#include <algorithm>
 #include <cstdlib>
 #include <fstream>
 #include <iostream>
@@ -105,6 +106,61 @@ TEST_CASE("heat letters read as written") {
     recipient.brief = true;
     compare("heat-brief", {scene::heat(Saying::opened, Level::severe)}, desk, recipient);
   }
+}
+
+TEST_CASE("letters of a thirsty crop read as written") {
+  letters::Desk desk = scene::desk();
+  season::FieldStatus& status = desk.fields["north bench"];
+  status.water = {0.52, 0, Millimetre(119), Millimetre(160), CelsiusDifference(2.1)};
+  SECTION("heat") { compare("heat-thirsty", {scene::heat(Saying::opened, Level::severe)}, desk); }
+  SECTION("well watered") {
+    status.water = {1.0, 4, Millimetre(41), Millimetre(160), CelsiusDifference(-1.0)};
+    compare("heat-watered", {scene::heat(Saying::opened, Level::severe)}, desk);
+  }
+}
+
+TEST_CASE("a wide window and a held note read as written") {
+  letters::Desk desk = scene::desk();
+  season::FlowerStatus& flower = desk.fields["north bench"].flower;
+  SECTION("wide: nobody has noted flowers") {
+    flower = scene::south().flower;
+    flower.window_first = scene::july(12);
+    flower.window_last = scene::july(12) + std::chrono::days{66};
+    flower.day_of_window = 2;
+    flower.days_in_window = 67;
+    flower.flower_first = scene::july(26);
+    flower.flower_first_days = 9;
+    compare("heat-wide-window", {scene::heat(Saying::opened, Level::severe)}, desk);
+  }
+  SECTION("held: the screen and the notice show both windows") {
+    flower.note_held = true;
+    flower.without_note_first = scene::july(20);
+    flower.without_note_last = scene::july(20) + std::chrono::days{40};
+    flower.with_note_first = scene::july(2);
+    flower.with_note_last = scene::july(22);
+    compare("now-held", letters::compose_now(desk, {}, {}));
+    desk.now = scene::at(14, 12, 5);
+    alerts::Telling telling = scene::notice(Kind::stage, "note-held-2026-07-08");
+    telling.day = scene::july(8);
+    telling.about = scene::at(14, 12);
+    compare("note-held", {telling}, desk);
+  }
+}
+
+TEST_CASE("a mildew letter of two fields reads as written") {
+  letters::Desk desk = scene::desk();
+  desk.now = scene::at(14, 19, 5);
+  desk.next_daily = scene::at(15, 19);
+  season::FieldStatus& south = desk.fields["south bench"];
+  south.irrigation = field::Method::overhead;
+  south.humid = desk.fields["north bench"].humid;
+  alerts::Telling other = scene::humid(Saying::opened, Level::moderate);
+  other.subject = "south bench";
+  other.figure = 2;
+  const std::vector<alerts::Telling> both{scene::humid(Saying::opened, Level::severe), other};
+  compare("humid-merged", both, desk);
+  const auto made = letters::compose(both, std::vector{scene::owner()}, desk);
+  CHECK(std::count(made.at(0).body.begin(), made.at(0).body.end(), '\n') <= 85);
 }
 
 TEST_CASE("mildew letters read as written") {
@@ -230,6 +286,17 @@ TEST_CASE("notices read as written") {
     telling.day = scene::july(16);
     desk.fields["north bench"].flower.window_last = scene::july(16);
     compare("window-closes", {telling}, desk);
+  }
+  SECTION("seeds to count") {
+    desk.now = scene::at(24, 7, 5);
+    alerts::Telling telling = scene::notice(Kind::stage, "seed-set");
+    telling.day = scene::july(14);
+    telling.start = telling.about = scene::at(24, 7);
+    season::FieldStatus& status = desk.fields["north bench"];
+    status.heat.today = season::HeatDay{};
+    status.heat.today.date = scene::july(24);
+    desk.next_daily = scene::at(24, 19);
+    compare("seed-set", {telling}, desk);
   }
   SECTION("streak") {
     desk.now = scene::at(14, 23, 5);

@@ -273,17 +273,34 @@ void add_episodes(letters::FieldReview& field) {
 }
 
 void add_diary(letters::FieldReview& field) {
-  field::Irrigation water;
-  water.field = "north bench";
-  water.start = at(9, 20);
-  water.end = at(9, 23);
-  water.depth = Millimetre(12.7);
-  water.set = 1;
-  field.irrigations = {water};
-  water.start = at(10, 22);
-  water.end = at(11, 1, 30);
-  water.depth.reset();
-  field.irrigations.push_back(water);
+  season::Watered water;
+  water.irrigation.field = "north bench";
+  water.irrigation.start = at(9, 20);
+  water.irrigation.end = at(9, 23);
+  water.irrigation.depth = Millimetre(12.7);
+  water.irrigation.set = 1;
+  water.before = Millimetre(42);
+  water.after = Millimetre(29.3);
+  water.drained = Millimetre(0);
+  water.wet_until = at(10, 5);
+  season::Watered unknown;
+  unknown.irrigation = water.irrigation;
+  unknown.irrigation.start = at(10, 22);
+  unknown.irrigation.end = at(11, 1, 30);
+  unknown.irrigation.depth.reset();
+  unknown.wet_until = at(11, 5);
+  season::Watered early = water;
+  early.irrigation.start = at(12, 15);
+  early.irrigation.end = at(12, 17, 45);
+  early.before = Millimetre(10);
+  early.after = Millimetre(0);
+  early.drained = Millimetre(2.7);
+  early.limit_near = true;
+  field.irrigations = {water, unknown, early};
+  field.exposed_days = {{july(9), true, 0.05, 0.002, 0.06}, {july(10), true, 0.07, 0.004, 0.12}};
+  field.seed_counts = {{july(12), 14, 20, 0.12, 2},
+                       {july(12) - std::chrono::days{365}, 17, 20, {}, 0},
+                       {july(12) - std::chrono::days{730}, 19, 20, {}, {}}};
   field::Scouting note;
   note.field = "north bench";
   note.date = july(8);

@@ -49,6 +49,13 @@ void set_flowers(season::FieldStatus& status, Case& one) {
     status.flower.last_note_stage.reset();
   }
   status.flower.note_held = status.flower.scouted && one.yes();
+  if (status.flower.note_held && one.yes()) {
+    status.flower.without_note_first = scene::july(10);
+    status.flower.without_note_last = scene::july(28);
+    status.flower.with_note_first = scene::july(20);
+    if (one.yes()) status.flower.with_note_last = scene::july(31);
+  }
+  if (one.pick(4) == 0) status.flower.days_in_window = 67;
   status.flower.implausible = one.pick(5) == 0;
   status.flower.filled_share = one.pick(3) == 0 ? 0.04 : 0;
   if (one.pick(3) == 0) status.flower.flower_first.reset();
@@ -83,7 +90,13 @@ void set_weather(season::FieldStatus& status, Case& one) {
   status.data.rain_measured = one.yes();
   status.data.whole_degrees = one.yes();
   status.data.shield_may_read_high = one.yes();
-  if (one.yes()) status.days_to_stress = static_cast<int>(one.pick(5));
+  if (one.yes()) status.water.days_to_stress = static_cast<int>(one.pick(5));
+  if (one.yes()) {
+    status.water.ks = 0.25 * static_cast<double>(one.pick(5));
+    status.water.missing = Millimetre(40.0 * static_cast<double>(one.pick(5)));
+    status.water.root_zone = Millimetre(160);
+    status.water.canopy = CelsiusDifference(static_cast<double>(one.pick(11)) - 5);
+  }
   if (one.yes()) status.last_irrigation_end.reset();
   if (one.yes()) {
     weather::Flag flag;
@@ -213,7 +226,8 @@ TEST_CASE("letters about heat and mildew keep the rules in every state") {
 TEST_CASE("letters of the other kinds keep the rules in every state") {
   std::vector<alerts::Telling> kinds{scene::silent(Saying::opened), scene::silent(Saying::ended),
                                      scene::silent(Saying::reminder), scene::doubtful()};
-  for (const char* key : {"window-near", "window-opens", "window-closes", "note-held-2026-07-08"}) {
+  for (const char* key :
+       {"window-near", "window-opens", "window-closes", "note-held-2026-07-08", "seed-set"}) {
     kinds.push_back(scene::notice(Kind::stage, key));
     kinds.push_back(kinds.back());
     kinds.back().day = scene::july(16);

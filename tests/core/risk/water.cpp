@@ -71,3 +71,35 @@ TEST_CASE("soil that roots reach later brings what it held at sowing") {
   book_day(half, day);
   CHECK(half.depletion.value == Approx(50));
 }
+
+TEST_CASE("an irrigation fills what is missing, and what is more drains") {
+  WaterAccount account = open_account(160, 1.0);
+  WaterDay day;
+  day.stage = 65;
+  day.reference = Millimetre(6);
+  for (int i = 0; i < 5; ++i) book_day(account, day);  // 30 mm missing
+  day.rain = Millimetre(4);
+  const std::vector<std::optional<Millimetre>> depths{Millimetre(12.7), Millimetre(20)};
+  const auto poured = pour(account, day, depths);
+  // By hand: 30 − 4 = 26; 26 − 12.7 = 13.3; 13.3 − 20 = −6.7.
+  REQUIRE(poured.size() == 2);
+  CHECK(poured[0]->before.value == Approx(26));
+  CHECK(poured[0]->after.value == Approx(13.3));
+  CHECK(poured[0]->drained.value == Approx(0).margin(1e-9));
+  CHECK(poured[1]->after.value == 0);
+  CHECK(poured[1]->drained.value == Approx(6.7));
+  day.irrigation = Millimetre(32.7);
+  book_day(account, day);
+  CHECK(account.missing()->value == Approx(6));  // the day's own use, as the account books it
+  const std::vector<std::optional<Millimetre>> unknown{std::nullopt, Millimetre(5)};
+  for (const auto& one : pour(account, day, unknown)) CHECK_FALSE(one);
+  CHECK_FALSE(pour(open_account(160, std::nullopt), day, depths)[0]);
+}
+
+TEST_CASE("a thirsty canopy is warmer than the air, a watered one in dry air cooler") {
+  // By hand: 2.5 − 1.9 · 2 = −1.3; −1.3 + 0.5 · 6.3 = 1.85.
+  CHECK(canopy_minus_air(Kilopascal(2), 1.0).value == Approx(-1.3));
+  CHECK(canopy_minus_air(Kilopascal(2), 0.5).value == Approx(1.85));
+  CHECK(canopy_minus_air(Kilopascal(2), 0.0).value == Approx(5));
+  CHECK(canopy_minus_air(Kilopascal(6), 1.0).value == -5);  // 2.5 − 11.4, clamped
+}

@@ -58,7 +58,7 @@ TEST_CASE("a note far off is held, and the window spans both") {
   SECTION("alone") {
     const Told told = tell(plan, 125 * 24, cool, {{}, {early}});
     CHECK(told.state.crop.belief.mean == 1.0);
-    CHECK(told.state.crop.held);
+    CHECK(told.state.crop.held.size() == 1);
     // with it: m = (44.444 + 237.222)/588.889 = 0.478302, opens 700 · 0.478302 − 1.6449 · 28.846 =
     // 287.4 °C·d, passed at 305; the close is the first estimate's
     CHECK(first_hour_in(told, Part::window) == 30 * 24 + 12);
@@ -67,14 +67,14 @@ TEST_CASE("a note far off is held, and the window spans both") {
   }
   SECTION("a second note agrees with the estimate") {
     const Told told = tell(plan, 70 * 24, cool, {{}, {early, note(plan, 65, 60, true)}});
-    CHECK_FALSE(told.state.crop.held);
+    CHECK(told.state.crop.held.empty());
     CHECK(told.state.crop.belief.mean == Approx(0.940566).margin(1e-6));
   }
   SECTION("a second note agrees with the held one") {
     // k = 385/810 = 0.47531, sd √((30/810)² + (0.25 · 110/810)²) = 0.050244, weight 396.12:
     // m = (588.889 · 0.478302 + 396.12 · 0.47531)/985.01 = 0.477099
     const Told told = tell(plan, 40 * 24, cool, {{}, {early, note(plan, 38, 65, true)}});
-    CHECK_FALSE(told.state.crop.held);
+    CHECK(told.state.crop.held.empty());
     CHECK(told.state.crop.belief.mean == Approx(0.477099).margin(2e-6));
   }
   SECTION("a second note agrees with both and lies nearer to the held one") {
@@ -82,9 +82,41 @@ TEST_CASE("a note far off is held, and the window spans both") {
     // is 2.69 σ; 0.0958 from 0.478302, √(0.0412² + 0.0502²) = 0.0650, 1.47 σ. So m = (588.889 ·
     // 0.478302 + 396.12 · 0.574074)/985.01 = 0.516817
     const Told told = tell(plan, 48 * 24, cool, {{}, {early, note(plan, 46, 65, true)}});
-    CHECK_FALSE(told.state.crop.held);
+    CHECK(told.state.crop.held.empty());
     CHECK(told.state.crop.belief.mean == Approx(0.516817).margin(2e-6));
   }
+}
+
+TEST_CASE("a second note that agrees with neither is held beside the first") {
+  const Plan plan = plan_at_greenwich();
+  const field::Scouting early = note(plan, 30, 60, true);
+  // buds that began at 955 °C·d: k = 955/400 = 2.39, far from 1 and from the first note's 0.436
+  const field::Scouting late = note(plan, 95, 51, true);
+  const Told two = tell(plan, 96 * 24, cool, {{}, {early, late}});
+  CHECK(two.state.crop.held.size() == 2);
+  CHECK(two.state.crop.belief.mean == 1.0);
+  // the first note's window still counts: it opens at 287.4 °C·d (see above), not at 527.3
+  CHECK(window_edges(two.state.crop, plan).opens.value == Approx(287.4).margin(0.1));
+  CHECK(two.notices("note-held-2026-05-31").size() == 1);
+  CHECK(two.notices("note-held-2026-08-04").size() == 1);
+  // full flower that began on day 96: k = 965/810 = 1.191 agrees with the estimate alone
+  const Told settled = tell(plan, 98 * 24, cool, {{}, {early, late, note(plan, 96, 65, true)}});
+  CHECK(settled.state.crop.held.empty());
+  CHECK(settled.state.crop.belief.mean > 1.0);
+  CHECK(settled.state.crop.belief.mean < 1.2);
+}
+
+TEST_CASE("a held note keeps two windows apart, and both are told") {
+  const Plan plan = plan_at_greenwich();
+  const field::Diary diary{{}, {note(plan, 30, 60, true)}};
+  const Told told = tell(plan, 60 * 24, cool, diary);
+  const FieldStatus seen = status(told.state, plan, DiaryView(diary, plan.place()));
+  REQUIRE(seen.flower.without_note_first);
+  REQUIRE(seen.flower.with_note_first);
+  // 527.29 °C·d is crossed on day 52, 287.4 on day 28; the closes lie ahead or behind likewise.
+  CHECK(*seen.flower.without_note_first == plan.field.sown + days{52});
+  CHECK(*seen.flower.with_note_first == plan.field.sown + days{28});
+  CHECK(*seen.flower.with_note_last < *seen.flower.without_note_last);
 }
 
 TEST_CASE("flowers done closes the window at the day's end, flowers seen later open it again") {
@@ -163,7 +195,7 @@ TEST_CASE("ripe by the estimate alone does not silence a field whose note is hel
   // k = 1405/890 = 1.579 (middle of 810 and 970) is 0.579 from 1, beyond 3 √(0.15² + 0.077²).
   const Told told = tell(plan, 142 * 24, cool, {{}, {note(plan, 140, 65, false)}});
   CHECK(told.hour(140 * 24).part == Part::after);
-  REQUIRE(told.state.crop.held);
+  REQUIRE(told.state.crop.held.size() == 1);
   CHECK(told.state.crop.part == Part::window);
   CHECK(told.state.watch == Watch::watched);
 }
@@ -192,4 +224,11 @@ TEST_CASE("a note moves the date of first anthers back to where it puts it") {
   CHECK(day == static_cast<long>(std::ceil(needed / 10.0)) - 1);
   CHECK(day > 72);  // without the history it would still be day 69
   CHECK(day <= 76);
+  // So does the day on which the window opened: the prior had opened it at 527.29, on day 52.
+  const double opens = window_edges(told.state.crop, plan).opens.value;
+  REQUIRE(seen.flower.window_first);
+  CHECK(*seen.flower.window_first ==
+        plan.field.sown + days{static_cast<int>(std::ceil(opens / 10.0)) - 1});
+  CHECK(*seen.flower.window_first > plan.field.sown + days{60});
+  CHECK(*seen.flower.day_of_window == 80 - (*seen.flower.window_first - plan.field.sown).count());
 }

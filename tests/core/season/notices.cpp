@@ -1,5 +1,7 @@
 // The notices of a season: when each is given, and that it is given once. At 10 °C·d a day the
 // window opens at 527.29 °C·d on day 52 and closes at 1175.32 on day 117 (flowering.cpp).
+#include <algorithm>
+
 #include "scene.hpp"
 #include "support/catch.hpp"
 
@@ -112,4 +114,33 @@ TEST_CASE("ripe and sown long ago are told once each, and then the field is quie
   CHECK(old.notices("sown-long-ago")[0].at == seven(plan, 241));
   CHECK(old.state.watch == Watch::sown_long_ago);
   CHECK(old.notices("ripe").empty());
+}
+
+TEST_CASE("ten days after Severe heat in flower a count of seeds is asked for, once") {
+  Plan plan = plan_at_greenwich();  // the window is open from day 52 to day 117
+  const auto asked = [&](std::vector<int> hot, field::Diary diary = {}) {
+    const auto weather = [hot](int n) -> std::optional<Weather> {
+      const bool day = std::find(hot.begin(), hot.end(), n / 24) != hot.end();
+      return day && n % 24 == 13 ? Weather{35, 20} : Weather{};
+    };
+    return tell(plan, 110 * 24, weather, std::move(diary)).notices("seed-set");
+  };
+  const auto counted_on = [&](int day) {
+    field::Scouting count = note(plan, day, 65, false);
+    count.stage.reset();
+    count.seed_set = 14;
+    count.seed_looked = 20;
+    return field::Diary{{}, {count}};
+  };
+  const auto once = asked({80, 81});
+  REQUIRE(once.size() == 1);
+  CHECK(once[0].at == seven(plan, 90));
+  CHECK(once[0].day == plan.field.sown + days{80});
+  CHECK(asked({80, 83}).size() == 1);  // two episodes, one count serves
+  CHECK(asked({80, 88}).size() == 2);
+  CHECK(asked({80}, counted_on(89)).empty());
+  CHECK(asked({80}, counted_on(80)).size() == 1);  // before any seed could swell
+  CHECK(asked({47}).empty());                      // before flower: no open flower met it
+  plan.field.harvested = plan.field.sown + days{85};
+  CHECK(asked({80}).empty());
 }
