@@ -2,6 +2,7 @@
 #include "judge.hpp"
 
 #include <algorithm>
+#include <array>
 
 #include "core/letters/rules.hpp"
 
@@ -36,7 +37,14 @@ std::string squeezed(const std::string& text) {
   return kept;
 }
 
-bool timed(const LetterRow& letter) { return letter.kind == "daily" || letter.kind == "weekly"; }
+bool timed(const LetterRow& letter) {
+  return letter.kind == "daily" || letter.kind == "weekly" || letter.kind == "digest";
+}
+
+int rank(const std::string& severity) {
+  const std::array<const char*, 4> words{"minor", "moderate", "severe", "extreme"};
+  return static_cast<int>(std::find(words.begin(), words.end(), severity) - words.begin());
+}
 
 }  // namespace
 
@@ -53,6 +61,7 @@ bool Judge::told(const letters::Recipient& one, const std::string& subject) cons
   const auto has = [&](const std::string& field) {
     return std::find(one.fields.begin(), one.fields.end(), field) != one.fields.end();
   };
+  if (subject == "antherd") return true;
   if (settings_->station(subject) == nullptr) return has(subject);
   return std::any_of(settings_->fields.begin(), settings_->fields.end(), [&](const auto& plan) {
     const auto& used = plan.field.stations;
@@ -100,7 +109,7 @@ void Judge::judge_together(const std::vector<Said>& said, const std::vector<Seen
   }
   for (const Said& s : said) {
     for (const auto& one : settings_->recipients) {
-      if (one.brief || !told(one, s.row.subject)) continue;
+      if (one.brief || s.row.kind == "mail_trouble" || !told(one, s.row.subject)) continue;
       const bool named = std::any_of(letters.begin(), letters.end(), [&](const Seen& l) {
         return l.row.recipient == one.address && names(l.row, s.row.subject);
       });
@@ -193,26 +202,30 @@ void Judge::judge_letter(const Seen& seen) {
   judge_limit(seen);
 }
 
-/// Past the daily limit only raises and Extreme go before the next morning at six.
+/// Past six letters in an hour, or the day's limit, only raises, Extreme and what is graver than
+/// all of the day before go to one address; the rest is held for its digest.
 void Judge::judge_limit(const Seen& seen) {
-  if (!seen.clock_right || !settings_->mail) return;
+  const LetterRow& row = seen.row;
+  if (!seen.clock_right || !settings_->mail || row.kind == "daily" || row.kind == "weekly") return;
+  if (row.state == "held" || row.raise || row.severity == "extreme") return;
   const auto& calendar = settings_->calendar;
-  const CivilDay today = calendar.day_of(seen.at);
-  int before = 0;
+  int in_hour = 0, in_day = 0;
+  bool graver = true;
   for (const auto& [id, other] : letters_) {
-    if (other.row.recipient == seen.row.recipient && other.clock_right &&
-        calendar.day_of(other.at) == today) {
-      ++before;
-    }
+    const bool counts = other.row.recipient == row.recipient && other.row.state != "held" &&
+                        other.row.kind != "daily" && other.row.kind != "weekly";
+    if (!counts) continue;
+    const Instant at = other.row.next_try;
+    if (at > row.next_try - hours{1} && at <= row.next_try) ++in_hour;
+    if (calendar.day_of(at) == calendar.day_of(row.next_try)) ++in_day;
+    const bool lately = at > row.next_try - hours{24} && at <= row.next_try;
+    if (lately && rank(other.row.severity) >= rank(row.severity)) graver = false;
   }
-  if (before < settings_->mail->at_most_per_day || seen.row.raise) return;
-  if (seen.row.severity == "Extreme" || seen.row.severity == "extreme") return;
-  const Instant morning = calendar.at(CivilTime(today + days{1}) + hours{6});
-  if (seen.row.next_try < morning) {
-    complaints_.add("letters keep their daily limit", "\"" + seen.row.subject + "\" is number " +
-                                                          std::to_string(before + 1) + " to " +
-                                                          seen.row.recipient);
-  }
+  if (graver || (in_hour < 6 && in_day < settings_->mail->at_most_per_day)) return;
+  complaints_.add("letters keep their limits", "\"" + row.subject + "\" to " + row.recipient +
+                                                   " after " + std::to_string(in_hour) +
+                                                   " in an hour, " + std::to_string(in_day) +
+                                                   " in a day");
 }
 
 void Judge::handed(Witness& witness, std::int64_t item, const letters::Letter& letter) {

@@ -38,7 +38,7 @@ class Judge {
 
   int letters() const { return static_cast<int>(letters_.size()); }
   int alerts() const { return static_cast<int>(said_.size()); }
-  int sent = 0, parked = 0, repeats = 0;
+  int sent = 0, parked = 0, merged = 0, repeats = 0;
 
  private:
   struct Seen {

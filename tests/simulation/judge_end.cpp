@@ -64,6 +64,11 @@ void Judge::judge_mail(Witness& witness, const std::vector<Delivery>& taken) {
       ++parked;
       if (row.answer.empty())
         complaints_.add("nothing is lost", what + " is parked without a word");
+    } else if (row.state == "merged") {
+      ++merged;
+      if (identities_.count(row.digest) == 0) {
+        complaints_.add("nothing is lost", what + " is named in a digest that is not there");
+      }
     } else {
       complaints_.add("nothing is lost", what + " is still " + row.state + ": " + row.answer);
     }

@@ -45,6 +45,7 @@ void Tally::add(const Tally& other) {
   letters += other.letters;
   sent += other.sent;
   parked += other.parked;
+  merged += other.merged;
   repeats += other.repeats;
   alerts += other.alerts;
   heaviest = std::max(heaviest, other.heaviest);
@@ -320,6 +321,7 @@ void Season::finish() {
   tally_.alerts = judge_.alerts();
   tally_.sent = judge_.sent;
   tally_.parked = judge_.parked;
+  tally_.merged = judge_.merged;
   tally_.repeats = judge_.repeats;
   end_desk();
   disk_.wake();

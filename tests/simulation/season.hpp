@@ -24,7 +24,7 @@ namespace simulation {
 /// What a season came to, for the line that is printed.
 struct Tally {
   int turns = 0, kills = 0, cuts = 0, opens = 0, faults = 0;
-  int letters = 0, sent = 0, parked = 0, repeats = 0, alerts = 0;
+  int letters = 0, sent = 0, parked = 0, merged = 0, repeats = 0, alerts = 0;
   long heaviest = 0;  // bytes that a desk gave back when it ended
   void add(const Tally& other);
 };

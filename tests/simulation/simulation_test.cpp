@@ -58,10 +58,11 @@ TEST_CASE("no season breaks a rule, whatever the weather and the faults", "[simu
   const std::chrono::duration<double> wall = std::chrono::steady_clock::now() - begun;
   std::printf(
       "simulation: %d seasons of %d kinds, %d faults ordered, %d turns; %d things said, %d "
-      "letters: %d sent, %d parked, %d repeated and marked; %d kills, %d power cuts, %d starts; "
+      "letters: %d sent, %d parked, %d in digests, %d repeated and marked; %d kills, %d power "
+      "cuts, %d starts; "
       "at most %ld KiB in memory; %.0f s, %.0f s of processor\n",
       seasons, seasons / std::max(1, seeds), sum.faults, sum.turns, sum.alerts, sum.letters,
-      sum.sent, sum.parked, sum.repeats, sum.kills, sum.cuts, sum.opens, sum.heaviest / 1024,
-      wall.count(), cpu_seconds() - cpu);
+      sum.sent, sum.parked, sum.merged, sum.repeats, sum.kills, sum.cuts, sum.opens,
+      sum.heaviest / 1024, wall.count(), cpu_seconds() - cpu);
   CHECK(seasons > 0);
 }

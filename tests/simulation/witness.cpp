@@ -8,7 +8,8 @@ namespace {
 
 constexpr const char* letter_columns =
     "SELECT id, identity, recipient, subject, body, kind, severity, decided, valid_until, still, "
-    "rise, state, attempts, doubts, next_try, first_try, ended, answer FROM letter WHERE id ";
+    "rise, state, attempts, doubts, next_try, first_try, ended, answer, digest FROM letter "
+    "WHERE id ";
 
 LetterRow letter_of(sqlite3_stmt* row) {
   LetterRow letter;
@@ -30,6 +31,7 @@ LetterRow letter_of(sqlite3_stmt* row) {
   letter.first_try = maybe_at(row, 15);
   letter.ended = maybe_at(row, 16);
   letter.answer = text_at(row, 17);
+  letter.digest = text_at(row, 18);
   return letter;
 }
 

@@ -25,7 +25,7 @@ struct SaidRow {
 
 struct LetterRow {
   std::int64_t id = 0;
-  std::string identity, recipient, subject, body, kind, severity, still, state, answer;
+  std::string identity, recipient, subject, body, kind, severity, still, state, answer, digest;
   Instant decided, next_try;
   std::optional<Instant> valid_until, first_try, ended;
   bool raise = false;

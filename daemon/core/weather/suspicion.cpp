@@ -66,25 +66,44 @@ struct Difference {
 
 }  // namespace
 
-std::vector<Hour> with_suspicions(std::vector<Hour> hours, const Station& station) {
-  UnitWatch unit(station.place);
-  ClockWatch clock(station);
+struct Suspector::Watchers {
+  explicit Watchers(const Station& station)
+      : place(station.place), unit(station.place), clock(station) {}
+
+  Place place;
+  UnitWatch unit;
+  ClockWatch clock;
   LowTopWatch low_top;
   HighTopWatch high_top;
-  for (Hour& hour : hours) {
-    const SunnyHour sunny = in_the_sun(hour, station.place);
-    const auto wrong = unit.look(sunny);
-    const auto late = clock.look(sunny);
-    // What stands in a wrong column says nothing of the hygrometer.
-    const auto low = wrong ? std::nullopt : low_top.look(sunny);
-    const auto high = wrong ? std::nullopt : high_top.look(sunny);
-    if (!wrong && !late && !low && !high) continue;
-    if (late && !wrong) raise(hour, Element::temperature, Verdict::suspect, *late, hour.n);
-    if (low) raise(hour, Element::humidity, Verdict::suspect, *low, hour.n_humidity);
-    if (high) raise(hour, Element::humidity, Verdict::suspect, *high, hour.n_humidity);
-    if (wrong) write_unit(hour, *wrong);
-    sort_flags(hour);
-  }
+};
+
+Suspector::Suspector(const Station& station) : watchers_(std::make_unique<Watchers>(station)) {}
+Suspector::Suspector(const Suspector& other)
+    : watchers_(std::make_unique<Watchers>(*other.watchers_)) {}
+Suspector& Suspector::operator=(const Suspector& other) {
+  *watchers_ = *other.watchers_;
+  return *this;
+}
+Suspector::~Suspector() = default;
+
+void Suspector::judge(Hour& hour) {
+  const SunnyHour sunny = in_the_sun(hour, watchers_->place);
+  const auto wrong = watchers_->unit.look(sunny);
+  const auto late = watchers_->clock.look(sunny);
+  // What stands in a wrong column says nothing of the hygrometer.
+  const auto low = wrong ? std::nullopt : watchers_->low_top.look(sunny);
+  const auto high = wrong ? std::nullopt : watchers_->high_top.look(sunny);
+  if (!wrong && !late && !low && !high) return;
+  if (late && !wrong) raise(hour, Element::temperature, Verdict::suspect, *late, hour.n);
+  if (low) raise(hour, Element::humidity, Verdict::suspect, *low, hour.n_humidity);
+  if (high) raise(hour, Element::humidity, Verdict::suspect, *high, hour.n_humidity);
+  if (wrong) write_unit(hour, *wrong);
+  sort_flags(hour);
+}
+
+std::vector<Hour> with_suspicions(std::vector<Hour> hours, const Station& station) {
+  Suspector suspector(station);
+  for (Hour& hour : hours) suspector.judge(hour);
   return hours;
 }
 

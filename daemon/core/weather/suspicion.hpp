@@ -4,6 +4,7 @@
 // This file must not know fields, crops or letters.
 #pragma once
 
+#include <memory>
 #include <optional>
 #include <span>
 #include <vector>
@@ -21,6 +22,22 @@ namespace antherd::weather {
 ///   about humidity (value: the highest reading, %) are suspect: the values are used.
 /// @param hours  one station's hours as gathered, in time order, gaps allowed
 std::vector<Hour> with_suspicions(std::vector<Hour> hours, const Station& station);
+
+/// The same hour by hour: what was seen so far of one station. A copy goes on from where it was
+/// made, so that a new hour does not cost a season.
+class Suspector {
+ public:
+  explicit Suspector(const Station& station);
+  Suspector(const Suspector& other);
+  Suspector& operator=(const Suspector& other);
+  ~Suspector();
+  /// Writes what is found into the hour. Hours come in time order, each once.
+  void judge(Hour& hour);
+
+ private:
+  struct Watchers;
+  std::unique_ptr<Watchers> watchers_;
+};
 
 /// Limits of what air does. None of them is reached on a farm, all of them by a wrong unit.
 /// Dew point beyond any that was measured over land: about 35 °C on the Persian Gulf, July 2003

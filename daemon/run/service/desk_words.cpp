@@ -31,7 +31,7 @@ std::string DeskWork::status_line(Instant at) const {
 }
 
 void DeskWork::life_answered(const Outcome& outcome, Instant now) {
-  const std::string sentence = heartbeat_.answered(outcome, now);
+  const std::string sentence = heartbeat_.answered(outcome, working(now));
   if (sentence.empty()) return;
   if (outcome) {
     log_info(sentence);

@@ -4,7 +4,6 @@
 #include <algorithm>
 #include <utility>
 
-#include "core/weather/suspicion.hpp"
 #include "run/service/farm.hpp"
 
 namespace antherd::service {
@@ -48,21 +47,42 @@ void Lookout::replace_hours(const std::string& station, HourStart from, HourStar
   const auto last = std::lower_bound(first, hours.end(), to, before);
   const bool same = std::equal(first, last, fresh.begin(), fresh.end());
   if (same) return;
+  const auto unchanged = static_cast<std::size_t>(first - hours.begin());
   const auto at = hours.erase(first, last);
   hours.insert(at, std::make_move_iterator(fresh.begin()), std::make_move_iterator(fresh.end()));
-  judge_anew(station, memory);
+  judge_anew(station, memory, unchanged);
 }
 
 /// A late hour may change what is to be thought of later ones: the first that is not as it was
-/// decides what is folded again.
-void Lookout::judge_anew(const std::string& name, StationMemory& station) {
-  auto judged = weather::with_suspicions(station.hours, station.station);
+/// decides what is folded again. New hours go on from a checkpoint a few days back.
+/// @param unchanged  so many hours at the beginning are as they were
+void Lookout::judge_anew(const std::string& name, StationMemory& station, std::size_t unchanged) {
+  constexpr std::size_t open_hours = 72, apart = 24;
+  const std::size_t count = station.hours.size();
+  const bool resume = station.checkpoint && station.checkpoint_at <= std::min(unchanged, count);
+  const std::size_t from = resume ? station.checkpoint_at : 0;
+  weather::Suspector suspector = resume ? *station.checkpoint : weather::Suspector(station.station);
+  if (!resume) station.checkpoint.reset();
+  const std::size_t next = count > open_hours ? count - open_hours : 0;
+  std::vector<weather::Hour> fresh(station.hours.begin() + static_cast<std::ptrdiff_t>(from),
+                                   station.hours.end());
+  for (std::size_t i = from; i < count; ++i) {
+    if (i == next && (!resume || next >= from + apart)) {
+      station.checkpoint = suspector;
+      station.checkpoint_at = i;
+    }
+    suspector.judge(fresh[i - from]);
+  }
+  const auto tail =
+      station.judged.begin() + static_cast<std::ptrdiff_t>(std::min(from, station.judged.size()));
   const auto [old_hour, new_hour] =
-      std::mismatch(station.judged.begin(), station.judged.end(), judged.begin(), judged.end());
+      std::mismatch(tail, station.judged.end(), fresh.begin(), fresh.end());
   HourStart changed = HourStart::max();
   if (old_hour != station.judged.end()) changed = old_hour->start;
-  if (new_hour != judged.end()) changed = std::min(changed, new_hour->start);
-  station.judged = std::move(judged);
+  if (new_hour != fresh.end()) changed = std::min(changed, new_hour->start);
+  station.judged.erase(tail, station.judged.end());
+  station.judged.insert(station.judged.end(), std::make_move_iterator(fresh.begin()),
+                        std::make_move_iterator(fresh.end()));
   for (auto& [field_name, field] : fields_) {
     const auto& used = field.plan.field.stations;
     if (std::find(used.begin(), used.end(), name) == used.end()) continue;

@@ -12,6 +12,7 @@
 #include "core/alerts/decide.hpp"
 #include "core/letters/compose.hpp"
 #include "core/season/fold.hpp"
+#include "core/weather/suspicion.hpp"
 #include "run/settings/settings.hpp"
 
 namespace antherd::service {
@@ -83,13 +84,15 @@ class Lookout {
   };
   struct StationMemory {
     weather::Station station;
-    std::vector<weather::Hour> hours;   // as gathered
-    std::vector<weather::Hour> judged;  // with suspicions
+    std::vector<weather::Hour> hours;              // as gathered
+    std::vector<weather::Hour> judged;             // with suspicions
+    std::optional<weather::Suspector> checkpoint;  // has seen the first `checkpoint_at` hours
+    std::size_t checkpoint_at = 0;
     std::vector<Instant> times;
     SourceNews news;
   };
 
-  void judge_anew(const std::string& name, StationMemory& station);
+  void judge_anew(const std::string& name, StationMemory& station, std::size_t unchanged);
   void fold_field(FieldMemory& field, const Closed& closed);
   void gather_station_episodes(const StationMemory& station, Instant now);
   letters::StationStory story_of(const StationMemory& station, Instant now) const;

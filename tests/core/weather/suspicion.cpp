@@ -248,6 +248,21 @@ TEST_CASE("an hour is judged by itself and what was before it") {
   }
 }
 
+TEST_CASE("a copy of the one who suspects goes on from where it was made") {
+  const auto samples = in_fahrenheit(inland(12, 8, 30));
+  auto list = gather(samples, hourly(), hour_of(june), hour_of(june + days{12}));
+  const auto whole = with_suspicions(list, hourly());
+  Suspector first(hourly());
+  for (std::size_t i = 0; i < 100; ++i) first.judge(list[i]);
+  Suspector second(first);
+  Suspector third(hourly());
+  third = first;
+  auto other = list;
+  for (std::size_t i = 100; i < list.size(); ++i) second.judge(list[i]), third.judge(other[i]);
+  CHECK(list == whole);
+  CHECK(other == whole);
+}
+
 TEST_CASE("two stations that drift apart are told by the double difference") {
   const auto samples = inland(28, 10, 28);
   const Station station = hourly();
