@@ -169,6 +169,7 @@ TEST_CASE("water says what the entry changes, at the time of the newest reading"
 
 TEST_CASE("water --list tells what each irrigation did, in the farm's units") {
   Farm farm = july();
+  farm.extra_farm += "\nunits = \"us\"";
   farm.more = "soil = \"silt loam\"\nsoil_water_at_sowing = \"full\"\n";
   Season season(farm);
   const auto log = [&](const char* start, const char* end, const char* depth) {
@@ -209,6 +210,13 @@ TEST_CASE("water --list tells what each irrigation did, in the farm's units") {
 
 TEST_CASE("scout shows the flowering window before and after a note, also of one that is held") {
   Season season;
+  // A few days from sowing nothing can be done flowering: the note is held.
+  const auto odd =
+      season.run({"scout", "north", "--date", "2026-06-27", "--stage", "flowers-done", "--began"});
+  INFO(odd.out << odd.err);
+  CHECK(holds(odd.out, "both windows are watched"));
+  REQUIRE(season.run({"scout", "north", "--undo", "1"}).status == 0);
+
   const auto noted =
       season.run({"scout", "north", "--date", "2026-07-12", "--stage", "first-anthers"});
   INFO(noted.out << noted.err);
@@ -226,11 +234,6 @@ TEST_CASE("scout shows the flowering window before and after a note, also of one
   CHECK(holds(season.run({"scout", "north", "--date", "2026-07-13", "--stage", "full-flower"}).out,
               "before the note: " + after));
 
-  // A few days from sowing nothing can be done flowering: the note is held.
-  const auto odd =
-      season.run({"scout", "north", "--date", "2026-06-27", "--stage", "flowers-done", "--began"});
-  INFO(odd.out << odd.err);
-  CHECK(holds(odd.out, "both windows are watched"));
   CHECK(!holds(season.run({"scout", "north", "--date", "2026-07-13", "--disease", "no"}).out,
                "Flowering window"));
 }

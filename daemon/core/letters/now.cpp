@@ -118,7 +118,7 @@ std::string soil_line(const FieldStatus& status, const Words& words) {
   const auto& water = status.water;
   if (!water.ks || !water.missing || !water.root_zone) return "";
   std::string text = words.depth(*water.missing) + " of " + words.depth(*water.root_zone) +
-                     " missing in the root zone, Ks " + number(*water.ks, 2);
+                     " missing, Ks " + number(*water.ks, 2);
   if (*water.ks < 0.995) return text + ": short of water";
   if (water.days_to_stress) text += ", " + std::to_string(*water.days_to_stress) + " d to stress";
   return text;

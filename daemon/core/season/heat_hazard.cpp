@@ -107,11 +107,12 @@ HeatDay end_day(HeatHazard& heat, const HourContext& hour) {
   return day;
 }
 
-/// Flowers that met a Severe hour are worth a count of seeds later: once an episode.
+/// Flowers that met a Severe hour are worth a count of seeds later: once an episode, where it is
+/// known that there were flowers.
 void remember_severe(HeatHazard& heat, const HourContext& hour, bool opened_now) {
   if (opened_now) heat.episode_severe = false;
   const bool severe = heat.episode && heat.tracks[0].level >= Level::severe &&
-                      hour.crop.part == Part::window && hour.watched;
+                      hour.crop.part == Part::window && hour.crop.known() && hour.watched;
   if (!severe || heat.episode_severe) return;
   heat.episode_severe = true;
   heat.severe_since.push_back(hour.day);

@@ -352,6 +352,8 @@ TEST_CASE("what comes by the calendar reads as written") {
     wet.episode = "humid_spell/north bench/2026-07-11T04:00:00Z";
     wet.level = Level::moderate;
     wet.start = scene::at(11, 19);
+    desk.fields["north bench"].water = {0.52, 0, Millimetre(119), Millimetre(160), {}};
+    desk.fields["south bench"].water = {1.0, 12, Millimetre(16.8), Millimetre(160), {}};
     compare("now",
             letters::compose_now(desk, std::vector{heat, wet},
                                  std::vector<std::string>{"1 letter parked: antherd letters"}));

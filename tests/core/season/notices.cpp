@@ -143,4 +143,13 @@ TEST_CASE("ten days after Severe heat in flower a count of seeds is asked for, o
   CHECK(asked({47}).empty());                      // before flower: no open flower met it
   plan.field.harvested = plan.field.sown + days{85};
   CHECK(asked({80}).empty());
+  plan.field.harvested.reset();
+  // A station of day 30 and no note: nobody knows whether anything flowered on day 80.
+  const auto late = [](int n) -> std::optional<Weather> {
+    if (n < 30 * 24) return std::nullopt;
+    return n == 80 * 24 + 13 ? Weather{35, 20} : Weather{};
+  };
+  const Told unknown = tell(plan, 95 * 24, late);
+  CHECK(unknown.day(80).level == risk::Level::severe);
+  CHECK(unknown.notices("seed-set").empty());
 }
