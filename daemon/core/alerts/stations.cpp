@@ -206,7 +206,7 @@ std::vector<Episode> silences(const StationWatch& watch, std::span<const Silence
   return episodes_of(troubles, manner, in_window, watched, now);
 }
 
-std::vector<Episode> doubtful(const std::string& station, std::span<const FailingHour> hours,
+std::vector<Episode> doubtful(const StationWatch& watch, std::span<const FailingHour> hours,
                               std::span<const Span> in_window, std::span<const Span> watched,
                               Instant now) {
   std::map<std::string, std::vector<const FailingHour*>> checks;
@@ -215,7 +215,8 @@ std::vector<Episode> doubtful(const std::string& station, std::span<const Failin
   for (const auto& [check, said] : checks) {
     for (Trouble& trouble : troubles_of(check, said)) troubles.push_back(std::move(trouble));
   }
-  const Manner manner{Kind::doubtful_sensor, station, Level::moderate, Level::none, nullptr, false};
+  const Manner manner{Kind::doubtful_sensor, watch.station,  Level::moderate,
+                      Level::none,           watch.calendar, false};
   return episodes_of(together(std::move(troubles)), manner, in_window, watched, now);
 }
 

@@ -92,8 +92,8 @@ void Lookout::gather_station_episodes(const StationMemory& memory, Instant now) 
     if (since < now) gaps.push_back({since, std::nullopt});
   }
   auto silent = alerts::silences(watch, gaps, need.in_window, need.watched, now);
-  auto doubtful = alerts::doubtful(station.name, failing_hours(memory.judged, now), need.in_window,
-                                   need.watched, now);
+  auto doubtful =
+      alerts::doubtful(watch, failing_hours(memory.judged, now), need.in_window, need.watched, now);
   std::move(silent.begin(), silent.end(), std::back_inserter(episodes_));
   std::move(doubtful.begin(), doubtful.end(), std::back_inserter(episodes_));
 }

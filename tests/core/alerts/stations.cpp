@@ -135,7 +135,7 @@ std::vector<FailingHour> hours_of(const std::string& check, const std::string& m
 }
 std::string doubt(const std::string& marks, const std::vector<Span>& window = {}) {
   return told(
-      doubtful("bench", hours_of("temperature stuck", marks), window, always, at(farm(500))));
+      doubtful(bench(), hours_of("temperature stuck", marks), window, always, at(farm(500))));
 }
 }  // namespace
 
@@ -163,7 +163,7 @@ TEST_CASE("what fails every night and passes by day is one episode and one lette
   for (double hour = 0; hour <= 288; hour += 1) {
     const std::vector<FailingHour> known(hours.begin(), hours.begin() + static_cast<int>(hour));
     const auto episodes =
-        doubtful("bench", known, span(farm(200), farm(900)), always, at(farm(hour)));
+        doubtful(bench(), known, span(farm(200), farm(900)), always, at(farm(hour)));
     for (const Telling& t : service.tick(episodes, at(farm(hour)))) heard += line(t, hour);
   }
   // Once outside the window, once more at its opening, then the usual reminders.
@@ -179,12 +179,14 @@ TEST_CASE("a fault that comes and goes is told once in seven days outside the wi
   const auto hours = hours_of("temperature stuck", marks);
   Service service;
   std::string heard;
-  for (double hour = 0; hour <= 720; hour += 1) {
-    const std::vector<FailingHour> known(hours.begin(), hours.begin() + static_cast<int>(hour));
-    const auto episodes = doubtful("bench", known, {}, always, at(farm(hour)));
+  for (double hour = 0; hour <= 726; hour += 1) {
+    const auto so_far = std::min(hours.size(), static_cast<std::size_t>(hour));
+    const std::vector<FailingHour> known(hours.begin(),
+                                         hours.begin() + static_cast<std::ptrdiff_t>(so_far));
+    const auto episodes = doubtful(bench(), known, {}, always, at(farm(hour)));
     for (const Telling& t : service.tick(episodes, at(farm(hour)))) heard += line(t, hour);
   }
-  CHECK(heard == "opened none@72 opened none@288 opened none@504 opened none@720 ");
+  CHECK(heard == "opened none@78 opened none@294 opened none@510 opened none@726 ");  // 06:00
 }
 
 TEST_CASE("that readings are back is told by day") {
@@ -209,23 +211,43 @@ TEST_CASE("a doubtful sensor is Moderate in the window") {
   CHECK(doubt("xxxxxx", span(farm(9), farm(20))) ==
         "opened none@6 raised Moderate@9 lowered none@20 | ");
   const auto episodes =
-      doubtful("bench", hours_of("temperature stuck", "xxxxxx"), {}, always, at(farm(6)));
+      doubtful(bench(), hours_of("temperature stuck", "xxxxxx"), {}, always, at(farm(6)));
   REQUIRE(episodes.size() == 1);
   CHECK(episodes[0].start == at(farm(0)));
   CHECK(episodes[0].changes[0].detail == "temperature stuck");
   CHECK_FALSE(episodes[0].changes[0].figure);
-  CHECK(doubtful("bench", hours_of("x", "xxxxxx"), {}, always, at(farm(5.9))).empty());
+  CHECK(doubtful(bench(), hours_of("x", "xxxxxx"), {}, always, at(farm(5.9))).empty());
+}
+
+TEST_CASE("a sensor found doubtful at night is told of at six in the morning") {
+  // Six hours from 18:00 are full at midnight; those from 16:00 at 22:00, which is night; those
+  // from 15:00 at 21:00, which is day.
+  CHECK(doubt(std::string(18, '.') + "xxxxxx") == "opened none@30 | ");
+  CHECK(doubt(std::string(16, '.') + "xxxxxx") == "opened none@30 | ");
+  CHECK(doubt(std::string(15, '.') + "xxxxxx") == "opened none@21 | ");
+  CHECK(doubt(std::string(24, '.') + "xxxxxx") == "opened none@30 | ");  // 06:00 is day
+  // A window that opens at midnight wakes nobody either.
+  CHECK(doubt("......xxxxxx", span(farm(24), farm(90))) ==
+        "opened none@12 raised Moderate@30 lowered none@90 | ");
+  // What is known at a moment is what was said then: live and replay agree.
+  const auto hours = hours_of("temperature stuck", std::string(18, '.') + "xxxxxx");
+  CHECK(doubtful(bench(), hours, {}, always, at(farm(29.9))).empty());
+  const auto morning = doubtful(bench(), hours, {}, always, at(farm(30)));
+  REQUIRE(morning.size() == 1);
+  CHECK(morning[0].start == at(farm(18)));  // the letter names when it began
+  // No field needs it any more at six: nothing to tell.
+  CHECK(doubtful(bench(), hours, {}, span(farm(-100), farm(28)), at(farm(40))).empty());
 }
 
 TEST_CASE("checks that fail together are one episode, in whatever order the hours come") {
   auto hours = hours_of("temperature stuck", "xxxxxx" + std::string(24, '.'));
   const auto more = hours_of("humidity stuck", "xxxxxxxxx" + std::string(24, '.'));
   hours.insert(hours.end(), more.begin(), more.end());
-  const auto one = doubtful("bench", hours, {}, always, at(farm(100)));
+  const auto one = doubtful(bench(), hours, {}, always, at(farm(100)));
   CHECK(told(one) == "opened none@6 closed none@33 | ");
   CHECK(one[0].changes[0].detail == "humidity stuck; temperature stuck");
   std::reverse(hours.begin(), hours.end());
-  CHECK(doubtful("bench", hours, {}, always, at(farm(100))) == one);
+  CHECK(doubtful(bench(), hours, {}, always, at(farm(100))) == one);
 }
 
 TEST_CASE("a silent night in the flowering window reaches the reader at six, once") {
