@@ -86,25 +86,30 @@ std::string farm_clock(Instant at) {
   return clock_text(farm_calendar().civil(at).time_since_epoch());
 }
 std::string utc_clock(Instant at) { return clock_text(at.time_since_epoch()); }
+std::string clock_of(const Calendar& calendar, Instant at) {
+  return clock_text(calendar.civil(at).time_since_epoch());
+}
+void keep_in_memory() {
+  if (fs::exists("/dev/shm")) setenv("TMPDIR", "/dev/shm", 1);
+}
 
 std::string text_of(const Farm& farm) {
-  std::string text = "[farm]\nname = \"Larkspur Bench\"\ntime_zone = \"America/Los_Angeles\"\n" +
+  std::string text = "[farm]\nname = \"Larkspur Bench\"\ntime_zone = \"" + farm.zone + "\"\n" +
                      farm.extra_farm + "\n[store]\nfolder = \"store\"\n\n";
   if (!farm.log.empty()) text += "[log]\n" + farm.log + "\n";
   if (!farm.mail.empty()) {
     text += "[mail]\nfrom = \"alerts@larkspur.example\"\n" + farm.mail + "\n" + farm.recipients;
   }
   if (!farm.alerts.empty()) text += "[alerts]\n" + farm.alerts + "\n";
-  text += R"([[station]]
-name = "bench"
-latitude = 46.73
-longitude = -117.18
-elevation = "780 m"
+  text += "[[station]]\nname = \"bench\"\nlatitude = " + std::to_string(farm.latitude) +
+          "\nlongitude = " + std::to_string(farm.longitude) + "\n";
+  text += R"(elevation = "780 m"
 interval = "15 min"
 [station.drop]
 folder = "drop"
 files = "bench*.csv"
-time = { column = "time", form = "%Y-%m-%d %H:%M", zone = "utc" }
+time = { column = "time", form = "%Y-%m-%d %H:%M", zone = ")" +
+          farm.stamps + R"(" }
 temperature = { column = "temp_c", unit = "degC" }
 humidity = { column = "rh_pct", unit = "%" }
 rain = { column = "rain_mm", unit = "mm", meaning = "since_last" }

@@ -43,9 +43,17 @@ class Folder {
 Instant farm_time(const std::string& text);
 std::string farm_clock(Instant at);
 std::string utc_clock(Instant at);
+/// "2026-07-14 20:00" by a farm's own clock.
+std::string clock_of(const Calendar& calendar, Instant at);
+/// From here on the folders of this program's tests lie in memory, where the system has such a
+/// place: for tests that turn the desk thousands of times and ask nothing of the disk.
+void keep_in_memory();
 
 /// What a farm's settings are made of; a test says only what differs.
 struct Farm {
+  std::string zone = "America/Los_Angeles";
+  double latitude = 46.73, longitude = -117.18;
+  std::string stamps = "utc";                    // the zone of the station's clock
   std::string log = "file = \"antherd.log\"\n";  // lines of [log]; empty: no table
   std::string extra_farm;                        // more lines of [farm]
   std::string mail = "folder = \"outgoing\"\n";  // lines of [mail]; empty: no table
