@@ -171,6 +171,35 @@ TEST_CASE("quiet hours hold all but Extreme until their end, over midnight and o
   CHECK(next_try("2026-03-07 22:30", Severity::severe) == "2026-03-08 05:30");
 }
 
+TEST_CASE("a letter of the evening lies still until the quiet hours end, a restart between") {
+  Farm farm;
+  farm.recipients =
+      "[[recipient]]\naddress = \"owner@larkspur.example\"\nquiet = \"20:30-06:30\"\n";
+  Bench bench(farm);
+  const Instant sown = farm_time("2026-06-25 00:00");
+  const Instant silent = farm_time("2026-07-09 20:00"), morning = farm_time("2026-07-10 06:30");
+  bench.open(sown);
+  bench.drop("bench.csv", readings(Weather{}, sown, silent));
+  const auto state = [&] {
+    const auto letters = bench.letters_of("no_data");
+    return letters.size() == 1 ? letters[0].state : outbox::State::parked;
+  };
+  for (Instant now = silent; now < morning; now += minutes{30}) {
+    bench.turn(now);
+    const bool told = now >= silent + hours{2};
+    CAPTURE(farm_clock(now));
+    if (told) CHECK(state() == outbox::State::waiting);
+    if (now == silent + hours{5}) {
+      bench.close(now);
+      bench.open(now + minutes{1});
+    }
+  }
+  bench.turn(morning);
+  CHECK(state() == outbox::State::sent);
+  // Not "delayed": it speaks from when it might go.
+  CHECK(bench.letters_of("no_data")[0].letter.subject.find("delayed") == std::string::npos);
+}
+
 TEST_CASE("the daily limit is not forgotten with a restart") {
   Farm farm;
   farm.mail = "folder = \"outgoing\"\nat_most_per_day = 1\n";

@@ -16,6 +16,8 @@ constexpr int doubts_allowed = 2;
 // stand for ever in front of all others.
 constexpr int tries_in_front = 3;
 constexpr Seconds step_aside{31 * 60};
+// Stored with the letter, and shown: what tells such a wait from one of another clock.
+constexpr const char* quiet_hours = "waits for the end of the quiet hours";
 
 Item park(Item item, Instant at, std::string sentence) {
   item.state = State::parked;
@@ -150,6 +152,17 @@ Item expire(Item item, Instant now) {
   sentence += item.doubts > 0 ? " may or may not have arrived" : " was not accepted in that time";
   if (!item.answer.empty()) sentence += "; last answer: " + item.answer;
   return park(std::move(item), now, std::move(sentence));
+}
+
+Item rest_quietly(Item item, Instant until) {
+  if (item.state != State::waiting || item.attempts > 0) return item;
+  item.next_try = until;
+  item.answer = quiet_hours;
+  return item;
+}
+
+bool rests_quietly(const Item& item) {
+  return item.state == State::waiting && item.attempts == 0 && item.answer == quiet_hours;
 }
 
 Item hold(Item item) {

@@ -105,6 +105,11 @@ Line reopen(Line line);
 Item expire(Item item, Instant now);
 /// A letter that is waiting and was never tried waits for the digest of its address instead.
 Item hold(Item item);
+/// A letter that was never tried waits for the end of its reader's quiet hours, however long, and
+/// says so.
+Item rest_quietly(Item item, Instant until);
+/// Whether it waits so, and was not yet tried.
+bool rests_quietly(const Item& item);
 /// A held letter was named in a digest, which takes its place: it is never sent itself.
 Item merge(Item item, const std::string& digest, Instant now);
 /// Back to waiting by a person's wish, due now; of a held letter too. An expired letter gets 72 h
@@ -121,8 +126,8 @@ struct Plan {
 };
 /// One conversation at a time: while an item is `sending` nothing else goes. An item that the mail
 /// edge holds between doubt() and receive() looks like any other in doubt, so the carrier must not
-/// ask while its worker is busy. Waits longer than the timetable knows come from a clock that was
-/// set since; they count as over.
+/// ask while its worker is busy. Waits longer than the timetable knows (an hour; a day for quiet
+/// hours) come from a clock that was set since; they count as over.
 Plan plan(std::span<const Item> items, const Line& line, Instant now);
 
 /// The letter as it must go now: "[delayed 2 d 3 h]" in the subject when more than 30 min late,

@@ -7,10 +7,12 @@
 namespace antherd::outbox {
 namespace {
 
-/// When a stored wait is over. No wait of the timetable is longer than an hour, so a longer one was
-/// written by a clock that has been set back since: it is over.
-Instant end_of_wait(Instant next_try, Instant now) {
-  return next_try - now > trouble_rest ? now : next_try;
+constexpr Seconds longest_quiet{25 * 3600};  // a day on which the clock is put back
+
+/// When a stored wait is over. No wait of the timetable is longer than an hour, and no quiet hours
+/// than a day, so a longer one was written by a clock that has been set back since: it is over.
+Instant end_of_wait(Instant next_try, Seconds longest, Instant now) {
+  return next_try - now > longest ? now : next_try;
 }
 
 bool graver(const Item& one, const Item& other) {
@@ -39,7 +41,8 @@ Plan plan(std::span<const Item> items, const Line& line, Instant now) {
       }
       sooner(result.look_again, *item.letter.valid_until);
     }
-    const Instant due = end_of_wait(item.next_try, now);
+    const Instant due =
+        end_of_wait(item.next_try, rests_quietly(item) ? longest_quiet : trouble_rest, now);
     if (due > now) {
       sooner(next_due, due);
     } else if (first == nullptr || graver(item, *first)) {
@@ -48,7 +51,7 @@ Plan plan(std::span<const Item> items, const Line& line, Instant now) {
   }
   if (busy) return result;  // its receipt is the next event
   // While the line rests nothing goes, not even a letter that would be due.
-  const Instant line_open = line.next_try ? end_of_wait(*line.next_try, now) : now;
+  const Instant line_open = line.next_try ? end_of_wait(*line.next_try, trouble_rest, now) : now;
   if (line_open > now) {
     if (first != nullptr) sooner(result.look_again, line_open);
     if (next_due) sooner(result.look_again, std::max(*next_due, line_open));

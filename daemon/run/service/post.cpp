@@ -74,7 +74,8 @@ outbox::Item to_item(const letters::Letter& letter, const settings::Settings& se
   item.next_try = now;
   const letters::Recipient* recipient = recipient_of(settings, letter.recipient);
   if (recipient != nullptr && letter.severity != alerts::Severity::extreme) {
-    item.next_try = after_quiet(*recipient, settings.calendar, now);
+    const Instant morning_of = after_quiet(*recipient, settings.calendar, now);
+    if (morning_of > now) item = outbox::rest_quietly(std::move(item), morning_of);
   }
   if (!by_calendar(letter.kind)) {
     if (held_back(ration, letter, settings, item.next_try)) {

@@ -205,6 +205,31 @@ TEST_CASE("a wait written by a clock that was ahead is over") {
   CHECK_FALSE(plan(items, Line{1, afternoon + hours(1), std::nullopt, ""}, afternoon).send);
 }
 
+TEST_CASE("quiet hours are waited out, all of them") {
+  const Instant evening = afternoon + hours(7);  // 22:00 on the farm
+  std::vector items{rest_quietly(item_of(1), evening + hours(9))};
+  CHECK(rests_quietly(items[0]));
+  // Nine hours, eight of them longer than any rest of the server's.
+  for (int hour = 0; hour < 9; ++hour) {
+    const Plan night = plan(items, Line{}, evening + hours(hour));
+    CHECK_FALSE(night.send);
+    CHECK(night.look_again == evening + hours(9));
+  }
+  CHECK(plan(items, Line{}, evening + hours(9)).send == 1);
+  // The longest: all but a minute of the day on which the clock is put back.
+  items[0] = rest_quietly(item_of(1), evening + hours(25) - minutes(1));
+  CHECK_FALSE(plan(items, Line{}, evening).send);
+  // Longer was written by a clock that was ahead.
+  items[0] = rest_quietly(item_of(1), evening + hours(26));
+  CHECK(plan(items, Line{}, evening).send == 1);
+  // Once tried it waits by the timetable like any other; a person's wish ends its rest at once.
+  items[0] = receive(take(rest_quietly(item_of(1), evening + hours(9)), evening + hours(9)),
+                     receipt_of(1, Ending::wait, evening + hours(9)));
+  CHECK_FALSE(rests_quietly(items[0]));
+  CHECK(plan({{retry(rest_quietly(item_of(1), evening + hours(9)), evening)}}, Line{}, evening)
+            .send == 1);
+}
+
 TEST_CASE("a letter in doubt goes once more after its rest") {
   std::vector items{doubt(take(item_of(1), afternoon), afternoon)};
   CHECK_FALSE(plan(items, Line{}, afternoon + minutes(9)).send);
