@@ -14,11 +14,14 @@ select station,
 from report
 where station <> '' and not (temperature = '_' and dew_point = '_');
 
--- Of one station and one time the warmer stands, then the moister.
+-- Of one station and one time stands: what has a temperature, a possible one, no impossible dew
+-- point beside it; of such the warmer, then the moister.
 create table standing as
 select station, at, t, td
 from (select *, row_number() over (partition by station, at
-                                   order by t desc nulls last, td desc nulls last) as place
+                                   order by t is null, t not between -40 and 55,
+                                            coalesce(td not between -60 and 55, 0),
+                                            t desc nulls last, td desc nulls last) as place
       from reading)
 where place = 1;
 

@@ -27,9 +27,11 @@ struct Sample {
   }
 };
 
-/// Whether `a` stands before `b` when one station sent both for one time: the warmer, then the
-/// more humid stands, whatever came first (science §3). A strict order, so that the outcome does
-/// not depend on arrival; ties beyond are broken by the remaining values.
+/// Whether `a` stands before `b` when one station sent both for one time: a plausible temperature
+/// before an impossible one (a slip of the logger, another unit), the one with fewer impossible
+/// values beside it, then the warmer, then the more humid (science §3), whatever came first. What
+/// is impossible the ranges of quality control say. A strict order of single samples, so that the
+/// outcome does not depend on arrival; ties beyond are broken by the remaining values.
 bool stands_before(const Sample& a, const Sample& b);
 
 /// The samples that stand, one per time, in time order, whatever order they came in.

@@ -142,6 +142,65 @@ TEST_CASE("of two samples for one time the warmer, then the more humid stands") 
   }
 }
 
+TEST_CASE("of two samples for one time a possible one stands before one that no air has") {
+  // The same air, 25 °C and 55 %: as it is, as a logger slipped, in °F, in kelvin, swapped, and
+  // with a humidity that a broken plug reports.
+  const Sample right = reading(start, 25.0, 55.0);
+  const std::vector<Sample> worse{reading(start, 343.0, 55.0),  reading(start, 77.0, 55.0),
+                                  reading(start, 298.15, 55.0), reading(start, 55.1, 25.0),
+                                  reading(start, 30.0, 655.35), reading(start, std::nullopt, 55.0)};
+  for (const Sample& wrong : worse) {
+    CAPTURE(wrong.temperature.has_value(), wrong.humidity->value);
+    CHECK(stands_before(right, wrong));
+    CHECK_FALSE(stands_before(wrong, right));
+  }
+  // The ends of the range are possible: the warmer stands as before.
+  CHECK(stands_before(reading(start, 55.0, 55.0), right));
+  CHECK(stands_before(right, reading(start, -40.0, 55.0)));
+  CHECK(stands_before(right, reading(start, -40.1, 55.0)));
+  // An impossible temperature leaves its flag, a missing one nothing.
+  CHECK(stands_before(worse[0], worse[5]));
+  // Wind, sun and dew point count too; a warmer sample is not worth a garbled row.
+  Sample garbled = reading(start, 26.0, 55.0);
+  garbled.wind = MetrePerSecond(655.35);
+  CHECK(stands_before(right, garbled));
+  garbled.wind = MetrePerSecond(6.5);
+  CHECK(stands_before(garbled, right));
+}
+
+TEST_CASE("which sample stands is a strict order, whatever the mixture") {
+  std::vector<Sample> all;
+  for (const std::optional<double> t : {std::optional<double>(), {-60.0}, {12.0}, {343.0}}) {
+    for (const std::optional<double> rh : {std::optional<double>(), {-5.0}, {40.0}, {250.0}}) {
+      for (const std::optional<double> wind : {std::optional<double>(), {3.0}, {90.0}}) {
+        Sample sample = reading(start, t, rh);
+        if (wind) sample.wind = MetrePerSecond(*wind);
+        all.push_back(sample);
+      }
+    }
+  }
+  REQUIRE(all.size() == 48);
+  std::mt19937 dice(20260714);
+  const auto stands = standing(all);
+  REQUIRE(stands.size() == 1);
+  CHECK(stands[0].temperature == Celsius(12.0));
+  CHECK(stands[0].humidity == Percent(40.0));
+  CHECK(stands[0].wind == MetrePerSecond(3.0));
+  for (int round = 0; round < 50; ++round) {
+    std::shuffle(all.begin(), all.end(), dice);
+    CHECK(standing(all) == stands);
+    // One after the other, as a store meets them.
+    Sample kept = all.front();
+    for (const Sample& next : all) kept = stands_before(next, kept) ? next : kept;
+    CHECK(kept == stands[0]);
+  }
+  for (const Sample& a : all) {
+    for (const Sample& b : all) {
+      CHECK(stands_before(a, b) + stands_before(b, a) == (a == b ? 0 : 1));
+    }
+  }
+}
+
 TEST_CASE("an hour closes two intervals after its end, ten minutes at least") {
   const HourStart hour = hour_of(start);
   CHECK(closes_at(hour, station_every(60s)) == start + 70min);
