@@ -80,7 +80,8 @@ where value.rowid = place and jump.element = 'humidity' and abs(up) > 1 + 1e-9
   and (down is null or (up * down > 0 and abs(down) > 1 + 1e-9));
 
 -- Standing still: from the newest value at least so long ago up to this one no hole above 2 h and
--- no move; temperature only while humidity moved by 10 % in its 6 h.
+-- no move; temperature only while humidity moved by 10 % in its 6 h, humidity of 95 % and more
+-- only when in its 24 h the temperature moved by 6 °C or not at all.
 create table used as
 select element, station, at, value, at - lag(at) over w as since
 from value where not wrong and not unconfirmed
@@ -102,14 +103,18 @@ select s.element, s.station, s.at, s.length,
        (select max(since) from used p where p.element = s.element
           and p.station = s.station and p.at > s.start and p.at <= s.at) as longest_hole,
        (select max(value) - min(value) from used p where p.element = 'humidity'
-          and p.station = s.station and p.at between s.at - 21600 and s.at) as humidity_moved
+          and p.station = s.station and p.at between s.at - 21600 and s.at) as humidity_moved,
+       (select max(value) - min(value) from used p where p.element = 'temperature'
+          and p.station = s.station and p.at between s.at - 86400 and s.at) as temperature_moved
 from stretch s where s.start is not null;
 update value set stuck = 1 where element = 'temperature' and (station, at) in
   (select station, at from still where element = 'temperature' and moved < 0.1 - 1e-9
       and longest_hole <= 7200 and humidity_moved >= 10 - 1e-9);
 update value set stuck = 1 where element = 'humidity' and (station, at) in
   (select station, at from still where element = 'humidity' and moved < 1 - 1e-9
-      and longest_hole <= 7200 and (length = 86400 or least < 95));
+      and longest_hole <= 7200
+      and (least < 95 or (length = 86400 and (temperature_moved >= 6 - 1e-9
+                                              or temperature_moved < 0.1 - 1e-9))));
 
 -- The hours and their flags.
 create table hour as

@@ -3,6 +3,7 @@
 #include <algorithm>
 #include <cmath>
 #include <cstddef>
+#include <optional>
 
 #include "core/weather/judge.hpp"
 
@@ -18,6 +19,10 @@ constexpr Seconds humidity_stretch{12 * 3600};
 constexpr Seconds fog_stretch{24 * 3600};  // fog is real: it holds a sensor for long
 constexpr double fog_humidity = 95.0;      // %
 constexpr double humidity_move = 1.0;      // %
+// At its top a hygrometer stands still through days of rain or fog. Only air that warms or cools by
+// so much in the stretch would have moved it: it dries saturated air to 69 % (15 to 21 °C, FAO-56
+// eq. 11). A judgement: wet days swing less, dry sunny ones more.
+constexpr double drying_swing = 6.0;  // °C
 
 /// The places of a sliding window's extreme values, the oldest first. Linear in all its calls.
 class Extremes {
@@ -86,12 +91,13 @@ class FlatStretch {
   Extremes least_{-1.0}, most_{1.0};
 };
 
-/// By how much the used values of the last hours before a moment moved. Ask in time order.
+/// By how much the used values of the last hours before a moment moved; nothing where there are
+/// none. Ask in time order.
 class Movement {
  public:
   Movement(const Series& series, Seconds length) : series_(series), length_(length) {}
 
-  double until(Instant moment) {
+  std::optional<double> until(Instant moment) {
     const Instant since = moment - length_;
     for (; next_ < series_.size() && series_[next_].time <= moment; ++next_) {
       if (series_[next_].time < since || !series_[next_].used()) continue;
@@ -101,7 +107,7 @@ class Movement {
     for (Extremes* side : {&least_, &most_}) {
       while (!side->empty() && series_[side->front()].time < since) side->pop_front();
     }
-    if (least_.empty()) return 0.0;
+    if (least_.empty()) return std::nullopt;
     return series_[most_.front()].value - series_[least_.front()].value;
   }
 
@@ -111,6 +117,12 @@ class Movement {
   std::size_t next_ = 0;
   Extremes least_{-1.0}, most_{1.0};
 };
+
+/// Whether air whose temperature moved so in a day cannot have kept its humidity: it swung too far,
+/// or nothing at all moved, as of a logger that repeats its last reading.
+bool speaks_against_fog(std::optional<double> moved) {
+  return moved && (*moved >= drying_swing - hair || *moved < temperature_move - hair);
+}
 
 }  // namespace
 
@@ -122,17 +134,19 @@ void judge_stuck(Series& temperature, Series& humidity, Seconds interval) {
     if (!temperature[i].used()) continue;
     still_air.add(i);
     if (still_air.lasted() < temperature_stretch) continue;
-    if (humidity_movement.until(temperature[i].time) < humidity_moves - hair) continue;
+    if (humidity_movement.until(temperature[i].time).value_or(0.0) < humidity_moves - hair)
+      continue;
     temperature[i].marks |= mark_stuck;
   }
   FlatStretch still_humidity(humidity, humidity_move, hole);
+  Movement temperature_movement(temperature, fog_stretch);
   for (std::size_t i = 0; i < humidity.size(); ++i) {
     if (!humidity[i].used()) continue;
     still_humidity.add(i);
     const bool fog = still_humidity.least() >= fog_humidity;
-    if (still_humidity.lasted() >= (fog ? fog_stretch : humidity_stretch)) {
-      humidity[i].marks |= mark_stuck;
-    }
+    if (still_humidity.lasted() < (fog ? fog_stretch : humidity_stretch)) continue;
+    if (fog && !speaks_against_fog(temperature_movement.until(humidity[i].time))) continue;
+    humidity[i].marks |= mark_stuck;
   }
 }
 

@@ -79,10 +79,51 @@ TEST_CASE("a frozen hygrometer is suspect from 12 h on") {
   CHECK(stuck(all_hours(series(144, moving), station_every(ten)), Element::humidity) == 0);
 }
 
-TEST_CASE("fog may hold a hygrometer for a day") {
+TEST_CASE("rain or fog may hold a hygrometer at its top for days") {
+  // Common practice: five days of rain at 97 %, the air between 12 and 16 °C by night and day.
+  const auto rain = [](int i) { return reading(start, 14.0 + 2.0 * std::sin(i * 0.0436), 97.0); };
+  CHECK(flagged(all_hours(series(720, rain), station_every(ten))) == 0);
   const auto fog = [](int i) { return reading(start, 11.0 + 0.5 * std::sin(i * 0.3), 99.0); };
-  CHECK(flagged(all_hours(series(144, fog), station_every(ten))) == 0);  // 23 h 50 min
-  CHECK(stuck(all_hours(series(145, fog), station_every(ten)), Element::humidity) == 1);
+  CHECK(flagged(all_hours(series(720, fog), station_every(ten))) == 0);
+  // A swing of 5.9 °C is no evidence yet; a humidity without a thermometer beside it never is.
+  const auto mild = [](int i) { return reading(start, 14.0 + 2.95 * std::sin(i * 0.0436), 97.0); };
+  CHECK(flagged(all_hours(series(720, mild), station_every(ten))) == 0);
+  const auto alone = [](int) { return reading(start, std::nullopt, 97.0); };
+  CHECK(flagged(all_hours(series(720, alone), station_every(ten))) == 0);
+}
+
+TEST_CASE("a hygrometer stuck at 97 % is found in dry sunny weather after a day") {
+  // 12 to 28 °C: saturated air of the morning would be at 37 % by afternoon (FAO-56 eq. 11).
+  const auto sunny = [](int i) { return reading(start, 20.0 - 8.0 * std::cos(i * 0.0436), 97.0); };
+  CHECK(stuck(all_hours(series(144, sunny), station_every(ten)), Element::humidity) == 0);
+  CHECK(stuck(all_hours(series(145, sunny), station_every(ten)), Element::humidity) == 1);
+  CHECK(stuck(all_hours(series(720, sunny), station_every(ten)), Element::humidity) == 576);
+  // It may come after days of rain: found within a day of the first swing.
+  const auto clears = [](int i) {
+    return reading(start, i < 432 ? 14.0 : 20.0 - 6.0 * std::cos((i - 432) * 0.0436), 97.0);
+  };
+  const auto list = all_hours(series(576,
+                                     [&](int i) {
+                                       auto sample = clears(i);
+                                       if (i < 432 && i % 2 == 0)
+                                         sample.temperature = Celsius(14.3);
+                                       return sample;
+                                     }),
+                              station_every(ten));
+  CHECK(stuck(list, Element::humidity) > 72);  // half of that day
+  for (const Hour& hour : list) {
+    if (hour.start < hour_of(start + 72h)) CHECK(hour.flags.empty());
+  }
+}
+
+TEST_CASE("a logger that repeats one reading of a wet night is found after a day") {
+  const auto frozen = [](int) { return reading(start, 11.3, 98.0); };
+  CHECK(stuck(all_hours(series(144, frozen), station_every(ten)), Element::humidity) == 0);
+  CHECK(stuck(all_hours(series(145, frozen), station_every(ten)), Element::humidity) == 1);
+}
+
+TEST_CASE("below 95 % half a day is enough") {
+  const auto fog = [](int i) { return reading(start, 11.0 + 0.5 * std::sin(i * 0.3), 99.0); };
   // Not throughout at 95 %: no fog.
   const auto damp = [](int i) {
     return reading(start, 11.0 + 0.5 * std::sin(i * 0.3), i < 20 ? 94.9 : 95.5);
