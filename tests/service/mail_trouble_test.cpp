@@ -3,6 +3,7 @@
 #include <deque>
 
 #include "ground.hpp"
+#include "run/service/front_page.hpp"
 #include "run/service/review.hpp"
 #include "support/catch.hpp"
 
@@ -36,6 +37,9 @@ struct Blocked {
                                 service::Period{"a week", farm_day(now) - days{6}, farm_day(now)},
                                 now);
   }
+  page::PageContent page(Instant now) const {
+    return service::page_content(bench.desk->keeper().lookout(), bench.desk->store(), now);
+  }
   CivilDay farm_day(Instant now) const { return bench.settings->calendar.day_of(now); }
 };
 
@@ -59,6 +63,12 @@ TEST_CASE(
   CHECK(has(farm.log(), "mail trouble: a letter has waited more than 6 h"));
   CHECK(bench.letters_of("mail_trouble").empty());  // it could not go either
   CHECK(farm.review(decided + hours{7}).mail_troubles.size() == 1);
+  // The page says what the screen says; no visitor of it must take the watch for healthy.
+  const auto page = farm.page(decided + hours{7});
+  CHECK(has(page.now_text, "ATTENTION"));
+  CHECK(has(page.now_text, "Mail trouble since 2026-07-12"));
+  CHECK(has(page.now_text, "letters have waited more than 6 h: see antherd letters."));
+  CHECK(has(page.json, "\"attention\":[\"Mail trouble since 2026-07-12"));
   // A restart forgets nothing of it and says nothing twice.
   bench.close(decided + hours{7});
   bench.open(decided + hours{7} + minutes{1});
@@ -69,6 +79,7 @@ TEST_CASE(
   Instant now = decided + hours{7} + minutes{3};
   for (const Instant end = now + minutes{40}; now < end; now += minutes{1}) bench.turn(now);
   CHECK_FALSE(farm.in_trouble());
+  CHECK_FALSE(has(farm.page(now).now_text, "Mail trouble"));
   CHECK(has(farm.log(), "mail trouble is over"));
   REQUIRE(bench.letters_of("mail_trouble").size() == 1);
   const auto told = bench.letters_of("mail_trouble").front();

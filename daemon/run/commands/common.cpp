@@ -324,16 +324,6 @@ std::string utc_text(Instant at) {
   return day_text(CivilDay{day.time_since_epoch()}) + text;
 }
 
-std::string farm_text(const Calendar& calendar, Instant at) {
-  const CivilTime civil = calendar.civil(at);
-  const auto day = std::chrono::floor<std::chrono::days>(civil);
-  const std::chrono::hh_mm_ss time{civil - day};
-  char text[32];
-  std::snprintf(text, sizeof text, " %02d:%02d", static_cast<int>(time.hours().count()),
-                static_cast<int>(time.minutes().count()));
-  return day_text(day) + text;
-}
-
 double rounded(double value, int decimals) {
   const double scale = std::pow(10.0, decimals);
   const double result = std::nearbyint(value * scale) / scale;  // the default mode: half to even

@@ -11,6 +11,7 @@
 #include "core/failures/result.hpp"
 #include "edge/store/store.hpp"
 #include "run/commands/commands.hpp"
+#include "run/service/farm.hpp"
 #include "run/service/lookout.hpp"
 #include "run/settings/settings.hpp"
 
@@ -64,9 +65,9 @@ service::Lookout lookout_over(const Past& past);
 service::Closed closed_at(const Past& past, Instant now);
 
 // Rows of `--lines` and `--csv`.
-std::string utc_text(Instant at);                             // 2026-07-14T20:00:00Z
-std::string day_text(CivilDay day);                           // 2026-07-14
-std::string farm_text(const Calendar& calendar, Instant at);  // 2026-07-14 13:00
-double rounded(double value, int decimals);                   // half to even
+std::string utc_text(Instant at);            // 2026-07-14T20:00:00Z
+std::string day_text(CivilDay day);          // 2026-07-14
+using service::farm_text;                    // 2026-07-14 13:00
+double rounded(double value, int decimals);  // half to even
 
 }  // namespace antherd::commands

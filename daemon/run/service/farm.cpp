@@ -40,4 +40,14 @@ HourStart closed_before(const weather::Station& station, std::optional<Instant> 
   return std::max(by_time, std::min(hour_of(*last_sample - shift), hour_of(now)));
 }
 
+std::string farm_text(const Calendar& calendar, Instant at) {
+  const CivilTime civil = calendar.civil(at);
+  const CivilDate date{std::chrono::floor<std::chrono::days>(civil)};
+  const std::chrono::hh_mm_ss time{civil - std::chrono::floor<std::chrono::days>(civil)};
+  const auto two = [](long n) { return (n < 10 ? "0" : "") + std::to_string(n); };
+  return std::to_string(static_cast<int>(date.year())) + "-" +
+         two(static_cast<unsigned>(date.month())) + "-" + two(static_cast<unsigned>(date.day())) +
+         " " + two(time.hours().count()) + ":" + two(time.minutes().count());
+}
+
 }  // namespace antherd::service

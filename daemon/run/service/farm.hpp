@@ -20,4 +20,7 @@ std::vector<std::string> fields_of(const settings::Settings& settings, const std
 HourStart closed_before(const weather::Station& station, std::optional<Instant> last_sample,
                         Instant now);
 
+/// "2026-07-14 13:00" by the farm's clock.
+std::string farm_text(const Calendar& calendar, Instant at);
+
 }  // namespace antherd::service

@@ -5,6 +5,8 @@
 
 #include "core/letters/charts.hpp"
 #include "edge/drawing/drawing.hpp"
+#include "run/service/attention.hpp"
+#include "run/service/farm.hpp"
 #include "run/service/review.hpp"
 
 namespace antherd::service {
@@ -12,7 +14,7 @@ namespace {
 
 constexpr auto fresh_for = std::chrono::minutes{10};
 
-std::string json_of(const letters::Desk& desk) {
+std::string json_of(const letters::Desk& desk, const std::vector<std::string>& attention) {
   nlohmann::ordered_json fields = nlohmann::ordered_json::array();
   for (const auto& [name, status] : desk.fields) {
     nlohmann::ordered_json field;
@@ -28,17 +30,8 @@ std::string json_of(const letters::Desk& desk) {
   nlohmann::ordered_json all;
   all["farm"] = desk.farm;
   all["fields"] = std::move(fields);
+  all["attention"] = attention;
   return all.dump(-1, ' ', false, nlohmann::ordered_json::error_handler_t::replace);
-}
-
-std::string made_text(const Calendar& calendar, Instant now) {
-  const CivilTime civil = calendar.civil(now);
-  const CivilDate date{std::chrono::floor<std::chrono::days>(civil)};
-  const std::chrono::hh_mm_ss time{civil - std::chrono::floor<std::chrono::days>(civil)};
-  const auto two = [](long n) { return (n < 10 ? "0" : "") + std::to_string(n); };
-  return std::to_string(static_cast<int>(date.year())) + "-" +
-         two(static_cast<unsigned>(date.month())) + "-" + two(static_cast<unsigned>(date.day())) +
-         " " + two(time.hours().count()) + ":" + two(time.minutes().count());
 }
 
 }  // namespace
@@ -63,6 +56,10 @@ void FrontPage::refresh(const Lookout& lookout, const store::Store& store, Insta
   const bool same_hour = shown_ && hour_of(*shown_) == hour_of(now) && now >= *shown_;
   if (same_hour && now - *shown_ < fresh_for) return;
   shown_ = now;
+  page_->show(page_content(lookout, store, now));
+}
+
+page::PageContent page_content(const Lookout& lookout, const store::Store& store, Instant now) {
   const settings::Settings& settings = lookout.settings();
   const letters::Desk desk = lookout.desk(now);
   const Period week = week_before(settings.calendar, now);
@@ -70,12 +67,13 @@ void FrontPage::refresh(const Lookout& lookout, const store::Store& store, Insta
 
   page::PageContent content;
   content.farm = settings.farm;
-  content.made = made_text(settings.calendar, now);
+  content.made = farm_text(settings.calendar, now);
   const auto unclosed = unclosed_of(lookout);
-  content.now_text = letters::compose_now(desk, unclosed, {});
+  const auto attention = attention_of(lookout, store, now);
+  content.now_text = letters::compose_now(desk, unclosed, attention);
   content.review_text = letters::compose_review(review, desk);
   content.caution = letters::standing_caution(letters::Language::english);
-  content.json = json_of(desk);
+  content.json = json_of(desk, attention);
   for (const letters::FieldReview& field : review.fields) {
     letters::ChartReader reader;
     reader.field = field.status.field;
@@ -84,7 +82,7 @@ void FrontPage::refresh(const Lookout& lookout, const store::Store& store, Insta
     const auto svg = drawing::to_svg(letters::week_chart(reader, field.days, field.humid_days));
     if (svg) content.charts.push_back({"Seven days of " + reader.field, *svg});
   }
-  page_->show(std::move(content));
+  return content;
 }
 
 }  // namespace antherd::service

@@ -10,6 +10,9 @@
 
 namespace antherd::service {
 
+/// What the page shows of the present state; the same attention lines as `antherd now`.
+page::PageContent page_content(const Lookout& lookout, const store::Store& store, Instant now);
+
 class FrontPage {
  public:
   /// Listens when the settings ask for a page; a Failure names what stood in the way.

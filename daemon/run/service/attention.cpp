@@ -1,0 +1,81 @@
+// See attention.hpp.
+#include "run/service/attention.hpp"
+
+#include <algorithm>
+
+#include "run/service/farm.hpp"
+#include "run/service/review.hpp"
+
+namespace antherd::service {
+namespace {
+
+constexpr auto letter_waits_long = std::chrono::hours{6};
+
+void add_stations(std::vector<std::string>& sentences, const Lookout& lookout, Instant now) {
+  const letters::Desk desk = lookout.desk(now);
+  for (const alerts::Episode& episode : lookout.episodes()) {
+    if (!episode.open()) continue;
+    if (episode.kind == alerts::Kind::no_data) {
+      const auto last = lookout.last_sample(episode.subject);
+      const auto& story = desk.stations.at(episode.subject);
+      const bool covered = story.stand_in.size() >= story.fields.size();
+      sentences.push_back(
+          "Station " + episode.subject + " is silent" +
+          (last ? " since " + farm_text(lookout.settings().calendar, *last) : "") +
+          (covered ? "; another station stands in." : ": its fields are not watched."));
+    } else if (episode.kind == alerts::Kind::mail_trouble) {
+      sentences.push_back("Mail trouble since " +
+                          farm_text(lookout.settings().calendar, episode.start) +
+                          ": do not count on letters.");
+    } else if (episode.kind == alerts::Kind::doubtful_sensor) {
+      const std::string named = letters::doubts_of(desk.stations.at(episode.subject));
+      sentences.push_back("Station " + episode.subject + " reports doubtful values" +
+                          (named.empty() ? "" : ": " + named) + ".");
+    }
+  }
+  for (const auto& drift : drifts_of(lookout, now)) {
+    sentences.push_back("Stations " + drift.one + " and " + drift.other +
+                        " have drifted apart: see antherd check.");
+  }
+}
+
+void add_letters(std::vector<std::string>& sentences, const store::Store& store, Instant now) {
+  const auto open = store.letters_open();
+  if (!open) {
+    sentences.push_back(open.failure().sentence());
+    return;
+  }
+  const auto old = std::count_if(open->begin(), open->end(), [&](const outbox::Item& item) {
+    return now - item.letter.decided > letter_waits_long;
+  });
+  if (old > 0) {
+    sentences.push_back(std::to_string(old) +
+                        " letters have waited more than 6 h: see antherd "
+                        "letters.");
+  }
+  if (const auto line = store.line(); line && !line->trouble.empty()) {
+    sentences.push_back("Mail: " + line->trouble);
+  }
+  if (const auto recent = store.letters_since(now - std::chrono::days{7})) {
+    const auto parked = std::count_if(recent->begin(), recent->end(), [](const auto& item) {
+      return item.state == outbox::State::parked;
+    });
+    if (parked > 0) {
+      sentences.push_back(std::to_string(parked) +
+                          " letters of the last 7 days are parked: see "
+                          "antherd letters.");
+    }
+  }
+}
+
+}  // namespace
+
+std::vector<std::string> attention_of(const Lookout& lookout, const store::Store& store,
+                                      Instant now) {
+  std::vector<std::string> sentences;
+  add_stations(sentences, lookout, now);
+  add_letters(sentences, store, now);
+  return sentences;
+}
+
+}  // namespace antherd::service
