@@ -43,14 +43,43 @@ std::string command_text(const std::string& command) {
   return fitted;
 }
 
-/// The first line on one line: a long name is cut, the figure is not.
+/// Dates without their weekday: "9 Jul" for "Thu 9 Jul".
+std::string without_weekdays(std::string text) {
+  for (const char* weekday : {"Mon", "Tue", "Wed", "Thu", "Fri", "Sat", "Sun"}) {
+    const std::string begins = std::string(weekday) + glue;
+    for (std::size_t at = text.find(begins); at != std::string::npos; at = text.find(begins, at)) {
+      text.erase(at, begins.size());
+    }
+  }
+  return text;
+}
+
+/// Without its bracket: "no reading since 10 am." for "no reading since 10 am (25 h)."
+std::string without_bracket(std::string text) {
+  const std::size_t opens = text.rfind(" (");
+  const std::size_t closes = text.rfind(')');
+  if (opens != std::string::npos && closes != std::string::npos && closes > opens) {
+    text.erase(opens, closes - opens + 1);
+  }
+  return text;
+}
+
+std::string first_sentence(std::string text) { return text.substr(0, text.find(". ")) + "."; }
+
+/// The first line on one line. What the subject or a section below says too goes first: weekdays,
+/// brackets, a second sentence; only then a long name is cut. The figure is not.
 std::string first_line(const Part& part) {
-  const std::size_t width = columns(part.first);
-  if (width <= page_width || !part.first.starts_with(part.name)) return paragraph(part.first);
-  const std::size_t over = width - page_width;
+  if (columns(part.first) <= page_width || !part.first.starts_with(part.name)) {
+    return paragraph(part.first);
+  }
+  std::string rest = part.first.substr(part.name.size());
   const std::size_t name = columns(part.name);
-  const std::size_t keep = std::max(least_name, name > over ? name - over : 0);
-  return paragraph(clip(part.name, keep) + part.first.substr(part.name.size()));
+  const auto fits = [&] { return name + columns(rest) <= page_width; };
+  if (!fits()) rest = without_weekdays(rest);
+  if (!fits()) rest = without_bracket(rest);
+  if (!fits() && rest.find(". ") != std::string::npos) rest = first_sentence(rest);
+  const std::size_t room = page_width - std::min(page_width, columns(rest));
+  return paragraph(clip(part.name, std::max(least_name, room)) + rest);
 }
 
 std::string marks(const Desk& desk) {

@@ -2,6 +2,7 @@
 #include <algorithm>
 #include <set>
 
+#include "core/letters/wrap.hpp"
 #include "rules.hpp"
 #include "scene.hpp"
 #include "support/catch.hpp"
@@ -43,6 +44,50 @@ std::string id_of(const alerts::Telling& telling, const letters::Recipient& reci
 }
 
 }  // namespace
+
+namespace {
+
+/// The first line of the letter about yesterday's heat on a field of that name.
+std::string first_line_of(const std::string& name) {
+  letters::Desk desk = scene::desk();
+  desk.fields[name] = desk.fields.at("north bench");
+  desk.fields[name].field = name;
+  alerts::Telling telling = scene::heat(Saying::opened, Level::severe);
+  telling.subject = name;
+  telling.about -= Seconds{24 * 3600};
+  const auto made = letters::compose(std::vector{telling}, std::vector{scene::owner()}, desk);
+  return made.at(0).body.substr(0, made.at(0).body.find('\n'));
+}
+
+}  // namespace
+
+TEST_CASE("a long name is the last thing that the first line cuts") {
+  const std::string weekday = "Mon 13", verdict = " Heat Severe.";  // 13 July 2026 is a Monday
+  const std::string rest = first_line_of("n").substr(1);
+  REQUIRE(has(rest, weekday));
+  REQUIRE(rest.ends_with(verdict));
+  std::string shorter = rest;
+  shorter.erase(shorter.find(weekday), 4);
+  const std::string shortest = shorter.substr(0, shorter.size() - verdict.size());
+  int whole = 0, cut = 0;
+  for (std::size_t length = 9; length <= 78; ++length) {
+    CAPTURE(length);
+    const std::string name(length, 'n');
+    const std::string line = first_line_of(name);
+    CHECK(letters::columns(line) <= 78);
+    const auto fits = [&](const std::string& end) { return length + letters::columns(end) <= 78; };
+    const bool all = fits(rest) || fits(shorter) || fits(shortest);
+    ++(all ? whole : cut);
+    if (all) {
+      CHECK(line == name + (fits(rest) ? rest : fits(shorter) ? shorter : shortest));
+    } else {
+      CHECK(line.ends_with("…" + shortest));  // flower, figure and clock stay
+      CHECK(letters::columns(line) == 78);
+    }
+  }
+  CHECK(whole > 30);
+  CHECK(cut > 10);
+}
 
 TEST_CASE("letters of one kind merge, the worst field first") {
   const letters::Desk desk = scene::desk();
