@@ -12,6 +12,7 @@
 #include <cstring>
 #include <iterator>
 #include <map>
+#include <memory>
 #include <set>
 #include <tuple>
 #include <utility>
@@ -35,18 +36,18 @@ std::int64_t modified(const struct stat& about) {
 
 /// Reads up to `size` bytes at a place; fewer at the file's end. Fails with errno.
 std::optional<std::string> read_at(const Descriptor& file, std::int64_t place, std::size_t size) {
-  std::string text(size, '\0');
+  // Mostly little is new: what stays unread is neither cleared nor copied.
+  const auto buffer = std::make_unique_for_overwrite<char[]>(size);
   std::size_t have = 0;
   while (have < size) {
-    const ssize_t count = pread(file.number(), text.data() + have, size - have,
+    const ssize_t count = pread(file.number(), buffer.get() + have, size - have,
                                 static_cast<off_t>(place) + static_cast<off_t>(have));
     if (count < 0 && errno == EINTR) continue;
     if (count < 0) return std::nullopt;
     if (count == 0) break;
     have += static_cast<std::size_t>(count);
   }
-  text.resize(have);
-  return text;
+  return std::string(buffer.get(), have);
 }
 
 /// The hash of the first min(head_bytes, bytes) bytes of a file's head.
