@@ -211,6 +211,19 @@ bool waits_for_morning(const Telling& telling, const Policy& policy, Instant now
          awake(now, policy.calendar) != now;
 }
 
+// "Data back" of a silence before one that has begun meanwhile, or was told of: that one's end says
+// it better, and "back" beside "no data" would say nothing.
+bool overtaken(const Telling& telling, std::span<const Story> stories) {
+  const bool end_alone =
+      telling.saying == Saying::ended ||
+      (!telling.changes.empty() && telling.changes.front().phase == Phase::closed);
+  if (!end_alone || !of_the_watch(telling.kind)) return false;
+  return std::any_of(stories.begin(), stories.end(), [&](const Story& story) {
+    return story.kind == telling.kind && story.subject == telling.subject &&
+           story.start > telling.start && !story.gone && (story.open || !story.said.empty());
+  });
+}
+
 // A sensor that fails every night outside the window is one piece of news a week.
 bool known_already(const Telling& telling, std::span<const Said> said, const Policy& policy) {
   if (telling.kind != Kind::doubtful_sensor || telling.level != Level::none) return false;
@@ -227,9 +240,11 @@ bool known_already(const Telling& telling, std::span<const Said> said, const Pol
 std::vector<Telling> decide(std::span<const Episode> episodes, std::span<const Notice> notices,
                             std::span<const Said> said, const Policy& policy, Instant now) {
   std::vector<Telling> tellings;
-  for (const Story& story : stories_of(episodes, said, now)) {
+  const std::vector<Story> stories = stories_of(episodes, said, now);
+  for (const Story& story : stories) {
     auto telling = telling_of(story, policy, now);
     if (!telling || waits_for_morning(*telling, policy, now)) continue;
+    if (overtaken(*telling, stories)) continue;
     if (!known_already(*telling, said, policy)) tellings.push_back(std::move(*telling));
   }
   for (Telling& telling : tellings_of(notices, said, policy, now)) {

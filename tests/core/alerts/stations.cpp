@@ -205,6 +205,36 @@ TEST_CASE("that readings are back is told by day") {
   CHECK(heard == "opened Moderate@13 ended none@30 ");
 }
 
+TEST_CASE("a silence that began and ended in one night is not told; two of a night say one thing") {
+  // Silent from one to four at night, and seen by every tick: no word of it, then or at six.
+  const auto heard_of = [](const std::vector<std::pair<double, double>>& silent) {
+    Service service;
+    service.policy.calendar = &pacific;
+    std::string heard;
+    for (double hour = 12; hour <= 60; hour += 0.25) {
+      std::vector<Instant> samples;
+      for (double t = 0; t <= hour; t += 0.25) {
+        const bool gone = std::any_of(silent.begin(), silent.end(), [&](const auto& gap) {
+          return t > gap.first && t < gap.second;
+        });
+        if (!gone) samples.push_back(at(farm(t)));
+      }
+      const auto gaps = silences_from(samples, patience_of(bench()));
+      const auto episodes = silences(bench(), gaps, {}, always, at(farm(hour)));
+      for (const Telling& t : service.tick(episodes, at(farm(hour)))) heard += line(t, hour);
+    }
+    return heard;
+  };
+  CHECK(heard_of({{25, 28}}).empty());
+  CHECK(heard_of({{22, 30}}).empty());
+  // Told in the evening, back at eleven: the good news waits for six.
+  CHECK(heard_of({{20, 23}}) == "opened Moderate@21 ended none@30 ");
+  // ... and is not said when at six the station is silent again; one "back" ends both.
+  CHECK(heard_of({{20, 23}, {26, 33}}) == "opened Moderate@21 opened Moderate@30 ended none@33 ");
+  // Silent again for a while in the same night only: it is back at six.
+  CHECK(heard_of({{20, 23}, {26, 28}}) == "opened Moderate@21 ended none@30 ");
+}
+
 TEST_CASE("a doubtful sensor is Moderate in the window") {
   CHECK(doubt("xxxxxx" + std::string(24, '.'), span(farm(0), farm(100))) ==
         "opened Moderate@6 closed none@30 | ");
