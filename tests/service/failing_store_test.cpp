@@ -233,3 +233,70 @@ TEST_CASE("samples that find no room do not keep the heat letter back") {
   CHECK(bench.letters_of("no_data").empty());
   stopper.release("sample");
 }
+
+TEST_CASE("no row of a file is lost while the store fails and memory is full") {
+  Bench steady, bench;  // the log is that of the last
+  const Instant later = hot_morning + days{4};
+  for (Bench* each : {&bench, &steady}) {
+    each->open(sown);
+    each->drop("bench.csv", readings(Weather{}, sown, hot_morning));
+    each->turn(hot_morning);
+  }
+  const auto before = bench.stored_hours().size();
+  bench.desk->keeper().keep_in_memory_at_most(100);
+  Stopper stopper(bench.folder);
+  stopper.stop_all();
+  // Half a day a piece: the third look finds memory full.
+  Instant written = hot_morning;
+  for (Instant now = hot_morning + hours{12}; now <= later; now += hours{12}) {
+    const std::string rows = rows_of(readings(Weather{}, written, now));
+    written = now;
+    for (Bench* each : {&bench, &steady}) {
+      each->folder.append("drop/bench.csv", rows);
+      each->turn(now);
+    }
+  }
+  CHECK(bench.stored_hours().size() == before);
+  const std::string log = bench.folder.read("antherd.log");
+  CHECK(log.find("memory is full") != std::string::npos);
+  CHECK(log.find("memory is full") == log.rfind("memory is full"));  // once
+  SECTION("the store works again") { stopper.release_all(); }
+  SECTION("the service is started again") {
+    bench.desk.reset();
+    stopper.release_all();
+    bench.open(later + minutes{5});
+  }
+  for (Bench* each : {&bench, &steady}) {
+    each->turn(later + minutes{6});
+    each->turn(later + minutes{12});
+  }
+  CHECK(bench.fingerprint() == steady.fingerprint());
+}
+
+TEST_CASE("of a polled station the oldest readings are given up, and that is said once") {
+  Farm farm;
+  farm.more = river;
+  Bench bench(farm);
+  bench.open(hot_morning);
+  bench.desk->keeper().keep_in_memory_at_most(10);
+  Stopper stopper(bench.folder);
+  stopper.stop_all();
+  Instant now = hot_morning;
+  for (int i = 0; i < 24; ++i, now += minutes{5}) {
+    station::Answer answer;
+    answer.readings.samples = {reading_at(Weather{}, now)};
+    bench.desk->poll_answered("river", answer, now);
+    bench.turn(now);
+  }
+  stopper.release_all();
+  bench.turn(now + minutes{6});
+  const auto kept = bench.desk->store().samples("river", Instant{}, Instant::max());
+  REQUIRE(kept);
+  CHECK(kept->size() >= 5);
+  CHECK(kept->size() <= 10);
+  CHECK(kept->back().time == now - minutes{5});
+  const std::string log = bench.folder.read("antherd.log");
+  const auto said = log.find("all readings of river");
+  CHECK(said != std::string::npos);
+  CHECK(said == log.rfind("all readings of river"));
+}

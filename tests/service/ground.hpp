@@ -78,6 +78,14 @@ struct Weather {
 weather::Sample reading_at(const Weather& weather, Instant at);
 std::vector<weather::Sample> readings(const Weather& weather, Instant from, Instant to);
 
+/// A station that is polled, beside the farm's own: for Farm::more.
+constexpr const char* river =
+    "\n[[station]]\nname = \"river\"\nlatitude = 46.7\nlongitude = -117.2\n"
+    "elevation = \"750 m\"\ninterval = \"5 min\"\n[station.http]\n"
+    "url = \"http://127.0.0.1:9/now.json\"\nevery = \"5 min\"\nform = \"json\"\n"
+    "time = { at = \"/t\", form = \"unix\" }\n"
+    "temperature = { at = \"/c\", unit = \"degC\" }\nhumidity = { at = \"/h\", unit = \"%\" }\n";
+
 constexpr const char* header = "time,temp_c,rh_pct,rain_mm\n";
 std::string row_of(const weather::Sample& sample);
 std::string rows_of(const std::vector<weather::Sample>& samples);

@@ -71,12 +71,7 @@ TEST_CASE("a reload says nothing a second time and loses no reading") {
 
 TEST_CASE("a reading that was polled and not yet stored outlives a reload") {
   Farm farm;
-  farm.more =
-      "\n[[station]]\nname = \"river\"\nlatitude = 46.7\nlongitude = -117.2\n"
-      "elevation = \"750 m\"\ninterval = \"5 min\"\n[station.http]\n"
-      "url = \"http://127.0.0.1:9/now.json\"\nevery = \"5 min\"\nform = \"json\"\n"
-      "time = { at = \"/t\", form = \"unix\" }\n"
-      "temperature = { at = \"/c\", unit = \"degC\" }\nhumidity = { at = \"/h\", unit = \"%\" }\n";
+  farm.more = river;
   Bench bench(farm);
   bench.open(noon);
   bench.turn(noon);
@@ -93,6 +88,39 @@ TEST_CASE("a reading that was polled and not yet stored outlives a reload") {
   const auto stored = bench.desk->store().samples("river", noon - hours{1}, noon + hours{1});
   REQUIRE(stored);
   CHECK(stored->size() == 2);
+}
+
+TEST_CASE("an answer that was asked for before new settings came is not read as they say") {
+  Farm farm;
+  farm.more = river;
+  Bench bench(farm);
+  std::vector<station::PollMemory> asked;
+  bench.open(noon);
+  bench.desk->on_poll([&](const std::string&, const station::HttpForm&,
+                          const station::PollMemory& memory) { asked.push_back(memory); });
+  bench.turn(noon);
+  REQUIRE(asked.size() == 1);
+  station::Answer old, fresh;
+  old.memory = asked[0];
+  old.readings.samples = {reading_at(Weather{}, noon)};
+  old.readings.samples[0].temperature = Celsius(77);  // degF, read as degC
+  const std::string good = bench.folder.read("antherd.toml");
+  bench.folder.write("antherd.toml", replaced(good, "/c\", unit = \"degC", "/c\", unit = \"degF"));
+  bench.desk->reload(noon + minutes{1});
+  bench.turn(noon + minutes{1});
+  REQUIRE(asked.size() == 2);  // at once
+  bench.desk->poll_answered("river", old, noon + minutes{1});
+  bench.turn(noon + minutes{1});
+  CHECK(asked.size() == 2);
+  fresh.memory = asked[1];
+  fresh.readings.samples = {reading_at(Weather{}, noon)};
+  bench.desk->poll_answered("river", fresh, noon + minutes{2});
+  bench.turn(noon + minutes{10});
+  const auto stored = bench.desk->store().samples("river", noon - hours{1}, noon + hours{1});
+  REQUIRE(stored);
+  REQUIRE(stored->size() == 1);
+  CHECK(stored->front() == fresh.readings.samples.front());
+  CHECK(bench.desk->store().conflicts("river")->empty());
 }
 
 TEST_CASE("while a letter is under way new settings wait for its end") {
@@ -138,6 +166,13 @@ TEST_CASE("after a column's name was mended the files are read from their start"
 
   bench.folder.write("antherd.toml", good);
   SECTION("by a reload") { bench.desk->reload(noon + minutes{7}); }
+  SECTION("by a reload, and the power fails before they were read") {
+    bench.desk->reload(noon + minutes{7});
+    bench.desk.reset();
+    bench.settings = std::make_shared<const settings::Settings>(
+        *settings::read_file(bench.folder / "antherd.toml").settings);
+    bench.open(noon + minutes{7});
+  }
   SECTION("by a restart") {
     bench.close(noon + minutes{7});
     bench.settings = std::make_shared<const settings::Settings>(

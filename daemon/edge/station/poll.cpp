@@ -57,6 +57,7 @@ Answer failed(const HttpForm& form, const PollMemory& memory, const std::string&
 Answer read_answer(const HttpForm& form, const PollMemory& memory, const Response& response,
                    Instant now) {
   PollMemory next;
+  next.mark = memory.mark;
   next.etag = response.etag;
   next.last_modified = response.last_modified;
   next.last_body_hash = hash_hex(response.body);

@@ -18,6 +18,7 @@ struct PollMemory {
   std::string last_body_hash;  // an unchanged answer without validators is not fresh either,
                                // unless it carries its own time
   int failures = 0;            // in a row: back-off to 15 min
+  std::int64_t mark = 0;       // the asker's own, given back as it was
   bool operator==(const PollMemory&) const = default;
 };
 

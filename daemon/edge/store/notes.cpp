@@ -33,8 +33,11 @@ Result<Notes> Store::notes_with_prefix(const std::string& prefix) const {
   });
 }
 
-Outcome Store::put_notes(const Notes& notes) {
+Outcome Store::put_notes(const Notes& notes, std::span<const std::string> gone) {
   return inside_->write("keep notes", [&] {
+    Statement remove =
+        inside_->database->use("DELETE FROM note WHERE substr(key, 1, length(?1)) = ?1");
+    for (const std::string& prefix : gone) remove.bind(prefix).run();
     inside_->put(notes);
     return Done{};
   });

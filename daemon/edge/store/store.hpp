@@ -124,7 +124,8 @@ class Store {
   // Small facts by name.
   Result<std::optional<std::string>> note(const std::string& key) const;
   Result<Notes> notes_with_prefix(const std::string& prefix) const;
-  Outcome put_notes(const Notes& notes);
+  /// @param gone  first the notes whose names begin with one of these are removed; one transaction
+  Outcome put_notes(const Notes& notes, std::span<const std::string> gone = {});
 
   /// A hash (32 hexadecimal digits) over the facts (samples, conflicts, hours, diary): equal facts
   /// have equal fingerprints, whatever the order they came in, how often, and under which ids.

@@ -65,19 +65,26 @@ Outcome DeskWork::begin(Instant now) {
   if (auto done = carrier_->load(now); !done) return done;
   sources_.clear();
   store::Notes forms;
+  std::vector<std::string> gone;
   for (const auto& station : settings_->stations) {
     Source& source = sources_[station.station.name];
-    auto notes = store_.notes_with_prefix(bookmark_prefix(station.station.name));
+    source.next_poll = now;
+    source.memory.mark = settings_number_;
+    const std::string bookmarks = bookmark_prefix(station.station.name);
+    if (station.drop && has_another_form(station, forms)) {
+      gone.push_back(bookmarks);
+      continue;
+    }
+    auto notes = store_.notes_with_prefix(bookmarks);
     if (!notes) return notes.failure();
     for (const auto& [key, text] : *notes) {
       auto bookmark = bookmark_of(text);
       if (bookmark) source.bookmarks.push_back(std::move(*bookmark));
     }
-    if (station.drop) forget_bookmarks_of_another_form(station, source, forms);
-    source.next_poll = now;
   }
+  // Both at once: bookmarks that outlived the new form would never let its files be read.
   if (!forms.empty()) {
-    if (auto done = store_.put_notes(forms); !done) return done;
+    if (auto done = store_.put_notes(forms, gone); !done) return done;
   }
   settling_since_ = now;
   // A page that cannot be shown must not keep the watch from starting.
@@ -156,14 +163,15 @@ void DeskWork::give_sign_of_life(bool kept_well, Instant now) {
   if (const auto url = heartbeat_.beat(settings_->watch, kept_well && looked, now)) beat_(*url);
 }
 
-void DeskWork::forget_bookmarks_of_another_form(const settings::Station& station, Source& source,
-                                                store::Notes& notes) {
+/// Whether the station's files were read in another form until now. A form that the store does not
+/// know is added to `forms`.
+bool DeskWork::has_another_form(const settings::Station& station, store::Notes& forms) const {
   const std::string key = "form/" + station.station.name;
   const std::string form = form_text(*station.drop);
   const auto known = store_.note(key);
-  if (known && *known && **known == form) return;
-  if (known && *known) source.bookmarks.clear();
-  notes[key] = form;
+  if (known && *known && **known == form) return false;
+  forms[key] = form;
+  return known && *known;
 }
 
 void DeskWork::look(Instant now) {
@@ -176,6 +184,19 @@ void DeskWork::look(Instant now) {
 
 bool DeskWork::look_into_drop(const settings::Station& station, Source& source, Instant now) {
   const std::string& name = station.station.name;
+  if (!keeper_->make_room(name)) {
+    source.waits = true;
+    log_once("room for " + name, name +
+                                     ": the store takes nothing and memory is full; the files "
+                                     "are read on when it does, nothing in them is lost");
+    return false;
+  }
+  if (source.waits) {  // what stood unread is read before anything is decided
+    source.waits = false;
+    settling_since_ = now;
+    logged_.erase("room for " + name);
+    log_info(name + ": the store takes readings again, the files are read on");
+  }
   // A clock that is not set calls no reading too early.
   const Instant clock = clock_set_ ? now : Instant{};
   const station::Look look = station::look_into(*station.drop, source.bookmarks, clock);
@@ -232,6 +253,7 @@ void DeskWork::poll_answered(const std::string& name, const station::Answer& ans
   const auto found = sources_.find(name);
   const settings::Station* station = settings_->station(name);
   if (found == sources_.end() || station == nullptr || !station->http) return;  // settings changed
+  if (answer.memory.mark != settings_number_) return;  // read as older settings said; asked again
   Source& source = found->second;
   source.asked = false;
   source.answered = true;
@@ -315,6 +337,7 @@ void DeskWork::reload(Instant at) {
   }
   const auto old = settings_;
   settings_ = std::make_shared<const settings::Settings>(std::move(*reading.settings));
+  ++settings_number_;
   auto done = begin(now);
   if (done) done = open_log(settings_->log);
   if (!done) {

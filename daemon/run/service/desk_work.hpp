@@ -73,6 +73,7 @@ class DeskWork {
     std::optional<Instant> looked;    // read, or told in full why it cannot be
     std::map<CivilDay, int> refused;  // rows by day
     std::string last_trouble;
+    bool waits = false;  // its files are not read on: the store takes nothing and memory is full
   };
 
   DeskWork(std::shared_ptr<const settings::Settings> settings, store::Store store);
@@ -85,8 +86,7 @@ class DeskWork {
   void look_into_diary(Instant now);
   void ask_stations(Instant now);
   bool settled(Instant now);
-  void forget_bookmarks_of_another_form(const settings::Station& station, Source& source,
-                                        store::Notes& notes);
+  bool has_another_form(const settings::Station& station, store::Notes& forms) const;
   void take_readings(const std::string& station, const station::Readings& readings,
                      const store::Notes& notes, Instant now);
   void note_trouble(const std::string& station, const std::string& sentence);
@@ -114,6 +114,7 @@ class DeskWork {
   bool look_due_ = true;
   std::optional<Instant> settling_since_;  // until every source was looked at once
   bool reload_wanted_ = false;             // put off until the letter under way has ended
+  std::int64_t settings_number_ = 0;       // an answer that older settings asked for is not read
 };
 
 }  // namespace antherd::service

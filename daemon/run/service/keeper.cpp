@@ -13,7 +13,6 @@ namespace {
 
 constexpr auto reach_before_sowing = std::chrono::days{3};
 constexpr auto ledger_reach = std::chrono::days{400};
-constexpr std::ptrdiff_t most_in_memory = 200'000;  // samples of a station: 4 months of minutes
 constexpr auto limits_look_back = std::chrono::days{2};
 constexpr auto remade_at_once = std::chrono::days{20};
 
@@ -85,11 +84,18 @@ void Keeper::take(const std::string& station, const std::vector<weather::Sample>
   Batch& batch = batches_[station];
   if (batch.samples.empty() && batch.notes.empty()) batch.since = now;
   batch.samples.insert(batch.samples.end(), samples.begin(), samples.end());
-  // While the store fails the oldest go first: their files can be read again, memory cannot grow.
-  if (std::ssize(batch.samples) > most_in_memory) {
-    batch.samples.erase(batch.samples.begin(), batch.samples.end() - most_in_memory / 2);
-  }
   for (const auto& [key, value] : notes) batch.notes[key] = value;
+  // What stands in a file stays, with the bookmark that goes past it. An answer cannot be had
+  // again, and memory must not grow without end.
+  const settings::Station* polled = settings_->station(station);
+  if (polled == nullptr || !polled->http || std::ssize(batch.samples) <= most_in_memory_) return;
+  batch.samples.erase(batch.samples.begin(), batch.samples.end() - most_in_memory_ / 2);
+  batch.given_up = true;
+}
+
+bool Keeper::make_room(const std::string& station) {
+  Batch& batch = batches_[station];
+  return std::ssize(batch.samples) < most_in_memory_ || store_batch(station, batch);
 }
 
 Outcome Keeper::refresh_diary() {
@@ -236,6 +242,10 @@ Kept Keeper::step(Instant now, bool clock_set) {
   for (auto& [station, batch] : batches_) {
     if (!batch_due(station, batch, now)) continue;
     if (auto done = store_batch(station, batch); !done) kept.troubles.push_back(done.failure());
+    if (!batch.given_up) continue;
+    kept.troubles.push_back(Failure{"keep all readings of " + station, settings_->store_folder,
+                                    "the store has taken none for long and memory is full",
+                                    "the oldest that were polled are given up"});
   }
   if (auto done = refresh_diary(); !done) kept.troubles.push_back(done.failure());
 

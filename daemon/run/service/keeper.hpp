@@ -33,9 +33,15 @@ class Keeper {
   Outcome load(Instant now);
 
   /// Takes readings of one station. They are kept in memory for at most `batch_for`, then stored
-  /// together with their notes (file bookmarks, HTTP memory).
+  /// together with their notes (file bookmarks, HTTP memory). While the store takes nothing, those
+  /// of files all stay here, so files are read on only where make_room() is true; of a polled
+  /// station the oldest are given up past the bound, and step() says so.
   void take(const std::string& station, const std::vector<weather::Sample>& samples,
             const store::Notes& notes, Instant now);
+  /// Whether memory has room for another look into the station's files; stores a full batch first.
+  bool make_room(const std::string& station);
+  /// @param samples  of one station, kept in memory while the store takes none
+  void keep_in_memory_at_most(std::ptrdiff_t samples) { most_in_memory_ = samples; }
   /// The diary may have been changed by another process: looks, cheaply.
   Outcome refresh_diary();
   /// Takes diary entries that came as files; what is there already changes nothing.
@@ -60,6 +66,7 @@ class Keeper {
     std::vector<weather::Sample> samples;
     store::Notes notes;
     Instant since;
+    bool given_up = false;  // some that were polled
   };
 
   Outcome store_batch(const std::string& station, Batch& batch);
@@ -88,6 +95,7 @@ class Keeper {
   std::optional<Instant> first_start_, last_daily_, last_weekly_;
   std::optional<CivilDay> tidied_;
   Rations rations_;
+  std::ptrdiff_t most_in_memory_ = 200'000;  // 4 months of minutes
 };
 
 constexpr Seconds batch_for{300};  // ≤ 5 min of samples may be lost with the power (promise 1)

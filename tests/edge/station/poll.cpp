@@ -162,12 +162,14 @@ TEST_CASE("an answer becomes a sample, its validators are sent back, 304 is not 
   });
   PollMemory memory;
   memory.failures = 3;
+  memory.mark = 7;
   const Answer first = ask(form_for(server.url()), memory);
   CHECK_FALSE(first.trouble);
   CHECK_FALSE(first.not_modified);
   REQUIRE(first.readings.samples.size() == 1);
   CHECK(first.readings.samples[0].time == noon);
   CHECK(first.memory.failures == 0);
+  CHECK(first.memory.mark == 7);
   CHECK(first.memory.etag == "\"v1\"");
   memory = first.memory;
   memory.failures = 2;
