@@ -1,120 +1,20 @@
 #!/usr/bin/env bash
 # A full disk, for real: the store lies on a small memory file system (promise 5). The service must
 # stay up, say so, still tell of the heat while the disk is full, and catch up by itself when there is
-# room again. (A disk that turns read-only under open files cannot be made here: mount refuses.)
+# room again.
 #   full_disk.sh ANTHERD
 # Needs root to mount; else exit 77.
 set -euo pipefail
-antherd="$1"
-top="$(mktemp -d)"
-service=
-clean_up() {
-  if [ -n "$service" ]; then
-    kill -KILL "$service" 2>/dev/null || true
-    wait "$service" 2>/dev/null || true
-  fi
-  umount "$top/store" 2>/dev/null || true
-  rm -rf "$top"
-}
-trap clean_up EXIT
-mkdir "$top/store" "$top/drop" "$top/outgoing"
+. "$(dirname "${BASH_SOURCE[0]}")/hot_farm.sh"
+
+hot_farm_make "$1"
 if ! mount -t tmpfs -o size=48m,mode=700 tmpfs "$top/store" 2>/dev/null; then
-  echo "No right to mount a file system here: the full disk was not tried."
+  echo "skipped: no right to mount a file system here, the full disk was not tried"
   exit 77
 fi
+hot_farm_start
 
-checks=0
-fail() {
-  echo "full_disk: $*" >&2
-  tail -n 30 "$top/antherd.log" >&2
-  exit 1
-}
-passed() { checks=$((checks + 1)); echo "  $*"; }
-# wait_for SECONDS WORDS COMMAND…: until the command succeeds.
-wait_for() {
-  local until=$((SECONDS + $1)) words="$2"
-  shift 2
-  while ! "$@"; do
-    [ "$SECONDS" -lt "$until" ] || fail "in vain: $words"
-    kill -0 "$service" 2>/dev/null || fail "the service ended while waiting: $words"
-    sleep 0.2
-  done
-  passed "$words"
-}
-
-cat >"$top/antherd.toml" <<'END'
-[farm]
-name = "Larkspur Bench"
-time_zone = "America/Los_Angeles"
-units = "us"
-exercise = true
-[store]
-folder = "store"
-[log]
-file = "antherd.log"
-[mail]
-folder = "outgoing"
-from = "alerts@larkspur.example"
-[[recipient]]
-address = "owner@larkspur.example"
-[[station]]
-name = "bench"
-latitude = 46.73
-longitude = -117.18
-elevation = "780 m"
-interval = "30 min"
-silent_after = "12 h"
-[station.drop]
-folder = "drop"
-time = { column = "time", form = "unix" }
-temperature = { column = "t", unit = "degC" }
-humidity = { column = "h", unit = "%" }
-[[field]]
-name = "north bench"
-station = "bench"
-sown = 2026-04-20
-crop_type = "coastal"
-irrigation = "drip"
-END
-
-# Half-hourly readings [from, to), warmest about 4 in the afternoon; from July 14 the days are hot.
-hot_from=$(date -u -d '2026-07-14 07:00' +%s)
-readings() {
-  awk -v from="$1" -v to="$2" -v hot_from="$hot_from" 'BEGIN {
-    for (at = from; at < to; at += 1800) {
-      phase = cos(6.2831853 * ((at - 23 * 3600) % 86400) / 86400)
-      printf "%d,%.1f,%.1f\n", at, (at >= hot_from ? 28 : 12.5) + 9 * phase, 55 - 25 * phase
-    }
-  }' >>"$top/drop/bench.csv"
-}
-start=$(date -u -d '2026-07-14 17:00' +%s)  # 10 in the morning at the farm
-echo "time,t,h" >"$top/drop/bench.csv"
-next=$start
-readings $((hot_from - 85 * 86400)) "$start"
-
-"$antherd" run --settings "$top/antherd.toml" --clock-from "2026-07-14 10:00" --pace 1800 \
-  </dev/null >"$top/out" 2>&1 &
-service=$!
-began=$(date +%s%N)
-# Readings up to an hour before the service's clock: half an hour passes in a second.
-feed() {
-  local now=$((start + ($(date +%s%N) - began) / 1000000 * 1800 / 1000 - 3600))
-  now=$((now / 1800 * 1800))
-  if [ "$now" -gt "$next" ]; then
-    readings "$next" "$now"
-    next=$now
-  fi
-}
-heat_letters() { find "$top/outgoing" -name 'heat-*.eml' | wc -l; }
-hours_known() {
-  "$antherd" hours "north bench" --settings "$top/antherd.toml" --lines 2>/dev/null |
-    grep -c '"n":[1-9]' || true
-}
-ready() { [ -s "$top/store/antherd.db" ] && [ "$(hours_known)" -gt 1000 ]; }
-log_says() { grep -qi "$1" "$top/antherd.log"; }
-told_of_heat() { feed; [ "$(heat_letters)" -gt 0 ]; }
 said_full() { feed; log_says 'the disk is full.*8 MiB'; }
-known_up_to_date() { feed; [ "$(hours_known)" -ge $(((next - hot_from) / 3600 + 2000)) ]; }
 
 wait_for 120 "the season was read" ready
 dd if=/dev/zero of="$top/store/filler" bs=64k 2>/dev/null || true
@@ -126,18 +26,4 @@ wait_for 90 "the heat is told although the disk is full" told_of_heat
 
 rm "$top/store/filler"
 wait_for 90 "with room again every hour is caught up" known_up_to_date
-
-opened=$(find "$top/outgoing" -name 'heat-opened-*.eml' | wc -l)
-[ "$opened" -le 1 ] || fail "$opened letters of one opening"
-passed "one opening, one letter"
-asked=$(date +%s%N)
-kill -TERM "$service"
-status=0
-wait "$service" || status=$?
-service=
-[ "$status" -eq 0 ] || fail "it ended with status $status"
-passed "ended $((($(date +%s%N) - asked) / 1000000)) ms after it was asked"
-"$antherd" check --settings "$top/antherd.toml" >"$top/check" 2>&1 || [ $? -eq 3 ] ||
-  fail "check is not content: $(tail -n 3 "$top/check")"
-passed "the store opens again"
-echo "$checks checks passed"
+hot_farm_close

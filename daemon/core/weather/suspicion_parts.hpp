@@ -92,7 +92,6 @@ class LowTopWatch {
   void end_night();
 
   Night night_;
-  int hours_ = 0;
   // The newest stretch of the night in which humidity stood still.
   double least_ = 0.0, most_ = 0.0, first_temperature_ = 0.0;
   int still_ = 0;

@@ -1,20 +1,38 @@
 // See database.hpp.
 #include "edge/store/database.hpp"
 
+#include <cerrno>
 #include <cmath>
 #include <filesystem>
 #include <limits>
+#include <system_error>
 
 #include "core/failures/result.hpp"
 
 namespace antherd::store {
+namespace {
+
+/// What SQLite says, and what the system said to it: "disk I/O error" alone names no cause. SQLite
+/// passes the system's number on from some of its calls only; errno is as its last call left it.
+std::string words_of(sqlite3* connection) {
+  const int left = errno;
+  std::string words = sqlite3_errmsg(connection);
+  const int primary = sqlite3_extended_errcode(connection) & 0xff;
+  if (primary != SQLITE_IOERR && primary != SQLITE_CANTOPEN) return words;
+  const int told = sqlite3_system_errno(connection);
+  const int of_system = told != 0 ? told : left;
+  if (of_system == 0) return words;
+  return words + " (" + std::generic_category().message(of_system) + ")";
+}
+
+}  // namespace
 
 Statement::~Statement() { sqlite3_reset(handle_); }
 
 void Statement::check(int code) {
   if (code == SQLITE_OK) return;
   sqlite3* connection = sqlite3_db_handle(handle_);
-  throw Trouble{sqlite3_extended_errcode(connection), sqlite3_errmsg(connection), {}};
+  throw Trouble{sqlite3_extended_errcode(connection), words_of(connection), {}};
 }
 
 void Statement::put_integer(std::int64_t value) {
@@ -37,6 +55,7 @@ void Statement::put(std::nullopt_t) { check(sqlite3_bind_null(handle_, ++next_))
 
 bool Statement::step() {
   column_ = 0;
+  errno = 0;  // see words_of
   const int code = sqlite3_step(handle_);
   if (code == SQLITE_ROW) return true;
   if (code != SQLITE_DONE) check(code);
@@ -121,7 +140,7 @@ Database::Database(const std::string& path, Mode mode, std::chrono::milliseconds
 
 Database::~Database() { statements_.clear(); }
 
-void Database::fail(int code) { throw Trouble{code, sqlite3_errmsg(connection_.get()), {}}; }
+void Database::fail(int code) { throw Trouble{code, words_of(connection_.get()), {}}; }
 
 Statement Database::use(const char* sql) {
   auto& cached = statements_[sql];

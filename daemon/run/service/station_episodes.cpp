@@ -55,7 +55,8 @@ std::vector<alerts::FailingHour> failing_hours(const std::vector<weather::Hour>&
     }
   }
   std::vector<alerts::FailingHour> result;
-  for (const auto& [check, any] : checks) {
+  for (const auto& [name, any] : checks) {
+    const std::string& check = name;  // clang 14 lets no lambda take a part of a binding
     for (auto hour = first; hour != hours.end() && end_of(hour->start) <= now; ++hour) {
       const bool failing =
           std::any_of(hour->flags.begin(), hour->flags.end(), [&](const weather::Flag& flag) {
