@@ -32,8 +32,9 @@ class Loopback {
       for (;;) {
         const int line = ::accept4(listener_, nullptr, nullptr, SOCK_CLOEXEC);
         if (line < 0) continue;
-        // A peer that never reads or writes must not hold the next run up.
-        const timeval patience{2, 0};
+        // A peer that waits for more than there is to say must not hold the next run up: silence
+        // ends the conversation. What a peer makes of that is one more thing to try.
+        const timeval patience{0, 5'000};
         ::setsockopt(line, SOL_SOCKET, SO_RCVTIMEO, &patience, sizeof patience);
         ::setsockopt(line, SOL_SOCKET, SO_SNDTIMEO, &patience, sizeof patience);
         talk_(line);
