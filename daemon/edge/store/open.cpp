@@ -54,7 +54,13 @@ Result<Store> Store::open(const Options& options) {
   inside->path = options.folder + "/antherd.db";
   if (options.read_only) {
     std::error_code error;
-    if (!std::filesystem::exists(inside->path, error)) {
+    const bool there = std::filesystem::exists(inside->path, error);
+    if (error) {
+      return Failure{"open the store", inside->path, error.message(),
+                     "the service keeps it for itself: run the command as root (sudo), or as the "
+                     "user that the service runs as"};
+    }
+    if (!there) {
       return Failure{"open the store", inside->path, "there is none yet",
                      "start the service first, or name another [store] folder"};
     }
