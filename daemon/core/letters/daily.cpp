@@ -10,38 +10,6 @@ namespace {
 
 constexpr Seconds daily_holds{12 * 3600};
 
-std::string field_line(const FieldStatus& status, const Words& words) {
-  const season::HeatDay& today = status.heat.today;
-  const risk::HeatRules& rules = words.heat_rules(status.field);
-  std::vector<std::string> said;
-  if (today.t_max) {
-    said.push_back("at most " + words.temperature(*today.t_max, rules) +
-                   (today.t_max_hour ? " from " + words.clock(Instant(*today.t_max_hour)) : ""));
-  } else {
-    said.push_back("no temperature today");
-  }
-  if (today.hours_35) {
-    said.push_back((*today.hours_35 == 0 ? std::string("no hour at ")
-                                         : std::to_string(*today.hours_35) + glue + "h at ") +
-                   words.threshold(rules.severe) + " or more");
-  }
-  said.push_back("heat " + level_word(today.level));
-  said.push_back("mildew " +
-                 level_word(status.humid.last ? status.humid.last->level : Level::none));
-  if (waters_leaves(status) || status.humid.night_sets_last_five > 0) {
-    said.push_back("sprinklers before " + std::to_string(status.humid.night_sets_last_five) +
-                   " of 5 mornings");
-  }
-  const std::string unseen = unseen_since(status, words);
-  said.push_back(!unseen.empty() ? unseen
-                 : status.data.hours_missing_24 == 0
-                     ? "data complete"
-                     : count(status.data.hours_missing_24, "hour") + " of 24 missing");
-  std::string text = plain(status.field) + ": " + flower_state(status) + "; ";
-  for (std::size_t i = 0; i < said.size(); ++i) text += (i > 0 ? ", " : "") + said[i];
-  return text + ".";
-}
-
 std::string short_line(const FieldStatus& status, const Words& words) {
   const season::HeatDay& today = status.heat.today;
   std::string text = clip(plain(status.field), 20) + " ";
@@ -80,7 +48,7 @@ std::string next_words(const Words& words) {
 std::string full_body(const std::vector<const FieldStatus*>& fields, const Words& words) {
   std::string text;
   for (const FieldStatus* status : fields) {
-    for (const std::string& line : wrap(field_line(*status, words), page_width, 0, 2)) {
+    for (const std::string& line : wrap(daily_field_line(*status, words), page_width, 0, 2)) {
       text += line + "\n";
     }
   }
@@ -135,6 +103,38 @@ Letter daily_letter(const std::vector<const FieldStatus*>& fields, const Recipie
 }
 
 }  // namespace
+
+std::string daily_field_line(const FieldStatus& status, const Words& words) {
+  const season::HeatDay& today = status.heat.today;
+  const risk::HeatRules& rules = words.heat_rules(status.field);
+  std::vector<std::string> said;
+  if (today.t_max) {
+    said.push_back("at most " + words.temperature(*today.t_max, rules) +
+                   (today.t_max_hour ? " from " + words.clock(Instant(*today.t_max_hour)) : ""));
+  } else {
+    said.push_back("no temperature today");
+  }
+  if (today.hours_35) {
+    said.push_back((*today.hours_35 == 0 ? std::string("no hour at ")
+                                         : std::to_string(*today.hours_35) + glue + "h at ") +
+                   words.threshold(rules.severe) + " or more");
+  }
+  said.push_back("heat " + level_word(today.level));
+  said.push_back("mildew " +
+                 level_word(status.humid.last ? status.humid.last->level : Level::none));
+  if (waters_leaves(status) || status.humid.night_sets_last_five > 0) {
+    said.push_back("sprinklers before " + std::to_string(status.humid.night_sets_last_five) +
+                   " of 5 mornings");
+  }
+  const std::string unseen = unseen_since(status, words);
+  said.push_back(!unseen.empty() ? unseen
+                 : status.data.hours_missing_24 == 0
+                     ? "data complete"
+                     : count(status.data.hours_missing_24, "hour") + " of 24 missing");
+  std::string text = plain(status.field) + ": " + flower_state(status) + "; ";
+  for (std::size_t i = 0; i < said.size(); ++i) text += (i > 0 ? ", " : "") + said[i];
+  return text + ".";
+}
 
 bool in_daily(const FieldStatus& status) {
   return status.watch == season::Watch::watched && status.flower.part == season::Part::window;

@@ -142,6 +142,8 @@ std::string letter_id(const std::vector<Telling>& tellings, const Recipient& rec
 std::string calendar_id(const std::string& stem, const Recipient& recipient, const Desk& desk);
 /// "The daily line comes tonight at 7 pm; if it has not come by 8 pm, the watch itself is down."
 std::string watch_words(const Recipient& recipient, const Words& words);
+/// "north bench: in flower; at most 96 °F from 3 pm, …, data complete."
+std::string daily_field_line(const FieldStatus& status, const Words& words);
 /// Whether the daily line speaks of a field: in its window, or stage unknown in its season.
 bool in_daily(const FieldStatus& status);
 

@@ -27,6 +27,10 @@ std::string DeskWork::status_line(Instant at) const {
   line += std::to_string(carrier_->waiting()) + " letters waiting";
   if (mail.last_success) line += ", last mail " + age_text(now - *mail.last_success) + " ago";
   if (!mail.trouble.empty()) line += ", mail: " + mail.trouble;
+  if (!clock_set_) line += "; computer clock not set";
+  if (const auto since = distress_.since()) {
+    line += "; the store takes nothing since " + age_text(now - *since);
+  }
   return line;
 }
 

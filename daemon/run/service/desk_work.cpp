@@ -115,11 +115,12 @@ Instant DeskWork::turn_at(Instant now) {
     kept.troubles.push_back(done.failure());
   }
   log_kept(kept);
+  distress_.note(kept.troubles.empty() ? std::nullopt : std::optional(kept.troubles.front()), now);
   // With each scan too: a command may have put a letter back to waiting, or a review in.
   if (kept.letters > 0 || scan) {
     if (auto done = carrier_->refresh(); !done) log_once("outbox", done.failure().sentence());
   }
-  for (const std::string& sentence : carrier_->carry(now)) log_info(sentence);
+  carry(now);
   if (!settling_since_) give_sign_of_life(kept.troubles.empty(), now);
   if (!settling_since_) front_page_.refresh(keeper_->lookout(), store_, now);
 
@@ -132,6 +133,21 @@ Instant DeskWork::turn_at(Instant now) {
   }
   if (const auto again = carrier_->look_again(now)) wake = std::min(wake, std::max(now, *again));
   return wake;
+}
+
+/// The outbox first; where the store takes nothing, its letters rest and one goes past them.
+void DeskWork::carry(Instant now) {
+  if (!distress_.busy()) {
+    for (const std::string& sentence : carrier_->carry(now)) log_info(sentence);
+  }
+  if (carrier_->busy() || !clock_set_) return;
+  const auto send = [this](mail::Server server, std::int64_t item, letters::Letter letter) {
+    if (send_) send_(std::move(server), item, std::move(letter));
+  };
+  const auto desk = [&] { return keeper_->lookout().desk(now); };
+  for (const std::string& sentence : distress_.carry(*settings_, desk, send, now)) {
+    log_warning(sentence);
+  }
 }
 
 /// Nothing is decided before every source was looked at: after a pause of the service a station
@@ -306,7 +322,8 @@ void DeskWork::tell_news(const std::string& station, Instant now) {
 
 void DeskWork::mail_spoken(std::int64_t item, const mail::Spoken& spoken, Instant at) {
   const Instant now = working(at);
-  const std::string sentence = carrier_->received(item, spoken, now);
+  const std::string sentence = Distress::mine(item) ? distress_.received(spoken, now)
+                                                    : carrier_->received(item, spoken, now);
   if (spoken.how == mail::How::accepted) {
     log_info(sentence);
   } else {
@@ -317,7 +334,7 @@ void DeskWork::mail_spoken(std::int64_t item, const mail::Spoken& spoken, Instan
 
 void DeskWork::reload(Instant at) {
   const Instant now = working(at);
-  reload_wanted_ = carrier_->busy();
+  reload_wanted_ = line_busy();
   if (reload_wanted_) return;
   settings::Reading reading = settings::read_file(settings_->path);
   for (const auto& complaint : reading.complaints) log_error(complaint.sentence());

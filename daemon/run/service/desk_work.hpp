@@ -12,6 +12,7 @@
 #include "edge/station/poll.hpp"
 #include "edge/store/store.hpp"
 #include "run/service/carrier.hpp"
+#include "run/service/distress.hpp"
 #include "run/service/front_page.hpp"
 #include "run/service/heartbeat.hpp"
 #include "run/service/intake.hpp"
@@ -44,7 +45,7 @@ class DeskWork {
   void poll_answered(const std::string& station, const station::Answer& answer, Instant now);
   void life_answered(const Outcome& outcome, Instant now);
   bool before_dot(std::int64_t item, Instant now) {
-    return carrier_->before_dot(item, working(now));
+    return Distress::mine(item) ? distress_.busy() : carrier_->before_dot(item, working(now));
   }
   void mail_spoken(std::int64_t item, const mail::Spoken& spoken, Instant now);
 
@@ -92,6 +93,8 @@ class DeskWork {
   void note_trouble(const std::string& station, const std::string& sentence);
   void tell_news(const std::string& station, Instant now);
   void log_kept(const Kept& kept);
+  void carry(Instant now);
+  bool line_busy() const { return carrier_->busy() || distress_.busy(); }
   void note_mail_trouble();
   void give_sign_of_life(bool kept_well, Instant now);
   void log_once(const std::string& what, const std::string& sentence);
@@ -100,6 +103,7 @@ class DeskWork {
   store::Store store_;
   std::unique_ptr<Keeper> keeper_;
   std::unique_ptr<Carrier> carrier_;
+  Distress distress_;
   FrontPage front_page_;
   Heartbeat heartbeat_;
   std::function<void(const std::string& url)> beat_;

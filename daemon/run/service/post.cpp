@@ -17,19 +17,6 @@ constexpr auto morning = std::chrono::hours{6};  // after farm midnight
 constexpr const char* why_held =
     "held: as many letters as an hour or a day allows went before; it goes in one with others";
 
-/// The end of the quiet hours that hold `now`, or `now`.
-Instant after_quiet(const letters::Recipient& recipient, const Calendar& calendar, Instant now) {
-  if (!recipient.quiet) return now;
-  const auto [from, to] = *recipient.quiet;
-  const CivilDay today = calendar.day_of(now);
-  const auto clock = std::chrono::floor<minutes>(calendar.civil(now) - CivilTime(today)).count();
-  const bool over_midnight = from > to;
-  const bool quiet = over_midnight ? clock >= from || clock < to : clock >= from && clock < to;
-  if (!quiet) return now;
-  const CivilDay day = over_midnight && clock >= from ? today + std::chrono::days{1} : today;
-  return std::max(now, calendar.at(CivilTime(day) + minutes{to}));
-}
-
 bool by_calendar(const std::string& kind) { return kind == "daily" || kind == "weekly"; }
 
 const letters::Recipient* recipient_of(const settings::Settings& settings,
@@ -92,6 +79,18 @@ outbox::Item to_item(const letters::Letter& letter, const settings::Settings& se
 }
 
 }  // namespace
+
+Instant after_quiet(const letters::Recipient& recipient, const Calendar& calendar, Instant now) {
+  if (!recipient.quiet) return now;
+  const auto [from, to] = *recipient.quiet;
+  const CivilDay today = calendar.day_of(now);
+  const auto clock = std::chrono::floor<minutes>(calendar.civil(now) - CivilTime(today)).count();
+  const bool over_midnight = from > to;
+  const bool quiet = over_midnight ? clock >= from || clock < to : clock >= from && clock < to;
+  if (!quiet) return now;
+  const CivilDay day = over_midnight && clock >= from ? today + std::chrono::days{1} : today;
+  return std::max(now, calendar.at(CivilTime(day) + minutes{to}));
+}
 
 Rations rations_of(const std::vector<outbox::Item>& recent) {
   Rations rations;

@@ -27,6 +27,9 @@ struct Ration {
 };
 using Rations = std::map<std::string, Ration>;  // by address
 
+/// The end of the recipient's quiet hours that hold `now`, or `now`.
+Instant after_quiet(const letters::Recipient& recipient, const Calendar& calendar, Instant now);
+
 /// The rations as the stored letters tell them: after a restart the same limits hold.
 /// @param recent  letters decided in the last two days, and all that are held
 Rations rations_of(const std::vector<outbox::Item>& recent);

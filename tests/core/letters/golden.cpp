@@ -6,6 +6,7 @@
 #include <iostream>
 #include <sstream>
 
+#include "rules.hpp"
 #include "scene.hpp"
 #include "support/catch.hpp"
 #include "support/paths.hpp"
@@ -259,6 +260,27 @@ TEST_CASE("letters about the watch itself read as written") {
                        {scene::at(14, 0), Phase::closed, Level::none, {}, {}, ""}};
     compare("learned-late", {telling}, desk);
   }
+}
+
+TEST_CASE("the letter that goes past a store that takes nothing reads as written") {
+  const letters::Desk desk = seen_to_now(scene::desk());
+  const letters::StoreTrouble trouble{
+      scene::at(14, 15, 20),
+      "Could not keep new samples (/var/lib/antherd/antherd.db): disk I/O error (Read-only file "
+      "system)"};
+  letters::Recipient brief = scene::owner(), elsewhere = scene::owner();
+  brief.brief = true;
+  elsewhere.fields = {"south bench"};
+  const auto made =
+      letters::compose_store_trouble(trouble, std::vector{scene::owner(), brief, elsewhere}, desk);
+  REQUIRE(made.size() == 3);
+  for (const auto& letter : made) {
+    CHECK(rules::broken_by(letter, letter.body.size() < 200, scene::calendar()).empty());
+  }
+  compare("store-trouble", on_paper(made[0]));
+  compare("store-trouble-brief", on_paper(made[1]));
+  CHECK(made[2].body.find("north bench") == std::string::npos);
+  CHECK(made[0].severity == alerts::Severity::severe);
 }
 
 TEST_CASE("notices read as written") {

@@ -1,0 +1,101 @@
+// The one letter that goes past the outbox: the computer can keep nothing, and so no other letter
+// can go. It says how every field stood when it was written, since nothing else will.
+#include <algorithm>
+
+#include "core/letters/parts.hpp"
+#include "core/letters/wrap.hpp"
+
+namespace antherd::letters {
+namespace {
+
+constexpr Seconds day_begins{6 * 3600};  // after farm midnight: nobody is woken for a new day
+
+/// An alert that waits while this letter goes still reaches its people through it.
+Level worst_of(const std::vector<const FieldStatus*>& fields) {
+  Level worst = Level::none;
+  for (const FieldStatus* status : fields) {
+    worst = std::max(worst, status->heat.today.level);
+    if (status->humid.last) worst = std::max(worst, status->humid.last->level);
+  }
+  return worst;
+}
+
+std::string body_of(const std::vector<const FieldStatus*>& fields, const StoreTrouble& trouble,
+                    const Words& words) {
+  const Desk& desk = words.desk();
+  std::string text = paragraph(plain(desk.farm) + ": the watch has kept nothing since " +
+                               words.when(trouble.since) + ".");
+  text += paragraph("Letters of alerts wait until its disk works again: do not count on them.");
+  if (desk.exercise) {
+    text += paragraph("This is an exercise: an invented season. Do not act on it.");
+  }
+  text += section_text({"WHY", plain(trouble.why) + ".", {}, true, {}});
+  Section now{"NOW", "The stations are still read and judged. As of this letter:", {}, true, {}};
+  text += section_text(now);
+  for (const FieldStatus* status : fields) {
+    for (const std::string& line : wrap(daily_field_line(*status, words), page_width, 2, 4)) {
+      text += line + "\n";
+    }
+  }
+  text += section_text(
+      {"DO",
+       "Go to the computer today. Is the disk full, worn or unplugged? A memory card that takes "
+       "no more writes is at its end: put a new one in. The log names what failed. Until then "
+       "walk the fields as if nobody watched.",
+       {},
+       true,
+       {}});
+  text += section_text({"NEXT",
+                        "One letter of this kind a day while it lasts, another when a level rises. "
+                        "When the disk works "
+                        "again the letters that wait go out by themselves, and say how late they "
+                        "are. Should the computer be started anew before that, the watch may not "
+                        "come up at all.",
+                        {},
+                        true,
+                        {}});
+  return text + "\n" + paragraph(standing_caution(Language::english));
+}
+
+std::string brief_of(const Part& part, const Desk& desk) {
+  const std::string text =
+      part.lead + ": " + part.name + ", " + part.rest +
+      ". Its disk takes nothing, alert letters wait: go to the computer today.";
+  return clip(unglued((desk.exercise ? "EXERCISE: " : "") + text), brief_width) + "\n";
+}
+
+}  // namespace
+
+std::vector<Letter> compose_store_trouble(const StoreTrouble& trouble,
+                                          std::span<const Recipient> recipients, const Desk& desk) {
+  const Words words(desk);
+  std::vector<Letter> letters;
+  for (const Recipient& recipient : recipients) {
+    std::vector<const FieldStatus*> fields;
+    for (const auto& [name, status] : desk.fields) {
+      if (status.watch == season::Watch::watched && gets_field(recipient, name)) {
+        fields.push_back(&status);
+      }
+    }
+    Letter letter;
+    const Level worst = worst_of(fields);
+    const CivilDay day = words.calendar().day_of(desk.now - day_begins);
+    letter.id =
+        calendar_id("store-trouble-" + words.iso(day) + "-" + level_word(worst), recipient, desk);
+    letter.recipient = recipient.address;
+    letter.kind = "store_trouble";
+    letter.severity = alerts::severity_of(worst);
+    letter.decided = desk.now;
+    Part part;
+    part.lead = "Watch keeps nothing";
+    part.name = plain(desk.farm);
+    part.rest = "since " + words.when(trouble.since);
+    letter.subject = subject_line(part, desk.exercise ? "EXERCISE: " : "", "");
+    letter.still = "It was so when this letter was written.";
+    letter.body = recipient.brief ? brief_of(part, desk) : body_of(fields, trouble, words);
+    letters.push_back(std::move(letter));
+  }
+  return letters;
+}
+
+}  // namespace antherd::letters
