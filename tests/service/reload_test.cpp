@@ -2,6 +2,7 @@
 #include <algorithm>
 
 #include "ground.hpp"
+#include "run/service/attention.hpp"
 #include "support/catch.hpp"
 
 using namespace ground;
@@ -182,4 +183,35 @@ TEST_CASE("after a column's name was mended the files are read from their start"
   bench.turn(noon + minutes{7});
   bench.turn(noon + minutes{13});
   CHECK(*bench.desk->store().last_sample("bench"));
+}
+
+TEST_CASE("the diary of a field that was renamed is not lost without a word") {
+  Bench bench;
+  bench.open(sown);
+  bench.drop("bench.csv", readings(Weather{}, sown, noon));
+  bench.turn(noon);
+  const auto note = [&](const std::string& field, Instant at) {
+    field::Scouting seen;
+    seen.field = field;
+    seen.date = bench.settings->calendar.day_of(at);
+    seen.stage = 61;
+    REQUIRE(bench.desk->store().add(seen));
+  };
+  const auto said = [&] {
+    const auto sentences =
+        service::attention_of(bench.desk->keeper().lookout(), bench.desk->store(), noon);
+    return std::count_if(sentences.begin(), sentences.end(), [](const std::string& sentence) {
+      return sentence.find("was it renamed?") != std::string::npos;
+    });
+  };
+  note("north bench", noon);
+  note("a field of another year", noon - days{150});
+  CHECK(said() == 0);
+  const std::string good = bench.folder.read("antherd.toml");
+  bench.folder.write("antherd.toml", replaced(good, "\"north bench\"", "\"upper bench\""));
+  bench.desk->reload(noon + minutes{1});
+  bench.turn(noon + minutes{1});
+  CHECK(said() == 1);
+  CHECK(bench.folder.read("antherd.log").find("the diary holds entries of \"north bench\"") !=
+        std::string::npos);
 }

@@ -61,9 +61,9 @@ struct StoreTrouble {
   Instant since;
   std::string why;  // what was tried, on what, why not
 };
-/// One letter a recipient about a computer that can keep nothing: how each watched field stands, and
-/// what to look at. Its identity is that of the day (from 06:00 on) and of the worst level of the
-/// recipient's fields, which is its severity. The only letter that goes without standing in the
+/// One letter a recipient about a computer that can keep nothing: how each watched field stands,
+/// and what to look at. Its identity is that of the day (from 06:00 on) and of the worst level of
+/// the recipient's fields, which is its severity. The only letter that goes without standing in the
 /// store.
 std::vector<Letter> compose_store_trouble(const StoreTrouble& trouble,
                                           std::span<const Recipient> recipients, const Desk& desk);

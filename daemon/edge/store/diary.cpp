@@ -136,6 +136,18 @@ Result<field::Diary> Store::diary(const std::string& field) const {
   });
 }
 
+Result<std::vector<std::string>> Store::diary_fields(Instant since) const {
+  return inside_->read("read the diary", [&] {
+    std::vector<std::string> names;
+    Statement fields = inside_->database->use(
+        "SELECT field FROM irrigation WHERE start >= ?1 UNION "
+        "SELECT field FROM scouting WHERE date >= ?2 ORDER BY 1");
+    fields.bind(since, std::chrono::floor<std::chrono::days>(since).time_since_epoch().count());
+    while (fields.step()) names.push_back(fields.text());
+    return names;
+  });
+}
+
 Result<std::int64_t> Store::diary_version() const {
   return inside_->read("look for news in the diary", [&] {
     return inside_->database->number("SELECT number FROM diary_version");

@@ -102,6 +102,8 @@ class Store {
   Outcome remove_irrigation(std::int64_t id);  // fails when there is none
   Outcome remove_scouting(std::int64_t id);
   Result<field::Diary> diary(const std::string& field) const;  // sorted
+  /// Names of the fields with an irrigation or a note since then, sorted.
+  Result<std::vector<std::string>> diary_fields(Instant since) const;
   /// Grows by one with every change of the diary, also by another process: a cheap look for news.
   Result<std::int64_t> diary_version() const;
 

@@ -10,6 +10,8 @@ namespace antherd::service {
 namespace {
 
 constexpr auto letter_waits_long = std::chrono::hours{6};
+constexpr auto this_season =
+    std::chrono::days{120};  // what is older may be of another year's field
 
 void add_stations(std::vector<std::string>& sentences, const Lookout& lookout, Instant now) {
   const letters::Desk desk = lookout.desk(now);
@@ -68,13 +70,35 @@ void add_letters(std::vector<std::string>& sentences, const store::Store& store,
   }
 }
 
+/// A field that was given another name would otherwise lose its notes and its water without a word.
+void add_strange_fields(std::vector<std::string>& sentences, const settings::Settings& settings,
+                        const store::Store& store, Instant now) {
+  for (const std::string& name : strange_fields(settings, store, now)) {
+    sentences.push_back("The diary holds entries of \"" + name +
+                        "\", a field that the settings do not name: was it renamed? Its notes and "
+                        "its water count for no field.");
+  }
+}
+
 }  // namespace
+
+std::vector<std::string> strange_fields(const settings::Settings& settings,
+                                        const store::Store& store, Instant now) {
+  auto names = store.diary_fields(now - this_season);
+  if (!names) return {};
+  std::erase_if(*names, [&](const std::string& name) {
+    return std::any_of(settings.fields.begin(), settings.fields.end(),
+                       [&](const auto& plan) { return plan.field.name == name; });
+  });
+  return *names;
+}
 
 std::vector<std::string> attention_of(const Lookout& lookout, const store::Store& store,
                                       Instant now) {
   std::vector<std::string> sentences;
   add_stations(sentences, lookout, now);
   add_letters(sentences, store, now);
+  add_strange_fields(sentences, lookout.settings(), store, now);
   return sentences;
 }
 

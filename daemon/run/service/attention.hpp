@@ -9,8 +9,13 @@
 
 namespace antherd::service {
 
+/// Fields that the diary of the last 120 days knows and the settings do not.
+std::vector<std::string> strange_fields(const settings::Settings& settings,
+                                        const store::Store& store, Instant now);
+
 /// One sentence each: silent and doubtful stations, mail trouble, stations that drifted apart,
-/// letters that wait or are parked, what the mail line or the store complains of.
+/// letters that wait or are parked, what the mail line or the store complains of, diary entries of
+/// fields that the settings do not name.
 std::vector<std::string> attention_of(const Lookout& lookout, const store::Store& store,
                                       Instant now);
 

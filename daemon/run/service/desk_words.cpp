@@ -1,6 +1,7 @@
 // What the owner's work says to the log and to the service manager; see desk_work.hpp.
 #include <algorithm>
 
+#include "run/service/attention.hpp"
 #include "run/service/desk_work.hpp"
 #include "run/service/log.hpp"
 
@@ -41,6 +42,13 @@ void DeskWork::life_answered(const Outcome& outcome, Instant now) {
     log_info(sentence);
   } else {
     log_warning(sentence);
+  }
+}
+
+void DeskWork::log_strange_fields(Instant now) {
+  for (const std::string& name : strange_fields(*settings_, store_, now)) {
+    log_warning("the diary holds entries of \"" + name +
+                "\", a field that the settings do not name: they count for no field");
   }
 }
 

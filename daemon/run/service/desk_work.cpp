@@ -63,6 +63,7 @@ Outcome DeskWork::begin(Instant now) {
       });
   if (auto done = keeper_->load(now); !done) return done;
   if (auto done = carrier_->load(now); !done) return done;
+  log_strange_fields(now);
   sources_.clear();
   store::Notes forms;
   std::vector<std::string> gone;

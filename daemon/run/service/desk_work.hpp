@@ -92,6 +92,7 @@ class DeskWork {
                      const store::Notes& notes, Instant now);
   void note_trouble(const std::string& station, const std::string& sentence);
   void tell_news(const std::string& station, Instant now);
+  void log_strange_fields(Instant now);
   void log_kept(const Kept& kept);
   void carry(Instant now);
   bool line_busy() const { return carrier_->busy() || distress_.busy(); }
