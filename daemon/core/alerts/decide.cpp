@@ -237,8 +237,32 @@ bool known_already(const Telling& telling, std::span<const Said> said, const Pol
 
 }  // namespace
 
+namespace {
+
+bool is_ahead(const Said& entry, Instant now) { return entry.at > now; }
+
+// Were an entry of a clock that stood years ahead left as it is, all that happens until then would
+// pass for the same story, told long ago.
+Said put_right(Said entry, Instant now) {
+  if (!is_ahead(entry, now)) return entry;
+  entry.at = std::min(now, entry.about);
+  if (!is_notice(entry.kind) && entry.until) {
+    // An extent that ends with the change itself would say that the trouble is over.
+    const Seconds lasts{*entry.until == entry.about ? 0 : 1};
+    entry.until = std::max(entry.start, std::min(*entry.until, entry.at + lasts));
+  }
+  return entry;
+}
+
+}  // namespace
+
 std::vector<Telling> decide(std::span<const Episode> episodes, std::span<const Notice> notices,
                             std::span<const Said> said, const Policy& policy, Instant now) {
+  std::vector<Said> righted;
+  if (std::any_of(said.begin(), said.end(), [&](const Said& s) { return is_ahead(s, now); })) {
+    for (const Said& entry : said) righted.push_back(put_right(entry, now));
+    said = righted;
+  }
   std::vector<Telling> tellings;
   const std::vector<Story> stories = stories_of(episodes, said, now);
   for (const Story& story : stories) {

@@ -42,9 +42,11 @@ struct Said {
                                  // notice the day it spoke of, at 00:00 UTC
   Saying saying = Saying::opened;
   Level level = Level::none;
-  Instant at;         // when it was said
-  Instant about;      // the change it spoke of
-  bool seen = false;  // a person marked it seen: no reminders at this level
+  Instant at;              // when it was said
+  Instant about;           // the change it spoke of
+  bool seen = false;       // a person marked it seen: no reminders at this level
+  std::int64_t place = 0;  // in the ledger: what was said later has a greater one. A clock that is
+                           // put back makes `at` say otherwise. Where all are 0 `at` decides
 };
 
 /// What is to be said now. One per episode and tick.
@@ -79,6 +81,8 @@ struct Policy {
 /// @param episodes  all episodes of the season so far, of any subjects; of stations at least the
 ///                  last 8 days (an earlier end would look like a gap that was filled)
 /// @param said      the ledger of those subjects, at least as far back
+///                  What bears a later time than `now` was said by a clock that stood ahead: it
+///                  counts as said with the change it spoke of, and reaches no further.
 /// @return tellings in order of severity, then subject
 std::vector<Telling> decide(std::span<const Episode> episodes, std::span<const Notice> notices,
                             std::span<const Said> said, const Policy& policy, Instant now);

@@ -98,8 +98,8 @@ void finish(Story& story) {
   std::stable_sort(story.changes.begin(), story.changes.end(),
                    [](const Change& a, const Change& b) { return a.at < b.at; });
   std::sort(story.said.begin(), story.said.end(), [](const Said* a, const Said* b) {
-    return std::tie(a->at, a->about, a->saying, a->level, a->episode) <
-           std::tie(b->at, b->about, b->saying, b->level, b->episode);
+    return std::tie(a->place, a->at, a->about, a->saying, a->level, a->episode) <
+           std::tie(b->place, b->at, b->about, b->saying, b->level, b->episode);
   });
   for (const Change& change : story.changes) story.peak = std::max(story.peak, change.level);
   if (story.changes.empty()) {

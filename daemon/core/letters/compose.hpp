@@ -14,6 +14,7 @@
 #include "core/season/exposure.hpp"
 #include "core/season/status.hpp"
 #include "core/units/time.hpp"
+#include "core/weather/arrivals.hpp"
 #include "core/weather/suspicion.hpp"
 #include "core/weather/verdict_count.hpp"
 
@@ -30,6 +31,8 @@ struct StationStory {
   int refused_rows = 0;      // in the last 24 h
   std::string last_trouble;  // of the source, e.g. "connection refused"
   std::vector<weather::Flag> flags_24;
+  std::optional<weather::ClockDoubt> clock;      // what its readings' ages on arrival say of it
+  std::optional<weather::Arrival> last_arrival;  // of a newest reading that was believed
 };
 
 /// Everything the letters of one tick may speak of.

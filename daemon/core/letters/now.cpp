@@ -164,7 +164,14 @@ std::string field_block(const FieldStatus& status, const Words& words) {
           labelled("water", water_line(status, words));
   const std::string soil = soil_line(status, words);
   if (!soil.empty()) text += labelled("soil", soil);
-  return text + labelled("data", data_line(status, words));
+  text += labelled("data", data_line(status, words));
+  for (const auto& [name, story] : words.desk().stations) {
+    const auto& fields = story.fields;
+    const std::string clock = clock_in_short(story);
+    const bool own = std::find(fields.begin(), fields.end(), status.field) != fields.end();
+    if (own && !clock.empty()) text += labelled("clock", plain(name) + ": " + clock);
+  }
+  return text;
 }
 
 /// One line an open episode: the last of what was said of it, gravest first.

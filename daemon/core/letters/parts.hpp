@@ -111,6 +111,14 @@ std::string what_to_mend(const weather::Flag& flag);
 std::string flags_named(const std::vector<weather::Flag>& flags);
 std::string element_words(weather::Element element);
 
+// A station's clock by the ages of its readings on arrival (arrivals.cpp).
+/// "newest reading was never less than 62 min old on arrival: …"; empty where nothing is known.
+std::string clock_words(const StationStory& story);
+/// The same in at most 64 characters, for a screen.
+std::string clock_in_short(const StationStory& story);
+/// Of a station that counts as silent although readings come: how old they are; else empty.
+std::string late_arrival(const StationStory& story, const Words& words);
+
 /// A field's name for a command line, quoted for a shell where needed.
 std::string quoted(const std::string& name);
 /// "  antherd scout "north bench" --stage full-flower".

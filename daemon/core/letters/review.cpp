@@ -87,6 +87,11 @@ std::string stations(const Review& review, const Words& words) {
   Section section{"STATIONS", "", {}, true, {}};
   for (const StationReview& station : review.stations) {
     section.lines.push_back(verdicts_line(station));
+    const auto story = words.desk().stations.find(station.station);
+    if (story == words.desk().stations.end() || !story->second.clock) continue;
+    section.lines.push_back(plain(station.station) + ": " + clock_words(story->second));
+    const char end = section.lines.back().back();
+    if (end != '?') section.lines.back() += ".";
   }
   for (const DriftReview& drift : review.drifts) {
     section.lines.push_back(drift_sentence(drift, words.desk()));

@@ -89,7 +89,7 @@ Section each_field(const Words& words, const StationStory* story, bool blind) {
   return section;
 }
 
-std::string what_to_check(const StationStory* story) {
+std::string what_to_check(const StationStory* story, const Words& words) {
   std::vector<std::string> said{"Has the station power, is its cable or radio in place?"};
   if (story == nullptr) return said.front();
   const std::string source = plain(story->source);
@@ -101,7 +101,11 @@ std::string what_to_check(const StationStory* story) {
   if (!story->last_trouble.empty()) {
     said.push_back("Last trouble: " + plain(story->last_trouble) + ".");
   }
-  if (story->refused_rows > 0) {
+  const bool all_ahead = story->clock && story->clock->how == weather::ClockDoubt::How::refused;
+  if (const std::string late = late_arrival(*story, words); !late.empty()) said.push_back(late);
+  if (all_ahead) {
+    said.push_back(capital(clock_words(*story)) + " Refused rows stand in refused.csv.");
+  } else if (story->refused_rows > 0) {
     said.push_back(count(story->refused_rows, "row") +
                    " came in the last 24 h but could not be read: see refused.csv.");
   }
@@ -139,7 +143,7 @@ Part no_data_open(const Telling& telling, const Words& words) {
   part.sections = {
       {"SILENT", join(silent), {}, true},
       each_field(words, story, true),
-      {"CHECK", what_to_check(story), {}, true},
+      {"CHECK", what_to_check(story, words), {}, true},
       {"LOOK",
        "A max-min thermometer in the shade, read in the evening; leaves by touch about "
        "9 am. Readings that the station kept and that arrive later are counted then.",

@@ -177,6 +177,10 @@ void CsvReader::read_row(std::string_view row) {
   const std::optional<Instant> at = read_time(reason_);
   if (!at) {
     if (is_header(row)) return;
+    if (const auto ahead = time_.ahead()) {
+      auto& least = readings_.least_ahead;
+      least = readings_.ahead++ == 0 ? *ahead : std::min(least, *ahead);
+    }
     return refuse(row, "time: " + reason_);
   }
   sample.time = *at;

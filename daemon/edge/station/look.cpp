@@ -287,6 +287,12 @@ class Looking {
     auto& refused = look_.readings.refused;
     samples.insert(samples.end(), got.samples.begin(), got.samples.end());
     std::move(got.refused.begin(), got.refused.end(), std::back_inserter(refused));
+    if (got.ahead > 0) {
+      auto& all = look_.readings;
+      all.least_ahead =
+          all.ahead == 0 ? got.least_ahead : std::min(all.least_ahead, got.least_ahead);
+      all.ahead += got.ahead;
+    }
     return true;
   }
 

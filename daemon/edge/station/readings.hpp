@@ -24,6 +24,8 @@ struct Refused {
 struct Readings {
   std::vector<weather::Sample> samples;  // in the order of the text
   std::vector<Refused> refused;
+  int ahead = 0;           // rows among the refused whose time is ahead of the computer's clock
+  Seconds least_ahead{0};  // of those, what all were at least ahead
 };
 
 /// Reads a whole CSV text (header included) at once; a last line without newline is read too.

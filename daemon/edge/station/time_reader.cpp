@@ -43,6 +43,7 @@ Result<TimeReader> TimeReader::make(const TimeForm& form, std::optional<Instant>
 
 std::optional<Instant> TimeReader::read(std::string_view text, std::string& reason) {
   std::optional<Instant> at;
+  ahead_.reset();
   if (form_ == Form::unix_s || form_ == Form::unix_ms) {
     at = read_unix(text, reason);
   } else {
@@ -150,13 +151,14 @@ Instant TimeReader::choose(const Calendar::Meaning& meaning) const {
   return inside ? second : first;
 }
 
-bool TimeReader::in_range(Instant at, std::string& reason) const {
+bool TimeReader::in_range(Instant at, std::string& reason) {
   if (at < limits::first_instant || at >= limits::end_instant) {
     reason = "the time is outside the years 2000 to 2099";
     return false;
   }
   if (latest_ && at > *latest_) {
-    reason = "the time is " + length_of(at - (*latest_ - limits::ahead)) +
+    ahead_ = at - (*latest_ - limits::ahead);
+    reason = "the time is " + length_of(*ahead_) +
              " ahead of this computer's clock (wrong zone or station clock?)";
     return false;
   }

@@ -27,6 +27,8 @@ class TimeReader {
   static Result<TimeReader> make(const TimeForm& form, std::optional<Instant> now);
 
   /// The instant of a text, or nothing with the reason. Fractions of a second are cut off.
+  /// How far the time that was read last is ahead, where it was refused for that.
+  std::optional<Seconds> ahead() const { return ahead_; }
   std::optional<Instant> read(std::string_view text, std::string& reason);
 
   /// The instant last read within two days of a clock change: what tells the passes apart.
@@ -86,12 +88,13 @@ class TimeReader {
   bool find_day(Clock& clock, std::string& reason);
   std::optional<Instant> resolve(CivilTime reading, std::string& reason);
   Instant choose(const Calendar::Meaning& meaning) const;
-  bool in_range(Instant at, std::string& reason) const;
+  bool in_range(Instant at, std::string& reason);
 
   Form form_ = Form::pattern;
   std::vector<Step> steps_;
   Calendar zone_;
   std::optional<Instant> latest_;
+  std::optional<Seconds> ahead_;
   std::optional<Instant> near_;
   std::optional<Instant> memory_;
   Day day_;

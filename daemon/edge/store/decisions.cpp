@@ -39,6 +39,7 @@ Said read_said(Statement& row) {
   said.at = row.instant();
   said.about = row.instant();
   said.seen = row.integer() != 0;
+  said.place = row.integer();
   return said;
 }
 
@@ -60,7 +61,8 @@ Result<std::vector<alerts::Said>> Store::said(Instant since) const {
   return inside_->read("read what was said", [&] {
     std::vector<Said> found;
     Statement row = inside_->database->use(
-        "SELECT episode, kind, subject, start, until, saying, level, at, about, seen FROM said "
+        "SELECT episode, kind, subject, start, until, saying, level, at, about, seen, id "
+        "FROM said "
         "WHERE at >= ? ORDER BY at, id");
     row.bind(since);
     while (row.step()) found.push_back(read_said(row));

@@ -5,6 +5,7 @@
 #include "edge/clock/clock.hpp"
 #include "run/commands/common.hpp"
 #include "run/service/attention.hpp"
+#include "run/service/intake.hpp"
 #include "run/service/review.hpp"
 
 namespace antherd::commands {
@@ -24,6 +25,10 @@ Result<View> view_of(const SettingsPointer& settings, Instant now) {
   const auto deliveries = view.store.deliveries(now - service::mail_looks_back);
   if (deliveries && settings->mail) {
     view.lookout.set_mail_troubles(outbox::mail_troubles(*deliveries, now));
+  }
+  for (const auto& station : settings->stations) {
+    const std::string& name = station.station.name;
+    view.lookout.set_arrivals(name, service::stored_arrivals(view.store, name));
   }
   view.lookout.turn(now, closed_at(*past, now));
   // The ledger is what was really said, not what this look would have said.

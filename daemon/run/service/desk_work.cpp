@@ -82,6 +82,7 @@ Outcome DeskWork::begin(Instant now) {
       auto bookmark = bookmark_of(text);
       if (bookmark) source.bookmarks.push_back(std::move(*bookmark));
     }
+    remember_arrivals(station.station.name, source);
   }
   // Both at once: bookmarks that outlived the new form would never let its files be read.
   if (!forms.empty()) {
@@ -97,6 +98,7 @@ Outcome DeskWork::begin(Instant now) {
 
 Instant DeskWork::turn(Instant now, bool clock_set) {
   mind_clock(now, clock_set, keeper_->lookout().time_of_stations());
+  mind_step(now, clock_set);
   return turn_at(working(now)) - Seconds{ahead_.load()};
 }
 
@@ -290,7 +292,9 @@ void DeskWork::poll_answered(const std::string& name, const station::Answer& ans
 
 void DeskWork::take_readings(const std::string& station, const station::Readings& readings,
                              const store::Notes& notes, Instant now) {
-  keeper_->take(station, readings.samples, notes, now);
+  store::Notes all = note_arrivals(station, readings, now);
+  all.insert(notes.begin(), notes.end());
+  keeper_->take(station, readings.samples, all, now);
   if (!readings.refused.empty()) {
     Source& source = sources_.at(station);
     source.refused[settings_->calendar.day_of(now)] += static_cast<int>(readings.refused.size());

@@ -75,6 +75,8 @@ class DeskWork {
     std::map<CivilDay, int> refused;  // rows by day
     std::string last_trouble;
     bool waits = false;  // its files are not read on: the store takes nothing and memory is full
+    weather::Arrivals arrivals;
+    std::optional<Instant> newest;  // reading
   };
 
   DeskWork(std::shared_ptr<const settings::Settings> settings, store::Store store);
@@ -90,6 +92,10 @@ class DeskWork {
   bool has_another_form(const settings::Station& station, store::Notes& forms) const;
   void take_readings(const std::string& station, const station::Readings& readings,
                      const store::Notes& notes, Instant now);
+  void remember_arrivals(const std::string& name, Source& source);
+  store::Notes note_arrivals(const std::string& station, const station::Readings& readings,
+                             Instant now);
+  void mind_step(Instant now, bool clock_set);
   void note_trouble(const std::string& station, const std::string& sentence);
   void tell_news(const std::string& station, Instant now);
   void log_strange_fields(Instant now);
@@ -114,6 +120,7 @@ class DeskWork {
   std::map<std::string, std::string> logged_;  // the last sentence of each kind of trouble
   std::atomic<std::int64_t> ahead_{0};         // s from the computer's clock to working()
   bool clock_set_ = true;
+  std::optional<Instant> last_turn_;  // by a clock that is set
   std::string diary_version_ = "unread";
   Instant next_look_{};
   bool look_due_ = true;

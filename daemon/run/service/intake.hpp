@@ -7,6 +7,7 @@
 
 #include "core/failures/result.hpp"
 #include "core/field/diary.hpp"
+#include "core/weather/arrivals.hpp"
 #include "edge/station/readings.hpp"
 #include "edge/store/store.hpp"
 #include "run/settings/settings.hpp"
@@ -18,6 +19,9 @@ std::pair<std::string, std::string> note_of(const std::string& station,
                                             const station::Bookmark& bookmark);
 Result<station::Bookmark> bookmark_of(const std::string& text);
 std::string bookmark_prefix(const std::string& station);
+
+/// What the service has seen of a station's arrivals; empty where nothing is kept.
+weather::Arrivals stored_arrivals(const store::Store& store, const std::string& station);
 
 /// Appends refused rows to `refused.csv` beside the store: time seen, station, file, line, reason,
 /// text (RFC 4180). At 4 MiB the file becomes `refused-older.csv` and a new one begins.

@@ -106,10 +106,17 @@ void Lookout::add_sample_times(const std::string& station, const std::vector<Ins
   kept.erase(kept.begin(), std::lower_bound(kept.begin(), kept.end(), oldest));
 }
 
-void Lookout::set_ledger(std::vector<alerts::Said> said) { said_ = std::move(said); }
+void Lookout::set_ledger(std::vector<alerts::Said> said) {
+  said_ = std::move(said);
+  for (const alerts::Said& entry : said_) last_place_ = std::max(last_place_, entry.place);
+}
 
 void Lookout::set_source_news(const std::string& station, SourceNews news) {
   stations_.at(station).news = std::move(news);
+}
+
+void Lookout::set_arrivals(const std::string& station, weather::Arrivals arrivals) {
+  stations_.at(station).arrivals = std::move(arrivals);
 }
 
 void Lookout::fold_field(FieldMemory& field, const Closed& closed) {
@@ -169,6 +176,7 @@ Turn Lookout::turn(Instant now, const Closed& closed, bool clock_set) {
   if (turn.tellings.empty()) return turn;
   for (const alerts::Telling& telling : turn.tellings) {
     turn.said.push_back(alerts::record_of(telling, now));
+    turn.said.back().place = ++last_place_;
   }
   turn.letters = letters::compose(turn.tellings, settings_->recipients, desk(now));
   said_.insert(said_.end(), turn.said.begin(), turn.said.end());
@@ -198,6 +206,8 @@ letters::StationStory Lookout::story_of(const StationMemory& station, Instant no
   if (setting != nullptr) story.source = setting->source();
   story.refused_rows = station.news.refused_rows_24;
   story.last_trouble = station.news.last_trouble;
+  story.clock = station.arrivals.doubt(now, station.station.interval);
+  story.last_arrival = station.arrivals.last();
   const Instant since = now - std::chrono::days{1};
   for (auto hour = station.judged.rbegin(); hour != station.judged.rend(); ++hour) {
     if (Instant(hour->start) < since) break;

@@ -10,6 +10,7 @@
 #include <vector>
 
 #include "core/alerts/decide.hpp"
+#include "core/alerts/stations.hpp"
 #include "core/letters/compose.hpp"
 #include "core/season/fold.hpp"
 #include "core/weather/suspicion.hpp"
@@ -45,6 +46,8 @@ class Lookout {
   void add_sample_times(const std::string& station, const std::vector<Instant>& times);
   void set_ledger(std::vector<alerts::Said> said);
   void set_first_start(std::optional<Instant> at) { policy_.first_start = at; }
+  /// How old the station's readings were when they came; live arrivals alone.
+  void set_arrivals(const std::string& station, weather::Arrivals arrivals);
   void set_source_news(const std::string& station, SourceNews news);
   /// Episodes of the mail as the outbox tells them.
   void set_mail_troubles(std::vector<alerts::Episode> troubles) {
@@ -90,11 +93,14 @@ class Lookout {
     std::size_t checkpoint_at = 0;
     std::vector<Instant> times;
     SourceNews news;
+    weather::Arrivals arrivals;
   };
 
   void judge_anew(const std::string& name, StationMemory& station, std::size_t unchanged);
   void fold_field(FieldMemory& field, const Closed& closed);
   void gather_station_episodes(const StationMemory& station, Instant now);
+  void heed_arrivals(const StationMemory& station, Seconds patience, Instant now,
+                     std::vector<alerts::Silence>& gaps) const;
   letters::StationStory story_of(const StationMemory& station, Instant now) const;
 
   std::shared_ptr<const settings::Settings> settings_;
@@ -102,6 +108,7 @@ class Lookout {
   std::map<std::string, FieldMemory> fields_;
   std::map<std::string, StationMemory> stations_;
   std::vector<alerts::Said> said_;
+  std::int64_t last_place_ = 0;  // in the ledger
   std::vector<alerts::Episode> episodes_, mail_troubles_;
   bool clock_set_ = true;
 };

@@ -70,6 +70,30 @@ std::vector<alerts::FailingHour> failing_hours(const std::vector<weather::Hour>&
 
 }  // namespace
 
+/// A station whose clock is behind, or whose values come late, is not silent anew with each
+/// reading. What was told of and still comes later than the patience is the same silence; what
+/// comes late but within it is silent when it is later than usual. Only the last stretch, that of
+/// now, is touched: which silences there were depends on the samples alone.
+void Lookout::heed_arrivals(const StationMemory& memory, Seconds patience, Instant now,
+                            std::vector<alerts::Silence>& gaps) const {
+  const auto& last = memory.arrivals.last();
+  if (gaps.empty() || gaps.back().back || !last) return;
+  if (last->age <= memory.station.interval + weather::late_on_arrival) return;
+  alerts::Silence& open = gaps.back();
+  if (last->age <= patience) {
+    if (now - open.last <= patience + last->age) gaps.pop_back();
+    return;
+  }
+  const alerts::Said* told = nullptr;
+  for (const alerts::Said& said : said_) {
+    const bool of_it = said.kind == alerts::Kind::no_data && said.subject == memory.station.name;
+    if (of_it && (told == nullptr || said.place >= told->place)) told = &said;
+  }
+  const bool lasts = told != nullptr && told->saying != alerts::Saying::ended &&
+                     told->saying != alerts::Saying::learned_late;
+  if (lasts && now - open.last > patience) open.last = std::min(open.last, told->start);
+}
+
 void Lookout::gather_station_episodes(const StationMemory& memory, Instant now) {
   const weather::Station& station = memory.station;
   Need need;
@@ -87,6 +111,7 @@ void Lookout::gather_station_episodes(const StationMemory& memory, Instant now) 
   std::copy_if(memory.times.begin(), memory.times.end(), std::back_inserter(times),
                [&](Instant time) { return time <= now + Seconds{600}; });
   std::vector<alerts::Silence> gaps = alerts::silences_from(times, alerts::patience_of(watch));
+  heed_arrivals(memory, alerts::patience_of(watch), now, gaps);
   if (times.empty()) {
     // It never spoke: it should have since sowing, or since we were started.
     const Instant since = std::max(*first_needed, policy_.first_start.value_or(*first_needed));

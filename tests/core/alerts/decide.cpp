@@ -258,3 +258,26 @@ TEST_CASE("the gravest comes first, then by subject") {
   CHECK(told[2].subject == "a");
   CHECK(told[3].subject == "b");
 }
+
+TEST_CASE("what a clock that stood ahead has said is over when the clock is put right") {
+  Service service;
+  const Episode gone = episode(Kind::no_data, "bench", 10, {{11, severe}}, true);
+  // Told at 11 by a clock that showed 41, and put right at 16: the silence was none.
+  const auto told = service.tick({gone}, at(41));
+  REQUIRE(told.size() == 1);
+  std::string heard;
+  for (int hour = 16; hour < 60; ++hour) {
+    for (const Telling& t : service.tick({}, at(hour))) heard += line(t, hour);
+  }
+  CHECK(heard == "ended none@16 ");
+}
+
+TEST_CASE("a clock that once stood six days ahead silences no later alert and no reminder") {
+  const Instant days_ahead = at(24.0 * 6 + 21);
+  Service service;
+  const Episode first = heat(17, {{20, moderate}, {30, none}});
+  REQUIRE(service.tick({known_at(first, at(21))}, days_ahead).size() == 1);
+  // Three days later another episode, with a clock that was put right.
+  const Episode second = heat(84, {{87, moderate}, {140, none}});
+  CHECK(service.run({first, second}, 22, 120) == "opened Moderate@87 reminder Moderate@111 ");
+}

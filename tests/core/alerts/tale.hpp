@@ -81,7 +81,10 @@ struct Service {
   std::vector<Telling> tick(const std::vector<Episode>& episodes, Instant now,
                             const std::vector<Notice>& notices = {}) {
     std::vector<Telling> told = decide(episodes, notices, ledger, policy, now);
-    for (const Telling& telling : told) ledger.push_back(record_of(telling, now));
+    for (const Telling& telling : told) {
+      ledger.push_back(record_of(telling, now));
+      ledger.back().place = std::ssize(ledger);
+    }
     return told;
   }
   /// Ticks every hour from `from` to `to`; each telling as "saying level@hour".
