@@ -226,3 +226,44 @@ TEST_CASE("the daily limit is not forgotten with a restart") {
   CHECK(!gone_today.empty());
   for (const auto& [severity, count] : gone_today) CHECK(count == 1);
 }
+
+TEST_CASE("in a stormy week with a clock change the line and the review come as in any other") {
+  // 2026-11-01 has 25 hours, 2026-03-08 has 23; one alert a day is all that the address allows.
+  const auto [sown, first, monday] =
+      GENERATE(std::tuple{"2026-10-12", "2026-10-31 00:00", "2026-11-02 06:00"},
+               std::tuple{"2026-02-16", "2026-03-07 00:00", "2026-03-09 06:00"});
+  keep_in_memory();
+  Farm farm;
+  farm.sown = sown;
+  farm.mail = "folder = \"outgoing\"\nat_most_per_day = 1\n";
+  Bench bench(farm);
+  const Instant from = farm_time(first), until = farm_time(monday) + hours{2};
+  bench.open(farm_time(std::string(sown) + " 00:00"));
+  bench.drop("bench.csv", readings(Weather{}, farm_time(std::string(sown) + " 00:00"), from));
+  bench.turn(from);
+  std::string rows = header;
+  for (Instant now = from; now < until; now += minutes{15}) {
+    if ((now - from) % minutes{75} == Seconds{0}) {
+      bench.folder.write("drop/bench-2.csv", rows += row_of(reading_at(Weather{}, now)));
+    }
+    bench.turn(now);
+  }
+  std::vector<std::string> lines, reviews;
+  int held = 0;
+  for (const auto& item : bench.letters()) {
+    const bool timed = item.letter.kind == "daily" || item.letter.kind == "weekly";
+    if (item.letter.decided < from) continue;
+    if (!timed && item.state != outbox::State::sent) ++held;
+    if (timed) CHECK(item.state == outbox::State::sent);
+    if (item.letter.kind == "daily") lines.push_back(farm_clock(item.letter.decided));
+    if (item.letter.kind == "weekly" && item.letter.decided > from) {
+      reviews.push_back(farm_clock(item.letter.decided));
+    }
+  }
+  CHECK(held > 5);  // it is a storm
+  CHECK(reviews == std::vector<std::string>{monday});
+  REQUIRE(lines.size() == 2);
+  const std::string sunday = farm_clock(farm_time(monday) - hours{12}).substr(0, 10);
+  CHECK(lines[0] == std::string(first).substr(0, 10) + " 19:00");
+  CHECK(lines[1] == sunday + " 19:00");
+}
