@@ -1,5 +1,6 @@
 // The service as a process: signals, second instances, strange files in the drop folder.
 #include <signal.h>
+#include <sqlite3.h>
 
 #include "program.hpp"
 #include "service/ground.hpp"
@@ -13,6 +14,8 @@ namespace {
 
 /// Four times what the promise allows, for a machine that is busy with other things.
 constexpr std::chrono::milliseconds stop_bound{8000};
+/// Below the five seconds for which the store's lock is waited for otherwise.
+constexpr std::chrono::milliseconds held_bound{4500};
 
 /// Its log goes to standard error.
 Farm talking() {
@@ -23,6 +26,30 @@ Farm talking() {
 
 bool holds(const std::string& text, const std::string& part) {
   return text.find(part) != std::string::npos;
+}
+
+/// Holds the store's lock for writing, as another process would.
+class Holder {
+ public:
+  explicit Holder(const Folder& folder) {
+    REQUIRE(sqlite3_open((folder / "store/antherd.db").c_str(), &database_) == SQLITE_OK);
+    sqlite3_busy_timeout(database_, 20000);
+    REQUIRE(sqlite3_exec(database_, "BEGIN IMMEDIATE", nullptr, nullptr, nullptr) == SQLITE_OK);
+  }
+  ~Holder() { sqlite3_close(database_); }
+  Holder(const Holder&) = delete;
+  Holder& operator=(const Holder&) = delete;
+
+ private:
+  sqlite3* database_ = nullptr;
+};
+
+/// A store that was there before, and a service that is held up while it opens it.
+void make_store(const Folder& folder) {
+  Service service(folder.path());
+  REQUIRE(service.told("READY=1"));
+  service.signal(SIGTERM);
+  REQUIRE(service.wait(seconds{20}));
 }
 
 }  // namespace
@@ -135,7 +162,8 @@ TEST_CASE("strange files in the drop folder are named and the good one is used")
                                     .service = false,
                                     .now = {},
                                     .patience = seconds{5},
-                                    .page_limit = 0});
+                                    .page_limit = 0,
+                                    .haste = nullptr});
   REQUIRE(stored);
   const auto kept = stored->samples("bench", Instant{}, Instant::max());
   REQUIRE(kept);
@@ -161,4 +189,68 @@ TEST_CASE("the review is mailed through a running service, which keeps its store
   CHECK(mailed.status == 0);
   CHECK(holds(mailed.out, "were put into the outbox"));
   CHECK(service.running());
+}
+
+TEST_CASE("signals that come while the store is opened are heeded: reload later, stop at once") {
+  Folder folder;
+  settings_in(folder, talking());
+  make_store(folder);
+  auto holder = std::make_unique<Holder>(folder);
+  Service service(folder.path());
+  REQUIRE(service.said("antherd watches"));
+  service.signal(SIGHUP);
+  SECTION("it is told to stop") {
+    service.signal(SIGTERM);
+    const auto ended = service.wait(seconds{20});
+    REQUIRE(ended);
+    INFO(service.words());
+    CHECK(ended->first == 0);
+    CHECK(holds(service.words(), "before the watch had begun"));
+  }
+  SECTION("it comes up") {
+    holder.reset();
+    REQUIRE(service.told("READY=1"));
+    CHECK(service.said("read again and are in force"));
+  }
+}
+
+TEST_CASE("told to stop while another process holds the store, the service ends in time") {
+  Folder folder;
+  Farm farm = talking();
+  farm.extra_farm = "exercise = true";
+  settings_in(folder, farm);
+  Service service(folder.path(), {"--clock-from", "2026-07-12 12:05", "--pace", "1"});
+  REQUIRE(service.told("READY=1"));
+  const Holder holder(folder);
+  folder.write("drop/bench.csv", header + rows_of(readings(Weather{}, farm_time("2026-07-01 00:00"),
+                                                           farm_time("2026-07-12 12:00"))));
+  REQUIRE(service.said("could not"));  // the store was asked and did not take it
+  folder.append("drop/bench.csv", row_of(reading_at(Weather{}, farm_time("2026-07-12 12:00"))));
+  service.signal(SIGTERM);
+  const auto ended = service.wait(seconds{60});
+  INFO(service.words());
+  REQUIRE(ended);
+  CHECK(ended->first == 0);
+  CHECK(ended->second < held_bound);
+  CHECK(holds(service.words(), "stopping"));
+}
+
+TEST_CASE("told to stop while it reads a huge file, the service ends in time") {
+  Folder folder;
+  Farm farm = talking();
+  farm.extra_farm = "exercise = true";
+  settings_in(folder, farm);
+  // Nine months of minutes, some looks long.
+  std::string rows = header;
+  const Instant end = farm_time("2026-07-12 12:00"), first = end - days{270};
+  for (Instant at = first; at < end; at += minutes{1}) rows += row_of(reading_at(Weather{}, at));
+  folder.write("drop/bench.csv", rows);
+  Service service(folder.path(), {"--clock-from", "2026-07-12 12:00", "--pace", "1"});
+  REQUIRE(service.told("READY=1", seconds{60}));
+  service.signal(SIGTERM);
+  const auto ended = service.wait(seconds{60});
+  INFO(service.words());
+  REQUIRE(ended);
+  CHECK(ended->first == 0);
+  CHECK(ended->second < stop_bound);
 }

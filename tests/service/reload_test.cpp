@@ -141,8 +141,13 @@ TEST_CASE("while a letter is under way new settings wait for its end") {
   bench.folder.write("antherd.toml", replaced(good, "Larkspur Bench", "Larkspur Hill"));
   const auto name = [&] { return bench.desk->keeper().lookout().settings().farm; };
   bench.desk->reload(now + minutes{1});
+  bench.desk->reload(now + minutes{1});
   bench.turn(now + minutes{1});
   CHECK(name() == "Larkspur Bench");
+  const std::string log = bench.folder.read("antherd.log");
+  const auto said = log.find("put off until the letter under way has ended");
+  CHECK(said != std::string::npos);
+  CHECK(said == log.rfind("put off until"));  // once
   CHECK(bench.desk->before_dot(handed.front(), now + minutes{1}));
   bench.desk->mail_spoken(handed.front(), {mail::How::accepted, mail::About::server, 250, "ok", ""},
                           now + minutes{1});

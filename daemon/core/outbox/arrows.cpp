@@ -154,6 +154,16 @@ Item expire(Item item, Instant now) {
   return park(std::move(item), now, std::move(sentence));
 }
 
+Item give_up_recipient(Item item, Instant now) {
+  if (item.state == State::sent || item.state == State::parked || item.state == State::merged) {
+    return item;
+  }
+  std::string sentence = item.letter.recipient + " is no longer among the recipients: \"" +
+                         item.letter.subject + "\" ";
+  sentence += item.doubts > 0 ? "may or may not have arrived" : "was not sent";
+  return park(std::move(item), now, std::move(sentence));
+}
+
 Item rest_quietly(Item item, Instant until) {
   if (item.state != State::waiting || item.attempts > 0) return item;
   item.next_try = until;

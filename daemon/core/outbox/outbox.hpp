@@ -103,6 +103,9 @@ Item recover(Item item, Instant now);
 Line reopen(Line line);
 /// Too old to be of use (see Plan::expired): parked, with the sentence that names it.
 Item expire(Item item, Instant now);
+/// Its address is no longer among the recipients: parked, with the sentence that names it. From
+/// `held` too; not from `merged`, whose digest is given up itself.
+Item give_up_recipient(Item item, Instant now);
 /// A letter that is waiting and was never tried waits for the digest of its address instead.
 Item hold(Item item);
 /// A letter that was never tried waits for the end of its reader's quiet hours, however long, and

@@ -114,7 +114,19 @@ std::string reading_uri(const std::string& path, Database::Mode mode) {
   return uri;
 }
 
-Database::Database(const std::string& path, Mode mode, std::chrono::milliseconds patience) {
+int Database::wait_for_lock(void* database, int times) {
+  constexpr std::chrono::milliseconds once{10}, in_haste{50};
+  const auto& [patience, haste] = static_cast<Database*>(database)->patience_;
+  if (times * once >= (haste != nullptr && *haste ? std::min(in_haste, patience) : patience)) {
+    return 0;
+  }
+  sqlite3_sleep(static_cast<int>(once.count()));
+  return 1;
+}
+
+Database::Database(const std::string& path, Mode mode, std::chrono::milliseconds patience,
+                   const std::atomic<bool>* haste)
+    : patience_{patience, haste} {
   sqlite3* connection = nullptr;
   const bool writes = mode == Mode::write;
   // Absolute, so that no folder's name is taken for a URI.
@@ -127,7 +139,7 @@ Database::Database(const std::string& path, Mode mode, std::chrono::milliseconds
   if (connection == nullptr) throw Trouble{SQLITE_NOMEM, "out of memory", {}};
   sqlite3_extended_result_codes(connection, 1);
   if (code != SQLITE_OK) fail(code);
-  sqlite3_busy_timeout(connection, static_cast<int>(patience.count()));
+  sqlite3_busy_handler(connection, wait_for_lock, this);
   sqlite3_db_config(connection, SQLITE_DBCONFIG_DEFENSIVE, 1, nullptr);
   sqlite3_db_config(connection, SQLITE_DBCONFIG_TRUSTED_SCHEMA, 0, nullptr);
   script("PRAGMA temp_store = MEMORY; PRAGMA cell_size_check = ON; PRAGMA foreign_keys = ON");

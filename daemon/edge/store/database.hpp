@@ -6,6 +6,7 @@
 #include <sqlite3.h>
 
 #include <algorithm>
+#include <atomic>
 #include <chrono>
 #include <cstdint>
 #include <memory>
@@ -127,7 +128,9 @@ class Database {
   };
 
   /// Opens and sets a connection up. Throws Trouble.
-  Database(const std::string& path, Mode mode, std::chrono::milliseconds patience);
+  /// @param haste  while true no lock is waited for longer than 50 ms; may be null
+  Database(const std::string& path, Mode mode, std::chrono::milliseconds patience,
+           const std::atomic<bool>* haste = nullptr);
   Database(const Database&) = delete;
   Database& operator=(const Database&) = delete;
   ~Database();
@@ -153,8 +156,14 @@ class Database {
   struct Close {
     void operator()(sqlite3* connection) const { sqlite3_close_v2(connection); }
   };
+  struct Patience {
+    std::chrono::milliseconds usual;
+    const std::atomic<bool>* haste;
+  };
   [[noreturn]] void fail(int code);
+  static int wait_for_lock(void* database, int times);
 
+  Patience patience_;
   std::unique_ptr<sqlite3, Close> connection_;
   std::unordered_map<std::string_view, std::unique_ptr<sqlite3_stmt, Finalize>> statements_;
 };

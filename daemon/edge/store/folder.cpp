@@ -228,6 +228,13 @@ std::string copy_name(Instant now) {
   return name.data();
 }
 
+std::vector<std::string> copies_in(const std::string& folder) {
+  std::vector<std::string> copies = files_like_copies(folder, ".db");
+  std::sort(copies.rbegin(), copies.rend());  // the names sort by week
+  for (std::string& name : copies) name.insert(0, folder + "/");
+  return copies;
+}
+
 void remove_unfinished_copies(const std::string& folder) {
   for (const std::string& name : files_like_copies(folder, ".part")) {
     remove_file(folder + "/" + name);

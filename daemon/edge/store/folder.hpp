@@ -5,6 +5,7 @@
 #include <cstdint>
 #include <optional>
 #include <string>
+#include <vector>
 
 #include "core/failures/result.hpp"
 #include "core/units/time.hpp"
@@ -44,6 +45,8 @@ Result<bool> remove_ballast(const std::string& folder);
 
 /// "antherd-copy-2026-W28.db"
 std::string copy_name(Instant now);
+/// Whole paths of the weekly copies, the newest first.
+std::vector<std::string> copies_in(const std::string& folder);
 /// Removes what a copy left that did not come to its end.
 void remove_unfinished_copies(const std::string& folder);
 /// Forces a finished copy to disk, gives it its name and removes all but the newest copies.

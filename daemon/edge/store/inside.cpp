@@ -65,7 +65,7 @@ void Store::Inside::connect() {
   database.reset();
   mode = options.read_only ? reading_mode(path) : Mode::write;
   seen = file_state(path);
-  database = std::make_unique<Database>(path, mode, options.patience);
+  database = std::make_unique<Database>(path, mode, options.patience, options.haste);
 }
 
 void Store::Inside::settle_schema() {

@@ -24,6 +24,7 @@ struct Store::Inside {
   std::unique_ptr<Database> database;
   std::map<std::string, std::int64_t> stations;  // ids that are committed
   std::optional<std::string> aside;
+  bool anew = false;  // begun by this opening where a store had been
   bool full = false;
 
   Inside() = default;
@@ -85,6 +86,9 @@ struct Store::Inside {
   void settle_schema();
   /// Service: checks the whole file. Throws Trouble when it is damaged.
   void check_all();
+  /// Service, in a store that was just begun where one had been: takes the diary back from the
+  /// newest copy that can be read, and notes how it began, in one transaction.
+  Outcome begin_anew();
 
   /// The id of a station, made when missing (inside a transaction that writes).
   std::int64_t station_id(const std::string& name);

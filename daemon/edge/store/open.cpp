@@ -20,7 +20,12 @@ Outcome open_files(Inside& inside) {
 template <class Inside>
 Outcome open_as_service(Inside& inside) {
   const auto there = file_state(inside.path);
-  bool damaged = there && there->size == 0;  // cut down to nothing: SQLite would call it new
+  const bool nothing = !there || there->size == 0;
+  // A ballast is made after the store: without one, a file of no bytes is what a first start left.
+  const std::string& folder = inside.options.folder;
+  const bool had_one = file_state(folder + "/ballast") || !copies_in(folder).empty();
+  bool damaged = there && nothing && had_one;  // cut down to nothing: SQLite would call it new
+  inside.anew = nothing && had_one;
   if (!damaged) {
     const Outcome opened = inside.attempt("open the store", [&] {
       try {
@@ -43,6 +48,7 @@ Outcome open_as_service(Inside& inside) {
   Result<std::string> aside = put_aside(inside.options.folder, inside.options.now);
   if (!aside) return aside.failure();
   inside.aside = *aside;
+  inside.anew = true;
   return open_files(inside);
 }
 
@@ -77,6 +83,7 @@ Result<Store> Store::open(const Options& options) {
   if (!lock) return lock.failure();
   inside->lock = *lock;
   if (Outcome opened = open_as_service(*inside); !opened) return opened.failure();
+  if (Outcome begun = inside->begin_anew(); !begun) return begun.failure();
   // Without room there is no ballast for now; keep_ballast is asked again by the service.
   static_cast<void>(make_ballast(options.folder));
   return Store(std::move(inside));

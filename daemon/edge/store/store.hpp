@@ -4,6 +4,7 @@
 // the service, one command that writes into the diary, and any number of readers.
 #pragma once
 
+#include <atomic>
 #include <chrono>
 #include <cstdint>
 #include <map>
@@ -40,6 +41,14 @@ struct Merger {
   Instant at;
 };
 
+/// What a service found that began with a new store where one had been.
+struct Beginning {
+  std::string aside;               // name of the file that the damaged one was put aside as; empty:
+                                   // there was none
+  std::optional<Instant> copied;   // when the copy was made that the diary was taken back from
+  int irrigations = 0, notes = 0;  // so many were taken back
+};
+
 /// One tick's decisions: kept in one transaction or not at all.
 struct Decision {
   std::map<std::string, std::vector<weather::Hour>> hours;   // by station: written or replaced
@@ -59,16 +68,20 @@ class Store {
     Instant now;             // service: the date that a damaged file is set aside with
     std::chrono::milliseconds patience{5000};  // how long to wait for another process's lock
     std::int64_t page_limit = 0;  // upper bound of the file in pages of 4096 bytes; 0: the disk's
+    const std::atomic<bool>* haste =
+        nullptr;  // while true no call waits more than 50 ms for a lock
   };
 
   /// Opens `antherd.db` in a folder, making it when there is none.
   ///
   /// service: refuses a second service, naming its process, and a network file system, naming it;
   /// checks the whole file, and a damaged one is renamed (see set_aside) and a new one begun;
-  /// makes the ballast when there is room. Writing commands (neither flag) work beside the service.
-  /// read_only fails when there is no file. Every mode refuses a newer schema, naming both numbers,
-  /// and a file of another program; all but the service refuse a damaged file and leave it as it
-  /// is.
+  /// makes the ballast when there is room. Where a new one is begun in a folder that had one (a
+  /// damaged file, or a ballast or a weekly copy without a store), the diary is taken back from the
+  /// newest copy that can be read, see beginning(). Writing commands (neither flag) work beside the
+  /// service. read_only fails when there is no file. Every mode refuses a newer schema, naming both
+  /// numbers, and a file of another program; all but the service refuse a damaged file and leave it
+  /// as it is.
   static Result<Store> open(const Options& options);
   Store(Store&&) noexcept;
   Store& operator=(Store&&) noexcept;
@@ -76,6 +89,10 @@ class Store {
 
   /// Where a damaged file was put when the service opened, if it was: the whole path.
   std::optional<std::string> set_aside() const;
+  /// How this store began, where another had been and nobody was told yet; kept until told.
+  Result<std::optional<Beginning>> beginning() const;
+  /// The note that a decision keeps with the letters that tell of it.
+  static Notes beginning_told();
   /// Whether the last call that failed did so because the disk (or page_limit) is full.
   bool out_of_space() const;
 
@@ -142,6 +159,7 @@ class Store {
   /// forced to disk, then given its name; the two newest copies are kept. Also from a read_only
   /// store, so that a worker can do it. A copy of this week that is there already is replaced.
   Outcome copy_without_samples(Instant now);
+  bool has_copy_of_week(Instant now) const;
 
  private:
   struct Inside;

@@ -5,6 +5,7 @@
 #include "run/service/intake.hpp"
 #include "run/service/log.hpp"
 #include "run/service/loop.hpp"
+#include "run/service/signals.hpp"
 #include "run/settings/quantities.hpp"
 
 namespace antherd::commands {
@@ -30,6 +31,7 @@ Result<service::Timekeeper> timekeeper_of(const settings::Settings& settings,
 }  // namespace
 
 Exit run(const Invocation& call) {
+  service::Signals signals;  // before all else: none of them ends the start halfway
   const SettingsPointer settings = read_settings(call);
   if (!settings) return Exit::usage;
   const auto time = timekeeper_of(*settings, call);
@@ -43,7 +45,7 @@ Exit run(const Invocation& call) {
                     " stations");
   service::RunOptions options{*time, std::nullopt};
   if (call.stop_after > 0) options.stop_after = Seconds{call.stop_after};
-  if (auto done = service::run(settings, options); !done) {
+  if (auto done = service::run(settings, options, signals); !done) {
     service::log_error(done.failure().sentence());
     return say(done.failure());
   }

@@ -52,6 +52,24 @@ void DeskWork::log_strange_fields(Instant now) {
   }
 }
 
+/// That the store began anew where one had been.
+void DeskWork::log_beginning() const {
+  const auto beginning = store_.beginning();
+  const auto aside = store_.set_aside();
+  if (!aside && !(beginning && *beginning)) return;
+  std::string sentence =
+      aside ? "the store was damaged; it was put aside as " + *aside : "the store was missing";
+  sentence += " and a new one was begun: files in the drop folder are read again";
+  if (beginning && *beginning && (*beginning)->copied) {
+    sentence += "; from the weekly copy " + std::to_string((*beginning)->irrigations) +
+                " irrigations and " + std::to_string((*beginning)->notes) +
+                " scouting notes were taken back, those written down since are to be entered again";
+  } else {
+    sentence += "; irrigations and scouting notes are to be entered again";
+  }
+  log_error(sentence);
+}
+
 void DeskWork::log_kept(const Kept& kept) {
   for (const alerts::Telling& telling : kept.tellings) {
     std::string sentence = std::string(alerts::name_of(telling.kind)) + " of " + telling.subject +

@@ -4,6 +4,7 @@
 #include <algorithm>
 #include <utility>
 
+#include "run/service/former.hpp"
 #include "run/service/log.hpp"
 
 namespace antherd::service {
@@ -38,18 +39,17 @@ DeskWork::DeskWork(std::shared_ptr<const settings::Settings> settings, store::St
     : settings_(std::move(settings)), store_(std::move(store)) {}
 
 Result<std::unique_ptr<DeskWork>> DeskWork::open(std::shared_ptr<const settings::Settings> settings,
-                                                 Instant now, bool clock_set) {
+                                                 Instant now, bool clock_set,
+                                                 const std::atomic<bool>* stopping) {
   store::Store::Options options;
   options.folder = settings->store_folder;
   options.service = true;
   options.now = now;
+  options.haste = stopping;
   auto store = store::Store::open(options);
   if (!store) return store.failure();
   std::unique_ptr<DeskWork> work(new DeskWork(std::move(settings), std::move(*store)));
-  if (const auto aside = work->store_.set_aside()) {
-    log_error("the store was damaged; it was put aside as " + *aside +
-              " and a new one was begun: files in the drop folder are read again");
-  }
+  work->log_beginning();
   work->mind_clock(now, clock_set, work->known_time());
   if (auto done = work->begin(work->working(now)); !done) return done.failure();
   return work;
@@ -61,6 +61,9 @@ Outcome DeskWork::begin(Instant now) {
       settings_, store_, [this](mail::Server server, std::int64_t item, letters::Letter letter) {
         if (send_) send_(std::move(server), item, std::move(letter));
       });
+  const auto parked = park_letters_of_former(*settings_, store_, now);
+  if (!parked) return parked.failure();
+  for (const std::string& sentence : *parked) log_warning(sentence);
   if (auto done = keeper_->load(now); !done) return done;
   if (auto done = carrier_->load(now); !done) return done;
   log_strange_fields(now);
@@ -339,8 +342,11 @@ void DeskWork::mail_spoken(std::int64_t item, const mail::Spoken& spoken, Instan
 
 void DeskWork::reload(Instant at) {
   const Instant now = working(at);
-  reload_wanted_ = line_busy();
-  if (reload_wanted_) return;
+  const bool said = std::exchange(reload_wanted_, line_busy());
+  if (reload_wanted_) {
+    if (!said) log_info("the new settings are put off until the letter under way has ended");
+    return;
+  }
   settings::Reading reading = settings::read_file(settings_->path);
   for (const auto& complaint : reading.complaints) log_error(complaint.sentence());
   if (!reading.settings) {
@@ -373,7 +379,10 @@ void DeskWork::reload(Instant at) {
 }
 
 void DeskWork::finish(Instant now) {
-  if (auto done = keeper_->flush(working(now)); !done) log_error(done.failure().sentence());
+  // Another process may hold the store for a moment, and no call waits for long any more.
+  auto done = keeper_->flush(working(now));
+  for (int tries = 1; !done && tries < 10; ++tries) done = keeper_->flush(working(now));
+  if (!done) log_error(done.failure().sentence());
 }
 
 std::vector<std::string> DeskWork::folders() const {

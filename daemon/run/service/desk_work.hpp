@@ -30,8 +30,10 @@ class DeskWork {
   ///
   /// Here and below `now` is the computer's time. While its clock is not set the desk works by a
   /// time of its own, see working().
+  /// @param stopping  while true no lock of the store is waited for long; outlives the desk
   static Result<std::unique_ptr<DeskWork>> open(std::shared_ptr<const settings::Settings> settings,
-                                                Instant now, bool clock_set = true);
+                                                Instant now, bool clock_set = true,
+                                                const std::atomic<bool>* stopping = nullptr);
 
   void on_send(Carrier::Send send) { send_ = std::move(send); }
   void on_poll(Ask ask) { ask_ = std::move(ask); }
@@ -51,6 +53,8 @@ class DeskWork {
 
   /// Reads the settings file again: whole or not at all; complaints go to the log.
   void reload(Instant now);
+  /// New settings wait for the end of the letter under way.
+  bool reload_waits() const { return reload_wanted_; }
   /// Stores what is in memory.
   void finish(Instant now);
 
@@ -99,6 +103,7 @@ class DeskWork {
   void note_trouble(const std::string& station, const std::string& sentence);
   void tell_news(const std::string& station, Instant now);
   void log_strange_fields(Instant now);
+  void log_beginning() const;
   void log_kept(const Kept& kept);
   void carry(Instant now);
   bool line_busy() const { return carrier_->busy() || distress_.busy(); }

@@ -49,6 +49,11 @@ Outcome Keeper::load(Instant now) {
   // What fell due before the first start was never promised.
   if (!last_daily_) last_daily_ = now;
   if (!last_weekly_) last_weekly_ = now;
+  const auto beginning = store_.beginning();
+  if (!beginning) return beginning.failure();
+  if (const auto& b = *beginning) {
+    anew_ = letters::Anew{b->aside, b->copied, b->irrigations, b->notes};
+  }
   auto recent = store_.letters_since(now - limits_look_back);
   if (!recent) return recent.failure();
   auto held = store_.letters_held();
@@ -258,6 +263,7 @@ Kept Keeper::step(Instant now, bool clock_set) {
   collect_hours(pending_, closed);
   pending_.said.insert(pending_.said.end(), turn.said.begin(), turn.said.end());
   add_timed_letters(now, pending_, turn.letters);
+  if (anew_) tell_of_beginning(now, turn.letters);
   forget_old(rations_, now);
   auto items = to_items(turn.letters, *settings_, rations_, now);
   pending_.letters.insert(pending_.letters.end(), items.begin(), items.end());
@@ -286,24 +292,6 @@ Outcome Keeper::save_pending(std::vector<Failure>& troubles) {
                              "the 8 MiB kept in reserve were given up for them; make room on the "
                              "disk before they are used up"});
   return store_.save(pending_);
-}
-
-std::vector<Failure> Keeper::tidy(Instant now) {
-  std::vector<Failure> troubles;
-  const CivilDay today = settings_->calendar.day_of(now);
-  if (tidied_ == today) return troubles;
-  const auto note = [&](const Outcome& done) {
-    if (!done) troubles.push_back(done.failure());
-  };
-  // Old by the readings too: a clock that is wrong by years must not throw a season away.
-  const auto newest = lookout_.time_of_stations();
-  note(store_.drop_samples_before(std::min(now, newest.value_or(now)) - settings_->keep_samples));
-  note(store_.keep_ballast());
-  const auto weekday =
-      std::chrono::weekday{std::chrono::sys_days{today.time_since_epoch()}}.iso_encoding();
-  if (tidied_ && weekday == 1) note(store_.copy_without_samples(now));
-  tidied_ = today;
-  return troubles;
 }
 
 void Keeper::add_timed_letters(Instant now, store::Decision& decision,

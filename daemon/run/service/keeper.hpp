@@ -9,6 +9,7 @@
 #include <string>
 #include <vector>
 
+#include "core/letters/anew.hpp"
 #include "edge/station/readings.hpp"
 #include "edge/store/store.hpp"
 #include "run/service/lookout.hpp"
@@ -47,8 +48,8 @@ class Keeper {
   /// Takes diary entries that came as files; what is there already changes nothing.
   Outcome take_diary(const field::Diary& diary);
 
-  /// Housekeeping of a day: samples past their time go, the ballast is put back; each week a copy
-  /// of the store without samples. @return what did not work
+  /// Housekeeping of a day: samples past their time go, the ballast is put back; a copy of
+  /// the store without samples where this week has none yet. @return what did not work
   std::vector<Failure> tidy(Instant now);
 
   /// Stores what is due, turns the lookout, adds daily and weekly letters, saves.
@@ -77,6 +78,7 @@ class Keeper {
   Closed closed_at(Instant now) const;
   void heed_clock(Instant now);
   bool batch_due(const std::string& station, const Batch& batch, Instant now) const;
+  void tell_of_beginning(Instant now, std::vector<letters::Letter>& letters);
   void add_timed_letters(Instant now, store::Decision& decision,
                          std::vector<letters::Letter>& letters);
   std::vector<letters::Letter> weekly_letters(Instant now);
@@ -94,6 +96,7 @@ class Keeper {
   std::int64_t diary_version_ = -1;
   std::optional<Instant> first_start_, last_daily_, last_weekly_;
   std::optional<CivilDay> tidied_;
+  std::optional<letters::Anew> anew_;  // to be told
   Rations rations_;
   std::ptrdiff_t most_in_memory_ = 200'000;  // 4 months of minutes
 };

@@ -1,6 +1,8 @@
 // See loop.hpp.
 #include "run/service/loop.hpp"
 
+#include <signal.h>
+
 #include <boost/asio.hpp>
 #include <utility>
 
@@ -18,10 +20,10 @@ namespace asio = boost::asio;
 
 class Loop {
  public:
-  Loop(std::unique_ptr<DeskWork> work, const RunOptions& options)
+  Loop(std::unique_ptr<DeskWork> work, const RunOptions& options, Signals& signals)
       : work_(std::move(work)),
         options_(options),
-        signals_(io_, SIGTERM, SIGINT, SIGHUP),
+        signals_(signals),
         timer_(io_),
         end_(io_),
         notifier_(io_),
@@ -39,7 +41,8 @@ class Loop {
   }
 
   void run() {
-    wait_for_signal();
+    const auto up = asio::make_work_guard(io_);
+    signals_.heed([this](int number) { asio::post(io_, [this, number] { take_signal(number); }); });
     watch_folders();
     if (options_.stop_after) {
       end_.expires_after(*options_.stop_after);
@@ -80,16 +83,12 @@ class Loop {
     asio::post(io_, [this] { turn(); });
   }
 
-  void wait_for_signal() {
-    signals_.async_wait([this](const boost::system::error_code& error, int number) {
-      if (error) return;
-      if (number == SIGHUP) {
-        reload();
-        wait_for_signal();
-      } else {
-        stop(number == SIGTERM ? "told to stop" : "interrupted");
-      }
-    });
+  void take_signal(int number) {
+    if (number != SIGHUP) {
+      stop(number == SIGTERM ? "told to stop" : "interrupted");
+    } else if (!stopping_) {
+      reload();
+    }
   }
 
   void reload() {
@@ -125,7 +124,9 @@ class Loop {
   void report_mail(std::int64_t item, mail::Spoken spoken) {
     asio::post(io_, [this, item, spoken = std::move(spoken)] {
       mail_.rest();
+      const bool new_settings_waited = work_->reload_waits();
       work_->mail_spoken(item, spoken, now());
+      if (new_settings_waited && !stopping_) watch_folders();
       hurry();
     });
   }
@@ -150,10 +151,9 @@ class Loop {
 
   /// Workers end within 0.2 s; what they still report is written down before the store closes.
   void finish() {
+    signals_.rest();
     mail_.stop();
     polls_.stop();
-    boost::system::error_code ignored;
-    signals_.cancel(ignored);
     timer_.cancel();
     end_.cancel();
     if (notifier_.is_open()) notifier_.release();
@@ -165,7 +165,7 @@ class Loop {
   std::unique_ptr<DeskWork> work_;
   RunOptions options_;
   asio::io_context io_;
-  asio::signal_set signals_;
+  Signals& signals_;
   asio::steady_timer timer_, end_;
   FolderWatch folders_;
   asio::posix::stream_descriptor notifier_;
@@ -176,10 +176,12 @@ class Loop {
 
 }  // namespace
 
-Outcome run(std::shared_ptr<const settings::Settings> settings, const RunOptions& options) {
-  auto work = DeskWork::open(std::move(settings), options.time.now(), options.time.set());
+Outcome run(std::shared_ptr<const settings::Settings> settings, const RunOptions& options,
+            Signals& signals) {
+  auto work = DeskWork::open(std::move(settings), options.time.now(), options.time.set(),
+                             &signals.stopping());
   if (!work) return work.failure();
-  Loop loop(std::move(*work), options);
+  Loop loop(std::move(*work), options, signals);
   loop.run();
   return Done{};
 }

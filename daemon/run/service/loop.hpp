@@ -7,6 +7,7 @@
 #include <string>
 
 #include "core/failures/result.hpp"
+#include "run/service/signals.hpp"
 #include "run/service/timekeeper.hpp"
 #include "run/settings/settings.hpp"
 
@@ -19,6 +20,8 @@ struct RunOptions {
 
 /// Runs until SIGTERM or SIGINT. SIGHUP re-reads the settings whole or not at all.
 /// @return a Failure when it could not start; Done after a clean stop
-Outcome run(std::shared_ptr<const settings::Settings> settings, const RunOptions& options);
+/// @param signals  those that came before are heeded once it is up
+Outcome run(std::shared_ptr<const settings::Settings> settings, const RunOptions& options,
+            Signals& signals);
 
 }  // namespace antherd::service

@@ -160,7 +160,7 @@ TEST_CASE("the service sets a damaged file aside, commands leave it", "[store]")
   const int way = GENERATE(range(0, 7));
   CAPTURE(way);
   const Folder folder;
-  fill(writer(folder));
+  fill(service(folder));
   const std::string whole = bytes_of(folder.database());
   REQUIRE(whole.size() > 20 * 4096);
   std::string bytes = whole;

@@ -1,0 +1,35 @@
+// What the keeper does once: a day's tidying, and telling that the store began anew. See
+// keeper.hpp.
+#include <algorithm>
+
+#include "run/service/keeper.hpp"
+
+namespace antherd::service {
+
+std::vector<Failure> Keeper::tidy(Instant now) {
+  std::vector<Failure> troubles;
+  const CivilDay today = settings_->calendar.day_of(now);
+  if (tidied_ == today) return troubles;
+  const auto note = [&](const Outcome& done) {
+    if (!done) troubles.push_back(done.failure());
+  };
+  // Old by the readings too: a clock that is wrong by years must not throw a season away.
+  const auto newest = lookout_.time_of_stations();
+  note(store_.drop_samples_before(std::min(now, newest.value_or(now)) - settings_->keep_samples));
+  note(store_.keep_ballast());
+  if (!store_.has_copy_of_week(now)) note(store_.copy_without_samples(now));
+  tidied_ = today;
+  return troubles;
+}
+
+/// With the letters goes the note that they were made: they are told once.
+void Keeper::tell_of_beginning(Instant now, std::vector<letters::Letter>& letters) {
+  if (settings_->mail) {
+    auto made = letters::compose_anew(*anew_, settings_->recipients, lookout_.desk(now));
+    std::move(made.begin(), made.end(), std::back_inserter(letters));
+  }
+  pending_.notes.merge(store::Store::beginning_told());
+  anew_.reset();
+}
+
+}  // namespace antherd::service
