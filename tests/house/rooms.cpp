@@ -115,4 +115,26 @@ Complaints check_clock(const File& file) {
   return complaints;
 }
 
+Complaints check_commands(const File& file) {
+  static const std::regex program(
+      R"((^|[^\w.>])(system|popen|v?fork|posix_spawnp?|exec[lv]p?e?)\s*\()");
+  static const std::regex statement(R"((\.|->|\b)(use|script)\((.*))");
+  Complaints complaints;
+  const std::vector<std::string> lines = lines_of(without_comments_and_texts(file.text));
+  for (std::size_t i = 0; i < lines.size(); ++i) {
+    if (std::regex_search(lines[i], program))
+      complaints.push_back(place(file, i + 1) + "no shell, no other program");
+    std::smatch call;
+    if (!file.path.starts_with("daemon/edge/store/") ||
+        !std::regex_search(lines[i], call, statement))
+      continue;
+    const std::string said = call[3];
+    const bool made =
+        said.find('+') != std::string::npos || said.find("c_str") != std::string::npos;
+    if (made && said.find("std::to_string(options.page_limit)") == std::string::npos)
+      complaints.push_back(place(file, i + 1) + "SQL is a fixed text with bound values");
+  }
+  return complaints;
+}
+
 }  // namespace house

@@ -40,6 +40,10 @@ Complaints check_core_words(const File& file);
 /// `::now(` stands nowhere below daemon/ but in edge/clock.
 Complaints check_clock(const File& file);
 
+/// No shell and no other program is started below daemon/, and SQL is a fixed text: values go
+/// through bound parameters. (One PRAGMA takes a number, which binds nowhere.)
+Complaints check_commands(const File& file);
+
 /// At most 400 lines, 100 columns (characters, not bytes) and, for C++, 60 lines a function.
 Complaints check_sizes(const File& file, bool functions_too);
 

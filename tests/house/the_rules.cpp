@@ -71,6 +71,18 @@ TEST_CASE("house: a clock outside the clock's room is found") {
   CHECK(check_clock({"daemon/run/a.cpp", "Instant Keeper::now() const {\n"}) == Complaints{});
 }
 
+TEST_CASE("house: a shell and SQL made of values are found") {
+  const auto complaints = [](const std::string& line) {
+    return check_commands({"daemon/edge/store/a.cpp", line + "\n"}).size();
+  };
+  CHECK(complaints("system(command.c_str());") == 1);
+  CHECK(complaints("FILE* pipe = ::popen(command, mode);") == 1);
+  CHECK(complaints("if (fork() == 0) execv(path, words);") == 1);
+  CHECK(complaints("database.use((\"SELECT a FROM b WHERE c = \" + name).c_str()).run();") == 1);
+  CHECK(complaints("database.use(\"SELECT a FROM b WHERE c = ?\").bind(name).run();") == 0);
+  CHECK(complaints("std::error_code error; operating.system(1); file_system(2);") == 0);
+}
+
 TEST_CASE("house: long files, lines and functions are found") {
   const auto complaints = [](const std::string& text) {
     return check_sizes({"daemon/a.cpp", text}, true).size();

@@ -48,6 +48,10 @@ TEST_CASE("only edge/clock asks what time it is") {
   CHECK(complaints_about(in_daemon, check_clock) == "");
 }
 
+TEST_CASE("no shell, no other program, no SQL put together from values") {
+  CHECK(complaints_about(in_daemon, check_commands) == "");
+}
+
 TEST_CASE("files, lines and functions stay small") {
   const auto own = [](const File& f) { return is_code(f.path) && !f.path.starts_with("tests/"); };
   const auto of_tests = [](const File& f) {

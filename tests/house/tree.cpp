@@ -1,10 +1,11 @@
 #include "house/tree.hpp"
-#include "support/paths.hpp"
 
 #include <algorithm>
 #include <filesystem>
 #include <fstream>
 #include <sstream>
+
+#include "support/paths.hpp"
 
 namespace house {
 
