@@ -298,7 +298,9 @@ TEST_CASE("a digest that the store did not take is made again, and once") {
     bench.turn(now + Seconds{20});
   }
   CHECK(told_of(bench).digests == 1);
-  CHECK(told_of(bench).merged == 3);
+  // And a fourth: at the first start the rows of bench.csv that had been ahead of the clock are
+  // read again, so bench is back.
+  CHECK(told_of(bench).merged == 4);
 }
 
 TEST_CASE("a value that flaps on its threshold writes no more than it must") {

@@ -230,8 +230,8 @@ void Judge::judge_replay(service::DeskWork& desk, Instant now) {
   auto lived = live.episodes();
   std::erase_if(lived, [](const auto& e) { return e.kind == alerts::Kind::mail_trouble; });
   if (lived != replay.episodes()) {
-    complaints_.add("live is replay", "live\n" + ground::told(lived) + "replay\n" +
-                                          ground::told(replay.episodes()));
+    complaints_.add("live is replay",
+                    "live\n" + ground::told(lived) + "replay\n" + ground::told(replay.episodes()));
   }
 }
 
