@@ -3,6 +3,8 @@
 
 #include <algorithm>
 #include <array>
+#include <cstdio>
+#include <cstdlib>
 
 #include "core/letters/rules.hpp"
 #include "run/service/distress.hpp"
@@ -131,6 +133,11 @@ void Judge::judge_said(const Said& said) {
   const SaidRow& row = said.row;
   const std::string what = row.kind + " of " + row.subject + ", " + row.saying + " " + row.level +
                            ", about " + clock_text(settings_->calendar, row.about);
+  if (std::getenv("ANTHERD_ALOUD") != nullptr) {
+    std::printf("%s: %s, from %s until %s\n", clock_text(settings_->calendar, row.at).c_str(),
+                what.c_str(), clock_text(settings_->calendar, row.start).c_str(),
+                row.until ? clock_text(settings_->calendar, *row.until).c_str() : "-");
+  }
   if (!said.clock_right) return;
   const Seconds age = row.at - row.about;
   const bool of_old = row.saying == "reminder" || row.saying == "learned_late";
@@ -150,7 +157,9 @@ void Judge::judge_said(const Said& said) {
     const Seconds apart = row.at - before->row.at;
     if (same && row.saying != "reminder" && before->row.about == row.about &&
         (row.saying != "notice" || before->row.episode == row.episode)) {
-      complaints_.add("nothing is said twice", what);
+      complaints_.add("nothing is said twice", what + ", " + hours_text(apart) + " before, of " +
+                                                   before->row.episode + " and now of " +
+                                                   row.episode);
     }
     if (over) break;
     const bool rise = row.saying == "opened" || row.saying == "raised";

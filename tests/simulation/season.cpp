@@ -66,6 +66,12 @@ Season::Season(const Kind& kind, std::uint64_t seed)
   start_ = now_ = settings_->calendar.start_of(day_from(kind.sown));
   end_ = start_ + days{kind.days};
   faults_ = order(kind, seed, start_, end_);
+  if (std::getenv("ANTHERD_ALOUD") != nullptr) {
+    for (const Fault& fault : faults_) {
+      std::printf("%s: %s until %s\n", ground::farm_clock(fault.from).c_str(), name_of(fault.what),
+                  ground::farm_clock(fault.to).c_str());
+    }
+  }
   stations_.reserve(2);
   for (int number = 0; number < (kind.second_station ? 2 : 1); ++number) {
     stations_.emplace_back(kind, seed, number, folder_ / (number == 0 ? "drop" : "river"),

@@ -3,6 +3,7 @@
 //   ANTHERD_SEASON="fog coast"            only this kind
 //   ANTHERD_SEEDS=20                      that many seeds of each kind; without it two. CI has 20
 //   ANTHERD_HALF=2                        of them the first or the second half
+//   ANTHERD_ALOUD=1                       tells what was said, as it is said, and the faults
 //   ANTHERD_FAULTS=kill,mail_down         only these faults, to find which one it takes
 #include <time.h>
 

@@ -212,7 +212,8 @@ bool waits_for_morning(const Telling& telling, const Policy& policy, Instant now
 }
 
 // "Data back" of a silence before one that has begun meanwhile, or was told of: that one's end says
-// it better, and "back" beside "no data" would say nothing.
+// it better, and "back" beside "no data" would say nothing. Also one that later facts took away:
+// two silences that a wrong clock made are over together.
 bool overtaken(const Telling& telling, std::span<const Story> stories) {
   const bool end_alone =
       telling.saying == Saying::ended ||
@@ -220,7 +221,7 @@ bool overtaken(const Telling& telling, std::span<const Story> stories) {
   if (!end_alone || !of_the_watch(telling.kind)) return false;
   return std::any_of(stories.begin(), stories.end(), [&](const Story& story) {
     return story.kind == telling.kind && story.subject == telling.subject &&
-           story.start > telling.start && !story.gone && (story.open || !story.said.empty());
+           story.start > telling.start && (story.open || !story.said.empty());
   });
 }
 

@@ -281,3 +281,16 @@ TEST_CASE("a clock that once stood six days ahead silences no later alert and no
   const Episode second = heat(84, {{87, moderate}, {140, none}});
   CHECK(service.run({first, second}, 22, 120) == "opened Moderate@87 reminder Moderate@111 ");
 }
+
+TEST_CASE("two silences that only a wrong clock made are over with one word") {
+  Service service;
+  const Episode first = episode(Kind::no_data, "bench", 10, {{11, severe}}, true);
+  const Episode second = episode(Kind::no_data, "bench", 20, {{21, severe}}, true);
+  REQUIRE(service.tick({first}, at(12)).size() == 1);
+  REQUIRE(service.tick({second}, at(22)).size() == 1);
+  std::string heard;
+  for (int hour = 23; hour < 40; ++hour) {
+    for (const Telling& t : service.tick({}, at(hour))) heard += line(t, hour);
+  }
+  CHECK(heard == "ended none@23 ");
+}
