@@ -56,7 +56,7 @@ class Judge {
   void judge_letter(const Seen& seen);
   void judge_limit(const Seen& seen);
   void judge_together(const std::vector<Said>& said, const std::vector<Seen>& letters);
-  void judge_mail(Witness& witness, const std::vector<Delivery>& taken);
+  void judge_mail(Witness& witness, const std::vector<Delivery>& taken, Instant now);
   void judge_repeats();
   void judge_samples(Witness& witness, const StationLife& station, Instant now);
   void judge_hours(service::DeskWork& desk, Witness& witness, const std::string& station,
