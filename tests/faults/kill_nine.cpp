@@ -240,12 +240,19 @@ int check_letters(const Farm& farm) {
     arrived[header(letter, "Message-ID")].push_back(letter);
   }
   std::set<std::string> known;
-  int parked = 0;
+  int parked = 0, expired = 0;
   for (const auto& row : Rows(farm).of("SELECT identity, state, answer FROM letter")) {
     const std::string id = "<" + row[0] + "@larkspur.example>";
     known.insert(id);
     if (row[1] == "sent" && !arrived.contains(id)) fail("counted as sent, never arrived: " + id);
     if (row[1] != "parked") continue;
+    // In lives of an hour that end in a kill the least grave may wait for all others for three
+    // days. An alert must not.
+    if (row[2].find("expired after 72 h") != std::string::npos &&
+        row[0].starts_with("mail-trouble-")) {
+      ++expired;
+      continue;
+    }
     ++parked;
     if (row[2].find("twice") == std::string::npos) fail("parked: " + id + ": " + row[2]);
     if (!arrived.contains(id)) fail("parked after two doubts and never arrived: " + id);
@@ -262,8 +269,8 @@ int check_letters(const Farm& farm) {
   }
   std::printf(
       "%zu letters in the store, %zu arrived, %d of them twice and marked, %d parked after two "
-      "doubts\n",
-      known.size(), arrived.size(), repeats, parked);
+      "doubts, %d that only spoke of the mail expired after 72 h\n",
+      known.size(), arrived.size(), repeats, parked, expired);
   return repeats;
 }
 
