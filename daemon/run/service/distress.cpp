@@ -3,6 +3,7 @@
 
 #include <algorithm>
 
+#include "core/alerts/stations.hpp"
 #include "run/service/post.hpp"
 
 namespace antherd::service {
@@ -16,8 +17,7 @@ bool lets_sleep(const letters::Letter& letter, const settings::Settings& setting
                    [&](const auto& known) { return known.address == letter.recipient; });
   const bool quiet = recipient != settings.recipients.end() &&
                      after_quiet(*recipient, settings.calendar, now) > now;
-  const auto clock = settings.calendar.civil(now) - CivilTime(settings.calendar.day_of(now));
-  const bool night = clock < std::chrono::hours{6} || clock >= std::chrono::hours{22};
+  const bool night = alerts::awake(now, &settings.calendar) != now;
   return (quiet && letter.severity < Severity::extreme) ||
          (night && letter.severity < Severity::severe);
 }

@@ -4,18 +4,13 @@
 #include <algorithm>
 #include <utility>
 
+#include "core/alerts/stations.hpp"
 #include "run/service/farm.hpp"
 
 namespace antherd::service {
 namespace {
 
 constexpr auto sample_times_kept = std::chrono::days{10};
-
-/// Between 22:00 and 06:00 by the farm's clock.
-bool is_night(CivilTime clock) {
-  const auto of_day = clock - std::chrono::floor<std::chrono::days>(clock);
-  return of_day < std::chrono::hours{6} || of_day >= std::chrono::hours{22};
-}
 
 /// Heat ends by the rules at midnight, and sprinklers are counted when they stop: neither is worth
 /// a sleep, both are told at six.
@@ -163,7 +158,7 @@ Turn Lookout::turn(Instant now, const Closed& closed, bool clock_set) {
   Turn turn;
   turn.tellings = alerts::decide(episodes_, notices, said_, policy_, now);
   std::erase_if(turn.tellings, [&](const alerts::Telling& telling) {
-    return wakes_nobody(telling) && is_night(settings_->calendar.civil(now));
+    return wakes_nobody(telling) && alerts::awake(now, &settings_->calendar) != now;
   });
   // "Still hot" is said on a hot afternoon, not in the cool morning after it: a reminder of heat
   // waits until today has a level of its own.
