@@ -190,6 +190,37 @@ TEST_CASE("after a column's name was mended the files are read from their start"
   CHECK(*bench.desk->store().last_sample("bench"));
 }
 
+TEST_CASE("files that were read in the wrong unit are read again, also when the power fails then") {
+  Bench bench;
+  const std::string good = bench.folder.read("antherd.toml");
+  const auto in_force = [&](const std::string& text) {
+    bench.folder.write("antherd.toml", text);
+    bench.settings = std::make_shared<const settings::Settings>(
+        *settings::read_file(bench.folder / "antherd.toml").settings);
+  };
+  const auto warmest = [&] {
+    double most = -99.0;
+    for (const auto& hour : bench.stored_hours()) {
+      if (hour.temperature) most = std::max(most, hour.temperature->value);
+    }
+    return most;
+  };
+  in_force(replaced(good, "degC", "degF"));
+  bench.open(sown);
+  bench.drop("bench.csv", readings(Weather{}, sown, noon));
+  bench.turn(noon);
+  bench.turn(noon + minutes{6});  // the bookmark is stored: the file counts as read
+  REQUIRE(warmest() < 5.0);
+
+  in_force(good);
+  bench.desk->reload(noon + minutes{7});
+  bench.desk.reset();
+  bench.open(noon + minutes{7});
+  bench.turn(noon + minutes{7});
+  bench.turn(noon + minutes{13});
+  CHECK(warmest() > 20.0);
+}
+
 TEST_CASE("the diary of a field that was renamed is not lost without a word") {
   Bench bench;
   bench.open(sown);
