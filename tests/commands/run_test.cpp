@@ -214,6 +214,29 @@ TEST_CASE("signals that come while the store is opened are heeded: reload later,
   }
 }
 
+TEST_CASE("a store that cannot be opened now: the service stays up, says so and tries again") {
+  Folder folder;
+  settings_in(folder, talking());
+  make_store(folder);
+  auto holder = std::make_unique<Holder>(folder);
+  Service service(folder.path());
+  REQUIRE(service.told("READY=1"));  // or the service manager would end it
+  CHECK(service.said("nothing is watched: could not"));
+  CHECK(service.told("STATUS=nothing is watched"));
+  SECTION("it begins by itself; SIGHUP hurries it") {
+    holder.reset();
+    service.signal(SIGHUP);
+    CHECK(service.said("the watch begins", seconds{60}));
+    CHECK(service.told("STATUS=data"));
+  }
+  SECTION("it ends when it is told to") {
+    service.signal(SIGTERM);
+    const auto ended = service.wait(seconds{20});
+    REQUIRE(ended);
+    CHECK(ended->first == 0);
+  }
+}
+
 TEST_CASE("told to stop while another process holds the store, the service ends in time") {
   Folder folder;
   Farm farm = talking();

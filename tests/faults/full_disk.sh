@@ -26,4 +26,24 @@ wait_for 90 "the heat is told although the disk is full" told_of_heat
 
 rm "$top/store/filler"
 wait_for 90 "with room again every hour is caught up" known_up_to_date
+
+# Started anew on a disk that is full to the last byte: first with the reserve, then without it.
+fill() {
+  dd if=/dev/zero of="$top/store/$1" bs=64k 2>/dev/null || true
+  dd if=/dev/zero of="$top/store/$1.rest" bs=1k 2>/dev/null || true
+}
+hot_farm_stop
+[ -s "$top/store/ballast" ] || fail "the reserve was not put back"
+fill filler
+start=$(date -u -d '2026-07-15 17:00' +%s)
+hot_farm_start
+wait_for 60 "started on a full disk it gives the reserve up and watches" log_says 'given up to open the store'
+hot_farm_stop
+fill more
+start=$(date -u -d '2026-07-15 19:00' +%s)
+hot_farm_start
+wait_for 60 "without a reserve it stays up and says so" log_says 'nothing is watched: '
+rm "$top/store/filler" "$top/store/more"
+wait_for 90 "with room the watch begins by itself" log_says 'the watch begins'
+wait_for 90 "and every hour is caught up" known_up_to_date
 hot_farm_close

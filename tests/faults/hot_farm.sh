@@ -105,25 +105,53 @@ END
   readings $((hot_from - 85 * 86400)) "$start"
 }
 
+# A second station, at the gate, that is asked over HTTP at the address given.
+hot_farm_add_gate() {
+  cat >>"$top/antherd.toml" <<END
+[[station]]
+name = "gate"
+latitude = 46.73
+longitude = -117.18
+elevation = "780 m"
+interval = "5 min"
+silent_after = "12 h"
+[station.http]
+url = "$1"
+every = "5 min"
+form = "json"
+time = { at = "/time", form = "unix" }
+temperature = { at = "/t", unit = "degC" }
+humidity = { at = "/rh", unit = "%" }
+END
+}
+
 hot_farm_start() {
-  env "$@" "$antherd" run --settings "$top/antherd.toml" --clock-from "2026-07-14 10:00" --pace 1800 \
+  local from
+  from="$(TZ=America/Los_Angeles date -d "@$start" '+%Y-%m-%d %H:%M')"
+  env "$@" "$antherd" run --settings "$top/antherd.toml" --clock-from "$from" --pace 1800 \
     </dev/null >"$top/out" 2>&1 &
   service=$!
   began=$(date +%s%N)
 }
 
-# One opening has one letter, the service ends when asked, and the store can be opened again.
-hot_farm_close() {
-  local opened asked status=0
-  opened=$(find "$top/outgoing" -name 'heat-opened-*.eml' | wc -l)
-  [ "$opened" -eq 1 ] || fail "$opened letters of one opening"
-  passed "one opening, one letter"
+hot_farm_stop() {
+  local asked status=0
   asked=$(date +%s%N)
   kill -TERM "$service"
   wait "$service" || status=$?
   service=
   [ "$status" -eq 0 ] || fail "it ended with status $status"
-  passed "ended $((($(date +%s%N) - asked) / 1000000)) ms after it was asked"
+  stopped_after=$((($(date +%s%N) - asked) / 1000000))
+  passed "ended $stopped_after ms after it was asked"
+}
+
+# One opening has one letter, the service ends when asked, and the store can be opened again.
+hot_farm_close() {
+  local opened
+  opened=$(find "$top/outgoing" -name 'heat-opened-*.eml' | wc -l)
+  [ "$opened" -eq 1 ] || fail "$opened letters of one opening"
+  passed "one opening, one letter"
+  hot_farm_stop
   "$antherd" check --settings "$top/antherd.toml" >"$top/check" 2>&1 || [ $? -eq 3 ] ||
     fail "check is not content: $(tail -n 3 "$top/check")"
   passed "the store opens again"

@@ -146,3 +146,25 @@ TEST_CASE("letters have ids of their own: none is stored twice under one id and 
   CHECK(ids.size() > 10);
   CHECK(std::set<std::string>(ids.begin(), ids.end()).size() == ids.size());
 }
+
+TEST_CASE("a power cut takes at most five minutes of what was polled") {
+  Farm farm;
+  farm.more = river;
+  Bench bench(farm);
+  const Instant noon = farm_time("2026-07-11 12:00");
+  bench.open(noon);
+  bench.turn(noon);
+  Seconds most{0};
+  for (Instant now = noon; now < noon + hours{3}; now += minutes{1}) {
+    station::Answer answer;
+    answer.readings.samples = {reading_at(Weather{}, now)};
+    bench.desk->poll_answered("river", answer, now);
+    bench.turn(now);
+    const auto last = bench.desk->store().last_sample("river");  // committed: it stays (power.cpp)
+    REQUIRE(last);
+    REQUIRE((*last || now < noon + minutes{6}));
+    if (*last) most = std::max(most, now - **last);
+  }
+  CHECK(most <= minutes{5});
+  CHECK(most >= minutes{3});  // and not each reading on its own: a card wears
+}

@@ -15,6 +15,7 @@ struct Failure {
   std::string on_what;    // "/etc/antherd/antherd.toml"
   std::string why;        // "no such file"
   std::string what_next;  // "nothing was changed; name the file with --settings"
+  bool passes = false;    // trouble of the machine, not of what was asked: it may end by itself
 
   /// One sentence: "could not WHAT (ON WHAT): WHY; WHAT NEXT".
   std::string sentence() const;

@@ -59,15 +59,16 @@ std::vector<Letter> compose(std::span<const alerts::Telling> tellings,
 /// The daily line: one line a field that is in its flowering window. Nothing when none is.
 std::vector<Letter> compose_daily(std::span<const Recipient> recipients, const Desk& desk);
 
-/// The store has taken nothing for a while.
+/// The store has taken nothing for a while, or could not even be opened.
 struct StoreTrouble {
   Instant since;
-  std::string why;  // what was tried, on what, why not
+  std::string why;    // what was tried, on what, why not
+  bool begun = true;  // false: it could not be opened, so nothing is read or judged
 };
 /// One letter a recipient about a computer that can keep nothing: how each watched field stands,
 /// and what to look at. Its identity is that of the day (from 06:00 on) and of the worst level of
 /// the recipient's fields, which is its severity. The only letter that goes without standing in the
-/// store.
+/// store. Of a watch that could not begin it says that nothing is watched; the desk has no fields.
 std::vector<Letter> compose_store_trouble(const StoreTrouble& trouble,
                                           std::span<const Recipient> recipients, const Desk& desk);
 

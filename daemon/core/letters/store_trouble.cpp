@@ -10,6 +10,15 @@ namespace {
 
 constexpr Seconds day_begins{6 * 3600};  // after farm midnight: nobody is woken for a new day
 
+constexpr const char* next_of_running =
+    "One letter of this kind a day while it lasts, another when a level rises. When the disk works "
+    "again the letters that wait go out by themselves, and say how late they are. Should the "
+    "computer be started anew before that, nothing at all is watched, and a letter says so.";
+constexpr const char* next_of_stopped =
+    "It is tried again twice a minute. One letter of this kind a day while it lasts. When the disk "
+    "works again the watch begins by itself, reads the files of its drop folders and says what it "
+    "learned late; what a station was to be asked for meanwhile may be lost.";
+
 /// An alert that waits while this letter goes still reaches its people through it.
 Level worst_of(const std::vector<const FieldStatus*>& fields) {
   Level worst = Level::none;
@@ -23,15 +32,21 @@ Level worst_of(const std::vector<const FieldStatus*>& fields) {
 std::string body_of(const std::vector<const FieldStatus*>& fields, const StoreTrouble& trouble,
                     const Words& words) {
   const Desk& desk = words.desk();
-  std::string text = paragraph(plain(desk.farm) + ": the watch has kept nothing since " +
-                               words.when(trouble.since) + ".");
-  text += paragraph("Letters of alerts wait until its disk works again: do not count on them.");
+  std::string text = paragraph(
+      plain(desk.farm) +
+      (trouble.begun ? ": the watch has kept nothing since " : ": nothing is watched since ") +
+      words.when(trouble.since) + ".");
+  text += paragraph(trouble.begun
+                        ? "Letters of alerts wait until its disk works again: do not count on them."
+                        : "The watch was started and cannot open what it keeps. No letter of heat "
+                          "or wet leaves will come until its disk works again.");
   if (desk.exercise) {
     text += paragraph("This is an exercise: an invented season. Do not act on it.");
   }
   text += section_text({"WHY", plain(trouble.why) + ".", {}, true, {}});
-  Section now{"NOW", "The stations are still read and judged. As of this letter:", {}, true, {}};
-  text += section_text(now);
+  const char* judged = trouble.begun ? "The stations are still read and judged. As of this letter:"
+                                     : "No station is read and no field is judged.";
+  text += section_text({"NOW", judged, {}, true, {}});
   for (const FieldStatus* status : fields) {
     for (const std::string& line : wrap(daily_field_line(*status, words), page_width, 2, 4)) {
       text += line + "\n";
@@ -45,22 +60,16 @@ std::string body_of(const std::vector<const FieldStatus*>& fields, const StoreTr
        {},
        true,
        {}});
-  text += section_text({"NEXT",
-                        "One letter of this kind a day while it lasts, another when a level rises. "
-                        "When the disk works "
-                        "again the letters that wait go out by themselves, and say how late they "
-                        "are. Should the computer be started anew before that, the watch may not "
-                        "come up at all.",
-                        {},
-                        true,
-                        {}});
+  text += section_text({"NEXT", trouble.begun ? next_of_running : next_of_stopped, {}, true, {}});
   return text + "\n" + paragraph(standing_caution(Language::english));
 }
 
-std::string brief_of(const Part& part, const Desk& desk) {
+std::string brief_of(const Part& part, const StoreTrouble& trouble, const Desk& desk) {
   const std::string text =
       part.lead + ": " + part.name + ", " + part.rest +
-      ". Its disk takes nothing, alert letters wait: go to the computer today.";
+      (trouble.begun
+           ? ". Its disk takes nothing, alert letters wait: go to the computer today."
+           : ". Its store cannot be opened, no alert will come: go to the computer today.");
   return clip(unglued((desk.exercise ? "EXERCISE: " : "") + text), brief_width) + "\n";
 }
 
@@ -80,19 +89,19 @@ std::vector<Letter> compose_store_trouble(const StoreTrouble& trouble,
     Letter letter;
     const Level worst = worst_of(fields);
     const CivilDay day = words.calendar().day_of(desk.now - day_begins);
-    letter.id =
-        calendar_id("store-trouble-" + words.iso(day) + "-" + level_word(worst), recipient, desk);
+    const std::string stem = trouble.begun ? "store-trouble-" : "watch-stopped-";
+    letter.id = calendar_id(stem + words.iso(day) + "-" + level_word(worst), recipient, desk);
     letter.recipient = recipient.address;
     letter.kind = "store_trouble";
     letter.severity = alerts::severity_of(worst);
     letter.decided = desk.now;
     Part part;
-    part.lead = "Watch keeps nothing";
+    part.lead = trouble.begun ? "Watch keeps nothing" : "Nothing is watched";
     part.name = plain(desk.farm);
     part.rest = "since " + words.when(trouble.since);
     letter.subject = subject_line(part, desk.exercise ? "EXERCISE: " : "", "");
     letter.still = "It was so when this letter was written.";
-    letter.body = recipient.brief ? brief_of(part, desk) : body_of(fields, trouble, words);
+    letter.body = recipient.brief ? brief_of(part, trouble, desk) : body_of(fields, trouble, words);
     letters.push_back(std::move(letter));
   }
   return letters;

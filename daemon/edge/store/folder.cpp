@@ -26,6 +26,12 @@ namespace fs = std::filesystem;
 
 std::string words_of(int error) { return std::generic_category().message(error); }
 
+/// A disk that is worn, full or gone, not a mistake of whoever named the folder.
+bool of_disk(int error) {
+  return error == EROFS || error == ENOSPC || error == EDQUOT || error == EIO || error == ENXIO ||
+         error == ENODEV;
+}
+
 /// Forces a file's or a folder's content to disk.
 bool force(const std::string& path) {
   const int file = ::open(path.c_str(), O_RDONLY | O_CLOEXEC);
@@ -82,11 +88,12 @@ constexpr std::uint64_t fuse_magic = 0x65735546;
 }  // namespace
 
 Outcome make_folder(const std::string& folder) {
-  std::error_code error;
-  if (fs::is_directory(folder, error)) return Done{};
+  std::error_code unseen;
+  if (fs::is_directory(folder, unseen)) return Done{};
   if (::mkdir(folder.c_str(), 0750) == 0 || errno == EEXIST) return Done{};
-  return Failure{"make the store's folder", folder, words_of(errno),
-                 "make it by hand or name another with [store] folder"};
+  const int error = errno;
+  return Failure{"make the store's folder", folder, words_of(error),
+                 "make it by hand or name another with [store] folder", of_disk(error)};
 }
 
 std::optional<std::string> network_name(std::uint64_t magic, const std::string& type) {
@@ -104,8 +111,9 @@ Outcome refuse_network(const std::string& folder) {
   struct statfs system {};
   struct stat place {};
   if (::statfs(folder.c_str(), &system) != 0 || ::stat(folder.c_str(), &place) != 0) {
-    return Failure{"look at the store's folder", folder, words_of(errno),
-                   "put that right and start again"};
+    const int error = errno;
+    return Failure{"look at the store's folder", folder, words_of(error),
+                   "put that right and start again", of_disk(error)};
   }
   // f_type is signed and of different widths: only its low 32 bits are the number.
   const auto magic = static_cast<std::uint64_t>(system.f_type) & 0xFFFFFFFFU;
@@ -121,7 +129,9 @@ Result<int> take_service_lock(const std::string& folder) {
   const std::string path = folder + "/antherd.lock";
   const int file = ::open(path.c_str(), O_RDWR | O_CREAT | O_CLOEXEC | O_NOFOLLOW, 0640);
   if (file < 0) {
-    return Failure{"lock the store", path, words_of(errno), "put that right and start again"};
+    const int error = errno;
+    return Failure{"lock the store", path, words_of(error), "put that right and start again",
+                   of_disk(error)};
   }
   if (::flock(file, LOCK_EX | LOCK_NB) == 0) {
     const std::string process = std::to_string(::getpid()) + "\n";
@@ -136,7 +146,8 @@ Result<int> take_service_lock(const std::string& folder) {
   const auto size = ::pread(file, text.data(), text.size() - 1, 0);
   ::close(file);
   if (error != EWOULDBLOCK) {
-    return Failure{"lock the store", path, words_of(error), "put that right and start again"};
+    return Failure{"lock the store", path, words_of(error), "put that right and start again",
+                   of_disk(error)};
   }
   std::string process(text.data(), size > 0 ? static_cast<std::size_t>(size) : 0);
   process = process.substr(0, process.find('\n'));
@@ -168,8 +179,9 @@ Result<std::string> put_aside(const std::string& folder, Instant now) {
   for (const char* part : parts) {
     if (::rename((source + part).c_str(), (target + part).c_str()) == 0 || errno == ENOENT)
       continue;
-    return Failure{"set the damaged store aside", source + part, words_of(errno),
-                   "rename it by hand and start again"};
+    const int error = errno;
+    return Failure{"set the damaged store aside", source + part, words_of(error),
+                   "rename it by hand and start again", of_disk(error)};
   }
   force(folder);
   return target;
@@ -180,6 +192,13 @@ std::optional<FileState> file_state(const std::string& path) {
   if (::stat(path.c_str(), &found) != 0) return std::nullopt;
   return FileState{found.st_dev, found.st_ino, found.st_size, found.st_mtim.tv_sec,
                    found.st_mtim.tv_nsec};
+}
+
+bool has_no_room(const std::string& folder) {
+  struct statvfs room {};
+  if (::statvfs(folder.c_str(), &room) != 0) return false;
+  return static_cast<std::int64_t>(room.f_bavail) * static_cast<std::int64_t>(room.f_frsize) <
+         ballast_bytes / 8;
 }
 
 Outcome make_ballast(const std::string& folder) {

@@ -40,6 +40,8 @@ struct FileState {
 };
 std::optional<FileState> file_state(const std::string& path);
 
+/// Whether less than 1 MiB is free on the folder's disk.
+bool has_no_room(const std::string& folder);
 Outcome make_ballast(const std::string& folder);
 Result<bool> remove_ballast(const std::string& folder);
 

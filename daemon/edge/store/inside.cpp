@@ -42,6 +42,23 @@ const char* next_after(int code) {
   }
 }
 
+/// Whether a call that failed so may succeed another time.
+bool passes(int code) {
+  switch (code) {
+    case SQLITE_FULL:
+    case SQLITE_IOERR:
+    case SQLITE_READONLY:
+    case SQLITE_CANTOPEN:
+    case SQLITE_BUSY:
+    case SQLITE_LOCKED:
+    case SQLITE_PROTOCOL:
+    case SQLITE_NOMEM:
+      return true;
+    default:
+      return false;
+  }
+}
+
 }  // namespace
 
 Store::Inside::~Inside() {
@@ -51,8 +68,10 @@ Store::Inside::~Inside() {
 
 Failure Store::Inside::failure_of(const char* what, const Trouble& trouble) {
   full = trouble.primary() == SQLITE_FULL;
+  const bool explained = !trouble.what_next.empty();  // we found something that stays so
   return Failure{what, path, trouble.why,
-                 trouble.what_next.empty() ? next_after(trouble.primary()) : trouble.what_next};
+                 explained ? trouble.what_next : next_after(trouble.primary()),
+                 !explained && passes(trouble.primary())};
 }
 
 bool Store::Inside::settled() const {

@@ -26,6 +26,7 @@ struct Store::Inside {
   std::optional<std::string> aside;
   bool anew = false;  // begun by this opening where a store had been
   bool full = false;
+  bool reserve_given = false;  // the ballast went so that the store could be opened
 
   Inside() = default;
   Inside(const Inside&) = delete;

@@ -25,7 +25,7 @@ Outcome open_as_service(Inside& inside) {
   const std::string& folder = inside.options.folder;
   const bool had_one = file_state(folder + "/ballast") || !copies_in(folder).empty();
   bool damaged = there && nothing && had_one;  // cut down to nothing: SQLite would call it new
-  inside.anew = nothing && had_one;
+  inside.anew = inside.anew || (nothing && had_one);
   if (!damaged) {
     const Outcome opened = inside.attempt("open the store", [&] {
       try {
@@ -82,8 +82,19 @@ Result<Store> Store::open(const Options& options) {
   Result<int> lock = take_service_lock(options.folder);
   if (!lock) return lock.failure();
   inside->lock = *lock;
-  if (Outcome opened = open_as_service(*inside); !opened) return opened.failure();
-  if (Outcome begun = inside->begin_anew(); !begun) return begun.failure();
+  const auto begin = [&]() -> Outcome {
+    if (Outcome opened = open_as_service(*inside); !opened) return opened;
+    return inside->begin_anew();
+  };
+  Outcome begun = begin();
+  if (!begun && begun.failure().passes && has_no_room(options.folder)) {
+    const auto released = remove_ballast(options.folder);
+    if (released && *released) {
+      inside->reserve_given = true;
+      begun = begin();
+    }
+  }
+  if (!begun) return begun.failure();
   // Without room there is no ballast for now; keep_ballast is asked again by the service.
   static_cast<void>(make_ballast(options.folder));
   return Store(std::move(inside));
@@ -95,6 +106,8 @@ Store& Store::operator=(Store&&) noexcept = default;
 Store::~Store() = default;
 
 std::optional<std::string> Store::set_aside() const { return inside_->aside; }
+
+bool Store::reserve_given() const { return inside_->reserve_given; }
 
 bool Store::out_of_space() const { return inside_->full; }
 

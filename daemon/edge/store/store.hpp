@@ -81,7 +81,7 @@ class Store {
   /// newest copy that can be read, see beginning(). Writing commands (neither flag) work beside the
   /// service. read_only fails when there is no file. Every mode refuses a newer schema, naming both
   /// numbers, and a file of another program; all but the service refuse a damaged file and leave it
-  /// as it is.
+  /// as it is. A Failure that `passes` is the disk's: the service may open it another time.
   static Result<Store> open(const Options& options);
   Store(Store&&) noexcept;
   Store& operator=(Store&&) noexcept;
@@ -89,6 +89,8 @@ class Store {
 
   /// Where a damaged file was put when the service opened, if it was: the whole path.
   std::optional<std::string> set_aside() const;
+  /// Whether the ballast had to be given up to open it: its disk is full.
+  bool reserve_given() const;
   /// How this store began, where another had been and nobody was told yet; kept until told.
   Result<std::optional<Beginning>> beginning() const;
   /// The note that a decision keeps with the letters that tell of it.

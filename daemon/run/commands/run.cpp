@@ -39,7 +39,12 @@ Exit run(const Invocation& call) {
     say(time.failure());
     return Exit::usage;
   }
-  if (auto done = service::open_log(settings->log); !done) return say(done.failure());
+  if (auto done = service::open_log(settings->log); !done) {
+    // A worn disk must not silence the service: it speaks to standard error, as without a file.
+    if (auto plain = service::open_log({"", settings->log.level}); !plain)
+      return say(plain.failure());
+    service::log_error(done.failure().sentence());
+  }
   service::log_info("antherd watches " + std::to_string(settings->fields.size()) + " fields of " +
                     settings->farm + " with " + std::to_string(settings->stations.size()) +
                     " stations");

@@ -54,6 +54,11 @@ void DeskWork::log_strange_fields(Instant now) {
 
 /// That the store began anew where one had been.
 void DeskWork::log_beginning() const {
+  if (store_.reserve_given()) {
+    log_error(
+        "the disk is full: the 8 MiB kept in reserve were given up to open the store; make "
+        "room on the disk before they are used up");
+  }
   const auto beginning = store_.beginning();
   const auto aside = store_.set_aside();
   if (!aside && !(beginning && *beginning)) return;

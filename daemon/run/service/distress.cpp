@@ -46,7 +46,8 @@ std::vector<std::string> Distress::carry(const settings::Settings& settings, con
                                          const Send& send, Instant now) {
   std::vector<std::string> said;
   if (!settings.mail || in_hand_ || !since_ || now - *since_ < distress_after) return said;
-  const auto letters = letters::compose_store_trouble({*since_, why_}, settings.recipients, desk());
+  const auto letters =
+      letters::compose_store_trouble({*since_, why_, begun_}, settings.recipients, desk());
   for (const letters::Letter& letter : letters) {
     if (!due(letter, now) || lets_sleep(letter, settings, now)) continue;
     told_[{letter.recipient, letter.id}] = {now, false};

@@ -24,6 +24,9 @@ constexpr Seconds distress_tried_again{30 * 60};  // as the outbox at its slowes
 
 class Distress {
  public:
+  /// @param begun  false: the store could not be opened, so nothing is watched
+  explicit Distress(bool begun = true) : begun_(begun) {}
+
   using Send = std::function<void(mail::Server, std::int64_t item, letters::Letter)>;
   using Desk = std::function<letters::Desk()>;
 
@@ -50,6 +53,7 @@ class Distress {
   };
   bool due(const letters::Letter& letter, Instant now) const;
 
+  bool begun_;
   std::optional<Instant> since_;
   std::string why_;
   std::map<std::pair<std::string, std::string>, Told> told_;  // by address and letter

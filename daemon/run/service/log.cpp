@@ -41,8 +41,9 @@ Outcome open_log(const settings::Log& log) {
     logger->flush_on(spdlog::level::info);
     spdlog::set_default_logger(logger);
   } catch (const spdlog::spdlog_ex& error) {
-    return Failure{"open the log", log.file, error.what(),
-                   "nothing was started; give [log] a file in a folder that can be written"};
+    return Failure{
+        "open the log", log.file, error.what(),
+        "the log goes on where it went before; give [log] a file in a folder that can be written"};
   }
   return Done{};
 }

@@ -11,6 +11,7 @@
 #include "run/service/mail_worker.hpp"
 #include "run/service/manager.hpp"
 #include "run/service/poll_worker.hpp"
+#include "run/service/standstill.hpp"
 #include "run/service/watch_folders.hpp"
 
 namespace antherd::service {
@@ -176,11 +177,11 @@ class Loop {
 
 }  // namespace
 
-Outcome run(std::shared_ptr<const settings::Settings> settings, const RunOptions& options,
+Outcome run(std::shared_ptr<const settings::Settings> settings, RunOptions options,
             Signals& signals) {
-  auto work = DeskWork::open(std::move(settings), options.time.now(), options.time.set(),
-                             &signals.stopping());
+  auto work = open_desk(std::move(settings), options, signals);
   if (!work) return work.failure();
+  if (!*work) return Done{};
   Loop loop(std::move(*work), options, signals);
   loop.run();
   return Done{};

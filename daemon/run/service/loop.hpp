@@ -18,10 +18,11 @@ struct RunOptions {
   std::optional<Seconds> stop_after;  // an exercise stops by itself after so many real seconds
 };
 
-/// Runs until SIGTERM or SIGINT. SIGHUP re-reads the settings whole or not at all.
+/// Runs until SIGTERM or SIGINT. SIGHUP re-reads the settings whole or not at all. While the
+/// store's disk keeps the watch from beginning it stays up and says so (standstill.hpp).
 /// @return a Failure when it could not start; Done after a clean stop
 /// @param signals  those that came before are heeded once it is up
-Outcome run(std::shared_ptr<const settings::Settings> settings, const RunOptions& options,
+Outcome run(std::shared_ptr<const settings::Settings> settings, RunOptions options,
             Signals& signals);
 
 }  // namespace antherd::service

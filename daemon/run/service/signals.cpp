@@ -40,6 +40,12 @@ void Signals::heed(Heed heed) {
   if (std::exchange(reload_waits_, false)) heed_(SIGHUP);
 }
 
+void Signals::heed_reload(std::function<void()> reload) {
+  const std::lock_guard lock(mutex_);
+  reload_ = std::move(reload);
+  if (reload_ && std::exchange(reload_waits_, false)) reload_();
+}
+
 void Signals::rest() {
   const std::lock_guard lock(mutex_);
   resting_ = true;
@@ -56,6 +62,8 @@ void Signals::take(int number) {
   if (resting_) return;
   if (heed_) {
     heed_(number);
+  } else if (number == SIGHUP && reload_) {
+    reload_();
   } else if (number == SIGHUP) {
     reload_waits_ = true;
   } else {

@@ -24,6 +24,8 @@ class Signals {
   /// before at once. Until here SIGTERM and SIGINT end the process with 0: nothing is in memory
   /// that is not made again, and the store stands power cuts.
   void heed(Heed heed);
+  /// Until `heed`: a SIGHUP is handed to this, in this class's thread; nothing: it waits again.
+  void heed_reload(std::function<void()> reload);
   /// From now on signals do nothing: the service is ending.
   void rest();
   /// Whether the service was told to stop; may be looked at from any thread.
@@ -36,6 +38,7 @@ class Signals {
   std::atomic<bool> stopping_{false}, ended_{false};
   std::mutex mutex_;
   Heed heed_;
+  std::function<void()> reload_;
   bool resting_ = false, reload_waits_ = false;
   std::thread thread_;
 };

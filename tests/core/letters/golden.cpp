@@ -283,6 +283,25 @@ TEST_CASE("the letter that goes past a store that takes nothing reads as written
   CHECK(made[0].severity == alerts::Severity::severe);
 }
 
+TEST_CASE("the letter of a watch that could not begin reads as written") {
+  letters::Desk desk = scene::desk();
+  desk.fields.clear();  // nothing is known
+  const letters::StoreTrouble trouble{scene::at(14, 15, 20),
+                                      "Could not open the store (/var/lib/antherd/antherd.db): "
+                                      "attempt to write a readonly database",
+                                      false};
+  letters::Recipient brief = scene::owner();
+  brief.brief = true;
+  const auto made =
+      letters::compose_store_trouble(trouble, std::vector{scene::owner(), brief}, desk);
+  REQUIRE(made.size() == 2);
+  for (const auto& letter : made) {
+    CHECK(rules::broken_by(letter, letter.body.size() < 200, scene::calendar()).empty());
+  }
+  compare("watch-stopped", on_paper(made[0]));
+  compare("watch-stopped-brief", on_paper(made[1]));
+}
+
 TEST_CASE("notices read as written") {
   letters::Desk desk = scene::desk();
   desk.now = scene::at(14, 7, 5);

@@ -207,6 +207,8 @@ TEST_CASE("each status that is no answer has its sentence") {
   CHECK(says(trouble_of(response("204 No Content", "")), {"empty", "204"}));
   CHECK(says(trouble_of(response("200 OK", "<html>")), {"no JSON", "<html>"}));
   CHECK(says(trouble_of(response("200 OK", "")), {"no JSON"}));
+  // RFC 1952 §2.3.1: what gzip packed begins with 1f 8b 08. Nobody asked for it.
+  CHECK(says(trouble_of(response("200 OK", "\x1f\x8b\x08 packed")), {"no JSON"}));
 }
 
 TEST_CASE("what is no whole answer has its sentence") {
