@@ -179,9 +179,9 @@ Result<std::string> put_aside(const std::string& folder, Instant now) {
   for (const char* part : parts) {
     if (::rename((source + part).c_str(), (target + part).c_str()) == 0 || errno == ENOENT)
       continue;
-    const int error = errno;
-    return Failure{"set the damaged store aside", source + part, words_of(error),
-                   "rename it by hand and start again", of_disk(error)};
+    const int number = errno;
+    return Failure{"set the damaged store aside", source + part, words_of(number),
+                   "rename it by hand and start again", of_disk(number)};
   }
   force(folder);
   return target;
