@@ -8,8 +8,11 @@
 set -euo pipefail
 . "$(dirname "${BASH_SOURCE[0]}")/hot_farm.sh"
 
+# A sanitizer's library must come before all others.
+preload="$(ldd "$1" | sed -n 's/.*=> \([^ ]*lib[at]san[^ ]*\) .*/\1/p' | tr '\n' ' ')$2"
+
 hot_farm_make "$1"
-hot_farm_start LD_PRELOAD="$2" READ_ONLY_FOLDER="$(readlink -f "$top/store")" READ_ONLY_WHILE="$top/worn"
+hot_farm_start LD_PRELOAD="$preload" READ_ONLY_FOLDER="$(readlink -f "$top/store")" READ_ONLY_WHILE="$top/worn"
 
 said_read_only() { feed; log_says 'could not keep .*read-only file system'; }
 
@@ -31,7 +34,7 @@ wait_for 90 "the heat is told" told_of_heat
 hot_farm_stop
 touch "$top/worn"
 start=$(date -u -d '2026-07-15 17:00' +%s)
-hot_farm_start LD_PRELOAD="$2" READ_ONLY_FOLDER="$(readlink -f "$top/store")" READ_ONLY_WHILE="$top/worn"
+hot_farm_start LD_PRELOAD="$preload" READ_ONLY_FOLDER="$(readlink -f "$top/store")" READ_ONLY_WHILE="$top/worn"
 wait_for 60 "started on a read-only disk it stays up and says so" log_says 'nothing is watched: .*read-only'
 nothing_watched() { [ -n "$(find "$top/outgoing" -name 'watch-stopped-*.eml')" ]; }
 wait_for 60 "people are told by letter that nothing is watched" nothing_watched
