@@ -28,6 +28,13 @@ std::string form_text(const station::DropForm& drop) {
   return text;
 }
 
+/// What a share whose server is gone looks like.
+Failure hung(const std::string& folder) {
+  return {"look into the drop folder", folder,
+          "it does not answer: is it a network share whose server is off?",
+          "everything else goes on, and it is read on when it answers"};
+}
+
 }  // namespace
 
 /// Whether the station's files were read in another form until now. A form that the store does not
@@ -66,7 +73,14 @@ bool DeskWork::look_into_drop(const settings::Station& station, Source& source, 
   }
   // A clock that is not set calls no reading too early.
   const Instant clock = clock_set_ ? now : Instant{};
-  const station::Look look = station::look_into(*station.drop, source.bookmarks, clock);
+  const auto found =
+      source.look.look(looker_, *station.drop, source.bookmarks, clock, look_patience_, stopping_);
+  if (!found) {
+    if (stopping_ == nullptr || !*stopping_)
+      note_trouble(name, hung(station.drop->folder).sentence());
+    return false;
+  }
+  const station::Look& look = *found;
   source.looked = now;
   store::Notes notes;
   for (const station::Bookmark& bookmark : look.bookmarks) {

@@ -30,6 +30,7 @@ Result<std::unique_ptr<DeskWork>> DeskWork::open(std::shared_ptr<const settings:
   auto store = store::Store::open(options);
   if (!store) return store.failure();
   std::unique_ptr<DeskWork> work(new DeskWork(std::move(settings), std::move(*store)));
+  work->stopping_ = stopping;
   work->log_beginning();
   work->mind_clock(now, clock_set, work->known_time());
   if (auto done = work->begin(work->working(now)); !done) return done.failure();

@@ -17,6 +17,7 @@
 #include "run/service/heartbeat.hpp"
 #include "run/service/intake.hpp"
 #include "run/service/keeper.hpp"
+#include "run/service/patient_look.hpp"
 #include "run/settings/settings.hpp"
 
 namespace antherd::service {
@@ -38,6 +39,12 @@ class DeskWork {
   void on_send(Carrier::Send send) { send_ = std::move(send); }
   void on_poll(Ask ask) { ask_ = std::move(ask); }
   void on_beat(std::function<void(const std::string& url)> beat) { beat_ = std::move(beat); }
+
+  /// Another way to look into a drop folder, and how long a look is waited for: for tests.
+  void look_with(Looker looker, std::chrono::milliseconds patience) {
+    looker_ = std::move(looker);
+    look_patience_ = patience;
+  }
 
   /// One turn. @return when to turn again, at most 60 s later
   Instant turn(Instant now, bool clock_set);
@@ -72,7 +79,8 @@ class DeskWork {
  private:
   struct Source {
     std::vector<station::Bookmark> bookmarks;  // of a drop folder
-    station::PollMemory memory;                // of a polled station
+    PatientLook look;
+    station::PollMemory memory;  // of a polled station
     Instant next_poll;
     bool asked = false, answered = false;
     std::optional<Instant> looked;    // read, or told in full why it cannot be
@@ -121,6 +129,9 @@ class DeskWork {
   std::function<void(const std::string& url)> beat_;
   Carrier::Send send_;
   Ask ask_;
+  Looker looker_ = station::look_into;
+  std::chrono::milliseconds look_patience_{20'000};  // of the real clock; then it is left to itself
+  const std::atomic<bool>* stopping_ = nullptr;
   std::map<std::string, Source> sources_;
   std::map<std::string, std::string> logged_;  // the last sentence of each kind of trouble
   std::atomic<std::int64_t> ahead_{0};         // s from the computer's clock to working()
