@@ -17,7 +17,7 @@ constexpr const char* next_of_running =
 constexpr const char* next_of_stopped =
     "It is tried again twice a minute. One letter of this kind a day while it lasts. When the disk "
     "works again the watch begins by itself, reads the files of its drop folders and says what it "
-    "learned late; what a station was to be asked for meanwhile may be lost.";
+    "learned late; what a station was to be asked for meanwhile may be missing.";
 
 /// An alert that waits while this letter goes still reaches its people through it.
 Level worst_of(const std::vector<const FieldStatus*>& fields) {

@@ -82,21 +82,25 @@ int watch(void* user, curl_off_t, curl_off_t, curl_off_t, curl_off_t) {
   return static_cast<const Conversation*>(user)->stop->load() ? 1 : 0;
 }
 
+constexpr const char* no_name = "no such host name, or the name server does not answer";
+
 /// One clause for each way in which no whole answer came.
 std::string clause(CURLcode code, CURL* handle, const Conversation& talk, const char* detail) {
   if (talk.too_big || code == CURLE_FILESIZE_EXCEEDED) return "the answer is longer than 1 MiB";
   if (talk.head_too_big) return "the head of the answer is longer than 64 KiB";
-  double connected = 0;
+  double connected = 0, named = 0;
   curl_easy_getinfo(handle, CURLINFO_CONNECT_TIME, &connected);
+  curl_easy_getinfo(handle, CURLINFO_NAMELOOKUP_TIME, &named);
   long reason = 0;
   curl_easy_getinfo(handle, CURLINFO_OS_ERRNO, &reason);
   switch (code) {
     case CURLE_COULDNT_RESOLVE_HOST:
-      return "no such host name, or the name server does not answer";
+      return no_name;
     case CURLE_COULDNT_CONNECT:
       return std::string("the station cannot be reached: ") +
              (reason ? std::strerror(static_cast<int>(reason)) : "no connection");
     case CURLE_OPERATION_TIMEDOUT:
+      if (named <= 0) return no_name;
       return connected > 0 ? "no whole answer within 20 s"
                            : "no connection within 5 s: is the station on?";
     case CURLE_PEER_FAILED_VERIFICATION:
