@@ -80,7 +80,20 @@ Outcome Store::mark_seen(const std::string& episode, alerts::Level level) {
       throw Trouble{SQLITE_NOTFOUND, "nothing was said of " + episode + " at this level",
                     "nothing was changed"};
     }
+    // The running service looks at this alone, and reads the ledger again when it has grown.
+    database
+        .use(
+            "INSERT INTO note(key, value) VALUES('seen_version', '1') ON CONFLICT(key) DO UPDATE "
+            "SET value = CAST(CAST(value AS INTEGER) + 1 AS TEXT)")
+        .run();
     return Done{};
+  });
+}
+
+Result<std::int64_t> Store::seen_version() const {
+  return inside_->read("look whether an alert was marked as seen", [&] {
+    return inside_->database->number(
+        "SELECT coalesce(max(CAST(value AS INTEGER)), 0) FROM note WHERE key = 'seen_version'");
   });
 }
 

@@ -132,7 +132,9 @@ class Store {
   Outcome save(const Decision& decision);
   Result<std::vector<alerts::Said>> said(Instant since) const;  // said at or after, in time order
   Outcome mark_seen(const std::string& episode, alerts::Level level);  // fails when never said
-  Result<std::vector<outbox::Item>> letters_open() const;              // waiting, sending, in doubt
+  /// Grows by one with every mark_seen, also by another process.
+  Result<std::int64_t> seen_version() const;
+  Result<std::vector<outbox::Item>> letters_open() const;  // waiting, sending, in doubt
   Result<std::vector<outbox::Item>> letters_held() const;
   Result<std::vector<outbox::Item>> letters_since(Instant since) const;  // decided since, any state
   Result<std::vector<outbox::Delivery>> deliveries(Instant since) const;  // decided since

@@ -12,7 +12,6 @@ namespace antherd::service {
 namespace {
 
 constexpr auto reach_before_sowing = std::chrono::days{3};
-constexpr auto ledger_reach = std::chrono::days{400};
 constexpr auto limits_look_back = std::chrono::days{2};
 constexpr auto remade_at_once = std::chrono::days{20};
 
@@ -253,6 +252,7 @@ Kept Keeper::step(Instant now, bool clock_set) {
                                     "the oldest that were polled are given up"});
   }
   if (auto done = refresh_diary(); !done) kept.troubles.push_back(done.failure());
+  if (auto done = refresh_seen(now); !done) kept.troubles.push_back(done.failure());
 
   if (settings_->mail) {
     const auto deliveries = store_.deliveries(now - mail_looks_back);

@@ -45,6 +45,8 @@ class Keeper {
   void keep_in_memory_at_most(std::ptrdiff_t samples) { most_in_memory_ = samples; }
   /// The diary may have been changed by another process: looks, cheaply.
   Outcome refresh_diary();
+  /// An alert may have been marked as seen by another process: looks, cheaply.
+  Outcome refresh_seen(Instant now);
   /// Takes diary entries that came as files; what is there already changes nothing.
   Outcome take_diary(const field::Diary& diary);
 
@@ -93,7 +95,7 @@ class Keeper {
   std::map<std::string, Batch> batches_;
   std::map<std::string, std::set<HourStart>> unsaved_hours_;  // made anew, not yet stored
   store::Decision pending_;                                   // decided, not yet stored
-  std::int64_t diary_version_ = -1;
+  std::int64_t diary_version_ = -1, seen_version_ = -1;
   std::optional<Instant> first_start_, last_daily_, last_weekly_;
   std::optional<CivilDay> tidied_;
   std::optional<letters::Anew> anew_;  // to be told
@@ -101,6 +103,7 @@ class Keeper {
   std::ptrdiff_t most_in_memory_ = 200'000;  // 4 months of minutes
 };
 
+constexpr std::chrono::days ledger_reach{400};  // so much of what was said is kept in memory
 constexpr Seconds batch_for{300};  // ≤ 5 min of samples may be lost with the power (promise 1)
 
 }  // namespace antherd::service

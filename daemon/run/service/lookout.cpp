@@ -2,6 +2,7 @@
 #include "run/service/lookout.hpp"
 
 #include <algorithm>
+#include <tuple>
 #include <utility>
 
 #include "core/alerts/stations.hpp"
@@ -104,6 +105,19 @@ void Lookout::add_sample_times(const std::string& station, const std::vector<Ins
 void Lookout::set_ledger(std::vector<alerts::Said> said) {
   said_ = std::move(said);
   for (const alerts::Said& entry : said_) last_place_ = std::max(last_place_, entry.place);
+}
+
+void Lookout::take_seen(const std::vector<alerts::Said>& stored) {
+  // Entry by entry, as a restart would read it: what was said since the mark is not seen by it.
+  const auto key = [](const alerts::Said& entry) {
+    return std::tie(entry.episode, entry.level, entry.saying, entry.at, entry.about);
+  };
+  for (const alerts::Said& theirs : stored) {
+    if (!theirs.seen) continue;
+    for (alerts::Said& ours : said_) {
+      if (key(ours) == key(theirs)) ours.seen = true;
+    }
+  }
 }
 
 void Lookout::set_source_news(const std::string& station, SourceNews news) {

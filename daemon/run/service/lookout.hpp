@@ -45,6 +45,9 @@ class Lookout {
   /// Times of accepted samples, any order, repeats allowed; the last 10 days are kept.
   void add_sample_times(const std::string& station, const std::vector<Instant>& times);
   void set_ledger(std::vector<alerts::Said> said);
+  /// What a person marked as seen meanwhile is seen here too. All else stays as it is: the store
+  /// may not hold yet what was said last.
+  void take_seen(const std::vector<alerts::Said>& stored);
   void set_first_start(std::optional<Instant> at) { policy_.first_start = at; }
   /// How old the station's readings were when they came; live arrivals alone.
   void set_arrivals(const std::string& station, weather::Arrivals arrivals);

@@ -220,13 +220,18 @@ TEST_CASE("marked as seen at one level of one episode", "[store]") {
   made.said = {said("a", 1, Level::moderate), said("a", 2, Level::severe),
                said("b", 3, Level::severe)};
   must(store.save(made));
+  CHECK(must(store.seen_version()) == 0);
   must(store.mark_seen("a", Level::severe));
+  CHECK(must(store.seen_version()) == 1);
   const auto entries = must(store.said(instant(0)));
   CHECK_FALSE(entries[0].seen);
   CHECK(entries[1].seen);
   CHECK_FALSE(entries[2].seen);
   CHECK_FALSE(store.mark_seen("a", Level::extreme));
   CHECK_FALSE(store.mark_seen("c", Level::severe));
+  CHECK(must(store.seen_version()) == 1);  // nothing was changed
+  must(open(writer(folder)).mark_seen("b", Level::severe));
+  CHECK(must(store.seen_version()) == 2);  // by another connection too
 }
 
 TEST_CASE("a decision is kept whole or not at all", "[store]") {
