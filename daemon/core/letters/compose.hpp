@@ -56,6 +56,15 @@ struct Desk {
 std::vector<Letter> compose(std::span<const alerts::Telling> tellings,
                             std::span<const Recipient> recipients, const Desk& desk);
 
+/// What a letter was made of: the entries of one moment that give it its very identity, as tellings
+/// with no more than the ledger keeps. Nothing when no moment of the ledger does: what cannot be
+/// traced surely is not guessed at.
+/// @param recipient  of the letter
+/// @param said       the ledger around the letter's decision, in its own order
+/// @param desk       the farm's name and the fields of its stations are enough
+std::vector<alerts::Telling> trace(const Letter& letter, const Recipient& recipient,
+                                   std::span<const alerts::Said> said, const Desk& desk);
+
 /// The daily line: one line a field that is in its flowering window. Nothing when none is.
 std::vector<Letter> compose_daily(std::span<const Recipient> recipients, const Desk& desk);
 

@@ -1,6 +1,7 @@
 // From tellings to letters: who gets what, what merges, and in which order.
 #include <algorithm>
 #include <map>
+#include <string_view>
 
 #include "core/letters/parts.hpp"
 #include "core/letters/wrap.hpp"
@@ -9,6 +10,7 @@ namespace antherd::letters {
 namespace {
 
 constexpr Seconds alert_holds{72 * 3600};
+constexpr std::size_t most_in_parts = 64;  // entries of one second that are parted into turns
 
 bool over(const Telling& telling) {
   return telling.saying == Saying::eased || telling.saying == Saying::ended;
@@ -99,6 +101,55 @@ Letter late_letter(const std::vector<Telling>& tellings, const Recipient& recipi
   return letter;
 }
 
+/// What goes to one recipient: a letter for each kind, and one for all that was learned late.
+struct Groups {
+  std::map<Kind, std::vector<Telling>> by_kind;
+  std::vector<Telling> late;
+};
+
+Groups groups_of(std::span<const Telling> tellings, const Recipient& recipient, const Desk& desk) {
+  Groups groups;
+  for (const Telling& telling : tellings) {
+    if (!gets(recipient, telling, desk)) continue;
+    (late(telling) ? groups.late : groups.by_kind[telling.kind]).push_back(telling);
+  }
+  for (auto& [kind, group] : groups.by_kind) std::sort(group.begin(), group.end(), worse);
+  std::sort(groups.late.begin(), groups.late.end(), worse);
+  return groups;
+}
+
+/// An entry of the ledger as the telling that it records, as far as it tells letters apart.
+Telling as_told(const alerts::Said& said) {
+  Telling telling;
+  telling.saying = said.saying;
+  telling.kind = said.kind;
+  telling.subject = said.subject;
+  telling.episode = said.episode;
+  telling.start = said.start;
+  telling.level = said.level;
+  telling.severity = alerts::severity_of(said.level);
+  telling.about = said.about;
+  if (said.saying != Saying::notice) return telling;
+  telling.late = said.at - said.about > alerts::Policy{}.late_after;
+  // "stage/north bench/window-near/2026-07-01": the key stands between subject and date.
+  const std::size_t from =
+      std::string_view(alerts::name_of(said.kind)).size() + 1 + said.subject.size() + 1;
+  const std::size_t to = said.episode.rfind('/');
+  if (to != std::string::npos && from < to) telling.key = said.episode.substr(from, to - from);
+  return telling;
+}
+
+/// Those of one turn's tellings that this letter was made of.
+std::vector<Telling> made_of(std::span<const Telling> tellings, const std::string& letter,
+                             const Recipient& recipient, const Desk& desk) {
+  const Groups groups = groups_of(tellings, recipient, desk);
+  if (!groups.late.empty() && letter_id(groups.late, recipient, desk) == letter) return groups.late;
+  for (const auto& [kind, group] : groups.by_kind) {
+    if (letter_id(group, recipient, desk) == letter) return group;
+  }
+  return {};
+}
+
 }  // namespace
 
 Part part_of(const Telling& telling, const Words& words) {
@@ -144,20 +195,38 @@ std::string watch_words(const Recipient& recipient, const Words& words) {
 std::vector<Letter> compose(std::span<const alerts::Telling> tellings,
                             std::span<const Recipient> recipients, const Desk& desk) {
   const Words words(desk);
-  std::vector<Telling> ordered(tellings.begin(), tellings.end());
-  std::sort(ordered.begin(), ordered.end(), worse);
   std::vector<Letter> letters;
   for (const Recipient& recipient : recipients) {
-    std::map<Kind, std::vector<Telling>> by_kind;
-    std::vector<Telling> late_ones;
-    for (const Telling& telling : ordered) {
-      if (!gets(recipient, telling, desk)) continue;
-      (late(telling) ? late_ones : by_kind[telling.kind]).push_back(telling);
+    const Groups groups = groups_of(tellings, recipient, desk);
+    for (const auto& [kind, group] : groups.by_kind) {
+      letters.push_back(letter_of(group, recipient, words));
     }
-    for (const auto& [kind, group] : by_kind) letters.push_back(letter_of(group, recipient, words));
-    if (!late_ones.empty()) letters.push_back(late_letter(late_ones, recipient, words));
+    if (!groups.late.empty()) letters.push_back(late_letter(groups.late, recipient, words));
   }
   return letters;
+}
+
+std::vector<Telling> trace(const Letter& letter, const Recipient& recipient,
+                           std::span<const alerts::Said> said, const Desk& desk) {
+  std::map<Instant, std::vector<Telling>> moments;
+  for (const alerts::Said& entry : said) {
+    if (entry.at <= letter.decided) moments[entry.at].push_back(as_told(entry));
+  }
+  for (const auto& [moment, tellings] : moments) {
+    Desk then = desk;
+    then.now = moment;
+    // One turn's entries stand together, but a second may hold more than one turn.
+    const std::size_t count = tellings.size();
+    const std::size_t fewest = count > most_in_parts ? count : 1;
+    for (std::size_t first = 0; first + fewest <= count; ++first) {
+      for (std::size_t last = count; last >= first + fewest; --last) {
+        auto found =
+            made_of(std::span(tellings).subspan(first, last - first), letter.id, recipient, then);
+        if (!found.empty()) return found;
+      }
+    }
+  }
+  return {};
 }
 
 }  // namespace antherd::letters

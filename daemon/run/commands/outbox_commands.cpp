@@ -3,6 +3,7 @@
 #include <iostream>
 #include <nlohmann/json.hpp>
 
+#include "core/letters/compose.hpp"
 #include "edge/clock/clock.hpp"
 #include "edge/mail/mail.hpp"
 #include "run/commands/common.hpp"
@@ -53,57 +54,100 @@ Exit retry_letter(store::Store& store, std::int64_t id, Instant now) {
   return Exit::done;
 }
 
-/// Marks what one letter spoke of: the ledger's entries of its kind and moment. @return how many
-Result<int> mark_entries(store::Store& store, const antherd::letters::Letter& letter) {
-  const auto said = store.said(letter.decided - std::chrono::days{1});
+/// Whether a reminder of this kind may come at all.
+bool reminded_of(alerts::Kind kind) {
+  return kind == alerts::Kind::heat || kind == alerts::Kind::humid_spell ||
+         kind == alerts::Kind::no_data || kind == alerts::Kind::doubtful_sensor;
+}
+
+/// What a letter spoke of, traced by its identity; nothing when that cannot be told surely.
+Result<std::vector<alerts::Telling>> spoken_of(const store::Store& store,
+                                               const settings::Settings& settings,
+                                               const antherd::letters::Letter& letter) {
+  // Quiet hours hold a letter back for less than a day, and it then bears the time of their end.
+  const auto said = store.said(letter.decided - std::chrono::days{2});
   if (!said) return said.failure();
-  // A letter was made when its entries were, or some hours before it might go (quiet hours).
-  const auto speaks_of = [&](const alerts::Said& entry) {
-    return entry.at <= letter.decided && alerts::name_of(entry.kind) == letter.kind;
-  };
-  Instant moment{};
-  for (const alerts::Said& entry : *said) {
-    if (speaks_of(entry)) moment = std::max(moment, entry.at);
+  antherd::letters::Recipient recipient;
+  for (const auto& known : settings.recipients) {
+    if (known.address == letter.recipient) recipient = known;
   }
-  int marked = 0;
-  for (const alerts::Said& entry : *said) {
-    if (entry.at != moment || !speaks_of(entry)) continue;
-    if (auto done = store.mark_seen(entry.episode, entry.level); !done) return done.failure();
-    ++marked;
+  recipient.address = letter.recipient;
+  antherd::letters::Desk desk;
+  desk.farm = settings.farm;
+  for (const settings::Station& station : settings.stations) {
+    const std::string& name = station.station.name;
+    desk.stations[name].fields = service::fields_of(settings, name);
   }
-  return marked;
+  return antherd::letters::trace(letter, recipient, *said, desk);
+}
+
+/// How many entries of the ledger were marked, and how many letters could not be traced to any.
+struct Marks {
+  int marked = 0, untraced = 0;
+};
+
+Result<Marks> mark_entries(store::Store& store, const settings::Settings& settings,
+                           const std::vector<antherd::letters::Letter>& letters) {
+  Marks marks;
+  for (const antherd::letters::Letter& letter : letters) {
+    const auto kind = alerts::kind_from(letter.kind);
+    if (letter.kind != "learned_late" && !(kind && reminded_of(*kind))) continue;
+    const auto spoken = spoken_of(store, settings, letter);
+    if (!spoken) return spoken.failure();
+    if (spoken->empty()) ++marks.untraced;
+    for (const alerts::Telling& telling : *spoken) {
+      if (!reminded_of(telling.kind) || telling.level == alerts::Level::none) continue;
+      if (auto done = store.mark_seen(telling.episode, telling.level); !done) return done.failure();
+      ++marks.marked;
+    }
+  }
+  return marks;
+}
+
+/// The letter itself; of a digest also each letter that it names.
+Result<std::vector<antherd::letters::Letter>> meant_by(const store::Store& store,
+                                                       const antherd::letters::Letter& letter) {
+  std::vector<antherd::letters::Letter> meant{letter};
+  if (letter.kind != "digest") return meant;
+  const auto all = store.letters_since(letter.decided - std::chrono::days{30});
+  if (!all) return all.failure();
+  for (const outbox::Item& named : *all) {
+    if (named.digest == letter.id && named.letter.recipient == letter.recipient) {
+      meant.push_back(named.letter);
+    }
+  }
+  return meant;
 }
 
 /// Marks what a letter spoke of as seen; of a digest, what each letter that it names spoke of.
-Exit mark_seen(store::Store& store, std::int64_t id) {
+Exit mark_seen(store::Store& store, const settings::Settings& settings, std::int64_t id) {
+  const auto refuse = [&](const std::string& why, const std::string& what_now) {
+    return say(Failure{"mark a letter as seen", std::to_string(id), why, what_now});
+  };
   const auto item = store.letter(id);
   if (!item) return say(item.failure());
   if (!*item) {
-    return say(Failure{"mark a letter as seen", std::to_string(id),
-                       "there is no letter of this number", "\"antherd letters\" lists them"});
+    return refuse("there is no letter of this number", "\"antherd letters\" lists them");
   }
-  std::vector<antherd::letters::Letter> meant{(*item)->letter};
-  if (meant.front().kind == "digest") {
-    const auto all = store.letters_since(meant.front().decided - std::chrono::days{30});
-    if (!all) return say(all.failure());
-    for (const outbox::Item& named : *all) {
-      const bool here =
-          named.digest == (*item)->letter.id && named.letter.recipient == (*item)->letter.recipient;
-      if (here) meant.push_back(named.letter);
-    }
+  const auto meant = meant_by(store, (*item)->letter);
+  if (!meant) return say(meant.failure());
+  const auto marks = mark_entries(store, settings, *meant);
+  if (!marks) return say(marks.failure());
+  const std::string cause =
+      "the farm's name, or what this address gets, may be another than when it was written";
+  if (marks->marked == 0 && marks->untraced > 0) {
+    return refuse("what it spoke of cannot be told for sure: " + cause,
+                  "nothing was changed; the next reminder is a letter that can be marked");
   }
-  int marked = 0;
-  for (const antherd::letters::Letter& letter : meant) {
-    const auto entries = mark_entries(store, letter);
-    if (!entries) return say(entries.failure());
-    marked += *entries;
-  }
-  if (marked == 0) {
-    return say(Failure{"mark a letter as seen", std::to_string(id),
-                       "it speaks of nothing that is reminded of", "nothing was changed"});
+  if (marks->marked == 0) {
+    return refuse("it speaks of nothing that is reminded of", "nothing was changed");
   }
   std::cout << "Seen: no more reminders at this level. A raise is still told.\n";
-  return Exit::done;
+  if (marks->untraced == 0) return Exit::done;
+  std::cout << "What " << marks->untraced
+            << " of the letters that it names spoke of cannot be told "
+            << "for sure; reminders of that go on: " << cause << ".\n";
+  return Exit::attention;
 }
 
 }  // namespace
@@ -115,7 +159,8 @@ Exit letters(const Invocation& call) {
   if (call.retry || call.seen) {
     auto store = open_to_write(*settings);
     if (!store) return say(store.failure());
-    return call.retry ? retry_letter(*store, *call.retry, time) : mark_seen(*store, *call.seen);
+    return call.retry ? retry_letter(*store, *call.retry, time)
+                      : mark_seen(*store, *settings, *call.seen);
   }
   const auto store = open_to_read(*settings);
   if (!store) return say(store.failure());
