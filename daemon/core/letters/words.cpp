@@ -43,6 +43,10 @@ std::string count(int n, std::string_view noun) {
   return text;
 }
 
+std::string plain_count(std::size_t n, std::string_view noun) {
+  return std::to_string(n) + " " + std::string(noun) + (n == 1 ? "" : "s");
+}
+
 std::string list(const std::vector<std::string>& things) {
   std::string text;
   for (std::size_t i = 0; i < things.size(); ++i) {

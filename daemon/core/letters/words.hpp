@@ -73,6 +73,8 @@ class Words {
 std::string number(double value, int decimals);
 /// "3" … and "one hour", "3 hours" with the noun made plural.
 std::string count(int n, std::string_view noun);
+/// The same for logs and screens, whose spaces may all break.
+std::string plain_count(std::size_t n, std::string_view noun);
 /// "a, b and c".
 std::string list(const std::vector<std::string>& things);
 /// "3 h", "2 d 4 h".

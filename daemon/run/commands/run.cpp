@@ -1,6 +1,7 @@
 // antherd run: the service.
 #include <iostream>
 
+#include "core/letters/words.hpp"
 #include "run/commands/common.hpp"
 #include "run/service/intake.hpp"
 #include "run/service/log.hpp"
@@ -45,9 +46,9 @@ Exit run(const Invocation& call) {
       return say(plain.failure());
     service::log_error(done.failure().sentence());
   }
-  service::log_info("antherd watches " + std::to_string(settings->fields.size()) + " fields of " +
-                    settings->farm + " with " + std::to_string(settings->stations.size()) +
-                    " stations");
+  service::log_info("antherd watches " + letters::plain_count(settings->fields.size(), "field") +
+                    " of " + settings->farm + " with " +
+                    letters::plain_count(settings->stations.size(), "station"));
   service::RunOptions options{*time, std::nullopt};
   if (call.stop_after > 0) options.stop_after = Seconds{call.stop_after};
   if (auto done = service::run(settings, options, signals); !done) {

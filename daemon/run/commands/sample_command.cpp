@@ -4,6 +4,7 @@
 #include <iostream>
 #include <string_view>
 
+#include "core/letters/words.hpp"
 #include "edge/station/readings.hpp"
 #include "edge/station/text.hpp"
 #include "run/commands/common.hpp"
@@ -59,8 +60,8 @@ void print_first_refused(const std::vector<station::Refused>& refused) {
 }
 
 void print_what_it_reads(const std::vector<weather::Sample>& samples, std::size_t refused) {
-  std::cout << "# Read with it: " << samples.size() << " readings, " << refused
-            << (refused == 1 ? " row" : " rows") << " refused; from "
+  std::cout << "# Read with it: " << letters::plain_count(samples.size(), "reading") << ", "
+            << refused << (refused == 1 ? " row" : " rows") << " refused; from "
             << utc_text(samples.front().time) << " to " << utc_text(samples.back().time) << "\n";
   std::vector<double> temperatures;
   for (const auto& sample : samples) {

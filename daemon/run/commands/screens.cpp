@@ -2,6 +2,7 @@
 #include <algorithm>
 #include <iostream>
 
+#include "core/letters/words.hpp"
 #include "edge/clock/clock.hpp"
 #include "run/commands/common.hpp"
 #include "run/service/attention.hpp"
@@ -53,8 +54,10 @@ Exit put_into_outbox(const settings::Settings& settings,
     decision.letters.push_back(std::move(item));
   }
   if (auto done = store->save(decision); !done) return say(done.failure());
-  std::cout << decision.letters.size()
-            << " letters were put into the outbox; the service carries them.\n";
+  const bool one = decision.letters.size() == 1;
+  std::cout << letters::plain_count(decision.letters.size(), "letter")
+            << (one ? " was put into the outbox; the service carries it.\n"
+                    : " were put into the outbox; the service carries them.\n");
   return Exit::done;
 }
 

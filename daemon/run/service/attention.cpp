@@ -3,6 +3,7 @@
 
 #include <algorithm>
 
+#include "core/letters/words.hpp"
 #include "run/service/farm.hpp"
 #include "run/service/review.hpp"
 
@@ -51,9 +52,9 @@ void add_letters(std::vector<std::string>& sentences, const store::Store& store,
     return now - item.letter.decided > letter_waits_long;
   });
   if (old > 0) {
-    sentences.push_back(std::to_string(old) +
-                        " letters have waited more than 6 h: see antherd "
-                        "letters.");
+    sentences.push_back(letters::plain_count(static_cast<std::size_t>(old), "letter") +
+                        (old == 1 ? " has" : " have") +
+                        " waited more than 6 h: see antherd letters.");
   }
   if (const auto line = store.line(); line && !line->trouble.empty()) {
     sentences.push_back("Mail: " + line->trouble);
@@ -63,9 +64,9 @@ void add_letters(std::vector<std::string>& sentences, const store::Store& store,
       return item.state == outbox::State::parked;
     });
     if (parked > 0) {
-      sentences.push_back(std::to_string(parked) +
-                          " letters of the last 7 days are parked: see "
-                          "antherd letters.");
+      sentences.push_back(letters::plain_count(static_cast<std::size_t>(parked), "letter") +
+                          " of the last 7 days " + (parked == 1 ? "is" : "are") +
+                          " parked: see antherd letters.");
     }
   }
 }

@@ -3,6 +3,7 @@
 #include <algorithm>
 #include <utility>
 
+#include "core/letters/words.hpp"
 #include "run/service/desk_work.hpp"
 #include "run/service/log.hpp"
 
@@ -164,9 +165,9 @@ void DeskWork::take_readings(const std::string& station, const station::Readings
     auto done = write_refused(settings_->store_folder, station, now, readings.refused);
     if (!done) log_once("refused", done.failure().sentence());
     const auto& first = readings.refused.front();
-    log_warning(station + ": " + std::to_string(readings.refused.size()) +
-                " rows refused, the first: " + first.file + ":" + std::to_string(first.line) +
-                ": " + first.reason + "; all stand in refused.csv, the rest is used");
+    log_warning(station + ": " + letters::plain_count(readings.refused.size(), "row") +
+                " refused, the first: " + first.file + ":" + std::to_string(first.line) + ": " +
+                first.reason + "; all stand in refused.csv, the rest is used");
   }
   tell_news(station, now);
 }

@@ -1,6 +1,7 @@
 // What the owner's work says to the log and to the service manager; see desk_work.hpp.
 #include <algorithm>
 
+#include "core/letters/words.hpp"
 #include "run/service/attention.hpp"
 #include "run/service/desk_work.hpp"
 #include "run/service/log.hpp"
@@ -25,7 +26,8 @@ std::string DeskWork::status_line(Instant at) const {
             (last ? "read " + age_text(now - *last) + " ago" : "no data yet") + "; ";
   }
   const outbox::Line& mail = carrier_->line();
-  line += std::to_string(carrier_->waiting()) + " letters waiting";
+  line +=
+      letters::plain_count(static_cast<std::size_t>(carrier_->waiting()), "letter") + " waiting";
   if (mail.last_success) line += ", last mail " + age_text(now - *mail.last_success) + " ago";
   if (!mail.trouble.empty()) line += ", mail: " + mail.trouble;
   if (!clock_set_) line += "; computer clock not set";
@@ -66,9 +68,12 @@ void DeskWork::log_beginning() const {
       aside ? "the store was damaged; it was put aside as " + *aside : "the store was missing";
   sentence += " and a new one was begun: files in the drop folder are read again";
   if (beginning && *beginning && (*beginning)->copied) {
-    sentence += "; from the weekly copy " + std::to_string((*beginning)->irrigations) +
-                " irrigations and " + std::to_string((*beginning)->notes) +
-                " scouting notes were taken back, those written down since are to be entered again";
+    const auto irrigations = static_cast<std::size_t>((*beginning)->irrigations);
+    const auto notes = static_cast<std::size_t>((*beginning)->notes);
+    sentence += "; from the weekly copy " + letters::plain_count(irrigations, "irrigation") +
+                " and " + letters::plain_count(notes, "scouting note") +
+                (irrigations + notes == 1 ? " was" : " were") +
+                " taken back, those written down since are to be entered again";
   } else {
     sentence += "; irrigations and scouting notes are to be entered again";
   }

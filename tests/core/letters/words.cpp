@@ -76,6 +76,8 @@ TEST_CASE("lists, counts and shares") {
   CHECK(list({"a", "b", "c"}) == "a, b and c");
   CHECK(unglued(count(1, "hour")) == "1 hour");
   CHECK(unglued(count(0, "hour")) == "0 hours");
+  CHECK(plain_count(1, "letter") == "1 letter");
+  CHECK(plain_count(2, "letter") == "2 letters");
   CHECK(unglued(duration(Seconds{45 * 60})) == "45 min");
   CHECK(unglued(duration(Seconds{24 * 3600})) == "24 h");
   CHECK(unglued(duration(Seconds{51 * 3600})) == "2 d 3 h");
