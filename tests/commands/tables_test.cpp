@@ -196,6 +196,21 @@ TEST_CASE("replay for people writes nothing and sends nothing") {
   CHECK(full.out.size() > ended.out.size());
 }
 
+TEST_CASE("replay tells of a thermometer that dies while other values still come") {
+  const Past past;
+  const Instant dies = farm_time("2026-07-10 09:00");
+  std::string rows = header + rows_of(readings(Weather{}, sown, dies));
+  for (Instant at = dies; at < dies + hours{6}; at += minutes{15}) {
+    rows += utc_clock(at) + ",NA,45.5,0\n";
+  }
+  past.folder.write("season.csv", rows);
+  const auto people = past.run({"replay"});
+  INFO(people.out << people.err);
+  CHECK(people.out.find("bench no temperature 1 h since 8:45 am") != std::string::npos);
+  const auto lines = past.run({"replay", "--lines"});
+  CHECK(lines.out.find("\"kind\":\"no_data\",\"phase\":\"opened\"") != std::string::npos);
+}
+
 TEST_CASE("check --stations counts each week's hours by their verdicts") {
   const Past past;
   const auto csv = past.run({"check", "--stations", "--csv"});

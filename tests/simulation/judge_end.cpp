@@ -200,9 +200,7 @@ void Judge::judge_replay(service::DeskWork& desk, Instant now) {
     replay.replace_hours(station.name, HourStart::min(), HourStart::max(),
                          weather::gather(*samples, station, hour_of(samples->front().time),
                                          hour_of(samples->back().time) + hours{1}));
-    std::vector<Instant> times;
-    for (const auto& sample : *samples) times.push_back(sample.time);
-    replay.add_sample_times(station.name, times);
+    replay.add_samples(station.name, *samples);
   }
   for (const auto& setting : settings_->stations) {
     closed[setting.station.name] =

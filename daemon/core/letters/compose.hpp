@@ -23,8 +23,9 @@ namespace antherd::letters {
 /// What is known of a station that is silent or doubtful.
 struct StationStory {
   std::string station;
-  std::optional<Instant> last_reading;
-  std::vector<std::string> fields;  // that it watches
+  std::optional<Instant> last_reading;  // with a temperature
+  bool no_temperature = false;          // readings still come, for long without a temperature
+  std::vector<std::string> fields;      // that it watches
   std::vector<std::string> fields_in_window;
   std::map<std::string, std::string> stand_in;  // field → its other station that has fresh readings
   std::string source;        // "drop folder drop/", "http://192.168.1.20/now.json"

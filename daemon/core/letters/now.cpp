@@ -207,7 +207,7 @@ std::string attention_block(std::span<const std::string> attention) {
     if (i + 1 == most_attention && attention.size() > most_attention) {
       return text + cut("  and " + std::to_string(attention.size() - i) + " more: see the log");
     }
-    text += cut("  " + plain(attention[i]));
+    for (const std::string& line : wrap(plain(attention[i]), page_width, 2, 4)) text += line + "\n";
   }
   return text;
 }

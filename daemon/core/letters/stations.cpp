@@ -93,7 +93,13 @@ std::string what_to_check(const StationStory* story, const Words& words) {
   std::vector<std::string> said{"Has the station power, is its cable or radio in place?"};
   if (story == nullptr) return said.front();
   const std::string source = plain(story->source);
-  if (source.find("http://") != std::string::npos || source.find("https://") != std::string::npos) {
+  if (story->no_temperature) {
+    said.front() =
+        "Readings come, so power and line are in order. Is the thermometer plugged in, does its "
+        "column still hold numbers: " +
+        source + "?";
+  } else if (source.find("http://") != std::string::npos ||
+             source.find("https://") != std::string::npos) {
     said.push_back("Does its address answer from this computer: " + source + "?");
   } else if (!source.empty()) {
     said.push_back("Do new files or lines still arrive: " + source + "?");
@@ -122,11 +128,16 @@ Part no_data_open(const Telling& telling, const Words& words) {
   const bool reminder = telling.saying == Saying::reminder;
   Part part;
   part.lead = (reminder ? "Still no data " : "No data ") + severity_word(telling.severity);
-  part.rest = "silent " + length + " since " + words.when(since) + flower_end(words, story);
+  const bool bare = story != nullptr && story->no_temperature;
+  part.rest = (bare ? "no temperature " : "silent ") + length + " since " + words.when(since) +
+              flower_end(words, story);
   const bool never = story != nullptr && !story->last_reading;
-  part.first = plain(telling.subject) +
-               (never ? ": no reading has ever come; expected since " : ": no reading since ") +
-               words.when(since) + " (" + length + ").";
+  const std::string what = bare ? "temperature" : "reading";
+  part.first =
+      plain(telling.subject) +
+      (never ? ": no " + what + " has ever come; expected since " : ": no " + what + " since ") +
+      words.when(since) + " (" + length + ")" +
+      (bare ? "; readings still come, but carry no temperature." : ".");
   part.tonight = tonight_unseen(story);
   std::vector<std::string> silent;
   if (reminder) silent.push_back("A reminder: told first after " + words.when(telling.start) + ".");
@@ -154,8 +165,9 @@ Part no_data_open(const Telling& telling, const Words& words) {
   part.brief = (covered          ? "Another station stands in."
                 : fields.empty() ? "Its fields not watched."
                                  : capital(fields) + " not watched.") +
-               std::string(" Check power, file, address.");
-  part.still = "When this was decided the station had been silent since " +
+               std::string(bare ? " Check the thermometer." : " Check power, file, address.");
+  part.still = std::string("When this was decided the station had ") +
+               (bare ? "sent no temperature since " : "been silent since ") +
                words.day(words.calendar().day_of(since)) + " " + words.clock(since) + ".";
   return part;
 }

@@ -118,6 +118,17 @@ Result<std::optional<Instant>> Store::last_sample(const std::string& station) co
   });
 }
 
+Result<std::optional<Instant>> Store::last_temperature(const std::string& station) const {
+  return inside_->read("read the newest temperature", [&] {
+    const auto id = inside_->known_station(station);
+    if (!id) return std::optional<Instant>();
+    Statement row = inside_->database->use(
+        "SELECT max(time) FROM sample WHERE station = ? AND temperature IS NOT NULL");
+    row.bind(*id).step();
+    return row.maybe<Instant>();
+  });
+}
+
 Result<std::vector<weather::Sample>> Store::conflicts(const std::string& station) const {
   return inside_->read("read conflicting samples", [&] {
     std::vector<Sample> found;

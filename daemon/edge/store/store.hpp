@@ -108,6 +108,8 @@ class Store {
   Result<std::vector<weather::Sample>> samples(const std::string& station, Instant from,
                                                Instant to) const;  // [from, to), in time order
   Result<std::optional<Instant>> last_sample(const std::string& station) const;
+  /// The newest sample with a temperature.
+  Result<std::optional<Instant>> last_temperature(const std::string& station) const;
   Result<std::vector<weather::Sample>> conflicts(const std::string& station) const;
   Outcome drop_samples_before(Instant before);  // conflicts too
 

@@ -86,6 +86,7 @@ void print_station(const service::Lookout& lookout, const std::string& name) {
   std::cout << "  Station " << name << ": "
             << (last ? "newest reading " + farm_text(settings.calendar, *last)
                      : std::string("no reading yet"))
+            << (lookout.last_of_any(name) > last ? " (newer ones carry no temperature)" : "")
             << "; " << day_shape(lookout.station_hours(name), settings.calendar, settings.units)
             << "\n";
   if (!last) return;

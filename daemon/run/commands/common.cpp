@@ -32,6 +32,14 @@ SettingsPointer only_with(const SettingsPointer& settings,
   return std::make_shared<const settings::Settings>(std::move(kept));
 }
 
+/// In time order; a silence is broken by a temperature alone.
+void add_times(Past& past, const std::string& station,
+               const std::vector<weather::Sample>& samples) {
+  auto& times = past.times[station];
+  auto& bare = past.bare_times[station];
+  for (const auto& sample : samples) (sample.temperature ? times : bare).push_back(sample.time);
+}
+
 void add_hours(Past& past, const settings::Station& station,
                const std::vector<weather::Sample>& samples) {
   const std::string& name = station.station.name;
@@ -42,8 +50,7 @@ void add_hours(Past& past, const settings::Station& station,
   const HourStart from = hour_of(samples.front().time - one_hour);
   const HourStart to = hour_of(samples.back().time) + std::chrono::hours{1};
   past.hours[name] = weather::gather(samples, station.station, from, to);
-  auto& times = past.times[name];
-  for (const auto& sample : samples) times.push_back(sample.time);
+  add_times(past, name, samples);
 }
 
 void take_diary_files(Past& past) {
@@ -89,8 +96,20 @@ const settings::FieldPlan* read_field(const settings::Settings& settings, const 
 
 std::optional<Instant> Past::last() const {
   std::optional<Instant> newest;
-  for (const auto& [name, list] : times) {
-    if (!list.empty() && (!newest || list.back() > *newest)) newest = list.back();
+  for (const auto* kind : {&times, &bare_times}) {
+    for (const auto& [name, list] : *kind) {
+      if (!list.empty() && (!newest || list.back() > *newest)) newest = list.back();
+    }
+  }
+  return newest;
+}
+
+std::optional<Instant> Past::last(const std::string& station) const {
+  std::optional<Instant> newest;
+  for (const auto* kind : {&times, &bare_times}) {
+    const auto list = kind->find(station);
+    if (list == kind->end() || list->second.empty()) continue;
+    if (!newest || list->second.back() > *newest) newest = list->second.back();
   }
   return newest;
 }
@@ -184,13 +203,14 @@ Outcome add_times_of_season(Past& past, const store::Store& store, Instant from)
     if (!samples) return samples.failure();
     auto& times = past.times[name];
     times.clear();
+    past.bare_times[name].clear();
     const Instant kept_from = samples->empty() ? Instant::max() : samples->front().time;
     for (const weather::Hour& hour : hours) {
       if (hour.n == 0 || Instant(hour.start) + std::chrono::hours{1} > kept_from) continue;
       times.push_back(Instant(hour.start));
       times.push_back(Instant(hour.start) + std::chrono::minutes{30});
     }
-    for (const weather::Sample& sample : *samples) times.push_back(sample.time);
+    add_times(past, name, *samples);
   }
   return Done{};
 }
@@ -227,9 +247,9 @@ Result<Past> past_from_store(const SettingsPointer& settings, const store::Store
     past.hours[name] = std::move(*hours);
     auto recent = store.samples(name, now - std::chrono::days{12}, Instant::max());
     if (!recent) return recent.failure();
-    for (const auto& sample : *recent) past.times[name].push_back(sample.time);
+    add_times(past, name, *recent);
     if (past.times[name].empty()) {
-      auto last = store.last_sample(name);
+      auto last = store.last_temperature(name);
       if (last && *last) past.times[name].push_back(**last);
     }
   }
@@ -287,6 +307,7 @@ service::Lookout lookout_over(const Past& past) {
     lookout.replace_hours(name, HourStart::min(), HourStart::max(), hours);
   }
   for (const auto& [name, times] : past.times) lookout.add_sample_times(name, times);
+  for (const auto& [name, times] : past.bare_times) lookout.add_bare_times(name, times);
   for (const auto& plan : past.settings->fields) {
     const auto diary = past.diaries.find(plan.field.name);
     if (diary != past.diaries.end()) lookout.set_diary(plan.field.name, diary->second);

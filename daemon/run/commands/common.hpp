@@ -32,11 +32,14 @@ const settings::FieldPlan* read_field(const settings::Settings& settings, const 
 struct Past {
   SettingsPointer settings;  // may have stations without file left out
   std::map<std::string, std::vector<weather::Hour>> hours;
-  std::map<std::string, std::vector<Instant>> times;  // of accepted samples
-  std::map<std::string, field::Diary> diaries;        // by field
+  std::map<std::string, std::vector<Instant>> times;       // of accepted samples with a temperature
+  std::map<std::string, std::vector<Instant>> bare_times;  // of those without
+  std::map<std::string, field::Diary> diaries;             // by field
   std::vector<alerts::Said> said;
   std::optional<Instant> first_start;
   std::optional<Instant> last() const;  // newest sample of any station
+  /// Of one station.
+  std::optional<Instant> last(const std::string& station) const;
 };
 
 /// From files, by each station's own table; the diary from the diary folder.

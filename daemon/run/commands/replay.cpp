@@ -184,21 +184,29 @@ class Turner {
     return moments;
   }
 
+  using Times = std::map<std::string, std::vector<Instant>>;
+  using Places = std::map<std::string, std::size_t>;
+
   void feed(const std::string& station, Instant until) {
-    const auto times = past_.times.find(station);
-    if (times == past_.times.end()) return;
-    auto& fed = fed_[station];
+    lookout_.add_sample_times(station, fresh_of(past_.times, fed_, station, until));
+    lookout_.add_bare_times(station, fresh_of(past_.bare_times, fed_bare_, station, until));
+  }
+  static std::vector<Instant> fresh_of(const Times& all, Places& places, const std::string& station,
+                                       Instant until) {
     std::vector<Instant> fresh;
+    const auto times = all.find(station);
+    if (times == all.end()) return fresh;
+    auto& fed = places[station];
     for (; fed < times->second.size() && times->second[fed] <= until; ++fed) {
       fresh.push_back(times->second[fed]);
     }
-    lookout_.add_sample_times(station, fresh);
+    return fresh;
   }
 
   const Past& past_;
   HourStart until_;
   service::Lookout lookout_;
-  std::map<std::string, std::size_t> fed_;
+  Places fed_, fed_bare_;
 };
 
 void print_lines(const Past& past, HourStart until) {
@@ -259,12 +267,12 @@ void print_letters(const Past& past, HourStart until, bool full) {
 /// the last reading nothing is known, not even a silence.
 HourStart end_of(const Past& past) {
   HourStart end = HourStart::min();
-  for (const auto& [name, times] : past.times) {
-    const settings::Station* station = past.settings->station(name);
-    if (times.empty() || station == nullptr) continue;
+  for (const auto& station : past.settings->stations) {
+    const auto last = past.last(station.station.name);
+    if (!last) continue;
     // 20 min: with three quarters of its readings an hour counts.
-    const Seconds reach = std::max<Seconds>(station->station.interval, std::chrono::minutes{20});
-    end = std::max(end, hour_of(times.back() + reach));
+    const Seconds reach = std::max<Seconds>(station.station.interval, std::chrono::minutes{20});
+    end = std::max(end, hour_of(*last + reach));
   }
   return end;
 }

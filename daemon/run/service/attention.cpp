@@ -23,7 +23,8 @@ void add_stations(std::vector<std::string>& sentences, const Lookout& lookout, I
       const auto& story = desk.stations.at(episode.subject);
       const bool covered = story.stand_in.size() >= story.fields.size();
       sentences.push_back(
-          "Station " + episode.subject + " is silent" +
+          "Station " + episode.subject +
+          (story.no_temperature ? " sends no temperature, though other values," : " is silent") +
           (last ? " since " + farm_text(lookout.settings().calendar, *last) : "") +
           (covered ? "; another station stands in." : ": its fields are not watched."));
     } else if (episode.kind == alerts::Kind::mail_trouble) {
@@ -39,6 +40,44 @@ void add_stations(std::vector<std::string>& sentences, const Lookout& lookout, I
   for (const auto& drift : drifts_of(lookout, now)) {
     sentences.push_back("Stations " + drift.one + " and " + drift.other +
                         " have drifted apart: see antherd check.");
+  }
+}
+
+/// The station's hours of the last 24 with a temperature, and with a humidity.
+std::pair<int, int> hours_seen(const Lookout& lookout, const std::string& station, Instant now) {
+  int warm = 0, humid = 0;
+  const auto& hours = lookout.judged_hours(station);
+  for (auto hour = hours.rbegin(); hour != hours.rend(); ++hour) {
+    if (Instant(hour->start) < now - std::chrono::hours{24}) break;
+    if (Instant(hour->start) > now) continue;
+    warm += hour->temperature ? 1 : 0;
+    humid += hour->humidity ? 1 : 0;
+  }
+  return {warm, humid};
+}
+
+/// Heat is watched by the temperature alone; wet leaves want a humidity too, of this station or of
+/// another of the field's.
+void add_dry_stations(std::vector<std::string>& sentences, const Lookout& lookout, Instant now) {
+  constexpr int hours_to_say = 6;
+  const settings::Settings& settings = lookout.settings();
+  for (const auto& station : settings.stations) {
+    const std::string& name = station.station.name;
+    const auto [warm, humid] = hours_seen(lookout, name, now);
+    if (warm < hours_to_say || humid > 0) continue;
+    bool needed = false, covered = true;
+    for (const std::string& field : fields_of(settings, name)) {
+      if (lookout.state(field).watch != season::Watch::watched) continue;
+      needed = true;
+      const auto& used = settings.field(field)->field.stations;
+      covered = covered && std::any_of(used.begin(), used.end(), [&](const std::string& other) {
+                  return hours_seen(lookout, other, now).second > 0;
+                });
+    }
+    if (!needed) continue;
+    sentences.push_back(
+        "Station " + name + ": no humidity in the last 24 h: " +
+        (covered ? "another station stands in for wet leaves." : "wet leaves are not watched."));
   }
 }
 
@@ -98,6 +137,7 @@ std::vector<std::string> attention_of(const Lookout& lookout, const store::Store
                                       Instant now) {
   std::vector<std::string> sentences;
   add_stations(sentences, lookout, now);
+  add_dry_stations(sentences, lookout, now);
   add_letters(sentences, store, now);
   add_strange_fields(sentences, lookout.settings(), store, now);
   return sentences;

@@ -13,9 +13,9 @@ namespace antherd::service {
 std::vector<std::string> strange_fields(const settings::Settings& settings,
                                         const store::Store& store, Instant now);
 
-/// One sentence each: silent and doubtful stations, mail trouble, stations that drifted apart,
-/// letters that wait or are parked, what the mail line or the store complains of, diary entries of
-/// fields that the settings do not name.
+/// One sentence each: silent and doubtful stations, those without humidity, mail trouble, stations
+/// that drifted apart, letters that wait or are parked, what the mail line or the store complains
+/// of, diary entries of fields that the settings do not name.
 std::vector<std::string> attention_of(const Lookout& lookout, const store::Store& store,
                                       Instant now);
 

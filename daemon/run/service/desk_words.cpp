@@ -23,7 +23,10 @@ std::string DeskWork::status_line(Instant at) const {
   for (const auto& station : settings_->stations) {
     const auto last = keeper_->lookout().last_sample(station.station.name);
     line += station.station.name + ": " +
-            (last ? "read " + age_text(now - *last) + " ago" : "no data yet") + "; ";
+            (last ? "read " + age_text(now - *last) + " ago" : "no data yet") +
+            (keeper_->lookout().lacks_temperature(station.station.name, now)
+                 ? " (readings come without a temperature); "
+                 : "; ");
   }
   const outbox::Line& mail = carrier_->line();
   line +=
@@ -80,12 +83,20 @@ void DeskWork::log_beginning() const {
   log_error(sentence);
 }
 
+/// Whether the station that is told silent has sent other values since.
+bool DeskWork::comes_bare(const alerts::Telling& telling) const {
+  const Lookout& lookout = keeper_->lookout();
+  return telling.kind == alerts::Kind::no_data && telling.saying != alerts::Saying::ended &&
+         lookout.last_of_any(telling.subject) > lookout.last_sample(telling.subject);
+}
+
 void DeskWork::log_kept(const Kept& kept) {
   for (const alerts::Telling& telling : kept.tellings) {
     std::string sentence = std::string(alerts::name_of(telling.kind)) + " of " + telling.subject +
                            ", " + alerts::name_of(telling.severity);
     if (telling.figure) sentence += ", figure " + std::to_string(*telling.figure).substr(0, 5);
     if (!telling.key.empty()) sentence += ", " + telling.key;
+    if (comes_bare(telling)) sentence += ": readings come, but carry no temperature";
     log_warning("alert: " + sentence);
   }
   for (const Failure& trouble : kept.troubles) {

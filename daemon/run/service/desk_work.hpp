@@ -113,6 +113,7 @@ class DeskWork {
   void log_strange_fields(Instant now);
   void log_beginning() const;
   void log_kept(const Kept& kept);
+  bool comes_bare(const alerts::Telling& telling) const;
   void carry(Instant now);
   bool line_busy() const { return carrier_->busy() || distress_.busy(); }
   void note_mail_trouble();

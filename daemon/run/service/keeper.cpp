@@ -158,9 +158,7 @@ Outcome Keeper::remake_hours(const std::string& station, Instant earliest, Insta
     samples->insert(samples->end(), waiting.samples.begin(), waiting.samples.end());
     *samples = weather::standing(std::move(*samples));
   }
-  std::vector<Instant> times;
-  for (const auto& sample : *samples) times.push_back(sample.time);
-  lookout_.add_sample_times(station, times);
+  lookout_.add_samples(station, *samples);
   auto fresh = weather::gather(*samples, description, from, to);
   const auto& known = lookout_.station_hours(station);
   auto old_hour = std::lower_bound(known.begin(), known.end(), from,
@@ -213,7 +211,7 @@ bool Keeper::batch_due(const std::string& station, const Batch& batch, Instant n
   if (now - batch.since >= batch_for || now < batch.since) return true;
   if (batch.samples.empty()) return false;
   // A sample at or after the end of the running hour closes it: decisions do not wait for a batch.
-  const auto last = lookout_.last_sample(station);
+  const auto last = lookout_.last_of_any(station);
   const auto newest =
       std::max_element(batch.samples.begin(), batch.samples.end(),
                        [](const auto& a, const auto& b) { return a.time < b.time; });

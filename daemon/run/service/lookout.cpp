@@ -13,6 +13,15 @@ namespace {
 
 constexpr auto sample_times_kept = std::chrono::days{10};
 
+void keep_times(std::vector<Instant>& kept, const std::vector<Instant>& times) {
+  if (times.empty()) return;
+  kept.insert(kept.end(), times.begin(), times.end());
+  std::sort(kept.begin(), kept.end());
+  kept.erase(std::unique(kept.begin(), kept.end()), kept.end());
+  const Instant oldest = kept.back() - sample_times_kept;
+  kept.erase(kept.begin(), std::lower_bound(kept.begin(), kept.end(), oldest));
+}
+
 /// Heat ends by the rules at midnight, and sprinklers are counted when they stop: neither is worth
 /// a sleep, both are told at six.
 bool wakes_nobody(const alerts::Telling& telling) {
@@ -93,13 +102,18 @@ void Lookout::set_diary(const std::string& field, field::Diary diary) {
 }
 
 void Lookout::add_sample_times(const std::string& station, const std::vector<Instant>& times) {
-  if (times.empty()) return;
-  auto& kept = stations_.at(station).times;
-  kept.insert(kept.end(), times.begin(), times.end());
-  std::sort(kept.begin(), kept.end());
-  kept.erase(std::unique(kept.begin(), kept.end()), kept.end());
-  const Instant oldest = kept.back() - sample_times_kept;
-  kept.erase(kept.begin(), std::lower_bound(kept.begin(), kept.end(), oldest));
+  keep_times(stations_.at(station).times, times);
+}
+
+void Lookout::add_bare_times(const std::string& station, const std::vector<Instant>& times) {
+  keep_times(stations_.at(station).bare_times, times);
+}
+
+void Lookout::add_samples(const std::string& station, const std::vector<weather::Sample>& samples) {
+  std::vector<Instant> times, bare;
+  for (const auto& sample : samples) (sample.temperature ? times : bare).push_back(sample.time);
+  add_sample_times(station, times);
+  add_bare_times(station, bare);
 }
 
 void Lookout::set_ledger(std::vector<alerts::Said> said) {
@@ -196,6 +210,7 @@ letters::StationStory Lookout::story_of(const StationMemory& station, Instant no
   letters::StationStory story;
   story.station = station.station.name;
   story.last_reading = last_sample(station.station.name);
+  story.no_temperature = lacks_temperature(station.station.name, now);
   story.fields = fields_of(*settings_, station.station.name);
   for (const std::string& name : story.fields) {
     if (fields_.at(name).state.crop.part == season::Part::window) {
@@ -277,14 +292,29 @@ std::optional<Instant> Lookout::last_sample(const std::string& station) const {
   return times.empty() ? std::nullopt : std::optional(times.back());
 }
 
+std::optional<Instant> Lookout::last_of_any(const std::string& station) const {
+  const auto& bare = stations_.at(station).bare_times;
+  const auto last = last_sample(station);
+  if (bare.empty()) return last;
+  return last ? std::max(*last, bare.back()) : bare.back();
+}
+
+bool Lookout::lacks_temperature(const std::string& station, Instant now) const {
+  const StationMemory& memory = stations_.at(station);
+  const Seconds patience = memory.station.silent_after;
+  if (memory.bare_times.empty() || now - memory.bare_times.back() > patience) return false;
+  return memory.times.empty() || now - memory.times.back() >= patience;
+}
+
 std::optional<Instant> Lookout::time_of_stations() const {
   std::optional<Instant> newest;
   for (const auto& [name, station] : stations_) {
-    const auto& times = station.times;
-    for (std::size_t i = times.size(); i-- > 1;) {
-      if (times[i] - times[i - 1] > 2 * station.station.interval) continue;
-      newest = newest ? std::max(*newest, times[i]) : times[i];
-      break;
+    for (const auto* times : {&station.times, &station.bare_times}) {
+      for (std::size_t i = times->size(); i-- > 1;) {
+        if ((*times)[i] - (*times)[i - 1] > 2 * station.station.interval) continue;
+        newest = newest ? std::max(*newest, (*times)[i]) : (*times)[i];
+        break;
+      }
     }
   }
   return newest;

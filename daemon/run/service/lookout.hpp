@@ -42,8 +42,13 @@ class Lookout {
   void replace_hours(const std::string& station, HourStart from, HourStart to,
                      std::vector<weather::Hour> fresh);
   void set_diary(const std::string& field, field::Diary diary);
-  /// Times of accepted samples, any order, repeats allowed; the last 10 days are kept.
+  /// Times of accepted samples that hold a temperature, any order, repeats allowed; the last 10
+  /// days are kept. Without a temperature no heat is watched, so only these break a silence.
   void add_sample_times(const std::string& station, const std::vector<Instant>& times);
+  /// Likewise of samples without one.
+  void add_bare_times(const std::string& station, const std::vector<Instant>& times);
+  /// The times of samples, each to its kind.
+  void add_samples(const std::string& station, const std::vector<weather::Sample>& samples);
   void set_ledger(std::vector<alerts::Said> said);
   /// What a person marked as seen meanwhile is seen here too. All else stays as it is: the store
   /// may not hold yet what was said last.
@@ -71,7 +76,12 @@ class Lookout {
   const std::vector<weather::Hour>& station_hours(const std::string& station) const;
   /// The same with what shows only over days (weather/suspicion.hpp): what is folded and shown.
   const std::vector<weather::Hour>& judged_hours(const std::string& station) const;
+  /// The newest with a temperature.
   std::optional<Instant> last_sample(const std::string& station) const;
+  /// The newest, whatever it holds.
+  std::optional<Instant> last_of_any(const std::string& station) const;
+  /// Whether the station still sends readings, but for long none with a temperature.
+  bool lacks_temperature(const std::string& station, Instant now) const;
   /// The newest sample that follows another within two intervals, of any station: by these a
   /// computer whose clock is not set may tell the time. A stray stamp moves no clock.
   std::optional<Instant> time_of_stations() const;
@@ -94,7 +104,8 @@ class Lookout {
     std::vector<weather::Hour> judged;             // with suspicions
     std::optional<weather::Suspector> checkpoint;  // has seen the first `checkpoint_at` hours
     std::size_t checkpoint_at = 0;
-    std::vector<Instant> times;
+    std::vector<Instant> times;       // of samples with a temperature
+    std::vector<Instant> bare_times;  // of those without
     SourceNews news;
     weather::Arrivals arrivals;
   };

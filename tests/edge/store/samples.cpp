@@ -31,6 +31,11 @@ TEST_CASE("samples come back as they went in", "[store]") {
   CHECK(must(store.samples("other", instant(0), instant(july_14 * 2))).empty());
   CHECK(must(store.last_sample("bench")) == full.time);
   CHECK_FALSE(must(store.last_sample("other")));
+  const Sample later = sample(3 * 86400, std::nullopt);  // without a temperature
+  must(store.add_samples("bench", std::vector<Sample>{later}));
+  CHECK(must(store.last_sample("bench")) == later.time);
+  CHECK(must(store.last_temperature("bench")) == full.time);
+  CHECK_FALSE(must(store.last_temperature("other")));
   CHECK(must(store.note("drop/a.csv")) == "1820");
 }
 
