@@ -168,7 +168,11 @@ void CsvReader::read_row(std::string_view row) {
     if (equal_fold(cells_[*columns_.where], form_.where->first)) is_header(row);
     return;  // a row of another station
   }
-  if (const std::size_t count = cells_.size(); count < columns_.count) {
+  // A cell too many has shifted the others: a decimal comma, or a value that holds the separator.
+  const std::size_t count = cells_.size();
+  std::size_t filled = count;
+  while (filled > columns_.count && cells_[filled - 1].empty()) --filled;
+  if (count < columns_.count || filled > columns_.count) {
     if (is_header(row)) return;
     return refuse(row, "it has " + std::to_string(count) + " cells, the header has " +
                            std::to_string(columns_.count));

@@ -166,6 +166,24 @@ TEST_CASE("a bad row is refused with its reason, its neighbours are used") {
   CHECK(longest.text.size() <= 200);
 }
 
+TEST_CASE("a row with more cells than the header is refused, empty ones at its end are none") {
+  // A decimal comma: 21,5 °C and 40 % would be read as 21 °C and 5 %.
+  CHECK(refusal_of("2026-06-01 10:05,21,5,40").reason == "it has 4 cells, the header has 3");
+  CHECK(refusal_of("2026-06-01 10:05,21,40,,x").reason == "it has 5 cells, the header has 3");
+  const Readings readings =
+      read_all("time,temp,rh\n2026-06-01 10:00,20,50,\n2026-06-01 10:05,21,51,, \n", plain_form());
+  CHECK(readings.refused.empty());
+  REQUIRE(readings.samples.size() == 2);
+  CHECK(readings.samples[1].humidity == Percent{51});
+  // A longer header further down is a header, not a bad row.
+  const Readings longer = read_all(
+      "time,temp,rh\n2026-06-01 10:00,20,50\ntime,rain,temp,rh\n2026-06-01 10:05,0,21,51\n",
+      plain_form());
+  CHECK(longer.refused.empty());
+  REQUIRE(longer.samples.size() == 2);
+  CHECK(longer.samples[1].temperature == Celsius{21});
+}
+
 TEST_CASE("nan is missing only where the form lists it") {
   RecordForm form = plain_form();
   form.missing = {""};
