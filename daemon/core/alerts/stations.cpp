@@ -179,8 +179,8 @@ Instant awake(Instant at, const Calendar* farm_time) {
 }
 
 Seconds patience_of(const StationWatch& watch) {
-  return std::max(watch.silent_after, 3 * watch.interval) +
-         std::max(Seconds{0}, watch.arrives_every - watch.interval);
+  return std::max(watch.silent_after,
+                  3 * watch.interval + std::max(Seconds{0}, watch.arrives_every - watch.interval));
 }
 
 std::vector<Silence> silences_from(std::span<const Instant> sample_times, Seconds patience) {

@@ -23,7 +23,7 @@ struct Span {
 struct StationWatch {
   std::string station;
   Seconds interval{300};               // between samples
-  Seconds silent_after{3600};          // the settings' wish; never less than three intervals count
+  Seconds silent_after{3600};          // the settings' wish, waiting for batches included
   Seconds arrives_every{300};          // batches: longer than the interval
   const Calendar* calendar = nullptr;  // farm time
 };
@@ -39,8 +39,8 @@ struct Silence {
 /// the moment itself without a calendar.
 Instant awake(Instant at, const Calendar* farm_time);
 
-/// How long a station may say nothing: max(silent_after, 3 intervals), and what a batch adds
-/// (arrives_every beyond the interval).
+/// How long a station may say nothing: silent_after, but never less than three intervals and what
+/// a batch adds to them (arrives_every beyond the interval).
 Seconds patience_of(const StationWatch& watch);
 
 /// The gaps longer than `patience` between the times of samples (any order, repeats allowed), and

@@ -50,7 +50,7 @@ const std::vector<Span> always = span(-10000, 10000);
 
 }  // namespace
 
-TEST_CASE("patience: the settings' wish, three intervals, and what a batch adds") {
+TEST_CASE("patience: the settings' wish, at least three intervals and what a batch adds") {
   StationWatch watch = bench();
   CHECK(patience_of(watch) == Seconds{3600});
   watch.interval = Seconds{3600};
@@ -58,7 +58,12 @@ TEST_CASE("patience: the settings' wish, three intervals, and what a batch adds"
   CHECK(patience_of(watch) == Seconds{3 * 3600});
   watch.interval = Seconds{300};
   watch.arrives_every = Seconds{6 * 3600};
-  CHECK(patience_of(watch) == Seconds{3600 + 6 * 3600 - 300});
+  // A wish that cannot be: three lost readings and the wait for the next batch come first.
+  CHECK(patience_of(watch) == Seconds{3 * 300 + 6 * 3600 - 300});
+  // silent_after says how long nothing may come, and the settings want it longer than a batch: the
+  // batch must not be waited for twice.
+  watch.silent_after = Seconds{8 * 3600};
+  CHECK(patience_of(watch) == Seconds{8 * 3600});
 }
 
 TEST_CASE("gaps are longer than the patience; the newest sample begins a silence of its own") {
