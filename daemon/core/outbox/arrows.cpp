@@ -35,7 +35,9 @@ Item put_off(Item item, const Receipt& receipt) {
   take_back_doubt(item);
   item.state = State::waiting;
   item.next_try = receipt.at;
-  if (receipt.ending == Ending::wait) {
+  if (receipt.ending == Ending::settings_trouble && receipt.concern == Concern::recipient) {
+    item.next_try = receipt.at + trouble_rest;  // its own hour: the others are asked for at once
+  } else if (receipt.ending == Ending::wait) {
     if (receipt.concern == Concern::recipient) {
       item.next_try = receipt.at + retry_delay(item.attempts, 0.0);
     } else if (receipt.concern == Concern::letter && item.attempts > tries_in_front) {
@@ -100,19 +102,20 @@ Item receive(Item item, const Receipt& receipt) {
 }
 
 Line receive(Line line, const Receipt& receipt, double jitter01) {
+  const bool troubled = receipt.ending == Ending::settings_trouble;
   const bool about_server =
-      receipt.ending == Ending::settings_trouble || receipt.ending == Ending::in_doubt ||
-      (receipt.ending == Ending::wait && receipt.concern != Concern::recipient);
+      receipt.ending == Ending::in_doubt ||
+      ((troubled || receipt.ending == Ending::wait) && receipt.concern != Concern::recipient);
   if (receipt.ending == Ending::accepted) line.last_success = receipt.at;
   if (!about_server) {  // it heard us out: the rest follow at once
     line.failures = 0;
     line.next_try.reset();
-    line.trouble.clear();
+    line.trouble = troubled ? receipt.sentence : std::string();
     return line;
   }
   ++line.failures;
   line.next_try = receipt.at + retry_delay(line.failures, jitter01);
-  if (receipt.ending == Ending::settings_trouble) {
+  if (troubled) {
     line.next_try = receipt.at + trouble_rest;
     line.trouble = receipt.sentence;
   } else if (receipt.ending == Ending::in_doubt || receipt.concern == Concern::letter) {

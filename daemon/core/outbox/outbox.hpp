@@ -24,7 +24,8 @@ namespace antherd::outbox {
 
 /// How long a letter rests after its answer was lost, before it goes once more.
 constexpr Seconds doubt_rest{10 * 60};
-/// How long the line rests after trouble that only a person can mend.
+/// How long the line rests after trouble that only a person can mend; where the trouble is with one
+/// recipient, the letter alone.
 constexpr Seconds trouble_rest{60 * 60};
 /// Later than this after its decision a letter says so.
 constexpr Seconds late_after{30 * 60};
@@ -60,7 +61,7 @@ enum class Ending {
 /// and the others go on. A refused connection or a 421 says "not now, any of you".
 enum class Concern {
   server,     // no line, greeting, login, sender, 421, no answer
-  recipient,  // the answer to RCPT
+  recipient,  // the answer to RCPT; a server without login may relay to some and not to others
   letter,     // the answer after the body was read: mostly the server's trouble, at times this text
 };
 

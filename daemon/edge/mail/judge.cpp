@@ -27,7 +27,12 @@ Verdict wait(const Case& c, const std::string& what, About about = About::server
   return {How::wait, about, what + "; the letter to " + c.to + " waits and " + again};
 }
 
+/// Asked for one recipient the server may still take letters to others.
 Verdict trouble(const Case& c, const std::string& what, const std::string& advice) {
+  if (c.talk.step() == Step::recipient) {
+    return {How::settings_trouble, About::recipient,
+            what + "; " + advice + "; the letter to " + c.to + " is kept and tried once an hour"};
+  }
   return {How::settings_trouble, About::server,
           what + "; " + advice + "; " + mend + ", the one to " + c.to + " among them"};
 }
@@ -99,7 +104,7 @@ Verdict by_code(const Case& c) {
     case Step::recipient:
       if (later) return wait(c, c.place + " puts this recipient off " + c.reply, About::recipient);
       if (speaks_of_us(c)) {
-        return trouble(c, c.place + " relays nothing without a login " + c.reply,
+        return trouble(c, c.place + " does not relay to " + c.to + " without a login " + c.reply,
                        "check the user and the password file");
       }
       return refused(c.place + " refuses the recipient " + c.to + " " + c.reply, About::recipient);

@@ -241,6 +241,14 @@ TEST_CASE("whose wait it is") {
     const Line line{4, later, std::nullopt, "old trouble"};
     CHECK(receive(line, recipient, 0) == Line{});
   }
+  SECTION("trouble with one recipient: the letter waits its hour, the line is free and says so") {
+    const Receipt trouble =
+        receipt_of(1, Ending::settings_trouble, later, Concern::recipient, "no relay");
+    CHECK(receive(taken, trouble).state == waiting);
+    CHECK(receive(taken, trouble).next_try == later + minutes(60));
+    const Line line{4, later, std::nullopt, "old trouble"};
+    CHECK(receive(line, trouble, 0) == Line{0, std::nullopt, std::nullopt, "no relay"});
+  }
   SECTION("a letter read and put off: the line's at first, then the letter steps aside") {
     Item again = taken;
     again.attempts = 3;

@@ -178,6 +178,31 @@ TEST_CASE("settings trouble keeps all letters and asks once an hour") {
   for (const Item& item : carrier.items) CHECK(item.state == State::waiting);
 }
 
+TEST_CASE("recipients that a server without login does not serve do not stop the others") {
+  const auto server = [](const Item& item, Instant now) {
+    return item.id >= 10 ? receipt_of(item.id, Ending::settings_trouble, now, Concern::recipient)
+                         : accepts(item, now);
+  };
+  Carrier carrier;
+  for (int id = 10; id < 16; ++id) carrier.items.push_back(item_of(id, Severity::extreme));
+  carrier.items.push_back(item_of(1));
+  carrier.items.push_back(item_of(2));
+  const auto next = carrier.turn(afternoon, server);
+  CHECK(carrier.accepted ==
+        std::vector<std::int64_t>{1, 2});  // at once, though the others are graver
+  CHECK(next == afternoon + hours(1));
+  // Kept, not parked, and asked for each hour: the server may be told of them.
+  carrier.run(*next, afternoon + hours(23), server);
+  for (int id = 10; id < 16; ++id) {
+    CHECK(carrier.item(id).state == State::waiting);
+    CHECK(carrier.item(id).attempts == 24);
+  }
+  // What is decided later is not held up by them either.
+  carrier.items.push_back(item_of(3, Severity::minor, afternoon + hours(23) + minutes(5)));
+  carrier.turn(afternoon + hours(23) + minutes(5), server);
+  CHECK(carrier.accepted.back() == 3);
+}
+
 TEST_CASE("what is too old is expired, never sent and never dropped") {
   Carrier carrier;
   carrier.items = {item_of(1, Severity::extreme), item_of(2)};

@@ -87,7 +87,7 @@ TEST_CASE("login by LOGIN, and servers that know no way of ours") {
     settings = settings_for(server);
     settings.user = "farm";
     settings.password = password;
-    check(speak(settings), How::settings_trouble, 550, About::server, "without a login");
+    check(speak(settings), How::settings_trouble, 550, About::recipient, "without a login");
   }
 }
 

@@ -31,8 +31,11 @@ TEST_CASE("rows of the table: what the server answers") {
   check(when("RCPT", "550 5.1.1 nobody"), How::refused, 550, About::recipient, "5.1.1 nobody");
   check(when("RCPT", "450 4.2.0 later"), How::wait, 450, About::recipient, "(450 4.2.0 later)");
   check(when("RCPT", "421 4.3.2 closing"), How::wait, 421, About::server, "4.3.2 closing");
-  check(when("RCPT", "554 5.7.1 no relaying"), How::settings_trouble, 554, About::server,
-        "without a login");
+  // Without a login a server may take letters to some: the others need not wait for this one.
+  check(when("RCPT", "554 5.7.1 no relaying"), How::settings_trouble, 554, About::recipient,
+        "does not relay to owner@larkspur.example without a login");
+  check(when("RCPT", "530 5.7.0 log in"), How::settings_trouble, 530, About::recipient,
+        "is kept and tried once an hour");
   check(when("MAIL", "451 4.3.0 later"), How::wait, 451, About::server, "takes no letters now");
   check(when("MAIL", "530 5.7.0 Must issue STARTTLS"), How::settings_trouble, 530, About::server,
         "wants a login or an encrypted line");
