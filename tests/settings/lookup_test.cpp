@@ -67,6 +67,19 @@ TEST_CASE("what is odd is remarked, what is usual is not") {
                                  "\"bench\"; check latitude and longitude of both"});
 }
 
+TEST_CASE("a field whose letters nobody gets is remarked") {
+  const auto with = [](const std::string& more) {
+    return remarks_on(
+        test::farm_with("\"owner@larkspur.example\"", "\"owner@larkspur.example\"\n" + more));
+  };
+  CHECK(with("fields = [\"north bench\"]") ==
+        std::vector<std::string>{"field \"river flat\": no recipient gets its letters; add it to "
+                                 "the fields of a [[recipient]], or leave that list away"});
+  CHECK(with("fields = [\"north bench\"]\n[[recipient]]\naddress = \"son@larkspur.example\"\n"
+             "fields = [\"river flat\"]")
+            .empty());
+}
+
 TEST_CASE("an unused station, an unused crop type and no mail are remarked") {
   std::string text = test::farm_text;
   const std::size_t mail = text.find("[mail]");

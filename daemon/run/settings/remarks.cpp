@@ -75,9 +75,24 @@ void remark_on_film(Work& work, const FieldPlan& plan, const weather::Station& s
       "misses dew of calm nights");
 }
 
+/// A new field is easily forgotten in the lists of its readers, and its warnings would go nowhere.
+void remark_on_readers(Work& work, const std::string& field) {
+  const Settings& settings = work.settings;
+  const auto gets = [&](const letters::Recipient& recipient) {
+    const auto& fields = recipient.fields;  // none: all of them
+    return fields.empty() || std::find(fields.begin(), fields.end(), field) != fields.end();
+  };
+  if (!settings.mail || settings.recipients.empty()) return;
+  if (std::any_of(settings.recipients.begin(), settings.recipients.end(), gets)) return;
+  work.faults.remarks.push_back("field " + in_quotes(field) +
+                                ": no recipient gets its letters; add it to the fields of a "
+                                "[[recipient]], or leave that list away");
+}
+
 void remark_on_field(Work& work, const FieldPlan& plan) {
   const field::Field& field = plan.field;
   const std::string name = "field " + in_quotes(field.name);
+  remark_on_readers(work, field.name);
   if (field.crop_type == "highland" && std::fabs(field.latitude.value) > highland_latitude) {
     work.faults.remarks.push_back(name +
                                   ": no flowering date can be promised for a highland type above "
