@@ -76,13 +76,29 @@ std::string write_through(const std::string& path, const std::string& text) {
   return ::fsync(file.number()) == 0 ? "" : reason();
 }
 
+/// Makes the folder where only it is missing. A folder that root makes (a test by hand before the
+/// service wrote one) belongs to whom the folder above belongs: the service's user must write
+/// there.
+/// @return why not, or an empty string
+std::string make_folder(const std::string& folder) {
+  if (::mkdir(folder.c_str(), 0755) != 0) {
+    if (errno == EEXIST) return "";
+    if (errno != ENOENT) return reason();
+    return "the folder above it is not there; where it is the service's own it is made at the "
+           "service's first start: start the service first";
+  }
+  struct stat above {};
+  if (::geteuid() != 0 || ::stat((folder + "/..").c_str(), &above) != 0) return "";
+  return ::chown(folder.c_str(), above.st_uid, above.st_gid) == 0 ? "" : reason();
+}
+
 }  // namespace
 
 Result<std::string> write_eml(const std::string& folder, const std::string& from,
                               const letters::Letter& letter) {
   const Result<std::string> message = as_rfc5322(letter, from);
   if (!message) return message.failure();
-  if (::mkdir(folder.c_str(), 0755) != 0 && errno != EEXIST) return failure(folder, reason());
+  if (const std::string why = make_folder(folder); !why.empty()) return failure(folder, why);
   const Descriptor directory(::open(folder.c_str(), O_RDONLY | O_DIRECTORY | O_CLOEXEC));
   if (directory.number() < 0) return failure(folder, reason());
 

@@ -47,7 +47,8 @@ Spoken send(const Server& server, const letters::Letter& letter,
 
 /// Writes one letter as an .eml file (RFC 5322) named after its id, by temporary file, fsync and
 /// rename. The same letter written again is the same file; another letter's file is never touched:
-/// an id that is taken gets "ID.2.eml". Makes the folder when only its last part is missing.
+/// an id that is taken gets "ID.2.eml". Makes the folder when only its last part is missing; made
+/// by root it gets the owner and group of the folder above.
 /// @return the path, or what stood in the way
 Result<std::string> write_eml(const std::string& folder, const std::string& from,
                               const letters::Letter& letter);

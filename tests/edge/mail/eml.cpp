@@ -83,12 +83,24 @@ TEST_CASE("links are not followed") {
   CHECK(content_of(target) == "untouched");
 }
 
+TEST_CASE("a folder that root makes belongs to whom the folder above belongs") {
+  if (::geteuid() != 0) return;  // only root can give a folder away
+  const TemporaryFolder above;
+  REQUIRE(::chown(above.path().c_str(), 12345, 23456) == 0);
+  REQUIRE(write_eml(above.path() + "/outgoing", from, letter_for_tests()));
+  struct stat made {};
+  REQUIRE(::stat((above.path() + "/outgoing").c_str(), &made) == 0);
+  CHECK(made.st_uid == 12345);
+  CHECK(made.st_gid == 23456);
+}
+
 TEST_CASE("failures are named") {
   const TemporaryFolder folder;
   const std::string missing = folder.path() + "/no/such";
   const Result<std::string> nowhere = write_eml(missing, from, letter_for_tests());
   REQUIRE_FALSE(nowhere);
   CHECK(nowhere.failure().sentence().find(missing) != std::string::npos);
+  CHECK(nowhere.failure().sentence().find("start the service first") != std::string::npos);
 
   letters::Letter letter = letter_for_tests();
   letter.id = "../escape";
