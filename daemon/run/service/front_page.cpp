@@ -7,12 +7,14 @@
 #include "edge/drawing/drawing.hpp"
 #include "run/service/attention.hpp"
 #include "run/service/farm.hpp"
+#include "run/service/log.hpp"
 #include "run/service/review.hpp"
 
 namespace antherd::service {
 namespace {
 
 constexpr auto fresh_for = std::chrono::minutes{10};
+constexpr auto tried_again_after = std::chrono::minutes{10};
 
 std::string json_of(const letters::Desk& desk, const std::vector<std::string>& attention) {
   nlohmann::ordered_json fields = nlohmann::ordered_json::array();
@@ -39,6 +41,7 @@ std::string json_of(const letters::Desk& desk, const std::vector<std::string>& a
 Outcome FrontPage::open(const settings::Settings& settings) {
   page_.reset();
   shown_.reset();
+  tried_.reset();
   if (!settings.page) return Done{};
   page::PageOptions options;
   options.address = settings.page->address;
@@ -51,7 +54,21 @@ Outcome FrontPage::open(const settings::Settings& settings) {
   return Done{};
 }
 
+/// That it could not be opened was said; that it is open now is said once.
+void FrontPage::try_again(const settings::Settings& settings, Instant now) {
+  if (!settings.page) return;
+  const bool due = tried_ && (now - *tried_ >= tried_again_after || now < *tried_);
+  if (!tried_) tried_ = now;
+  if (!due) return;
+  const Outcome opened = open(settings);
+  tried_ = now;
+  if (!opened) return;
+  log_info("the page is open now: http://" + settings.page->address + ":" +
+           std::to_string(settings.page->port) + "/");
+}
+
 void FrontPage::refresh(const Lookout& lookout, const store::Store& store, Instant now) {
+  if (!page_) try_again(lookout.settings(), now);
   if (!page_) return;
   const bool same_hour = shown_ && hour_of(*shown_) == hour_of(now) && now >= *shown_;
   if (same_hour && now - *shown_ < fresh_for) return;
