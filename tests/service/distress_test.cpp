@@ -43,6 +43,7 @@ struct AtLine {
   service::Distress distress;
   std::vector<letters::Letter> handed;
   Instant refused_since = hot_morning;
+  risk::Level heat = risk::Level::none;
 
   AtLine() {
     farm.mail = "server = \"smtp://localhost:2525\"\nplain = true\n";
@@ -58,6 +59,8 @@ struct AtLine {
       of_now.farm = "Larkspur Bench";
       of_now.calendar = &settings->calendar;
       of_now.now = now;
+      of_now.fields["north bench"].field = "north bench";
+      of_now.fields["north bench"].heat.today.level = heat;
       return of_now;
     };
     const auto send = [&](mail::Server, std::int64_t item, letters::Letter letter) {
@@ -143,6 +146,28 @@ TEST_CASE("word past the store goes one by one, and again where it was not taken
   line.distress.received(spoken(mail::How::accepted), now + minutes{34});
   for (int i = 35; i < 12 * 60; i += 7) line.carry(now + minutes{i});
   CHECK(line.handed.size() == 3);
+}
+
+TEST_CASE("a level that rises is told past the store, one that falls is no news") {
+  AtLine line;
+  line.refuse(farm_time("2026-07-12 09:00"));
+  const auto carry_all = [&](Instant now, risk::Level heat) {
+    line.heat = heat;
+    const auto before = line.handed.size();
+    for (int i = 0; i < 3; ++i) {
+      line.carry(now);
+      if (line.distress.busy()) line.distress.received(spoken(mail::How::accepted), now);
+    }
+    return line.handed.size() - before;
+  };
+  CHECK(carry_all(farm_time("2026-07-12 10:00"), risk::Level::none) == 2);  // both people
+  CHECK(carry_all(farm_time("2026-07-12 14:00"), risk::Level::moderate) == 2);
+  CHECK(carry_all(farm_time("2026-07-12 16:00"), risk::Level::extreme) == 2);
+  CHECK(carry_all(farm_time("2026-07-12 18:00"), risk::Level::severe) == 0);
+  CHECK(carry_all(farm_time("2026-07-13 00:00"), risk::Level::severe) == 0);  // at midnight
+  CHECK(carry_all(farm_time("2026-07-13 05:00"), risk::Level::none) == 0);
+  CHECK(carry_all(farm_time("2026-07-13 06:00"), risk::Level::none) == 2);  // a new day
+  CHECK(carry_all(farm_time("2026-07-13 15:00"), risk::Level::severe) == 2);
 }
 
 TEST_CASE("nobody is woken for a store that fails on a calm night") {

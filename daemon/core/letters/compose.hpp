@@ -75,6 +75,8 @@ struct StoreTrouble {
   std::string why;    // what was tried, on what, why not
   bool begun = true;  // false: it could not be opened, so nothing is read or judged
 };
+/// The day that a letter of it speaks of: from 06:00 to 06:00.
+CivilDay store_trouble_day(const Calendar& calendar, Instant at);
 /// One letter a recipient about a computer that can keep nothing: how each watched field stands,
 /// and what to look at. Its identity is that of the day (from 06:00 on) and of the worst level of
 /// the recipient's fields, which is its severity. The only letter that goes without standing in the

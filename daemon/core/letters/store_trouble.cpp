@@ -75,6 +75,10 @@ std::string brief_of(const Part& part, const StoreTrouble& trouble, const Desk& 
 
 }  // namespace
 
+CivilDay store_trouble_day(const Calendar& calendar, Instant at) {
+  return calendar.day_of(at - day_begins);
+}
+
 std::vector<Letter> compose_store_trouble(const StoreTrouble& trouble,
                                           std::span<const Recipient> recipients, const Desk& desk) {
   const Words words(desk);
@@ -88,7 +92,7 @@ std::vector<Letter> compose_store_trouble(const StoreTrouble& trouble,
     }
     Letter letter;
     const Level worst = worst_of(fields);
-    const CivilDay day = words.calendar().day_of(desk.now - day_begins);
+    const CivilDay day = store_trouble_day(words.calendar(), desk.now);
     const std::string stem = trouble.begun ? "store-trouble-" : "watch-stopped-";
     letter.id = calendar_id(stem + words.iso(day) + "-" + level_word(worst), recipient, desk);
     letter.recipient = recipient.address;

@@ -34,8 +34,15 @@ void Distress::note(const std::optional<Failure>& refused, Instant now) {
   why_ = "Could not " + refused->what + " (" + refused->on_what + "): " + refused->why;
 }
 
-/// What went stays told; what did not is tried again after a while.
-bool Distress::due(const letters::Letter& letter, Instant now) const {
+/// What went stays told, and with it all that is not graver on that day: a level that falls, at
+/// midnight perhaps, is no news. What did not go is tried again after a while.
+bool Distress::due(const letters::Letter& letter, CivilDay day, Instant now) const {
+  const bool known = std::any_of(told_.begin(), told_.end(), [&](const auto& entry) {
+    const Told& told = entry.second;
+    return entry.first.first == letter.recipient && told.over && told.day == day &&
+           told.severity >= letter.severity;
+  });
+  if (known) return false;
   const auto told = told_.find({letter.recipient, letter.id});
   if (told == told_.end()) return true;
   if (told->second.over) return false;
@@ -49,8 +56,9 @@ std::vector<std::string> Distress::carry(const settings::Settings& settings, con
   const auto letters =
       letters::compose_store_trouble({*since_, why_, begun_}, settings.recipients, desk());
   for (const letters::Letter& letter : letters) {
-    if (!due(letter, now) || lets_sleep(letter, settings, now)) continue;
-    told_[{letter.recipient, letter.id}] = {now, false};
+    const CivilDay day = letters::store_trouble_day(settings.calendar, now);
+    if (!due(letter, day, now) || lets_sleep(letter, settings, now)) continue;
+    told_[{letter.recipient, letter.id}] = {now, day, letter.severity, false};
     in_hand_ = letter;
     if (settings.mail->server) {
       send(*settings.mail->server, -1, letter);

@@ -49,9 +49,11 @@ class Distress {
  private:
   struct Told {
     Instant tried;
+    CivilDay day{};  // that it speaks of
+    alerts::Severity severity = alerts::Severity::minor;
     bool over = false;  // accepted, refused for good, or perhaps arrived
   };
-  bool due(const letters::Letter& letter, Instant now) const;
+  bool due(const letters::Letter& letter, CivilDay day, Instant now) const;
 
   bool begun_;
   std::optional<Instant> since_;
