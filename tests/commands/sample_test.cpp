@@ -151,6 +151,13 @@ TEST_CASE("check --sample prints a block and says what it reads") {
   CHECK(good.status == 0);
   CHECK(good.out.find("[station.drop]") != std::string::npos);
   CHECK(good.out.find("0 rows refused") != std::string::npos);
+  CHECK(good.out.find("line end") == std::string::npos);
+  // A file that is written anew each time and whose last line never ends: the service waits for it.
+  folder.write("latest.csv", std::string(header) + "2026-07-01 00:00,21.5,50,0");
+  const auto unended = program::run({"check", "--sample", folder / "latest.csv"});
+  CHECK(unended.out.find("1 reading, 0 rows refused") != std::string::npos);
+  CHECK(unended.out.find("its last line has no line end, and the service reads a line\n# once it "
+                         "ends.") != std::string::npos);
   const auto none = program::run({"check", "--sample", folder / "nothing.csv"});
   CHECK(none.status == 1);
   CHECK(none.err.find("cannot be read or is empty") != std::string::npos);

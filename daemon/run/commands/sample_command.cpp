@@ -94,7 +94,9 @@ Exit check_sample(const Invocation& call) {
                        "its first line is no text: " + station::visible(header, 60),
                        "nothing was written"});
   }
-  if (text.size() >= bytes_looked_at) text.resize(text.rfind('\n') + 1);
+  const bool cut = text.size() >= bytes_looked_at;
+  const bool unended = !cut && text.back() != '\n';
+  if (cut) text.resize(text.rfind('\n') + 1);
   const SampleText sample = split_sample(text);
   const SampleGuess guess = guess_form(sample);
   std::string block = block_of(guess, "5 min");
@@ -114,6 +116,10 @@ Exit check_sample(const Invocation& call) {
             << block;
   for (const std::string& doubt : guess.doubts) {
     std::cout << "# Look at " << doubt << (doubt.ends_with('?') ? "\n" : ".\n");
+  }
+  if (unended) {
+    std::cout << "# Look at the end of the file: its last line has no line end, and the service "
+                 "reads a line\n# once it ends.\n";
   }
   if (!guess.missing.empty()) {
     std::cout << "# Not found: ";
