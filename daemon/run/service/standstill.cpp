@@ -4,6 +4,7 @@
 #include <boost/asio.hpp>
 #include <utility>
 
+#include "edge/clock/clock.hpp"
 #include "run/service/log.hpp"
 #include "run/service/mail_worker.hpp"
 #include "run/service/manager.hpp"
@@ -27,7 +28,7 @@ class Standstill {
               [this](auto, auto spoken) { report_mail(std::move(spoken)); }) {}
 
   Opened wait(const Failure& first) {
-    const auto began = std::chrono::steady_clock::now();
+    const auto began = clock::steady_now();
     signals_.heed_reload([this] { asio::post(io_, [this] { reload(); }); });
     if (options_.stop_after) {
       end_.expires_after(*options_.stop_after);
@@ -43,7 +44,7 @@ class Standstill {
     signals_.heed_reload({});
     mail_.stop();
     if (options_.stop_after) {
-      *options_.stop_after -= std::chrono::floor<Seconds>(std::chrono::steady_clock::now() - began);
+      *options_.stop_after -= std::chrono::floor<Seconds>(clock::steady_now() - began);
     }
     return std::move(*opened_);
   }
