@@ -2,6 +2,8 @@
 #include <signal.h>
 #include <sqlite3.h>
 
+#include <algorithm>
+
 #include "program.hpp"
 #include "service/ground.hpp"
 #include "support/catch.hpp"
@@ -187,8 +189,23 @@ TEST_CASE("the review is mailed through a running service, which keeps its store
   const auto mailed = program::run({"review", "--mail"}, folder.path());
   INFO(mailed.out << mailed.err);
   CHECK(mailed.status == 0);
-  CHECK(holds(mailed.out, "were put into the outbox"));
+  CHECK(holds(mailed.out, "put into the outbox"));
   CHECK(service.running());
+  auto stored = store::Store::open({.folder = folder / "store",
+                                    .read_only = true,
+                                    .service = false,
+                                    .now = {},
+                                    .patience = seconds{5},
+                                    .page_limit = 0,
+                                    .haste = nullptr});
+  REQUIRE(stored);
+  const auto items = stored->letters_since(Instant{});
+  REQUIRE(items);
+  // Under the identity of the week's own review that one would never be sent.
+  const auto asked = std::count_if(items->begin(), items->end(), [](const auto& item) {
+    return item.letter.kind == "weekly" && item.letter.id.starts_with("asked-");
+  });
+  CHECK(asked == 1);
 }
 
 TEST_CASE("signals that come while the store is opened are heeded: reload later, stop at once") {

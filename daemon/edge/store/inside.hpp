@@ -101,6 +101,7 @@ struct Store::Inside {
   void put(const std::string& station, const std::vector<weather::Hour>& hours);
   void remove(const std::string& station, const std::vector<HourStart>& hours);
   void put(const std::vector<outbox::Item>& letters);
+  void put(const outbox::Item& item, const outbox::Line& line);
   void merge(const std::vector<Merger>& mergers);
 
   Failure failure_of(const char* what, const Trouble& trouble);

@@ -127,29 +127,45 @@ Result<std::optional<outbox::Item>> Store::letter(std::int64_t id) const {
   });
 }
 
+void Store::Inside::put(const outbox::Item& item, const outbox::Line& line) {
+  database
+      ->use(
+          "UPDATE letter SET state = ?, attempts = ?, doubts = ?, next_try = ?, first_try = ?, "
+          "ended = ?, answer = ?, valid_until = ? WHERE id = ?")
+      .bind(word_of(state_words, item.state), item.attempts, item.doubts, item.next_try,
+            item.first_try, item.ended, item.answer, item.letter.valid_until, item.id)
+      .run();
+  if (database->changes() != 1) {
+    throw Trouble{SQLITE_NOTFOUND, "there is no letter " + std::to_string(item.id),
+                  "nothing was changed"};
+  }
+  database
+      ->use(
+          "INSERT INTO line(id, failures, next_try, last_success, trouble) "
+          "VALUES(1, ?, ?, ?, ?) ON CONFLICT(id) DO UPDATE SET failures = excluded.failures, "
+          "next_try = excluded.next_try, last_success = excluded.last_success, "
+          "trouble = excluded.trouble")
+      .bind(line.failures, line.next_try, line.last_success, line.trouble)
+      .run();
+}
+
 Outcome Store::update(const outbox::Item& item, const outbox::Line& line) {
   return inside_->write("keep what became of a letter", [&] {
-    Database& database = *inside_->database;
-    database
-        .use(
-            "UPDATE letter SET state = ?, attempts = ?, doubts = ?, next_try = ?, first_try = ?, "
-            "ended = ?, answer = ?, valid_until = ? WHERE id = ?")
-        .bind(word_of(state_words, item.state), item.attempts, item.doubts, item.next_try,
-              item.first_try, item.ended, item.answer, item.letter.valid_until, item.id)
-        .run();
-    if (database.changes() != 1) {
-      throw Trouble{SQLITE_NOTFOUND, "there is no letter " + std::to_string(item.id),
-                    "nothing was changed"};
-    }
-    database
-        .use(
-            "INSERT INTO line(id, failures, next_try, last_success, trouble) "
-            "VALUES(1, ?, ?, ?, ?) ON CONFLICT(id) DO UPDATE SET failures = excluded.failures, "
-            "next_try = excluded.next_try, last_success = excluded.last_success, "
-            "trouble = excluded.trouble")
-        .bind(line.failures, line.next_try, line.last_success, line.trouble)
-        .run();
+    inside_->put(item, line);
     return Done{};
+  });
+}
+
+Result<bool> Store::update_if(const outbox::Item& was, const outbox::Item& item,
+                              const outbox::Line& line) {
+  return inside_->write("keep what is wanted of a letter", [&] {
+    Statement same = inside_->database->use(
+        "SELECT 1 FROM letter WHERE id = ? AND state = ? AND attempts = ? AND doubts = ?");
+    if (!same.bind(was.id, word_of(state_words, was.state), was.attempts, was.doubts).step()) {
+      return false;
+    }
+    inside_->put(item, line);
+    return true;
   });
 }
 

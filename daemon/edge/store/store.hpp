@@ -144,6 +144,11 @@ class Store {
   /// Keeps an item's new state and the line's, in one transaction. The words of a stored letter
   /// never change. Fails when there is no such letter.
   Outcome update(const outbox::Item& item, const outbox::Line& line);
+  /// The same beside a service that may carry the letter just now.
+  /// @return false, and nothing is kept, where its state, attempts or doubts are no longer as in
+  /// `was`
+  Result<bool> update_if(const outbox::Item& was, const outbox::Item& item,
+                         const outbox::Line& line);
   Result<outbox::Line> line() const;
 
   // Small facts by name.

@@ -47,8 +47,11 @@ Exit retry_letter(store::Store& store, std::int64_t id, Instant now) {
   }
   const auto line = store.line();
   if (!line) return say(line.failure());
-  if (auto done = store.update(outbox::retry(**item, now), outbox::reopen(*line)); !done) {
-    return say(done.failure());
+  const auto kept = store.update_if(**item, outbox::retry(**item, now), outbox::reopen(*line));
+  if (!kept) return say(kept.failure());
+  if (!*kept || (*item)->state == outbox::State::sending) {
+    return say(Failure{"retry a letter", std::to_string(id), "the service is sending it just now",
+                       "nothing was changed; \"antherd letters\" tells what becomes of it"});
   }
   std::cout << "Letter " << id << " waits again; the service sends it.\n";
   return Exit::done;

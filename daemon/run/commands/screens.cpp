@@ -50,6 +50,8 @@ Exit put_into_outbox(const settings::Settings& settings,
   for (const letters::Letter& letter : letters) {
     outbox::Item item;
     item.letter = letter;
+    // A name of its own: asked for within its week it must not stand for the review that comes.
+    item.letter.id = "asked-" + std::to_string(now.time_since_epoch().count()) + "-" + letter.id;
     item.next_try = now;
     decision.letters.push_back(std::move(item));
   }

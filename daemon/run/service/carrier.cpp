@@ -166,6 +166,11 @@ std::vector<std::string> Carrier::carry(Instant now) {
 
 std::string Carrier::write_file(outbox::Item item, Instant now) {
   const auto letter = outbox::as_sent(item, now);
+  // As before the last dot: whoever fetches the files may have it when we end before saying so.
+  if (auto done = keep(outbox::doubt(item, now)); !done) {
+    return received(item.id,
+                    {mail::How::wait, mail::About::server, 0, done.failure().sentence(), ""}, now);
+  }
   const auto path = mail::write_eml(settings_->mail->folder, settings_->mail->from, letter);
   mail::Spoken spoken;
   spoken.how = path ? mail::How::accepted : mail::How::wait;
