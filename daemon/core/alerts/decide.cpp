@@ -242,6 +242,23 @@ namespace {
 
 bool is_ahead(const Said& entry, Instant now) { return entry.at > now; }
 
+// A clock that was put back by less than the time between two reminders: what was last said was
+// said lately, though put_right counts it as said with its change, a day ago perhaps.
+bool said_lately(const Telling& telling, std::span<const Said> said, const Policy& policy,
+                 Instant now) {
+  if (telling.saying != Saying::reminder) return false;
+  const Said* last = nullptr;
+  for (const Said& entry : said) {
+    if (entry.kind != telling.kind || entry.subject != telling.subject) continue;
+    const auto later = [&] {
+      return std::tie(entry.place, entry.at) >= std::tie(last->place, last->at);
+    };
+    if (last == nullptr || later()) last = &entry;
+  }
+  return last != nullptr && is_ahead(*last, now) && last->at - now < policy.remind_after &&
+         !says_over(*last);
+}
+
 // Were an entry of a clock that stood years ahead left as it is, all that happens until then would
 // pass for the same story, told long ago.
 Said put_right(Said entry, Instant now) {
@@ -260,6 +277,7 @@ Said put_right(Said entry, Instant now) {
 std::vector<Telling> decide(std::span<const Episode> episodes, std::span<const Notice> notices,
                             std::span<const Said> said, const Policy& policy, Instant now) {
   std::vector<Said> righted;
+  const std::span<const Said> as_said = said;
   if (std::any_of(said.begin(), said.end(), [&](const Said& s) { return is_ahead(s, now); })) {
     for (const Said& entry : said) righted.push_back(put_right(entry, now));
     said = righted;
@@ -269,7 +287,7 @@ std::vector<Telling> decide(std::span<const Episode> episodes, std::span<const N
   for (const Story& story : stories) {
     auto telling = telling_of(story, policy, now);
     if (!telling || waits_for_morning(*telling, policy, now)) continue;
-    if (overtaken(*telling, stories)) continue;
+    if (overtaken(*telling, stories) || said_lately(*telling, as_said, policy, now)) continue;
     if (!known_already(*telling, said, policy)) tellings.push_back(std::move(*telling));
   }
   for (Telling& telling : tellings_of(notices, said, policy, now)) {

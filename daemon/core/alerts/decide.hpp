@@ -82,7 +82,8 @@ struct Policy {
 ///                  last 8 days (an earlier end would look like a gap that was filled)
 /// @param said      the ledger of those subjects, at least as far back
 ///                  What bears a later time than `now` was said by a clock that stood ahead: it
-///                  counts as said with the change it spoke of, and reaches no further.
+///                  counts as said with the change it spoke of, and reaches no further. Where
+///                  that clock was ahead by less than remind_after no reminder comes meanwhile.
 /// @return tellings in order of severity, then subject
 std::vector<Telling> decide(std::span<const Episode> episodes, std::span<const Notice> notices,
                             std::span<const Said> said, const Policy& policy, Instant now);

@@ -294,3 +294,15 @@ TEST_CASE("two silences that only a wrong clock made are over with one word") {
   }
   CHECK(heard == "ended none@23 ");
 }
+
+TEST_CASE("a reminder is not said again when the clock is put back by some hours") {
+  const Episode e = heat(7, {{10, moderate}, {400, none}}, true);
+  Service service;
+  REQUIRE(service.tick({known_at(e, at(10))}, at(10)).size() == 1);
+  REQUIRE(service.tick({e}, at(46)).size() == 1);  // a reminder, by a clock that is 10 h ahead
+  CHECK(service.run({e}, 36, 75) == "reminder Moderate@70 ");
+  Service far;  // two days ahead: the reminders that are due come
+  REQUIRE(far.tick({known_at(e, at(10))}, at(10)).size() == 1);
+  REQUIRE(far.tick({e}, at(84)).size() == 1);
+  CHECK(far.run({e}, 36, 50) == "reminder Moderate@36 ");
+}
