@@ -132,6 +132,26 @@ TEST_CASE("a service that slept at the time: the review follows, the daily line 
   }
 }
 
+TEST_CASE("a computer that is never up at the time makes its review and its line all the same") {
+  const auto up_daily = [](Bench& bench, const char* first, int lasting, Seconds up) {
+    for (int day = 0; day < lasting; ++day) {
+      const Instant on = farm_time(first) + days{day};
+      bench.drop("bench.csv", readings(Weather{}, farm_time("2026-06-25 00:00"), on));
+      bench.open(on);
+      for (Instant now = on; now <= on + up; now += minutes{30}) bench.turn(now);
+      if (day + 1 < lasting) bench.close(on + up);
+    }
+  };
+  Bench by_day;  // a Tuesday
+  up_daily(by_day, "2026-07-07 08:00", 14, hours{8});
+  CHECK(decided(by_day, "weekly") ==
+        std::vector<std::string>{"2026-07-13 08:00", "2026-07-20 08:00"});
+  Bench by_night;
+  up_daily(by_night, "2026-07-11 20:00", 4, hours{1});
+  CHECK(decided(by_night, "daily") ==
+        std::vector<std::string>{"2026-07-12 20:00", "2026-07-13 20:00", "2026-07-14 20:00"});
+}
+
 TEST_CASE("a clock that once stood years ahead does not silence the review for ever") {
   Bench bench;
   bench.open(farm_time("2046-07-01 12:00"));

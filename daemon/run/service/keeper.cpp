@@ -45,9 +45,10 @@ Outcome Keeper::load(Instant now) {
     if (!note) return note.failure();
     *slot = instant_of(*note);
   }
-  // What fell due before the first start was never promised.
-  if (!last_daily_) last_daily_ = now;
-  if (!last_weekly_) last_weekly_ = now;
+  // What fell due before the first start was never promised. Counted from this start instead, a
+  // computer that is off each Monday at six would never make its first review.
+  if (!last_daily_) last_daily_ = first_start;
+  if (!last_weekly_) last_weekly_ = first_start;
   const auto beginning = store_.beginning();
   if (!beginning) return beginning.failure();
   if (const auto& b = *beginning) {
