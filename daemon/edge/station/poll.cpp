@@ -108,4 +108,8 @@ Seconds poll_delay(const HttpForm& form, const PollMemory& memory, double jitter
   return std::max(form.every, Seconds{static_cast<Seconds::rep>(delay)});
 }
 
+Seconds longest_poll_delay(const HttpForm& form) {
+  return std::max(form.every, limits::longest_back_off);
+}
+
 }  // namespace antherd::station

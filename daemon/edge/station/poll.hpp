@@ -39,5 +39,7 @@ Answer poll(const HttpForm& form, const PollMemory& memory, const std::function<
 /// When to ask again: the form's `every`, after failures doubled up to 15 min with jitter 0…1 of
 /// 20 %.
 Seconds poll_delay(const HttpForm& form, const PollMemory& memory, double jitter01);
+/// The longest of these.
+Seconds longest_poll_delay(const HttpForm& form);
 
 }  // namespace antherd::station

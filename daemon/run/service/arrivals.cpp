@@ -97,8 +97,9 @@ store::Notes DeskWork::note_arrivals(const std::string& name, const station::Rea
   return {{key_of(name), text_of(source.arrivals)}};
 }
 
-/// A clock that is put forward shows rows in another light that it had refused as ahead: the files
-/// that still hold them are read anew.
+/// Between two turns lies a sleep of the computer, or its clock was put forward. Of the stations
+/// that are polled nothing can be known: they are asked before any is called silent. And rows that
+/// were refused as ahead stand in another light: the files that hold them are read anew.
 void DeskWork::mind_step(Instant now, bool clock_set) {
   if (!clock_set) return;
   const bool forward = last_turn_ && now - *last_turn_ > a_step;
@@ -107,6 +108,13 @@ void DeskWork::mind_step(Instant now, bool clock_set) {
   for (auto& [name, source] : sources_) {
     if (!source.arrivals.any_refused()) continue;
     source.arrivals.forget_refused();
+  for (const auto& station : settings_->stations) {
+    if (!station.http) continue;
+    Source& source = sources_.at(station.station.name);
+    source.answered = false;
+    source.next_poll = now;
+    if (!settling_since_) settling_since_ = now;
+  }
     source.bookmarks.clear();
     keeper_->lookout().set_arrivals(name, source.arrivals);
     look_due_ = true;

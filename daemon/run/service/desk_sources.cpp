@@ -121,10 +121,16 @@ void DeskWork::look_into_diary(Instant now) {
   diary_version_ = version;
 }
 
+/// Also when the next time lies further ahead than any is set: the clock was put back meanwhile.
+bool DeskWork::poll_due(const settings::Station& station, const Source& source, Instant now) {
+  return now >= source.next_poll ||
+         source.next_poll - now > station::longest_poll_delay(*station.http);
+}
+
 void DeskWork::ask_stations(Instant now) {
   for (const auto& station : settings_->stations) {
     Source& source = sources_.at(station.station.name);
-    if (!station.http || source.asked || now < source.next_poll || !ask_) continue;
+    if (!station.http || source.asked || !poll_due(station, source, now) || !ask_) continue;
     source.asked = true;
     ask_(station.station.name, *station.http, source.memory);
   }

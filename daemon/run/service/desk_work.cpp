@@ -11,8 +11,7 @@ namespace antherd::service {
 namespace {
 
 constexpr Seconds scan_every{60};
-constexpr Seconds longest_poll_pause{15 * 60};  // back-off after failures
-constexpr Seconds settles_within{90};           // after a start; a poll takes 20 s at most
+constexpr Seconds settles_within{90};  // after a start; a poll takes 20 s at most
 
 }  // namespace
 
@@ -117,7 +116,8 @@ Instant DeskWork::turn_at(Instant now) {
   wake = std::min(wake, keeper_->next_wake(now));
   for (const auto& station : settings_->stations) {
     const Source& source = sources_.at(station.station.name);
-    if (station.http && !source.asked) wake = std::min(wake, std::max(now, source.next_poll));
+    if (!station.http || source.asked) continue;
+    wake = std::min(wake, poll_due(station, source, now) ? now : source.next_poll);
   }
   if (const auto again = carrier_->look_again(now)) wake = std::min(wake, std::max(now, *again));
   return wake;
@@ -161,7 +161,7 @@ void DeskWork::give_sign_of_life(bool kept_well, Instant now) {
       [&](const settings::Station& station) {
         const auto& at = sources_.at(station.station.name).looked;
         const Seconds patience =
-            2 * (station.http ? std::max(station.http->every, longest_poll_pause) : scan_every);
+            2 * (station.http ? station::longest_poll_delay(*station.http) : scan_every);
         return at && now >= *at && now - *at <= patience;
       });
   if (const auto url = heartbeat_.beat(settings_->watch, kept_well && looked, now)) beat_(*url);

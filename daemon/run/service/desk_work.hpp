@@ -96,6 +96,7 @@ class DeskWork {
   std::optional<Instant> known_time() const;
   void mind_clock(Instant now, bool clock_set, std::optional<Instant> known);
   Instant turn_at(Instant now);
+  static bool poll_due(const settings::Station& station, const Source& source, Instant now);
   void look(Instant now);
   bool look_into_drop(const settings::Station& station, Source& source, Instant now);
   void look_into_diary(Instant now);
