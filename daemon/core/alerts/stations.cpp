@@ -199,7 +199,8 @@ std::vector<Episode> silences(const StationWatch& watch, std::span<const Silence
                               Instant now) {
   std::vector<Trouble> troubles;
   for (const Silence& gap : gaps) {
-    troubles.push_back(Trouble{gap.last, gap.last + patience_of(watch), gap.back, {}});
+    const Instant waited_from = std::max(gap.last, gap.waited_from.value_or(gap.last));
+    troubles.push_back(Trouble{gap.last, waited_from + patience_of(watch), gap.back, {}});
   }
   const Manner manner{Kind::no_data,   watch.station,  Level::severe,
                       Level::moderate, watch.calendar, true};

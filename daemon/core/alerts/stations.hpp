@@ -32,6 +32,7 @@ struct StationWatch {
 struct Silence {
   Instant last;
   std::optional<Instant> back;
+  std::optional<Instant> waited_from = std::nullopt;  // when later than `last`: patience from here
   bool operator==(const Silence&) const = default;
 };
 

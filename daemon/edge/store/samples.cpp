@@ -108,12 +108,14 @@ Result<std::vector<weather::Sample>> Store::samples(const std::string& station, 
   });
 }
 
-Result<std::optional<Instant>> Store::last_sample(const std::string& station) const {
+Result<std::optional<Instant>> Store::last_sample(const std::string& station,
+                                                  Instant before) const {
   return inside_->read("read the newest sample", [&] {
     const auto id = inside_->known_station(station);
     if (!id) return std::optional<Instant>();
-    Statement row = inside_->database->use("SELECT max(time) FROM sample WHERE station = ?");
-    row.bind(*id).step();
+    Statement row =
+        inside_->database->use("SELECT max(time) FROM sample WHERE station = ? AND time < ?");
+    row.bind(*id, before).step();
     return row.maybe<Instant>();
   });
 }

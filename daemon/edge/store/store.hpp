@@ -107,7 +107,9 @@ class Store {
                              const Notes& notes = {});
   Result<std::vector<weather::Sample>> samples(const std::string& station, Instant from,
                                                Instant to) const;  // [from, to), in time order
-  Result<std::optional<Instant>> last_sample(const std::string& station) const;
+  /// The newest before a moment.
+  Result<std::optional<Instant>> last_sample(const std::string& station,
+                                             Instant before = Instant::max()) const;
   /// The newest sample with a temperature.
   Result<std::optional<Instant>> last_temperature(const std::string& station) const;
   Result<std::vector<weather::Sample>> conflicts(const std::string& station) const;

@@ -2,6 +2,7 @@
 // keeps it; and what becomes of rows that were ahead of a clock which is put forward later.
 #include <nlohmann/json.hpp>
 
+#include "edge/station/limits.hpp"
 #include "run/service/desk_work.hpp"
 #include "run/service/log.hpp"
 
@@ -10,7 +11,7 @@ namespace {
 
 using nlohmann::json;
 
-constexpr Seconds a_step{600};  // between two turns; by so much rows are refused as ahead
+constexpr Seconds a_step = station::limits::ahead;  // between two turns
 constexpr std::size_t most_hours = 24;
 
 std::string key_of(const std::string& station) { return "arrivals/" + station; }
@@ -63,13 +64,13 @@ weather::Arrivals stored_arrivals(const store::Store& store, const std::string& 
 }
 
 /// At a start. The clock may have been put right meanwhile: what was ahead is looked at again.
-void DeskWork::remember_arrivals(const std::string& name, Source& source) {
+void DeskWork::remember_arrivals(const std::string& name, Source& source, Instant now) {
   source.arrivals = stored_arrivals(store_, name);
   if (source.arrivals.any_refused()) {
     source.arrivals.forget_refused();
     source.bookmarks.clear();
   }
-  source.newest = keeper_->lookout().last_sample(name);
+  source.newest = keeper_->lookout().last_sample(name, now + station::limits::ahead);
   keeper_->lookout().set_arrivals(name, source.arrivals);
 }
 
@@ -81,9 +82,11 @@ store::Notes DeskWork::note_arrivals(const std::string& name, const station::Rea
   const weather::Station& station = settings_->station(name)->station;
   std::optional<Instant> newest = source.newest;
   for (const auto& sample : readings.samples) {
+    if (sample.time > now + station::limits::ahead) continue;  // no clock set: a stray
     if (!newest || sample.time > *newest) newest = sample.time;
   }
   const bool goes_on = source.newest && newest > source.newest;
+  if (newest != source.newest) source.heard = now - Seconds{ahead_.load()};
   source.newest = newest;
   if (!clock_set_) return {};
   if (readings.ahead > 0) source.arrivals.refused(now, readings.ahead, readings.least_ahead);
@@ -105,9 +108,6 @@ void DeskWork::mind_step(Instant now, bool clock_set) {
   const bool forward = last_turn_ && now - *last_turn_ > a_step;
   last_turn_ = now;
   if (!forward) return;
-  for (auto& [name, source] : sources_) {
-    if (!source.arrivals.any_refused()) continue;
-    source.arrivals.forget_refused();
   for (const auto& station : settings_->stations) {
     if (!station.http) continue;
     Source& source = sources_.at(station.station.name);
@@ -115,6 +115,9 @@ void DeskWork::mind_step(Instant now, bool clock_set) {
     source.next_poll = now;
     if (!settling_since_) settling_since_ = now;
   }
+  for (auto& [name, source] : sources_) {
+    if (!source.arrivals.any_refused()) continue;
+    source.arrivals.forget_refused();
     source.bookmarks.clear();
     keeper_->lookout().set_arrivals(name, source.arrivals);
     look_due_ = true;

@@ -19,7 +19,7 @@ void add_stations(std::vector<std::string>& sentences, const Lookout& lookout, I
   for (const alerts::Episode& episode : lookout.episodes()) {
     if (!episode.open()) continue;
     if (episode.kind == alerts::Kind::no_data) {
-      const auto last = lookout.last_sample(episode.subject);
+      const auto last = lookout.last_sample(episode.subject, now);
       const auto& story = desk.stations.at(episode.subject);
       const bool covered = story.stand_in.size() >= story.fields.size();
       sentences.push_back(

@@ -2,6 +2,7 @@
 #include <algorithm>
 
 #include "core/letters/words.hpp"
+#include "edge/station/limits.hpp"
 #include "run/service/attention.hpp"
 #include "run/service/desk_work.hpp"
 #include "run/service/log.hpp"
@@ -21,7 +22,8 @@ std::string DeskWork::status_line(Instant at) const {
   const Instant now = working(at);
   std::string line;
   for (const auto& station : settings_->stations) {
-    const auto last = keeper_->lookout().last_sample(station.station.name);
+    const auto last =
+        keeper_->lookout().last_sample(station.station.name, now + station::limits::ahead);
     line += station.station.name + ": " +
             (last ? "read " + age_text(now - *last) + " ago" : "no data yet") +
             (keeper_->lookout().lacks_temperature(station.station.name, now)

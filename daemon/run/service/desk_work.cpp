@@ -30,6 +30,7 @@ Result<std::unique_ptr<DeskWork>> DeskWork::open(std::shared_ptr<const settings:
   if (!store) return store.failure();
   std::unique_ptr<DeskWork> work(new DeskWork(std::move(settings), std::move(*store)));
   work->stopping_ = stopping;
+  work->never_set_ = !clock_set;
   work->log_beginning();
   work->mind_clock(now, clock_set, work->known_time());
   if (auto done = work->begin(work->working(now)); !done) return done.failure();
@@ -54,6 +55,7 @@ Outcome DeskWork::begin(Instant now) {
   for (const auto& station : settings_->stations) {
     Source& source = sources_[station.station.name];
     source.next_poll = now;
+    source.heard = now - Seconds{ahead_.load()};
     source.memory.mark = settings_number_;
     const std::string bookmarks = bookmark_prefix(station.station.name);
     if (station.drop && has_another_form(station, forms)) {
@@ -66,7 +68,7 @@ Outcome DeskWork::begin(Instant now) {
       auto bookmark = bookmark_of(text);
       if (bookmark) source.bookmarks.push_back(std::move(*bookmark));
     }
-    remember_arrivals(station.station.name, source);
+    remember_arrivals(station.station.name, source, now);
   }
   // Both at once: bookmarks that outlived the new form would never let its files be read.
   if (!forms.empty()) {
@@ -96,8 +98,10 @@ Instant DeskWork::turn_at(Instant now) {
   ask_stations(now);
   Kept kept;
   if (settled(now)) {
+    mind_waiting();
     kept = keeper_->step(now, clock_set_);
-    for (Failure& trouble : keeper_->tidy(now)) kept.troubles.push_back(std::move(trouble));
+    auto troubles = keeper_->tidy(now, clock_set_);
+    std::move(troubles.begin(), troubles.end(), std::back_inserter(kept.troubles));
   } else if (auto done = keeper_->flush(now); !done) {
     kept.troubles.push_back(done.failure());
   }

@@ -89,14 +89,16 @@ class DeskWork {
     bool waits = false;  // its files are not read on: the store takes nothing and memory is full
     weather::Arrivals arrivals;
     std::optional<Instant> newest;  // reading
+    Instant heard;                  // by the computer's time: newer than it came, or waited since
   };
 
   DeskWork(std::shared_ptr<const settings::Settings> settings, store::Store store);
   Outcome begin(Instant now);
   std::optional<Instant> known_time() const;
   void mind_clock(Instant now, bool clock_set, std::optional<Instant> known);
-  Instant turn_at(Instant now);
+  void mind_waiting();
   static bool poll_due(const settings::Station& station, const Source& source, Instant now);
+  Instant turn_at(Instant now);
   void look(Instant now);
   bool look_into_drop(const settings::Station& station, Source& source, Instant now);
   void look_into_diary(Instant now);
@@ -105,7 +107,7 @@ class DeskWork {
   bool has_another_form(const settings::Station& station, store::Notes& forms) const;
   void take_readings(const std::string& station, const station::Readings& readings,
                      const store::Notes& notes, Instant now);
-  void remember_arrivals(const std::string& name, Source& source);
+  void remember_arrivals(const std::string& name, Source& source, Instant now);
   store::Notes note_arrivals(const std::string& station, const station::Readings& readings,
                              Instant now);
   void mind_step(Instant now, bool clock_set);
@@ -138,6 +140,7 @@ class DeskWork {
   std::map<std::string, std::string> logged_;  // the last sentence of each kind of trouble
   std::atomic<std::int64_t> ahead_{0};         // s from the computer's clock to working()
   bool clock_set_ = true;
+  bool never_set_ = false;            // in this life
   std::optional<Instant> last_turn_;  // by a clock that is set
   std::string diary_version_ = "unread";
   Instant next_look_{};

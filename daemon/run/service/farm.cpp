@@ -40,6 +40,19 @@ HourStart closed_before(const weather::Station& station, std::optional<Instant> 
   return std::max(by_time, std::min(hour_of(*last_sample - shift), hour_of(now)));
 }
 
+std::optional<Instant> newest_in_company(std::span<const Instant> times, Seconds interval) {
+  for (std::size_t i = times.size(); i-- > 1;) {
+    if (times[i] - times[i - 1] <= 2 * interval) return times[i];
+  }
+  return std::nullopt;
+}
+
+std::optional<Instant> newest_believed(std::span<const Instant> times, Seconds interval) {
+  if (times.empty()) return std::nullopt;
+  const auto newest = times.last(std::min(times.size(), times_in_question));
+  return newest_in_company(newest, interval).value_or(newest.front());
+}
+
 std::string farm_text(const Calendar& calendar, Instant at) {
   const CivilTime civil = calendar.civil(at);
   const CivilDate date{std::chrono::floor<std::chrono::days>(civil)};

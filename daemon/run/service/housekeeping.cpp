@@ -6,16 +6,19 @@
 
 namespace antherd::service {
 
-std::vector<Failure> Keeper::tidy(Instant now) {
+std::vector<Failure> Keeper::tidy(Instant now, bool clock_set) {
   std::vector<Failure> troubles;
   const CivilDay today = settings_->calendar.day_of(now);
   if (tidied_ == today) return troubles;
   const auto note = [&](const Outcome& done) {
     if (!done) troubles.push_back(done.failure());
   };
-  // Old by the readings too: a clock that is wrong by years must not throw a season away.
+  // Old by the readings too: a clock that is wrong by years must not throw a season away, and where
+  // neither it nor they are believed nothing is thrown away.
   const auto newest = lookout_.time_of_stations();
-  note(store_.drop_samples_before(std::min(now, newest.value_or(now)) - settings_->keep_samples));
+  if (clock_set || newest) {
+    note(store_.drop_samples_before(std::min(now, newest.value_or(now)) - settings_->keep_samples));
+  }
   note(store_.keep_ballast());
   if (!store_.has_copy_of_week(now)) note(store_.copy_without_samples(now));
   tidied_ = today;

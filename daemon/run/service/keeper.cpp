@@ -5,6 +5,7 @@
 #include <charconv>
 #include <utility>
 
+#include "edge/station/limits.hpp"
 #include "run/service/farm.hpp"
 #include "run/service/review.hpp"
 
@@ -186,7 +187,8 @@ Closed Keeper::closed_at(Instant now) const {
   Closed closed;
   for (const auto& station : settings_->stations) {
     const std::string& name = station.station.name;
-    closed[name] = closed_before(station.station, lookout_.last_sample(name), now);
+    const auto last = lookout_.last_sample(name, now + station::limits::ahead);
+    closed[name] = closed_before(station.station, last, now);
   }
   return closed;
 }
@@ -212,7 +214,7 @@ bool Keeper::batch_due(const std::string& station, const Batch& batch, Instant n
   if (now - batch.since >= batch_for || now < batch.since) return true;
   if (batch.samples.empty()) return false;
   // A sample at or after the end of the running hour closes it: decisions do not wait for a batch.
-  const auto last = lookout_.last_of_any(station);
+  const auto last = lookout_.last_of_any(station, now + station::limits::ahead);
   const auto newest =
       std::max_element(batch.samples.begin(), batch.samples.end(),
                        [](const auto& a, const auto& b) { return a.time < b.time; });
@@ -241,7 +243,8 @@ void Keeper::heed_clock(Instant now) {
 
 Kept Keeper::step(Instant now, bool clock_set) {
   Kept kept;
-  if (clock_set) heed_clock(now);
+  // Where the clock is not set the stations' time is gone by, once they have told it.
+  if (clock_set || lookout_.time_of_stations()) heed_clock(now);
   for (auto& [station, batch] : batches_) {
     if (!batch_due(station, batch, now)) continue;
     if (auto done = store_batch(station, batch); !done) kept.troubles.push_back(done.failure());

@@ -52,7 +52,7 @@ class Keeper {
 
   /// Housekeeping of a day: samples past their time go, the ballast is put back; a copy of
   /// the store without samples where this week has none yet. @return what did not work
-  std::vector<Failure> tidy(Instant now);
+  std::vector<Failure> tidy(Instant now, bool clock_set);
 
   /// Stores what is due, turns the lookout, adds daily and weekly letters, saves.
   Kept step(Instant now, bool clock_set);

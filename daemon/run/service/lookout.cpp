@@ -6,6 +6,7 @@
 #include <utility>
 
 #include "core/alerts/stations.hpp"
+#include "edge/station/limits.hpp"
 #include "run/service/farm.hpp"
 
 namespace antherd::service {
@@ -13,12 +14,18 @@ namespace {
 
 constexpr auto sample_times_kept = std::chrono::days{10};
 
-void keep_times(std::vector<Instant>& kept, const std::vector<Instant>& times) {
+/// The newest of sorted times up to a moment.
+std::optional<Instant> newest_until(const std::vector<Instant>& times, Instant until) {
+  const auto later = std::upper_bound(times.begin(), times.end(), until);
+  return later == times.begin() ? std::nullopt : std::optional(*std::prev(later));
+}
+
+void keep_times(std::vector<Instant>& kept, const std::vector<Instant>& times, Seconds interval) {
   if (times.empty()) return;
   kept.insert(kept.end(), times.begin(), times.end());
   std::sort(kept.begin(), kept.end());
   kept.erase(std::unique(kept.begin(), kept.end()), kept.end());
-  const Instant oldest = kept.back() - sample_times_kept;
+  const Instant oldest = *newest_believed(kept, interval) - sample_times_kept;
   kept.erase(kept.begin(), std::lower_bound(kept.begin(), kept.end(), oldest));
 }
 
@@ -102,11 +109,13 @@ void Lookout::set_diary(const std::string& field, field::Diary diary) {
 }
 
 void Lookout::add_sample_times(const std::string& station, const std::vector<Instant>& times) {
-  keep_times(stations_.at(station).times, times);
+  StationMemory& memory = stations_.at(station);
+  keep_times(memory.times, times, memory.station.interval);
 }
 
 void Lookout::add_bare_times(const std::string& station, const std::vector<Instant>& times) {
-  keep_times(stations_.at(station).bare_times, times);
+  StationMemory& memory = stations_.at(station);
+  keep_times(memory.bare_times, times, memory.station.interval);
 }
 
 void Lookout::add_samples(const std::string& station, const std::vector<weather::Sample>& samples) {
@@ -138,6 +147,10 @@ void Lookout::set_source_news(const std::string& station, SourceNews news) {
   stations_.at(station).news = std::move(news);
 }
 
+void Lookout::set_waited_from(const std::string& station, std::optional<Instant> from) {
+  stations_.at(station).waited_from = from;
+}
+
 void Lookout::set_arrivals(const std::string& station, weather::Arrivals arrivals) {
   stations_.at(station).arrivals = std::move(arrivals);
 }
@@ -156,9 +169,12 @@ void Lookout::fold_field(FieldMemory& field, const Closed& closed) {
   for (const std::string& station : field.plan.field.stations) {
     hours.emplace_back(stations_.at(station).judged);
   }
+  // A clock that stood far ahead: the season was folded into days that never were.
+  const HourStart due = std::max(until, field.plan.first_hour());
+  if (field.folded_until - due > std::chrono::days{1}) field.stale = true;
   if (field.stale || field.folded_until == HourStart{}) {
     field.state = season::fold(field.plan, field.diary, hours, until);
-    field.folded_until = std::max(until, field.plan.first_hour());
+    field.folded_until = due;
     field.stale = false;
     return;
   }
@@ -209,7 +225,8 @@ Turn Lookout::turn(Instant now, const Closed& closed, bool clock_set) {
 letters::StationStory Lookout::story_of(const StationMemory& station, Instant now) const {
   letters::StationStory story;
   story.station = station.station.name;
-  story.last_reading = last_sample(station.station.name);
+  const Instant until = now + station::limits::ahead;
+  story.last_reading = last_sample(station.station.name, until);
   story.no_temperature = lacks_temperature(station.station.name, now);
   story.fields = fields_of(*settings_, station.station.name);
   for (const std::string& name : story.fields) {
@@ -219,7 +236,7 @@ letters::StationStory Lookout::story_of(const StationMemory& station, Instant no
   }
   for (const std::string& name : story.fields) {
     for (const std::string& other : settings_->field(name)->field.stations) {
-      const auto last = last_sample(other);
+      const auto last = last_sample(other, until);
       const bool fresh = last && now - *last < settings_->station(other)->station.silent_after;
       if (other == station.station.name || !fresh) continue;
       story.stand_in[name] = other;
@@ -287,34 +304,30 @@ season::StationHours Lookout::hours_of(const std::string& field) const {
   return hours;
 }
 
-std::optional<Instant> Lookout::last_sample(const std::string& station) const {
-  const auto& times = stations_.at(station).times;
-  return times.empty() ? std::nullopt : std::optional(times.back());
+std::optional<Instant> Lookout::last_sample(const std::string& station, Instant until) const {
+  return newest_until(stations_.at(station).times, until);
 }
 
-std::optional<Instant> Lookout::last_of_any(const std::string& station) const {
-  const auto& bare = stations_.at(station).bare_times;
-  const auto last = last_sample(station);
-  if (bare.empty()) return last;
-  return last ? std::max(*last, bare.back()) : bare.back();
+std::optional<Instant> Lookout::last_of_any(const std::string& station, Instant until) const {
+  const auto bare = newest_until(stations_.at(station).bare_times, until);
+  const auto last = last_sample(station, until);
+  return last && bare ? std::max(last, bare) : (last ? last : bare);
 }
 
 bool Lookout::lacks_temperature(const std::string& station, Instant now) const {
   const StationMemory& memory = stations_.at(station);
   const Seconds patience = memory.station.silent_after;
-  if (memory.bare_times.empty() || now - memory.bare_times.back() > patience) return false;
-  return memory.times.empty() || now - memory.times.back() >= patience;
+  const auto bare = newest_until(memory.bare_times, now + station::limits::ahead);
+  const auto whole = newest_until(memory.times, now + station::limits::ahead);
+  return bare && now - *bare <= patience && (!whole || now - *whole >= patience);
 }
 
 std::optional<Instant> Lookout::time_of_stations() const {
   std::optional<Instant> newest;
   for (const auto& [name, station] : stations_) {
     for (const auto* times : {&station.times, &station.bare_times}) {
-      for (std::size_t i = times->size(); i-- > 1;) {
-        if ((*times)[i] - (*times)[i - 1] > 2 * station.station.interval) continue;
-        newest = newest ? std::max(*newest, (*times)[i]) : (*times)[i];
-        break;
-      }
+      const auto time = newest_in_company(*times, station.station.interval);
+      if (time && (!newest || *time > *newest)) newest = time;
     }
   }
   return newest;

@@ -43,7 +43,8 @@ class Lookout {
                      std::vector<weather::Hour> fresh);
   void set_diary(const std::string& field, field::Diary diary);
   /// Times of accepted samples that hold a temperature, any order, repeats allowed; the last 10
-  /// days are kept. Without a temperature no heat is watched, so only these break a silence.
+  /// days are kept, counted from the newest that can be believed: a stray stamp makes nothing
+  /// forgotten. Without a temperature no heat is watched, so only these break a silence.
   void add_sample_times(const std::string& station, const std::vector<Instant>& times);
   /// Likewise of samples without one.
   void add_bare_times(const std::string& station, const std::vector<Instant>& times);
@@ -57,6 +58,9 @@ class Lookout {
   /// How old the station's readings were when they came; live arrivals alone.
   void set_arrivals(const std::string& station, weather::Arrivals arrivals);
   void set_source_news(const std::string& station, SourceNews news);
+  /// While the computer's clock was never set: from when on the station is waited for, so that its
+  /// silence is no longer than this desk has heard it. Nothing: the stamps alone say it.
+  void set_waited_from(const std::string& station, std::optional<Instant> from);
   /// Episodes of the mail as the outbox tells them.
   void set_mail_troubles(std::vector<alerts::Episode> troubles) {
     mail_troubles_ = std::move(troubles);
@@ -77,9 +81,11 @@ class Lookout {
   /// The same with what shows only over days (weather/suspicion.hpp): what is folded and shown.
   const std::vector<weather::Hour>& judged_hours(const std::string& station) const;
   /// The newest with a temperature.
-  std::optional<Instant> last_sample(const std::string& station) const;
+  std::optional<Instant> last_sample(const std::string& station,
+                                     Instant until = Instant::max()) const;
   /// The newest, whatever it holds.
-  std::optional<Instant> last_of_any(const std::string& station) const;
+  std::optional<Instant> last_of_any(const std::string& station,
+                                     Instant until = Instant::max()) const;
   /// Whether the station still sends readings, but for long none with a temperature.
   bool lacks_temperature(const std::string& station, Instant now) const;
   /// The newest sample that follows another within two intervals, of any station: by these a
@@ -108,11 +114,13 @@ class Lookout {
     std::vector<Instant> bare_times;  // of those without
     SourceNews news;
     weather::Arrivals arrivals;
+    std::optional<Instant> waited_from;
   };
 
   void judge_anew(const std::string& name, StationMemory& station, std::size_t unchanged);
   void fold_field(FieldMemory& field, const Closed& closed);
   void gather_station_episodes(const StationMemory& station, Instant now);
+  std::optional<Instant> silence_told(const std::string& station) const;
   void heed_arrivals(const StationMemory& station, Seconds patience, Instant now,
                      std::vector<alerts::Silence>& gaps) const;
   letters::StationStory story_of(const StationMemory& station, Instant now) const;

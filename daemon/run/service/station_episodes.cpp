@@ -3,6 +3,7 @@
 #include <map>
 
 #include "core/alerts/stations.hpp"
+#include "edge/station/limits.hpp"
 #include "run/service/farm.hpp"
 #include "run/service/lookout.hpp"
 
@@ -70,6 +71,18 @@ std::vector<alerts::FailingHour> failing_hours(const std::vector<weather::Hour>&
 
 }  // namespace
 
+/// The beginning of a silence of the station that was told and not told to be over.
+std::optional<Instant> Lookout::silence_told(const std::string& station) const {
+  const alerts::Said* told = nullptr;
+  for (const alerts::Said& said : said_) {
+    const bool of_it = said.kind == alerts::Kind::no_data && said.subject == station;
+    if (of_it && (told == nullptr || said.place >= told->place)) told = &said;
+  }
+  const bool lasts = told != nullptr && told->saying != alerts::Saying::ended &&
+                     told->saying != alerts::Saying::learned_late;
+  return lasts ? std::optional(told->start) : std::nullopt;
+}
+
 /// A station whose clock is behind, or whose values come late, is not silent anew with each
 /// reading. What was told of and still comes later than the patience is the same silence; what
 /// comes late but within it is silent when it is later than usual. Only the last stretch, that of
@@ -84,14 +97,8 @@ void Lookout::heed_arrivals(const StationMemory& memory, Seconds patience, Insta
     if (now - open.last <= patience + last->age) gaps.pop_back();
     return;
   }
-  const alerts::Said* told = nullptr;
-  for (const alerts::Said& said : said_) {
-    const bool of_it = said.kind == alerts::Kind::no_data && said.subject == memory.station.name;
-    if (of_it && (told == nullptr || said.place >= told->place)) told = &said;
-  }
-  const bool lasts = told != nullptr && told->saying != alerts::Saying::ended &&
-                     told->saying != alerts::Saying::learned_late;
-  if (lasts && now - open.last > patience) open.last = std::min(open.last, told->start);
+  const auto told = silence_told(memory.station.name);
+  if (told && now - open.last > patience) open.last = std::min(open.last, *told);
 }
 
 void Lookout::gather_station_episodes(const StationMemory& memory, Instant now) {
@@ -109,13 +116,19 @@ void Lookout::gather_station_episodes(const StationMemory& memory, Instant now) 
                              station.arrives_every, &settings_->calendar};
   std::vector<Instant> times;
   std::copy_if(memory.times.begin(), memory.times.end(), std::back_inserter(times),
-               [&](Instant time) { return time <= now + Seconds{600}; });
+               [&](Instant time) { return time <= now + station::limits::ahead; });
   std::vector<alerts::Silence> gaps = alerts::silences_from(times, alerts::patience_of(watch));
   heed_arrivals(memory, alerts::patience_of(watch), now, gaps);
   if (times.empty()) {
     // It never spoke: it should have since sowing, or since we were started.
     const Instant since = std::max(*first_needed, policy_.first_start.value_or(*first_needed));
     if (since < now) gaps.push_back({since, std::nullopt});
+  }
+  // By a clock that is not set a station is silent for as long as this desk has waited for it: who
+  // knows how long that was before. What was told already stays told.
+  if (memory.waited_from && !gaps.empty() && !gaps.back().back) {
+    const auto told = silence_told(station.name);
+    if (!told || *told < gaps.back().last) gaps.back().waited_from = memory.waited_from;
   }
   auto silent = alerts::silences(watch, gaps, need.in_window, need.watched, now);
   auto doubtful =

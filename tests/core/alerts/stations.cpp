@@ -94,6 +94,19 @@ TEST_CASE("a silence by day opens when the patience ends and closes when a sampl
   CHECK(episodes[0].level == Level::none);
 }
 
+TEST_CASE("patience may be counted from later than the last sample; the silence begins with it") {
+  const Silence gap{at(farm(8)), std::nullopt, at(farm(12))};
+  const auto by = [&](double hour) {
+    return silences(bench(), std::vector{gap}, {}, always, at(farm(hour)));
+  };
+  CHECK(by(12.9).empty());
+  CHECK(told(by(13)) == "opened Moderate@13 | ");
+  CHECK(by(13)[0].start == at(farm(8)));
+  const Silence earlier{at(farm(8)), std::nullopt, at(farm(2))};
+  CHECK(told(silences(bench(), std::vector{earlier}, {}, always, at(farm(9)))) ==
+        "opened Moderate@9 | ");
+}
+
 TEST_CASE("a silence at night waits until six in the morning") {
   CHECK(silent(21, never, {}, always, 29).empty());
   CHECK(silent(21, never, {}, always, 30) == "opened Moderate@30 | ");  // 22:00 is night

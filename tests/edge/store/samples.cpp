@@ -30,6 +30,9 @@ TEST_CASE("samples come back as they went in", "[store]") {
   CHECK(must(store.samples("bench", bare.time, full.time)) == std::vector<Sample>{bare});
   CHECK(must(store.samples("other", instant(0), instant(july_14 * 2))).empty());
   CHECK(must(store.last_sample("bench")) == full.time);
+  CHECK(must(store.last_sample("bench", full.time)) == bare.time);
+  CHECK(must(store.last_sample("bench", full.time + Seconds{1})) == full.time);
+  CHECK_FALSE(must(store.last_sample("bench", instant(0))));
   CHECK_FALSE(must(store.last_sample("other")));
   const Sample later = sample(3 * 86400, std::nullopt);  // without a temperature
   must(store.add_samples("bench", std::vector<Sample>{later}));
