@@ -5,12 +5,14 @@
 #include <cmath>
 #include <cstdio>
 #include <iostream>
+#include <utility>
 
 #include "core/weather/hour.hpp"
 #include "edge/clock/clock.hpp"
 #include "edge/station/readings.hpp"
 #include "run/service/farm.hpp"
 #include "run/service/intake.hpp"
+#include "run/service/working_time.hpp"
 
 namespace antherd::commands {
 namespace {
@@ -269,7 +271,7 @@ Result<Past> read_past(const SettingsPointer& settings, const Invocation& call) 
         "NAME=FILE.csv";
     return failure;
   }
-  auto past = past_from_store(settings, *store, present(*settings, store));
+  auto past = past_from_store(settings, *store, present(*settings, store).now);
   if (!past) return past;
   if (const Outcome read = add_times_of_season(*past, *store, Instant::min()); !read) {
     return read.failure();
@@ -290,15 +292,39 @@ Result<store::Store> open_to_write(const settings::Settings& settings) {
   return store::Store::open(options);
 }
 
-Instant present(const settings::Settings& settings, const Result<store::Store>& store) {
-  const Instant now = clock::wall_now();
-  if (!settings.exercise || !store) return now;
+Present present_by(Instant shown, bool set, const settings::Settings& settings,
+                   const Result<store::Store>& store) {
+  if (!store || (set && !settings.exercise)) return {shown};
+  if (!settings.exercise) {
+    const auto known = service::newest_reading_believed(settings, *store);
+    if (!known || !service::cannot_be(shown, *known)) return {shown};
+    return {*known, true};
+  }
   std::optional<Instant> newest;
   for (const auto& station : settings.stations) {
     const auto last = store->last_sample(station.station.name);
     if (last && *last && (!newest || **last > *newest)) newest = **last;
   }
-  return newest.value_or(now);
+  return {newest.value_or(shown)};
+}
+
+Present present(const settings::Settings& settings, const Result<store::Store>& store) {
+  const Instant shown = clock::wall_now();
+  const Present present = present_by(shown, clock::wall_clock_set(), settings, store);
+  static bool said = false;
+  if (present.doubted && !std::exchange(said, true)) {
+    std::cerr << "antherd: computer clock not set, it shows " << farm_text(settings.calendar, shown)
+              << "; what follows goes by the newest reading, "
+              << farm_text(settings.calendar, present.now) << "\n";
+  }
+  return present;
+}
+
+std::optional<CivilDay> last_day_of_notes(const settings::Settings& settings, Present present) {
+  if (settings.exercise) return std::nullopt;
+  constexpr auto station_dead_at_most = std::chrono::days{31};
+  const CivilDay today = settings.calendar.day_of(present.now);
+  return present.doubted ? today + station_dead_at_most : today;
 }
 
 service::Lookout lookout_over(const Past& past) {

@@ -56,8 +56,22 @@ void add_samples(Past& past, const settings::Station& station,
 /// Files when there are any, else the store, else the drop folders.
 Result<Past> read_past(const SettingsPointer& settings, const Invocation& call);
 
-/// Now by the wall clock; in an exercise, whose clock is not the wall's, the newest reading.
-Instant present(const settings::Settings& settings, const Result<store::Store>& store);
+/// The time that a command goes by.
+struct Present {
+  Instant now;
+  bool doubted =
+      false;  // by the newest reading: the computer's clock is not set and cannot be right
+};
+/// Now by the wall clock; in an exercise, whose clock is not the wall's, the newest reading. A
+/// computer without a network may stand in 1970 or years ahead: then too, and it is said once.
+Present present(const settings::Settings& settings, const Result<store::Store>& store);
+/// @param shown  by the wall clock
+/// @param set    whether the kernel holds it for right
+Present present_by(Instant shown, bool set, const settings::Settings& settings,
+                   const Result<store::Store>& store);
+/// The last farm day that a note may bear. By a clock in doubt it may be weeks after the newest
+/// reading: its station may be dead.
+std::optional<CivilDay> last_day_of_notes(const settings::Settings& settings, Present present);
 
 Result<store::Store> open_to_read(const settings::Settings& settings);
 Result<store::Store> open_to_write(const settings::Settings& settings);

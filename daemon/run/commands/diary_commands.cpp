@@ -6,7 +6,6 @@
 #include "core/letters/parts.hpp"
 #include "core/letters/wrap.hpp"
 #include "core/risk/rules.hpp"
-#include "edge/clock/clock.hpp"
 #include "run/commands/common.hpp"
 #include "run/service/intake.hpp"
 #include "run/settings/quantities.hpp"
@@ -18,6 +17,10 @@ Exit wrong(const std::string& what, const std::string& why, const std::string& e
   std::cerr << "antherd: " << what << ": " << why << "; nothing was written. Example: " << example
             << "\n";
   return Exit::usage;
+}
+
+Failure refuse(const std::string& option, const std::string& why) {
+  return Failure{"read " + option, "", why, "nothing was written"};
 }
 
 template <class Entries>
@@ -63,9 +66,6 @@ std::string sentence_of(const settings::Settings& settings, const field::Irrigat
 
 Result<field::Irrigation> irrigation_of(const settings::Settings& settings,
                                         const settings::FieldPlan& plan, const Invocation& call) {
-  const auto refuse = [](const std::string& option, const std::string& why) {
-    return Failure{"read " + option, "", why, "nothing was written"};
-  };
   field::Irrigation irrigation;
   irrigation.field = plan.field.name;
   if (call.start.empty() || call.end.empty()) {
@@ -83,7 +83,9 @@ Result<field::Irrigation> irrigation_of(const settings::Settings& settings,
   if (!to) return refuse(end_given, to.failure().why);
   if (*to <= *from) return refuse("--end", "it is not after --start");
   if (*to - *from > std::chrono::hours{96}) return refuse("--end", "more than 96 h after --start");
-  if (*from > clock::wall_now() + std::chrono::days{7} && !settings.exercise) {
+  const Present by = present(settings, open_to_read(settings));
+  const auto ahead_at_most = by.doubted ? std::chrono::days{38} : std::chrono::days{7};
+  if (*from > by.now + ahead_at_most && !settings.exercise) {
     return refuse("--start '" + call.start + "'", "it lies more than 7 days ahead");
   }
   irrigation.start = *from;
@@ -123,7 +125,7 @@ void say_what_it_does(const SettingsPointer& settings, const field::Irrigation& 
   }
   const auto store = open_to_read(*settings);
   if (!store) return;
-  const Instant now = present(*settings, store);
+  const Instant now = present(*settings, store).now;
   auto past = past_from_store(settings, *store, now);
   if (!past) return;
   std::erase_if(past->diaries[irrigation.field].irrigations,
@@ -160,7 +162,7 @@ std::optional<Standing> standing_of(const Past& past, Instant now) {
 /// What the irrigations did that are booked, from the season folded once more.
 std::vector<season::Watered> effects_of(const SettingsPointer& settings, const store::Store& store,
                                         const std::string& field) {
-  const Instant now = present(*settings, open_to_read(*settings));
+  const Instant now = present(*settings, open_to_read(*settings)).now;
   const auto past = past_from_store(settings, store, now);
   if (!past) return {};
   const auto standing = standing_of(*past, now);
@@ -203,7 +205,7 @@ void say_window(const SettingsPointer& settings, const field::Scouting& note,
       note.stage && *note.stage >= field::stage::buds && *note.stage <= field::stage::flowers_done;
   const auto store = open_to_read(*settings);
   if (!of_flowers || !store) return;
-  const Instant now = present(*settings, store);
+  const Instant now = present(*settings, store).now;
   auto with = past_from_store(settings, *store, now);
   if (!with) return;
   Past without = *with;
@@ -234,22 +236,33 @@ void say_window(const SettingsPointer& settings, const field::Scouting& note,
   }
 }
 
-Result<field::Scouting> note_of(const settings::Settings& settings, const settings::FieldPlan& plan,
-                                const Invocation& call) {
-  const auto refuse = [](const std::string& option, const std::string& why) {
-    return Failure{"read " + option, "", why, "nothing was written"};
-  };
-  field::Scouting note;
-  note.field = plan.field.name;
-  note.date = settings.calendar.day_of(clock::wall_now());
+/// That of the call, else today's.
+Result<CivilDay> date_of_note(const settings::Settings& settings, const settings::FieldPlan& plan,
+                              const Invocation& call) {
+  const Present by = present(settings, open_to_read(settings));
+  CivilDay day = settings.calendar.day_of(by.now);
+  std::string given = "the date, by this computer " + day_text(day);
   if (!call.date.empty()) {
     const auto date = settings::parse_day(call.date);
-    const std::string given = "--date '" + call.date + "'";
+    given = "--date '" + call.date + "'";
     if (!date) return refuse(given, date.failure().why);
-    if (*date > note.date) return refuse(given, "it lies in the future");
-    if (*date < plan.field.sown) return refuse(given, "it lies before sowing");
-    note.date = *date;
+    day = *date;
   }
+  const auto latest = last_day_of_notes(settings, by);
+  if (latest && day > *latest) {
+    return refuse(given, "it lies in the future, after " + day_text(*latest));
+  }
+  if (day < plan.field.sown) return refuse(given, "it lies before sowing");
+  return day;
+}
+
+Result<field::Scouting> note_of(const settings::Settings& settings, const settings::FieldPlan& plan,
+                                const Invocation& call) {
+  field::Scouting note;
+  note.field = plan.field.name;
+  const auto date = date_of_note(settings, plan, call);
+  if (!date) return date.failure();
+  note.date = *date;
   if (!call.stage.empty()) {
     note.stage = field::stage_from_word(call.stage);
     if (!note.stage) {

@@ -3,7 +3,6 @@
 #include <iostream>
 
 #include "core/letters/words.hpp"
-#include "edge/clock/clock.hpp"
 #include "run/commands/common.hpp"
 #include "run/service/attention.hpp"
 #include "run/service/intake.hpp"
@@ -17,7 +16,8 @@ struct View {
   service::Lookout lookout;
 };
 
-Result<View> view_of(const SettingsPointer& settings, Instant now) {
+Result<View> view_of(const SettingsPointer& settings, const Present& present) {
+  const Instant now = present.now;
   auto store = open_to_read(*settings);
   if (!store) return store.failure();
   const auto past = past_from_store(settings, *store, now);
@@ -31,7 +31,7 @@ Result<View> view_of(const SettingsPointer& settings, Instant now) {
     const std::string& name = station.station.name;
     view.lookout.set_arrivals(name, service::stored_arrivals(view.store, name));
   }
-  view.lookout.turn(now, closed_at(*past, now));
+  view.lookout.turn(now, closed_at(*past, now), !present.doubted);
   // The ledger is what was really said, not what this look would have said.
   view.lookout.set_ledger(past->said);
   return view;
@@ -68,8 +68,9 @@ Exit put_into_outbox(const settings::Settings& settings,
 Exit now(const Invocation& call) {
   const SettingsPointer settings = read_settings(call);
   if (!settings) return Exit::usage;
-  const Instant time = present(*settings, open_to_read(*settings));
-  auto view = view_of(settings, time);
+  const Present by = present(*settings, open_to_read(*settings));
+  const Instant time = by.now;
+  auto view = view_of(settings, by);
   if (!view) return say(view.failure());
   const auto attention = service::attention_of(view->lookout, view->store, time);
   const auto unclosed = service::unclosed_of(view->lookout);
@@ -80,7 +81,8 @@ Exit now(const Invocation& call) {
 Exit review(const Invocation& call) {
   const SettingsPointer settings = read_settings(call);
   if (!settings) return Exit::usage;
-  const Instant time = present(*settings, open_to_read(*settings));
+  const Present by = present(*settings, open_to_read(*settings));
+  const Instant time = by.now;
   service::Period period = service::week_before(settings->calendar, time);
   if (call.season) {
     period = service::season_of(*settings, time);
@@ -97,7 +99,7 @@ Exit review(const Invocation& call) {
   int parked = 0;
   {
     // The store is closed again before it is opened to write: one process, one way at a time.
-    auto view = view_of(settings, time);
+    auto view = view_of(settings, by);
     if (!view) return say(view.failure());
     const letters::Desk desk = view->lookout.desk(time);
     const letters::Review facts = service::make_review(view->lookout, view->store, period, time);
