@@ -106,8 +106,12 @@ class Looking {
   std::vector<std::string> names_in(DIR* folder) {
     std::vector<std::string> names;
     std::size_t entries = 0;
-    errno = 0;
-    while (const dirent* entry = readdir(folder)) {
+    bool whole = false;
+    while (true) {
+      errno = 0;
+      const dirent* const entry = readdir(folder);
+      if (!entry) whole = errno == 0;
+      if (!entry) break;
       if (entry->d_type == DT_DIR) continue;
       if (++entries > limits::entries) break;
       if (fnmatch(form_.files.c_str(), entry->d_name, FNM_PERIOD) == 0) {
@@ -121,8 +125,16 @@ class Looking {
       trouble("look at every file of the drop folder", "",
               "it holds too many; only the last " + std::to_string(kept) + " by name are looked at",
               "move old files out of it");
+      whole = false;
     }
+    if (whole) remember(names);
     return names;
+  }
+
+  void remember(const std::vector<std::string>& names) {
+    look_.names.emplace();
+    for (const std::string& name : names) look_.names->push_back(visible(name, 400));
+    std::sort(look_.names->begin(), look_.names->end());
   }
 
   void visit(int folder, const std::string& name) {

@@ -75,6 +75,9 @@ struct Look {
   std::vector<Bookmark> bookmarks;  // changed ones only
   std::vector<Failure> troubles;    // files or the folder that could not be read, each once
   bool more = false;                // a bound was reached: look again soon
+  /// The paths of all files there that the form wants, as bookmarks bear them, sorted; nothing
+  /// where the folder could not be seen whole.
+  std::optional<std::vector<std::string>> names;
 };
 
 /// Reads what is new in the folder since the bookmarks: bounded in bytes per look (limits.hpp).

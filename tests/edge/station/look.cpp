@@ -321,3 +321,23 @@ TEST_CASE("the same file whole or in pieces cut anywhere gives the same") {
     }
   }
 }
+
+TEST_CASE("a look tells the names that are there, where it saw the whole folder") {
+  const Folder folder;
+  Watch watch(folder);
+  watch.form.files = "*.csv";
+  folder.write("b.csv", header + row(0));
+  folder.write("a.csv", header + row(5));
+  folder.write("a.txt", "not wanted");
+  fs::create_hard_link(folder / "b.csv", folder / "c.csv");
+  fs::create_directory(folder / "d.csv");
+  const std::vector<std::string> there{"a.csv", "b.csv", "c.csv"};
+  CHECK(watch.look().names == there);
+  CHECK(watch.look().names == there);  // also of what is not read again
+  fs::remove(folder / "a.csv");
+  CHECK(watch.look().names == std::vector<std::string>{"b.csv", "c.csv"});
+  for (std::size_t i = 0; i <= limits::files; ++i) folder.write(std::to_string(i) + ".csv", "");
+  CHECK_FALSE(watch.look().names);
+  watch.form.folder = folder / "none";
+  CHECK_FALSE(watch.look().names);
+}
