@@ -52,7 +52,7 @@ INSERT INTO main.scouting(field, date, stage, began, disease, seed_set, seed_loo
 }  // namespace
 
 Outcome Store::Inside::begin_anew() {
-  const auto copies = copies_in(options.folder);
+  const auto copies = copies_in(options.folder, options.now);
   const auto undone = attempt("see how the store began", [&] {
     // A copy is made after the first start was noted: without that note this store is a new one,
     // even when an earlier start died before it could say so.

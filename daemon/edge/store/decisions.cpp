@@ -46,7 +46,7 @@ Said read_said(Statement& row) {
 }  // namespace
 
 Outcome Store::save(const Decision& decision) {
-  return inside_->write("keep the decisions", [&] {
+  return inside_->write_from_reserve("keep the decisions", [&] {
     for (const auto& [station, hours] : decision.hours) inside_->put(station, hours);
     for (const auto& [station, gone] : decision.hours_gone) inside_->remove(station, gone);
     put_said(*inside_->database, decision.said);

@@ -67,6 +67,13 @@ std::vector<std::string> files_like_copies(const std::string& folder, const char
   return names;
 }
 
+/// The newest first; what bears a later week's name than `week` last.
+void sort_copies(std::vector<std::string>& names, const std::string& week) {
+  std::sort(names.begin(), names.end(), [&](const std::string& a, const std::string& b) {
+    return (a > week) != (b > week) ? b > week : a > b;  // the names sort by week
+  });
+}
+
 struct Magic {
   std::uint64_t number;
   const char* name;
@@ -194,24 +201,28 @@ std::optional<FileState> file_state(const std::string& path) {
                    found.st_mtim.tv_nsec};
 }
 
-bool has_no_room(const std::string& folder) {
+std::optional<std::int64_t> free_bytes(const std::string& folder) {
   struct statvfs room {};
-  if (::statvfs(folder.c_str(), &room) != 0) return false;
-  return static_cast<std::int64_t>(room.f_bavail) * static_cast<std::int64_t>(room.f_frsize) <
-         ballast_bytes / 8;
+  if (::statvfs(folder.c_str(), &room) != 0) return std::nullopt;
+  return static_cast<std::int64_t>(room.f_bavail) * static_cast<std::int64_t>(room.f_frsize);
+}
+
+bool has_no_room(const std::string& folder) {
+  const auto free = free_bytes(folder);
+  return free && *free < ballast_bytes / 8;
+}
+
+bool has_ballast(const std::string& folder) {
+  const auto there = file_state(folder + "/ballast");
+  return there && there->size == ballast_bytes;
 }
 
 Outcome make_ballast(const std::string& folder) {
   const std::string path = folder + "/ballast";
-  const auto there = file_state(path);
-  if (there && there->size == ballast_bytes) return Done{};
-  struct statvfs room {};
-  if (::statvfs(folder.c_str(), &room) != 0) {
-    return Failure{"make the ballast", path, words_of(errno), "it is tried again later"};
-  }
-  const auto free =
-      static_cast<std::int64_t>(room.f_bavail) * static_cast<std::int64_t>(room.f_frsize);
-  if (free < ballast_bytes + ballast_margin) {
+  if (has_ballast(folder)) return Done{};
+  const auto free = free_bytes(folder);
+  if (!free) return Failure{"make the ballast", path, words_of(errno), "it is tried again later"};
+  if (*free < ballast_bytes + ballast_margin) {
     return Failure{"make the ballast", path, "less than 24 MiB are free on this disk",
                    "it is made once there is room"};
   }
@@ -247,9 +258,9 @@ std::string copy_name(Instant now) {
   return name.data();
 }
 
-std::vector<std::string> copies_in(const std::string& folder) {
+std::vector<std::string> copies_in(const std::string& folder, Instant now) {
   std::vector<std::string> copies = files_like_copies(folder, ".db");
-  std::sort(copies.rbegin(), copies.rend());  // the names sort by week
+  sort_copies(copies, copy_name(now));
   for (std::string& name : copies) name.insert(0, folder + "/");
   return copies;
 }
@@ -267,11 +278,8 @@ Outcome publish_copy(const std::string& part, const std::string& folder, const s
                    "the copies of earlier weeks are untouched"};
   }
   std::vector<std::string> copies = files_like_copies(folder, ".db");
-  std::sort(copies.begin(), copies.end());  // the names sort by week
-  while (copies.size() > copies_kept) {
-    remove_file(folder + "/" + copies.front());
-    copies.erase(copies.begin());
-  }
+  sort_copies(copies, name);  // itself is the first
+  for (std::size_t i = copies_kept; i < copies.size(); ++i) remove_file(folder + "/" + copies[i]);
   return Done{};
 }
 

@@ -3,6 +3,8 @@
 
 #include <unistd.h>
 
+#include <algorithm>
+
 #include "edge/store/schema.hpp"
 
 namespace antherd::store {
@@ -68,10 +70,39 @@ Store::Inside::~Inside() {
 
 Failure Store::Inside::failure_of(const char* what, const Trouble& trouble) {
   full = trouble.primary() == SQLITE_FULL;
+  damaged = damaged || trouble.damaged();
   const bool explained = !trouble.what_next.empty();  // we found something that stays so
   return Failure{what, path, trouble.why,
                  explained ? trouble.what_next : next_after(trouble.primary()),
                  !explained && passes(trouble.primary())};
+}
+
+bool Store::Inside::give_reserve() {
+  if (!options.service) return false;
+  const auto released = remove_ballast(options.folder);
+  if (!released || !*released) return false;
+  reserve_given = true;
+  return true;
+}
+
+Outcome Store::Inside::room_for_samples() {
+  samples_wait = false;
+  if (!options.service || has_ballast(options.folder)) return Done{};
+  return attempt("keep new samples", [&] {
+    auto free = free_bytes(options.folder);
+    if (options.page_limit > 0) {
+      const auto left = 4096 * (options.page_limit - database->number("PRAGMA page_count"));
+      free = std::min(free.value_or(left), left);
+    }
+    samples_wait = free && *free < samples_margin;
+    if (samples_wait) {
+      throw Trouble{SQLITE_FULL,
+                    "the disk is full: the 8 MiB in reserve are given up and less than 16 MiB are "
+                    "free",
+                    "readings wait in memory so that alerts find room; make room on the disk"};
+    }
+    return Done{};
+  });
 }
 
 bool Store::Inside::settled() const {

@@ -26,7 +26,9 @@ struct Store::Inside {
   std::optional<std::string> aside;
   bool anew = false;  // begun by this opening where a store had been
   bool full = false;
-  bool reserve_given = false;  // the ballast went so that the store could be opened
+  bool reserve_given = false;  // the ballast, and it was not put back yet
+  bool samples_wait = false;   // the last samples were not taken, so that decisions find room
+  bool damaged = false;        // a call met damage since the whole file was checked
 
   Inside() = default;
   Inside(const Inside&) = delete;
@@ -58,6 +60,16 @@ struct Store::Inside {
     });
   }
 
+  /// The same for what must find room on a full disk: the ballast is let go for it.
+  template <class Work>
+  auto write_from_reserve(const char* what, Work&& work) -> Result<std::invoke_result_t<Work&>> {
+    auto done = write(what, work);
+    if (done) return done;
+    const bool no_room = full || (done.failure().passes && has_no_room(options.folder));
+    if (!no_room || !give_reserve()) return done;
+    return write(what, work);
+  }
+
   /// Runs a call that reads. A `still` reader holds no lock, so it looks before and after whether
   /// a writer came meanwhile, and reads again if so.
   template <class Work>
@@ -78,6 +90,12 @@ struct Store::Inside {
       }
     });
   }
+
+  /// Service: lets the ballast go. @return whether there was one
+  bool give_reserve();
+  /// Service: samples stop before decisions do. Fails while the ballast is missing and little is
+  /// free beside it.
+  Outcome room_for_samples();
 
   /// Whether what a reader opened is still what is there.
   bool settled() const;

@@ -150,7 +150,7 @@ void Store::Inside::put(const outbox::Item& item, const outbox::Line& line) {
 }
 
 Outcome Store::update(const outbox::Item& item, const outbox::Line& line) {
-  return inside_->write("keep what became of a letter", [&] {
+  return inside_->write_from_reserve("keep what became of a letter", [&] {
     inside_->put(item, line);
     return Done{};
   });

@@ -34,11 +34,19 @@ Result<Notes> Store::notes_with_prefix(const std::string& prefix) const {
 }
 
 Outcome Store::put_notes(const Notes& notes, std::span<const std::string> gone) {
-  return inside_->write("keep notes", [&] {
+  return inside_->write_from_reserve("keep notes", [&] {
     Statement remove =
         inside_->database->use("DELETE FROM note WHERE substr(key, 1, length(?1)) = ?1");
     for (const std::string& prefix : gone) remove.bind(prefix).run();
     inside_->put(notes);
+    return Done{};
+  });
+}
+
+Outcome Store::drop_notes(std::span<const std::string> keys) {
+  return inside_->write("drop notes", [&] {
+    Statement remove = inside_->database->use("DELETE FROM note WHERE key = ?");
+    for (const std::string& key : keys) remove.bind(key).run();
     return Done{};
   });
 }

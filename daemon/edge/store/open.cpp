@@ -23,7 +23,8 @@ Outcome open_as_service(Inside& inside) {
   const bool nothing = !there || there->size == 0;
   // A ballast is made after the store: without one, a file of no bytes is what a first start left.
   const std::string& folder = inside.options.folder;
-  const bool had_one = file_state(folder + "/ballast") || !copies_in(folder).empty();
+  const bool had_one =
+      file_state(folder + "/ballast") || !copies_in(folder, inside.options.now).empty();
   bool damaged = there && nothing && had_one;  // cut down to nothing: SQLite would call it new
   inside.anew = inside.anew || (nothing && had_one);
   if (!damaged) {
@@ -87,14 +88,11 @@ Result<Store> Store::open(const Options& options) {
     return inside->begin_anew();
   };
   Outcome begun = begin();
-  if (!begun && begun.failure().passes && has_no_room(options.folder)) {
-    const auto released = remove_ballast(options.folder);
-    if (released && *released) {
-      inside->reserve_given = true;
-      begun = begin();
-    }
+  if (!begun && begun.failure().passes && has_no_room(options.folder) && inside->give_reserve()) {
+    begun = begin();
   }
   if (!begun) return begun.failure();
+  inside->damaged = false;  // of a copy, perhaps: the file itself was checked
   // Without room there is no ballast for now; keep_ballast is asked again by the service.
   static_cast<void>(make_ballast(options.folder));
   return Store(std::move(inside));
@@ -109,10 +107,35 @@ std::optional<std::string> Store::set_aside() const { return inside_->aside; }
 
 bool Store::reserve_given() const { return inside_->reserve_given; }
 
+bool Store::samples_wait() const { return inside_->samples_wait; }
+
+bool Store::met_damage() const { return inside_->damaged; }
+
+Result<std::optional<std::string>> Store::check() {
+  inside_->damaged = false;
+  return inside_->attempt("check the whole store", [&]() -> std::optional<std::string> {
+    try {
+      // What the next opening will see: not the pages that this connection keeps in memory.
+      Database fresh(inside_->path, Database::Mode::beside, inside_->options.patience,
+                     inside_->options.haste);
+      const std::string answer = fresh.text("PRAGMA quick_check(1)");
+      if (answer == "ok") return std::nullopt;
+      return answer.substr(answer.rfind('\n') + 1);  // the line before names the database
+    } catch (const Trouble& trouble) {
+      if (!trouble.damaged()) throw;
+      return trouble.why;
+    }
+  });
+}
+
 bool Store::out_of_space() const { return inside_->full; }
 
 Result<bool> Store::release_ballast() { return remove_ballast(inside_->options.folder); }
 
-Outcome Store::keep_ballast() { return make_ballast(inside_->options.folder); }
+Outcome Store::keep_ballast() {
+  Outcome made = make_ballast(inside_->options.folder);
+  if (made) inside_->reserve_given = false;
+  return made;
+}
 
 }  // namespace antherd::store

@@ -71,6 +71,7 @@ void settle(Database& database, std::int64_t station, const Sample& sample, Inta
 
 Result<Intake> Store::add_samples(const std::string& station,
                                   std::span<const weather::Sample> samples, const Notes& notes) {
+  if (const Outcome room = inside_->room_for_samples(); !room) return room.failure();
   return inside_->write("keep new samples", [&] {
     Database& database = *inside_->database;
     Intake intake;

@@ -89,20 +89,29 @@ class Store {
 
   /// Where a damaged file was put when the service opened, if it was: the whole path.
   std::optional<std::string> set_aside() const;
-  /// Whether the ballast had to be given up to open it: its disk is full.
+  /// Whether the ballast had to be given up, for the opening, a decision, a letter's state or a
+  /// note, and is not put back yet: the disk is full. Service only.
   bool reserve_given() const;
+  /// Whether the last samples were refused because samples stop before decisions do.
+  bool samples_wait() const;
   /// How this store began, where another had been and nobody was told yet; kept until told.
   Result<std::optional<Beginning>> beginning() const;
   /// The note that a decision keeps with the letters that tell of it.
   static Notes beginning_told();
   /// Whether the last call that failed did so because the disk (or page_limit) is full.
   bool out_of_space() const;
+  /// Whether a call met damage since check() was asked last.
+  bool met_damage() const;
+  /// Reads the whole file, as an opening by the service would. @return what is damaged in it,
+  /// nothing where it is sound
+  Result<std::optional<std::string>> check();
 
   // A call that fails has changed nothing, and the store remains usable.
 
   /// Takes samples in and puts `notes` (file bookmarks), in one transaction. Of different samples
   /// of one time the one that weather::stands_before all others stands, the others are kept aside,
-  /// whatever came first. Values must be finite.
+  /// whatever came first. Values must be finite. Of the service it takes none while the ballast is
+  /// missing and less than 16 MiB are free.
   Result<Intake> add_samples(const std::string& station, std::span<const weather::Sample> samples,
                              const Notes& notes = {});
   Result<std::vector<weather::Sample>> samples(const std::string& station, Instant from,
@@ -158,6 +167,8 @@ class Store {
   Result<Notes> notes_with_prefix(const std::string& prefix) const;
   /// @param gone  first the notes whose names begin with one of these are removed; one transaction
   Outcome put_notes(const Notes& notes, std::span<const std::string> gone = {});
+  /// Removes the notes of exactly these names, in one transaction.
+  Outcome drop_notes(std::span<const std::string> keys);
 
   /// A hash (32 hexadecimal digits) over the facts (samples, conflicts, hours, diary): equal facts
   /// have equal fingerprints, whatever the order they came in, how often, and under which ids.
@@ -169,8 +180,9 @@ class Store {
   /// Makes the ballast anew; fails while less than 24 MiB are free. Done when it is there.
   Outcome keep_ballast();
   /// Writes `antherd-copy-YYYY-Www.db` (ISO week of `now`, UTC): everything but samples, checked,
-  /// forced to disk, then given its name; the two newest copies are kept. Also from a read_only
-  /// store, so that a worker can do it. A copy of this week that is there already is replaced.
+  /// forced to disk, then given its name; it and the newest before it are kept. Also from a
+  /// read_only store, so that a worker can do it. A copy of this week that is there already is
+  /// replaced.
   Outcome copy_without_samples(Instant now);
   bool has_copy_of_week(Instant now) const;
 

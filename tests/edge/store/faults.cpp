@@ -179,10 +179,51 @@ TEST_CASE("damage found while running is a failure that names the way out", "[st
   std::memset(&bytes[static_cast<std::size_t>(page - 1) * 4096], 0x5A, 100);
   put_bytes(folder.database(), bytes);
   Store store = open(writer(folder));
+  CHECK_FALSE(store.met_damage());
   const auto refused = store.letters_open();
   REQUIRE_FALSE(refused);
   CHECK(refused.failure().why == "database disk image is malformed");
   CHECK(refused.failure().what_next.find("restart the service") != std::string::npos);
+  must(store.line());
+  CHECK(store.met_damage());  // remembered past calls that succeed
+  CHECK(must(store.check()));
+  CHECK_FALSE(store.met_damage());
+}
+
+TEST_CASE("a file that is sound is called so by the check, whatever a row holds", "[store]") {
+  const Folder folder;
+  Store store = open(service(folder));
+  step(store, 0);
+  Raw(folder.database()).run("UPDATE letter SET attempts = 99999999999");
+  CHECK_FALSE(store.letters_open());
+  CHECK(store.met_damage());
+  CHECK_FALSE(must(store.check()));
+  CHECK_FALSE(store.met_damage());
+  step(store, 1);
+}
+
+TEST_CASE("samples stop before decisions do: without the ballast they wait for room", "[store]") {
+  const Folder folder;
+  Store::Options options = service(folder);
+  options.page_limit = 3000;  // 12 MB: less than 16 MiB are free from the start
+  Store store = open(options);
+  step(store, 0);  // the ballast is there
+  must(store.release_ballast());
+  const auto refused = store.add_samples("bench", std::vector<Sample>{sample(9, 20)});
+  REQUIRE_FALSE(refused);
+  CHECK(refused.failure().sentence().find("8 MiB in reserve are given up") != std::string::npos);
+  CHECK(store.out_of_space());
+  CHECK(store.samples_wait());
+  Decision made;
+  made.letters = {letter("heat.9", "x")};
+  made.hours["bench"] = {record(9, 30)};
+  must(store.save(made));
+  must(store.update(must(store.letters_open())[0], {}));
+  must(store.add(irrigation("north bench", 9)));
+  must(store.put_notes({{"key", "value"}}));
+  must(store.keep_ballast());
+  must(store.add_samples("bench", std::vector<Sample>{sample(9, 20)}));
+  CHECK_FALSE(store.samples_wait());
 }
 
 TEST_CASE("the ballast is there, is given back, and is made again", "[store]") {
@@ -255,4 +296,33 @@ TEST_CASE("a copy is named by its ISO week", "[store]") {
   CHECK(store::copy_name(instant(1609718399)) == "antherd-copy-2020-W53.db");  // 2021-01-03 23:59
   CHECK(store::copy_name(instant(1609718400)) == "antherd-copy-2021-W01.db");  // 2021-01-04
   CHECK(store::copy_name(instant(1735516800)) == "antherd-copy-2025-W01.db");  // 2024-12-30
+}
+
+TEST_CASE("a copy named by a clock that stood ahead neither wins nor lives for ever", "[store]") {
+  const Folder folder;
+  const auto copies = [&] {
+    std::vector<std::string> names;
+    for (const auto& name : folder.names()) {
+      if (name.starts_with("antherd-copy")) names.push_back(name.substr(13, 8));
+    }
+    return names;
+  };
+  using Weeks = std::vector<std::string>;
+  {
+    Store store = open(service(folder));
+    must(store.put_notes({{"first_start", "1783987200"}}));
+    for (const int years : {4, 3})
+      must(store.copy_without_samples(instant(july_14 + years * 31557600)));
+    CHECK(copies() == Weeks{"2029-W28", "2030-W28"});
+    must(store.add(irrigation("north bench", 0)));
+    must(store.copy_without_samples(instant(july_14)));
+    CHECK(copies() == Weeks{"2026-W29", "2030-W28"});
+  }
+  fs::remove(folder.database());
+  {
+    Store store = open(service(folder));  // the diary of this week's copy
+    CHECK(must(store.diary("north bench")).irrigations.size() == 1);
+    must(store.copy_without_samples(instant(july_14 + 7 * 86400)));
+  }
+  CHECK(copies() == Weeks{"2026-W29", "2026-W30"});
 }

@@ -118,3 +118,27 @@ TEST_CASE("whichever operation of the disk fails, nothing is lost or halved", "[
                 in_a_row, operation - 1, met);
   }
 }
+
+TEST_CASE("on a full disk the reserve goes for what must be kept, not for samples", "[store]") {
+  const int what = GENERATE(0, 1, 2);
+  CAPTURE(what);
+  const Folder folder;
+  PowerDisk disk(1);
+  Store store = open(service(folder));
+  must(store.save(decision(0)));
+  const outbox::Item first = must(store.letters_open())[0];
+  disk.refuse(SQLITE_FULL);
+  CHECK_FALSE(store.add_samples("bench", std::vector<Sample>{sample(9, 20)}));
+  CHECK_FALSE(store.add(irrigation("north bench", 9)));  // it stands in a file, or is typed again
+  CHECK(folder.has("ballast"));
+  CHECK_FALSE(store.reserve_given());
+  if (what == 0) CHECK_FALSE(store.save(decision(1)));
+  if (what == 1) CHECK_FALSE(store.update(first, {}));
+  if (what == 2) CHECK_FALSE(store.put_notes({{"key", "value"}}));
+  CHECK_FALSE(folder.has("ballast"));
+  CHECK(store.reserve_given());
+  disk.refuse(SQLITE_OK);
+  must(store.keep_ballast());
+  CHECK_FALSE(store.reserve_given());
+  must(store.save(decision(1)));
+}

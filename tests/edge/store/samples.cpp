@@ -243,6 +243,9 @@ TEST_CASE("notes by name and by beginning", "[store]") {
   CHECK_FALSE(must(store.note("drop/")));
   CHECK(must(store.notes_with_prefix("drop/")) == store::Notes{{"drop/a", "2"}, {"drop/b", ""}});
   CHECK(must(store.notes_with_prefix("")).size() == 4);
+  const std::vector<std::string> gone{"drop", "drop/a", "dropped"};
+  must(store.drop_notes(gone));  // these names and no longer ones
+  CHECK(must(store.notes_with_prefix("drop")) == store::Notes{{"drop/b", ""}, {"dropper", "x"}});
   const std::string evil = "'; DROP TABLE note; --\n\xFF";
   must(store.put_notes({{evil, evil}}));
   CHECK(must(store.note(evil)) == evil);
