@@ -72,8 +72,9 @@ std::vector<Letter> compose_daily(std::span<const Recipient> recipients, const D
 /// The store has taken nothing for a while, or could not even be opened.
 struct StoreTrouble {
   Instant since;
-  std::string why;    // what was tried, on what, why not
-  bool begun = true;  // false: it could not be opened, so nothing is read or judged
+  std::string why;          // what was tried, on what, why not
+  bool begun = true;        // false: it could not be opened, so nothing is read or judged
+  bool letters_go = false;  // only readings are refused, so that decisions and letters find room
 };
 /// The day that a letter of it speaks of: from 06:00 to 06:00.
 CivilDay store_trouble_day(const Calendar& calendar, Instant at);
@@ -81,6 +82,7 @@ CivilDay store_trouble_day(const Calendar& calendar, Instant at);
 /// and what to look at. Its identity is that of the day (from 06:00 on) and of the worst level of
 /// the recipient's fields, which is its severity. The only letter that goes without standing in the
 /// store. Of a watch that could not begin it says that nothing is watched; the desk has no fields.
+/// Where letters go, it is one a day, of severity minor, about a disk that is nearly full.
 std::vector<Letter> compose_store_trouble(const StoreTrouble& trouble,
                                           std::span<const Recipient> recipients, const Desk& desk);
 

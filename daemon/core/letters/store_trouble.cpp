@@ -1,5 +1,6 @@
 // The one letter that goes past the outbox: the computer can keep nothing, and so no other letter
-// can go. It says how every field stood when it was written, since nothing else will.
+// can go. It says how every field stood when it was written, since nothing else will. The same way
+// goes word of a disk that is nearly full, while alerts still find room on it.
 #include <algorithm>
 
 #include "core/letters/parts.hpp"
@@ -19,6 +20,36 @@ constexpr const char* next_of_stopped =
     "works again the watch begins by itself, reads the files of its drop folders and says what it "
     "learned late; what a station was to be asked for meanwhile may be missing.";
 
+constexpr const char* next_of_low =
+    "One letter of this kind a day while it lasts. With 24 MB free the readings are stored by "
+    "themselves. Without, the last room is used up one day: then letters of alerts wait, and a "
+    "letter says so. Should the computer be started anew, files are read again; what a station was "
+    "asked for may be missing.";
+constexpr const char* do_of_low =
+    "Go to the computer this week and make room on its disk, 24 MB or more: old log files, old "
+    "station files that were read, updates that were kept.";
+constexpr const char* do_of_failed =
+    "Go to the computer today. Is the disk full, worn or unplugged? A memory card that takes no "
+    "more writes is at its end: put a new one in. The log names what failed. Until then walk the "
+    "fields as if nobody watched.";
+
+const char* what_of(const StoreTrouble& trouble) {
+  if (!trouble.begun) return ": nothing is watched since ";
+  return trouble.letters_go ? ": the disk is nearly full, readings are not stored since "
+                            : ": the watch has kept nothing since ";
+}
+
+const char* so_what_of(const StoreTrouble& trouble) {
+  if (!trouble.begun) {
+    return "The watch was started and cannot open what it keeps. No letter of heat or wet leaves "
+           "will come until its disk works again.";
+  }
+  return trouble.letters_go ? "Readings wait in memory. Alerts are still decided and their letters "
+                              "go, in the last room that was kept for them."
+                            : "Letters of alerts wait until its disk works again: do not count on "
+                              "them.";
+}
+
 /// An alert that waits while this letter goes still reaches its people through it.
 Level worst_of(const std::vector<const FieldStatus*>& fields) {
   Level worst = Level::none;
@@ -32,14 +63,9 @@ Level worst_of(const std::vector<const FieldStatus*>& fields) {
 std::string body_of(const std::vector<const FieldStatus*>& fields, const StoreTrouble& trouble,
                     const Words& words) {
   const Desk& desk = words.desk();
-  std::string text = paragraph(
-      plain(desk.farm) +
-      (trouble.begun ? ": the watch has kept nothing since " : ": nothing is watched since ") +
-      words.when(trouble.since) + ".");
-  text += paragraph(trouble.begun
-                        ? "Letters of alerts wait until its disk works again: do not count on them."
-                        : "The watch was started and cannot open what it keeps. No letter of heat "
-                          "or wet leaves will come until its disk works again.");
+  std::string text =
+      paragraph(plain(desk.farm) + what_of(trouble) + words.when(trouble.since) + ".");
+  text += paragraph(so_what_of(trouble));
   if (desk.exercise) {
     text += paragraph("This is an exercise: an invented season. Do not act on it.");
   }
@@ -52,24 +78,20 @@ std::string body_of(const std::vector<const FieldStatus*>& fields, const StoreTr
       text += line + "\n";
     }
   }
-  text += section_text(
-      {"DO",
-       "Go to the computer today. Is the disk full, worn or unplugged? A memory card that takes "
-       "no more writes is at its end: put a new one in. The log names what failed. Until then "
-       "walk the fields as if nobody watched.",
-       {},
-       true,
-       {}});
-  text += section_text({"NEXT", trouble.begun ? next_of_running : next_of_stopped, {}, true, {}});
+  text += section_text({"DO", trouble.letters_go ? do_of_low : do_of_failed, {}, true, {}});
+  const char* next = trouble.letters_go ? next_of_low : next_of_running;
+  text += section_text({"NEXT", trouble.begun ? next : next_of_stopped, {}, true, {}});
   return text + "\n" + paragraph(standing_caution(Language::english));
 }
 
 std::string brief_of(const Part& part, const StoreTrouble& trouble, const Desk& desk) {
-  const std::string text =
-      part.lead + ": " + part.name + ", " + part.rest +
-      (trouble.begun
-           ? ". Its disk takes nothing, alert letters wait: go to the computer today."
-           : ". Its store cannot be opened, no alert will come: go to the computer today.");
+  const char* so = trouble.letters_go
+                       ? ". Alerts still go: make room on the computer's disk this week."
+                       : ". Its disk takes nothing, alert letters wait: go to the computer today.";
+  if (!trouble.begun) {
+    so = ". Its store cannot be opened, no alert will come: go to the computer today.";
+  }
+  const std::string text = part.lead + ": " + part.name + ", " + part.rest + so;
   return clip(unglued((desk.exercise ? "EXERCISE: " : "") + text), brief_width) + "\n";
 }
 
@@ -94,13 +116,16 @@ std::vector<Letter> compose_store_trouble(const StoreTrouble& trouble,
     const Level worst = worst_of(fields);
     const CivilDay day = store_trouble_day(words.calendar(), desk.now);
     const std::string stem = trouble.begun ? "store-trouble-" : "watch-stopped-";
-    letter.id = calendar_id(stem + words.iso(day) + "-" + level_word(worst), recipient, desk);
+    letter.id = trouble.letters_go
+                    ? calendar_id("disk-low-" + words.iso(day), recipient, desk)
+                    : calendar_id(stem + words.iso(day) + "-" + level_word(worst), recipient, desk);
     letter.recipient = recipient.address;
     letter.kind = "store_trouble";
-    letter.severity = alerts::severity_of(worst);
+    letter.severity = trouble.letters_go ? alerts::Severity::minor : alerts::severity_of(worst);
     letter.decided = desk.now;
     Part part;
     part.lead = trouble.begun ? "Watch keeps nothing" : "Nothing is watched";
+    if (trouble.letters_go) part.lead = "Disk nearly full";
     part.name = plain(desk.farm);
     part.rest = "since " + words.when(trouble.since);
     letter.subject = subject_line(part, desk.exercise ? "EXERCISE: " : "", "");

@@ -1,59 +1,26 @@
-// Whole letters, compared with the texts in expected/. A changed letter is read before its text is
-// accepted: set ANTHERD_WRITE_EXPECTED to write what the code says now.
+// Whole letters, compared with the texts in expected/ (see paper.hpp).
 #include <algorithm>
-#include <cstdlib>
-#include <fstream>
-#include <iostream>
-#include <sstream>
 
+#include "paper.hpp"
 #include "rules.hpp"
 #include "scene.hpp"
 #include "support/catch.hpp"
-#include "support/paths.hpp"
 
 using namespace antherd;
 using alerts::Kind;
 using alerts::Saying;
+using paper::compare;
+using paper::on_paper;
+using paper::seen_to_now;
 using risk::Level;
 
 namespace {
-
-std::string file_of(const std::string& name) {
-  return paths::source() + "/tests/core/letters/expected/" + name + ".txt";
-}
-
-void compare(const std::string& name, const std::string& text) {
-  if (std::getenv("ANTHERD_WRITE_EXPECTED") != nullptr) std::ofstream(file_of(name)) << text;
-  std::ifstream file(file_of(name));
-  REQUIRE(file.good());
-  std::ostringstream expected;
-  expected << file.rdbuf();
-  if (expected.str() != text) {
-    std::cerr << "---- expected " << name << "\n"
-              << expected.str() << "---- got\n"
-              << text << "----\n";
-  }
-  CHECK((expected.str() == text));
-}
-
-std::string on_paper(const letters::Letter& letter) {
-  return "Subject: " + letter.subject + "\n\n" + letter.body;
-}
-
-/// The fields were seen to the last full hour.
-letters::Desk seen_to_now(letters::Desk desk) {
-  for (auto& [name, status] : desk.fields) {
-    status.as_of = Instant(hour_of(desk.now));
-    status.data.last_reading = status.as_of;
-  }
-  return desk;
-}
 
 void compare(const std::string& name, const std::vector<alerts::Telling>& tellings,
              const letters::Desk& desk, letters::Recipient recipient = scene::owner()) {
   const auto made = letters::compose(tellings, std::vector{recipient}, seen_to_now(desk));
   REQUIRE(made.size() == 1);
-  compare(name, on_paper(made[0]));
+  paper::compare(name, on_paper(made[0]));
 }
 
 }  // namespace
@@ -260,46 +227,6 @@ TEST_CASE("letters about the watch itself read as written") {
                        {scene::at(14, 0), Phase::closed, Level::none, {}, {}, ""}};
     compare("learned-late", {telling}, desk);
   }
-}
-
-TEST_CASE("the letter that goes past a store that takes nothing reads as written") {
-  const letters::Desk desk = seen_to_now(scene::desk());
-  const letters::StoreTrouble trouble{
-      scene::at(14, 15, 20),
-      "Could not keep new samples (/var/lib/antherd/antherd.db): disk I/O error (Read-only file "
-      "system)"};
-  letters::Recipient brief = scene::owner(), elsewhere = scene::owner();
-  brief.brief = true;
-  elsewhere.fields = {"south bench"};
-  const auto made =
-      letters::compose_store_trouble(trouble, std::vector{scene::owner(), brief, elsewhere}, desk);
-  REQUIRE(made.size() == 3);
-  for (const auto& letter : made) {
-    CHECK(rules::broken_by(letter, letter.body.size() < 200, scene::calendar()).empty());
-  }
-  compare("store-trouble", on_paper(made[0]));
-  compare("store-trouble-brief", on_paper(made[1]));
-  CHECK(made[2].body.find("north bench") == std::string::npos);
-  CHECK(made[0].severity == alerts::Severity::severe);
-}
-
-TEST_CASE("the letter of a watch that could not begin reads as written") {
-  letters::Desk desk = scene::desk();
-  desk.fields.clear();  // nothing is known
-  const letters::StoreTrouble trouble{scene::at(14, 15, 20),
-                                      "Could not open the store (/var/lib/antherd/antherd.db): "
-                                      "attempt to write a readonly database",
-                                      false};
-  letters::Recipient brief = scene::owner();
-  brief.brief = true;
-  const auto made =
-      letters::compose_store_trouble(trouble, std::vector{scene::owner(), brief}, desk);
-  REQUIRE(made.size() == 2);
-  for (const auto& letter : made) {
-    CHECK(rules::broken_by(letter, letter.body.size() < 200, scene::calendar()).empty());
-  }
-  compare("watch-stopped", on_paper(made[0]));
-  compare("watch-stopped-brief", on_paper(made[1]));
 }
 
 TEST_CASE("notices read as written") {
