@@ -10,6 +10,8 @@
 namespace antherd::service {
 namespace {
 
+constexpr auto bookmark_outlives_file = std::chrono::days{7};
+
 /// How a drop folder's files are read, as one text: another form reads the files anew.
 std::string form_text(const station::DropForm& drop) {
   const station::RecordForm& record = drop.record;
@@ -98,7 +100,38 @@ bool DeskWork::look_into_drop(const settings::Station& station, Source& source, 
   if (look.troubles.empty()) source.last_trouble.clear();
   for (const Failure& trouble : look.troubles) note_trouble(name, trouble.sentence());
   take_readings(name, look.readings, notes, now);
+  if (look.names) forget_gone_files(name, source, *look.names, now);
   return look.more;
+}
+
+/// A station that writes a file every five minutes would leave 100,000 bookmarks a year: once a day
+/// those go whose file has not been there for a week. A file that comes back later is read again
+/// from its beginning; its samples are known and change nothing.
+void DeskWork::forget_gone_files(const std::string& name, Source& source,
+                                 const std::vector<std::string>& names, Instant now) {
+  for (const station::Bookmark& mark : source.bookmarks) {
+    // What has no time yet was there at the start, or before the clock was put back.
+    Instant& seen = source.seen.try_emplace(mark.path, now).first->second;
+    if (seen > now || std::binary_search(names.begin(), names.end(), mark.path)) seen = now;
+  }
+  const CivilDay today = settings_->calendar.day_of(now);
+  if (source.swept == today) return;
+  source.swept = today;
+  const auto is_gone = [&](const std::string& path) {
+    return now - source.seen.at(path) >= bookmark_outlives_file;
+  };
+  std::vector<std::string> gone;
+  for (const station::Bookmark& mark : source.bookmarks) {
+    if (is_gone(mark.path)) gone.push_back(bookmark_prefix(name) + mark.path);
+  }
+  const Outcome done = gone.empty() ? Outcome(Done{}) : store_.drop_notes(gone);
+  if (!done) {
+    log_once("bookmarks of " + name, name + ": " + done.failure().sentence());
+    return;
+  }
+  std::erase_if(source.bookmarks, [&](const auto& mark) { return is_gone(mark.path); });
+  std::erase_if(source.seen,
+                [&](const auto& seen) { return now - seen.second >= bookmark_outlives_file; });
 }
 
 void DeskWork::look_into_diary(Instant now) {

@@ -90,6 +90,14 @@ class DeskWork {
     weather::Arrivals arrivals;
     std::optional<Instant> newest;  // reading
     Instant heard;                  // by the computer's time: newer than it came, or waited since
+    std::map<std::string, Instant> seen;  // by a bookmark's path: when its file was there last
+    std::optional<CivilDay> swept;        // when bookmarks without a file were last dropped
+  };
+  /// What is made of settings and the store: taken up as a whole or not at all.
+  struct Works {
+    std::unique_ptr<Keeper> keeper;
+    std::unique_ptr<Carrier> carrier;
+    std::map<std::string, Source> sources;
   };
 
   DeskWork(std::shared_ptr<const settings::Settings> settings, store::Store store);
@@ -108,6 +116,8 @@ class DeskWork {
   void take_readings(const std::string& station, const station::Readings& readings,
                      const store::Notes& notes, Instant now);
   void remember_arrivals(const std::string& name, Source& source, Instant now);
+  void forget_gone_files(const std::string& station, Source& source,
+                         const std::vector<std::string>& names, Instant now);
   store::Notes note_arrivals(const std::string& station, const station::Readings& readings,
                              Instant now);
   void mind_step(Instant now, bool clock_set);
