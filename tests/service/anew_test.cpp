@@ -91,3 +91,23 @@ TEST_CASE("each week has its copy, also where the service rested over Sunday's m
   bench.turn(tuesday + days{9});  // the week has its copy: it is not written over
   CHECK(bench.folder.read("store/antherd-copy-2026-W29.db") == copy);
 }
+
+TEST_CASE("while the clock is not set a copy bears the week of the newest reading") {
+  Bench bench;
+  const auto copies = [&] {
+    auto names = bench.folder.names("store");
+    std::erase_if(names, [](const auto& name) { return name.rfind("antherd-copy-", 0) != 0; });
+    return names;
+  };
+  bench.open(tuesday);
+  bench.desk->turn(tuesday + days{200}, false);  // a clock that stands ahead
+  bench.desk->turn(tuesday + days{200} + minutes{1}, false);
+  CHECK(copies().empty());  // nothing is known of the time
+  bench.drop("bench.csv", readings(Weather{}, tuesday - days{2}, tuesday));
+  for (int i = 1; i < 8; ++i) {
+    bench.desk->look_soon();
+    bench.desk->turn(tuesday + days{201} + minutes{i}, false);
+  }
+  bench.desk->turn(tuesday + days{202}, false);
+  CHECK(copies() == std::vector<std::string>{"antherd-copy-2026-W28.db"});
+}

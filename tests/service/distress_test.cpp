@@ -50,8 +50,9 @@ struct AtLine {
     farm.recipients += "[[recipient]]\naddress = \"manager@larkspur.example\"\n";
     settings = settings_in(folder, farm);
   }
-  void refuse(Instant now) {
-    distress.note(Failure{"keep new samples", "antherd.db", "disk I/O error", "tried again"}, now);
+  void refuse(Instant now, bool letters_go = false) {
+    distress.note(Failure{"keep new samples", "antherd.db", "disk I/O error", "tried again"}, now,
+                  letters_go);
   }
   void carry(Instant now) {
     const auto desk = [&] {
@@ -181,4 +182,28 @@ TEST_CASE("nobody is woken for a store that fails on a calm night") {
   CHECK(line.handed.empty());
   line.carry(farm_time("2026-07-13 06:00"));
   CHECK(line.handed.size() == 1);
+}
+
+TEST_CASE("where readings alone find no room the letter says that alerts still go, once a day") {
+  AtLine line;
+  for (Instant now = hot_morning - minutes{31}; now <= hot_morning + hours{30};
+       now += minutes{10}) {
+    line.refuse(now, true);
+    line.carry(now);
+    while (line.distress.busy()) {
+      line.distress.received(spoken(mail::How::accepted), now);
+      line.carry(now);
+    }
+  }
+  REQUIRE(line.handed.size() == 4);  // two people, two days
+  for (const auto& letter : line.handed) {
+    CHECK(has(letter.id, "disk-low-"));
+    CHECK(letter.severity == alerts::Severity::minor);
+    CHECK(has(running(letter.body), "their letters go"));
+  }
+  // When the last room is used up as well, that is another letter.
+  line.refuse(hot_morning + hours{31});
+  line.carry(hot_morning + hours{31});
+  REQUIRE(line.handed.size() == 5);
+  CHECK(has(line.handed.back().id, "store-trouble-"));
 }

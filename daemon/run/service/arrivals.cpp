@@ -64,14 +64,15 @@ weather::Arrivals stored_arrivals(const store::Store& store, const std::string& 
 }
 
 /// At a start. The clock may have been put right meanwhile: what was ahead is looked at again.
-void DeskWork::remember_arrivals(const std::string& name, Source& source, Instant now) {
+void DeskWork::remember_arrivals(const std::string& name, Source& source, Keeper& keeper,
+                                 Instant now) const {
   source.arrivals = stored_arrivals(store_, name);
   if (source.arrivals.any_refused()) {
     source.arrivals.forget_refused();
     source.bookmarks.clear();
   }
-  source.newest = keeper_->lookout().last_sample(name, now + station::limits::ahead);
-  keeper_->lookout().set_arrivals(name, source.arrivals);
+  source.newest = keeper.lookout().last_sample(name, now + station::limits::ahead);
+  keeper.lookout().set_arrivals(name, source.arrivals);
 }
 
 /// Only of what comes while the service runs by a clock that is set, and goes on from the newest

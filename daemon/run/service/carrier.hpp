@@ -34,6 +34,10 @@ class Carrier {
   /// The conversation has ended. @return a sentence for the log
   std::string received(std::int64_t item, const mail::Spoken& spoken, Instant now);
 
+  /// Writes down the ends of conversations that the store did not take at their time: they are
+  /// known here alone.
+  Outcome keep_unkept();
+
   std::optional<Instant> look_again(Instant now) const;
   /// A letter is at the worker: its carrier must stay until the report has come.
   bool busy() const { return in_hand_ != 0; }
@@ -49,8 +53,6 @@ class Carrier {
   std::string rest(const Failure& failure, Instant now);
   bool resting(Instant now) const;
   void drop_closed();
-  /// Writes down the ends of conversations that the store did not take at their time.
-  Outcome keep_unkept();
   std::string write_file(outbox::Item item, Instant now);
   double jitter();
 

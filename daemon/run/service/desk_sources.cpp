@@ -174,8 +174,9 @@ void DeskWork::poll_answered(const std::string& name, const station::Answer& ans
   const auto found = sources_.find(name);
   const settings::Station* station = settings_->station(name);
   if (found == sources_.end() || station == nullptr || !station->http) return;  // settings changed
-  if (answer.memory.mark != settings_number_) return;  // read as older settings said; asked again
   Source& source = found->second;
+  // Read as older settings said: it is not what this source asked for, and that answer comes.
+  if (answer.memory.mark != source.memory.mark) return;
   source.asked = false;
   source.answered = true;
   source.looked = now;

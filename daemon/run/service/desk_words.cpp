@@ -60,8 +60,9 @@ void DeskWork::log_strange_fields(Instant now) {
 }
 
 /// That the store began anew where one had been.
-void DeskWork::log_beginning() const {
-  if (store_.reserve_given()) {
+void DeskWork::log_beginning() {
+  reserve_told_ = store_.reserve_given();
+  if (reserve_told_) {
     log_error(
         "the disk is full: the 8 MiB kept in reserve were given up to open the store; make "
         "room on the disk before they are used up");

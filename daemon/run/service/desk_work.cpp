@@ -33,30 +33,30 @@ Result<std::unique_ptr<DeskWork>> DeskWork::open(std::shared_ptr<const settings:
   work->never_set_ = !clock_set;
   work->log_beginning();
   work->mind_clock(now, clock_set, work->known_time());
-  if (auto done = work->begin(work->working(now)); !done) return done.failure();
+  auto works = work->prepare(work->settings_, work->settings_number_, work->working(now));
+  if (!works) return works.failure();
+  work->take_up(std::move(*works), work->working(now));
   return work;
 }
 
-Outcome DeskWork::begin(Instant now) {
-  keeper_ = std::make_unique<Keeper>(settings_, store_);
-  carrier_ = std::make_unique<Carrier>(
-      settings_, store_, [this](mail::Server server, std::int64_t item, letters::Letter letter) {
+/// Everything that may fail, in an order that leaves the old settings in force where it does: first
+/// what is only read, last the bookmarks that another form drops.
+Result<DeskWork::Works> DeskWork::prepare(const std::shared_ptr<const settings::Settings>& settings,
+                                          std::int64_t number, Instant now) {
+  Works works;
+  works.keeper = std::make_unique<Keeper>(settings, store_);
+  works.carrier = std::make_unique<Carrier>(
+      settings, store_, [this](mail::Server server, std::int64_t item, letters::Letter letter) {
         if (send_) send_(std::move(server), item, std::move(letter));
       });
-  const auto parked = park_letters_of_former(*settings_, store_, now);
-  if (!parked) return parked.failure();
-  for (const std::string& sentence : *parked) log_warning(sentence);
-  if (auto done = keeper_->load(now); !done) return done;
-  if (auto done = carrier_->load(now); !done) return done;
-  log_strange_fields(now);
-  sources_.clear();
+  if (auto done = works.keeper->load(now); !done) return done.failure();
   store::Notes forms;
   std::vector<std::string> gone;
-  for (const auto& station : settings_->stations) {
-    Source& source = sources_[station.station.name];
+  for (const auto& station : settings->stations) {
+    Source& source = works.sources[station.station.name];
     source.next_poll = now;
     source.heard = now - Seconds{ahead_.load()};
-    source.memory.mark = settings_number_;
+    source.memory.mark = number;
     const std::string bookmarks = bookmark_prefix(station.station.name);
     if (station.drop && has_another_form(station, forms)) {
       gone.push_back(bookmarks);
@@ -68,18 +68,29 @@ Outcome DeskWork::begin(Instant now) {
       auto bookmark = bookmark_of(text);
       if (bookmark) source.bookmarks.push_back(std::move(*bookmark));
     }
-    remember_arrivals(station.station.name, source, now);
+    remember_arrivals(station.station.name, source, *works.keeper, now);
   }
+  const auto parked = park_letters_of_former(*settings, store_, now);
+  if (!parked) return parked.failure();
+  for (const std::string& sentence : *parked) log_warning(sentence);
+  if (auto done = works.carrier->load(now); !done) return done.failure();
   // Both at once: bookmarks that outlived the new form would never let its files be read.
   if (!forms.empty()) {
-    if (auto done = store_.put_notes(forms, gone); !done) return done;
+    if (auto done = store_.put_notes(forms, gone); !done) return done.failure();
   }
+  return works;
+}
+
+void DeskWork::take_up(Works works, Instant now) {
+  keeper_ = std::move(works.keeper);
+  carrier_ = std::move(works.carrier);
+  sources_ = std::move(works.sources);
+  log_strange_fields(now);
   settling_since_ = now;
   // A page that cannot be shown must not keep the watch from starting.
   if (auto done = front_page_.open(*settings_); !done) log_error(done.failure().sentence());
   diary_version_ = "unread";
   next_look_ = now;
-  return Done{};
 }
 
 Instant DeskWork::turn(Instant now, bool clock_set) {
@@ -106,7 +117,9 @@ Instant DeskWork::turn_at(Instant now) {
     kept.troubles.push_back(done.failure());
   }
   log_kept(kept);
-  distress_.note(kept.troubles.empty() ? std::nullopt : std::optional(kept.troubles.front()), now);
+  mind_reserve(now);
+  if (mind_damage(now)) return now + scan_every;
+  note_distress(kept, now);
   // With each scan too: a command may have put a letter back to waiting, or a review in.
   if (kept.letters > 0 || scan) {
     if (auto done = carrier_->refresh(); !done) log_once("outbox", done.failure().sentence());
@@ -202,29 +215,38 @@ void DeskWork::reload(Instant at) {
         "force; restart the service to move the store");
     return;
   }
-  if (auto done = keeper_->flush(now); !done) {
-    log_error(done.failure().sentence() + "; the old settings stay in force");
-    return;
-  }
-  const auto old = settings_;
-  settings_ = std::make_shared<const settings::Settings>(std::move(*reading.settings));
-  ++settings_number_;
-  auto done = begin(now);
-  if (done) done = open_log(settings_->log);
+  auto done = keep_all(now);
+  if (done) done = open_log(reading.settings->log);
   if (!done) {
     log_error(done.failure().sentence() + "; the old settings stay in force");
-    settings_ = old;
-    if (auto back = begin(now); !back) log_error(back.failure().sentence());
     return;
   }
+  const auto fresh = std::make_shared<const settings::Settings>(std::move(*reading.settings));
+  auto works = prepare(fresh, settings_number_ + 1, now);
+  if (!works) {
+    if (auto back = open_log(settings_->log); !back) log_error(back.failure().sentence());
+    log_error(works.failure().sentence() + "; the old settings stay in force");
+    return;
+  }
+  settings_ = fresh;
+  ++settings_number_;
+  take_up(std::move(*works), now);
   look_due_ = true;
   log_info("the settings were read again and are in force");
 }
 
+/// What stands in memory alone. Both are tried: a letter whose acceptance is not known goes again.
+Outcome DeskWork::keep_all(Instant now) {
+  Outcome receipts = carrier_->keep_unkept();
+  Outcome readings = keeper_->flush(now);
+  return receipts ? readings : receipts;
+}
+
 void DeskWork::finish(Instant now) {
+  if (broken_) return;  // what is kept in a damaged file is set aside with it
   // Another process may hold the store for a moment, and no call waits for long any more.
-  auto done = keeper_->flush(working(now));
-  for (int tries = 1; !done && tries < 10; ++tries) done = keeper_->flush(working(now));
+  auto done = keep_all(working(now));
+  for (int tries = 1; !done && tries < 10; ++tries) done = keep_all(working(now));
   if (!done) log_error(done.failure().sentence());
 }
 

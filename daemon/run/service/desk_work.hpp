@@ -70,6 +70,10 @@ class DeskWork {
   /// there. May be called from another thread.
   Instant working(Instant now) const { return now + Seconds{ahead_.load()}; }
 
+  /// The store is damaged, beyond doubt: the desk rests, and only a start heals it, for that sets
+  /// the damaged file aside.
+  const std::optional<Failure>& broken() const { return broken_; }
+
   std::vector<std::string> folders() const;
   std::string status_line(Instant now) const;
   const Keeper& keeper() const { return *keeper_; }
@@ -101,7 +105,10 @@ class DeskWork {
   };
 
   DeskWork(std::shared_ptr<const settings::Settings> settings, store::Store store);
-  Outcome begin(Instant now);
+  Result<Works> prepare(const std::shared_ptr<const settings::Settings>& settings,
+                        std::int64_t number, Instant now);
+  void take_up(Works works, Instant now);
+  Outcome keep_all(Instant now);
   std::optional<Instant> known_time() const;
   void mind_clock(Instant now, bool clock_set, std::optional<Instant> known);
   void mind_waiting();
@@ -109,24 +116,28 @@ class DeskWork {
   Instant turn_at(Instant now);
   void look(Instant now);
   bool look_into_drop(const settings::Station& station, Source& source, Instant now);
+  void forget_gone_files(const std::string& station, Source& source,
+                         const std::vector<std::string>& names, Instant now);
   void look_into_diary(Instant now);
   void ask_stations(Instant now);
   bool settled(Instant now);
   bool has_another_form(const settings::Station& station, store::Notes& forms) const;
   void take_readings(const std::string& station, const station::Readings& readings,
                      const store::Notes& notes, Instant now);
-  void remember_arrivals(const std::string& name, Source& source, Instant now);
-  void forget_gone_files(const std::string& station, Source& source,
-                         const std::vector<std::string>& names, Instant now);
+  void remember_arrivals(const std::string& name, Source& source, Keeper& keeper,
+                         Instant now) const;
   store::Notes note_arrivals(const std::string& station, const station::Readings& readings,
                              Instant now);
   void mind_step(Instant now, bool clock_set);
   void note_trouble(const std::string& station, const std::string& sentence);
   void tell_news(const std::string& station, Instant now);
   void log_strange_fields(Instant now);
-  void log_beginning() const;
+  void log_beginning();
   void log_kept(const Kept& kept);
   bool comes_bare(const alerts::Telling& telling) const;
+  void mind_reserve(Instant now);
+  bool mind_damage(Instant now);
+  void note_distress(const Kept& kept, Instant now);
   void carry(Instant now);
   bool line_busy() const { return carrier_->busy() || distress_.busy(); }
   void note_mail_trouble();
@@ -158,6 +169,10 @@ class DeskWork {
   std::optional<Instant> settling_since_;  // until every source was looked at once
   bool reload_wanted_ = false;             // put off until the letter under way has ended
   std::int64_t settings_number_ = 0;       // an answer that older settings asked for is not read
+  bool reserve_told_ = false;              // that it was given up
+  Instant reserve_tried_{};                // to be put back
+  std::optional<Instant> checked_;         // the whole store, after a call had met damage
+  std::optional<Failure> broken_;
 };
 
 }  // namespace antherd::service

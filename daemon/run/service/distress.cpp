@@ -24,7 +24,8 @@ bool lets_sleep(const letters::Letter& letter, const settings::Settings& setting
 
 }  // namespace
 
-void Distress::note(const std::optional<Failure>& refused, Instant now) {
+void Distress::note(const std::optional<Failure>& refused, Instant now, bool letters_go) {
+  letters_go_ = letters_go;
   if (!refused) {
     since_.reset();
     return;
@@ -53,8 +54,8 @@ std::vector<std::string> Distress::carry(const settings::Settings& settings, con
                                          const Send& send, Instant now) {
   std::vector<std::string> said;
   if (!settings.mail || in_hand_ || !since_ || now - *since_ < distress_after) return said;
-  const auto letters =
-      letters::compose_store_trouble({*since_, why_, begun_}, settings.recipients, desk());
+  const auto letters = letters::compose_store_trouble({*since_, why_, begun_, letters_go_},
+                                                      settings.recipients, desk());
   for (const letters::Letter& letter : letters) {
     const CivilDay day = letters::store_trouble_day(settings.calendar, now);
     if (!due(letter, day, now) || lets_sleep(letter, settings, now)) continue;

@@ -31,7 +31,8 @@ class Distress {
   using Desk = std::function<letters::Desk()>;
 
   /// After each turn: what the store refused in it, if anything.
-  void note(const std::optional<Failure>& refused, Instant now);
+  /// @param letters_go  it refused readings alone, so that decisions and letters find room
+  void note(const std::optional<Failure>& refused, Instant now, bool letters_go = false);
   /// Sends what is due, one letter at a time. Only while nobody else holds the line.
   /// @return sentences for the log
   std::vector<std::string> carry(const settings::Settings& settings, const Desk& desk,
@@ -55,7 +56,7 @@ class Distress {
   };
   bool due(const letters::Letter& letter, CivilDay day, Instant now) const;
 
-  bool begun_;
+  bool begun_, letters_go_ = false;
   std::optional<Instant> since_;
   std::string why_;
   std::map<std::pair<std::string, std::string>, Told> told_;  // by address and letter

@@ -20,7 +20,10 @@ std::vector<Failure> Keeper::tidy(Instant now, bool clock_set) {
     note(store_.drop_samples_before(std::min(now, newest.value_or(now)) - settings_->keep_samples));
   }
   note(store_.keep_ballast());
-  if (!store_.has_copy_of_week(now)) note(store_.copy_without_samples(now));
+  // A copy bears its week's name: no clock that may be wrong gives it one.
+  std::optional<Instant> week = now;
+  if (!clock_set) week = newest ? std::optional(std::min(now, *newest)) : std::nullopt;
+  if (week && !store_.has_copy_of_week(*week)) note(store_.copy_without_samples(*week));
   tidied_ = today;
   return troubles;
 }

@@ -275,25 +275,14 @@ Kept Keeper::step(Instant now, bool clock_set) {
   const bool nothing = pending_.hours.empty() && pending_.hours_gone.empty() &&
                        pending_.said.empty() && pending_.letters.empty() && pending_.notes.empty();
   if (nothing) return kept;
-  if (auto done = save_pending(kept.troubles); !done) {
+  if (auto done = store_.save(pending_); !done) {
+    kept.decisions_wait = true;
     kept.troubles.push_back(done.failure());
     return kept;
   }
   kept.letters = pending_.letters.size();
   pending_ = store::Decision{};
   return kept;
-}
-
-/// Decisions must find room on a full disk: the ballast is let go for them, and that is said.
-Outcome Keeper::save_pending(std::vector<Failure>& troubles) {
-  auto done = store_.save(pending_);
-  if (done || !store_.out_of_space()) return done;
-  const auto released = store_.release_ballast();
-  if (!released || !*released) return done;
-  troubles.push_back(Failure{"keep the decisions", settings_->store_folder, "the disk is full",
-                             "the 8 MiB kept in reserve were given up for them; make room on the "
-                             "disk before they are used up"});
-  return store_.save(pending_);
 }
 
 void Keeper::add_timed_letters(Instant now, store::Decision& decision,

@@ -23,6 +23,7 @@ struct Kept {
   std::vector<alerts::Telling> tellings;
   std::size_t letters = 0;        // new items in the outbox
   std::vector<Failure> troubles;  // of the store; what was decided is tried again
+  bool decisions_wait = false;    // not stored yet, so their letters cannot go
 };
 
 class Keeper {
@@ -51,7 +52,8 @@ class Keeper {
   Outcome take_diary(const field::Diary& diary);
 
   /// Housekeeping of a day: samples past their time go, the ballast is put back; a copy of
-  /// the store without samples where this week has none yet. @return what did not work
+  /// the store without samples where this week has none yet: while the clock is not set, the week
+  /// of the newest reading. @return what did not work
   std::vector<Failure> tidy(Instant now, bool clock_set);
 
   /// Stores what is due, turns the lookout, adds daily and weekly letters, saves.
@@ -75,7 +77,6 @@ class Keeper {
   Outcome store_batch(const std::string& station, Batch& batch);
   void remake_hours_of_memory(const std::string& station, const Batch& batch);
   Outcome remake_hours(const std::string& station, Instant earliest, Instant latest);
-  Outcome save_pending(std::vector<Failure>& troubles);
   void collect_hours(store::Decision& decision, const Closed& closed);
   Closed closed_at(Instant now) const;
   void heed_clock(Instant now);

@@ -41,7 +41,7 @@ class Loop {
     work_->on_beat([this](const std::string& url) { polls_.give_sign_of_life(url); });
   }
 
-  void run() {
+  Outcome run() {
     const auto up = asio::make_work_guard(io_);
     signals_.heed([this](int number) { asio::post(io_, [this, number] { take_signal(number); }); });
     watch_folders();
@@ -55,6 +55,8 @@ class Loop {
     tell_ready();
     io_.run();
     finish();
+    if (const auto& broken = work_->broken()) return *broken;
+    return Done{};
   }
 
  private:
@@ -69,6 +71,7 @@ class Loop {
   void turn() {
     if (stopping_) return;
     const Instant wake = work_->turn(now(), options_.time.set());
+    if (work_->broken()) return stop("the store is damaged");
     tell_alive();
     tell_status(work_->status_line(now()));
     timer_.expires_after(options_.time.wait_until(wake));
@@ -182,9 +185,7 @@ Outcome run(std::shared_ptr<const settings::Settings> settings, RunOptions optio
   auto work = open_desk(std::move(settings), options, signals);
   if (!work) return work.failure();
   if (!*work) return Done{};
-  Loop loop(std::move(*work), options, signals);
-  loop.run();
-  return Done{};
+  return Loop(std::move(*work), options, signals).run();
 }
 
 }  // namespace antherd::service

@@ -20,7 +20,8 @@ struct RunOptions {
 
 /// Runs until SIGTERM or SIGINT. SIGHUP re-reads the settings whole or not at all. While the
 /// store's disk keeps the watch from beginning it stays up and says so (standstill.hpp).
-/// @return a Failure when it could not start; Done after a clean stop
+/// @return a Failure when it could not start, or ended because its store was damaged meanwhile and
+///         only a start heals that; Done after a clean stop
 /// @param signals  those that came before are heeded once it is up
 Outcome run(std::shared_ptr<const settings::Settings> settings, RunOptions options,
             Signals& signals);
