@@ -221,6 +221,62 @@ TEST_CASE("files that were read in the wrong unit are read again, also when the 
   CHECK(warmest() > 20.0);
 }
 
+TEST_CASE("cool hours that were read in the wrong unit do not outlive it") {
+  Bench bench;
+  const std::string bad = bench.folder.read("antherd.toml");  // says degC of a logger in degF
+  const Instant night = farm_time("2026-07-10 00:00");
+  std::vector<weather::Sample> cool;
+  for (Instant at = night; at < night + hours{6}; at += minutes{15}) {
+    weather::Sample sample = reading_at(Weather{}, at);
+    sample.temperature = Celsius(46.4);  // 8 degC
+    cool.push_back(sample);
+  }
+  bench.open(sown);
+  bench.drop("bench.csv", cool);
+  bench.turn(night + hours{7});
+  bench.turn(night + hours{7} + minutes{6});
+  const auto warmest = [&] {
+    const auto samples = bench.desk->store().samples("bench", sown, noon + days{3});
+    REQUIRE(samples);
+    REQUIRE(samples->size() == cool.size());
+    double most = -99.0;
+    for (const auto& sample : *samples) most = std::max(most, sample.temperature->value);
+    return most;
+  };
+  REQUIRE(warmest() == Approx(46.4));
+  bench.folder.write("antherd.toml", replaced(bad, "degC", "degF"));
+  bench.desk->reload(night + hours{8});
+  bench.turn(night + hours{8});
+  bench.turn(night + hours{8} + minutes{6});
+  CHECK(warmest() == Approx(8.0));
+  const auto hours_now = bench.stored_hours();
+  REQUIRE(!hours_now.empty());
+  for (const auto& hour : hours_now) {
+    if (hour.temperature) CHECK(hour.temperature->value < 9.0);
+  }
+  CHECK(bench.folder.read("antherd.log").find("mean something else now") != std::string::npos);
+}
+
+TEST_CASE("a value that is added to the form drops nothing that was stored") {
+  Farm farm;
+  Bench bench(farm);
+  const std::string before = bench.folder.read("antherd.toml");
+  bench.open(sown);
+  bench.drop("bench.csv", readings(Weather{}, sown, noon));
+  bench.turn(noon);
+  bench.turn(noon + minutes{6});
+  std::filesystem::remove(bench.folder / "drop/bench.csv");  // moved away
+  const auto count = [&] { return bench.desk->store().samples("bench", sown, noon)->size(); };
+  const auto stored = count();
+  REQUIRE(stored > 100);
+  bench.folder.write("antherd.toml",
+                     replaced(before, "[station.drop]\n",
+                              "[station.drop]\nwind = { column = \"wind\", unit = \"m/s\" }\n"));
+  bench.desk->reload(noon + minutes{7});
+  bench.turn(noon + minutes{7});
+  CHECK(count() == stored);
+}
+
 TEST_CASE("the diary of a field that was renamed is not lost without a word") {
   Bench bench;
   bench.open(sown);

@@ -33,11 +33,18 @@ Result<Notes> Store::notes_with_prefix(const std::string& prefix) const {
   });
 }
 
-Outcome Store::put_notes(const Notes& notes, std::span<const std::string> gone) {
+Outcome Store::put_notes(const Notes& notes, std::span<const std::string> gone,
+                         std::span<const std::string> misread) {
   return inside_->write_from_reserve("keep notes", [&] {
     Statement remove =
         inside_->database->use("DELETE FROM note WHERE substr(key, 1, length(?1)) = ?1");
     for (const std::string& prefix : gone) remove.bind(prefix).run();
+    for (const std::string& station : misread) {
+      const auto id = inside_->known_station(station);
+      if (!id) continue;
+      inside_->database->use("DELETE FROM sample WHERE station = ?").bind(*id).run();
+      inside_->database->use("DELETE FROM sample_conflict WHERE station = ?").bind(*id).run();
+    }
     inside_->put(notes);
     return Done{};
   });

@@ -166,7 +166,10 @@ class Store {
   Result<std::optional<std::string>> note(const std::string& key) const;
   Result<Notes> notes_with_prefix(const std::string& prefix) const;
   /// @param gone  first the notes whose names begin with one of these are removed; one transaction
-  Outcome put_notes(const Notes& notes, std::span<const std::string> gone = {});
+  /// @param misread  the samples of these stations are dropped, in the same transaction; their
+  ///                 hours stay until others are made
+  Outcome put_notes(const Notes& notes, std::span<const std::string> gone = {},
+                    std::span<const std::string> misread = {});
   /// Removes the notes of exactly these names, in one transaction.
   Outcome drop_notes(std::span<const std::string> keys);
 

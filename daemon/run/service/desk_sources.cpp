@@ -1,6 +1,8 @@
 // The desk's sources: drop folders and diary files that are looked into, stations that are polled,
 // and what becomes of their readings. See desk_work.hpp.
 #include <algorithm>
+#include <set>
+#include <sstream>
 #include <utility>
 
 #include "core/letters/words.hpp"
@@ -31,6 +33,28 @@ std::string form_text(const station::DropForm& drop) {
   return text;
 }
 
+/// What each value of the files means, one a line, sorted. A value that is only added is no change
+/// of the others'.
+std::set<std::string> meanings_of(const station::DropForm& drop) {
+  const station::RecordForm& record = drop.record;
+  std::string time = "time " + record.time.form + ' ' + record.time.zone.name();
+  for (const std::string& column : record.time.at) time += ' ' + column;
+  std::set<std::string> meanings{time};
+  if (record.where) meanings.insert("where " + record.where->first + '=' + record.where->second);
+  const std::pair<const char*, const std::optional<station::ValueForm>*> values[]{
+      {"temperature", &record.temperature},
+      {"humidity", &record.humidity},
+      {"dew point", &record.dew_point},
+      {"rain", &record.rain},
+      {"wind", &record.wind},
+      {"solar", &record.solar},
+      {"wetness", &record.wetness}};
+  for (const auto& [name, value] : values) {
+    if (*value) meanings.insert(std::string(name) + ' ' + (*value)->at + ' ' + (*value)->unit);
+  }
+  return meanings;
+}
+
 /// What a share whose server is gone looks like.
 Failure hung(const std::string& folder) {
   return {"look into the drop folder", folder,
@@ -49,6 +73,24 @@ bool DeskWork::has_another_form(const settings::Station& station, store::Notes& 
   if (known && *known && **known == form) return false;
   forms[key] = form;
   return known && *known;
+}
+
+/// Whether what was stored of the station's files meant something else: a wrong unit or zone that
+/// was mended. Where the warmer of two samples stands, a cool night read as °C from °F would stay.
+bool DeskWork::was_misread(const settings::Station& station, store::Notes& forms) const {
+  const std::string key = "meanings/" + station.station.name;
+  const std::set<std::string> fresh = meanings_of(*station.drop);
+  std::string text;
+  for (const std::string& meaning : fresh) text += meaning + '\n';
+  const auto known = store_.note(key);
+  if (known && *known && **known == text) return false;
+  forms[key] = text;
+  if (!known || !*known) return false;
+  std::istringstream lines(**known);
+  for (std::string line; std::getline(lines, line);) {
+    if (!fresh.contains(line)) return true;
+  }
+  return false;
 }
 
 void DeskWork::look(Instant now) {

@@ -51,13 +51,14 @@ Result<DeskWork::Works> DeskWork::prepare(const std::shared_ptr<const settings::
       });
   if (auto done = works.keeper->load(now); !done) return done.failure();
   store::Notes forms;
-  std::vector<std::string> gone;
+  std::vector<std::string> gone, misread;
   for (const auto& station : settings->stations) {
     Source& source = works.sources[station.station.name];
     source.next_poll = now;
     source.heard = now - Seconds{ahead_.load()};
     source.memory.mark = number;
     const std::string bookmarks = bookmark_prefix(station.station.name);
+    if (station.drop && was_misread(station, forms)) misread.push_back(station.station.name);
     if (station.drop && has_another_form(station, forms)) {
       gone.push_back(bookmarks);
       continue;
@@ -76,8 +77,14 @@ Result<DeskWork::Works> DeskWork::prepare(const std::shared_ptr<const settings::
   if (auto done = works.carrier->load(now); !done) return done.failure();
   // Both at once: bookmarks that outlived the new form would never let its files be read.
   if (!forms.empty()) {
-    if (auto done = store_.put_notes(forms, gone); !done) return done.failure();
+    if (auto done = store_.put_notes(forms, gone, misread); !done) return done.failure();
   }
+  if (misread.empty()) return works;
+  for (const std::string& name : misread) {
+    log_warning(name + ": its values mean something else now: what was stored of them is dropped " +
+                "and the files are read again; hours of which no file is left stay as they were");
+  }
+  if (auto done = works.keeper->load(now); !done) return done.failure();
   return works;
 }
 

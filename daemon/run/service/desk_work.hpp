@@ -122,6 +122,7 @@ class DeskWork {
   void ask_stations(Instant now);
   bool settled(Instant now);
   bool has_another_form(const settings::Station& station, store::Notes& forms) const;
+  bool was_misread(const settings::Station& station, store::Notes& forms) const;
   void take_readings(const std::string& station, const station::Readings& readings,
                      const store::Notes& notes, Instant now);
   void remember_arrivals(const std::string& name, Source& source, Keeper& keeper,
