@@ -68,7 +68,7 @@ TEST_CASE("after the store was damaged or is missing one letter goes to everyone
     bench.open(again + hours{start + 2});
     bench.turn(again + hours{start + 2});
   }
-  CHECK(bench.folder.read("antherd.log").find("1 irrigations") != std::string::npos);
+  CHECK(bench.folder.read("antherd.log").find("1 irrigation and ") != std::string::npos);
 }
 
 TEST_CASE("each week has its copy, also where the service rested over Sunday's midnight") {

@@ -67,7 +67,7 @@ TEST_CASE(
   const auto page = farm.page(decided + hours{7});
   CHECK(has(page.now_text, "ATTENTION"));
   CHECK(has(page.now_text, "Mail trouble since 2026-07-12"));
-  CHECK(has(page.now_text, "letters have waited more than 6 h: see antherd letters."));
+  CHECK(has(page.now_text, "1 letter has waited more than 6 h: see antherd letters."));
   CHECK(has(page.json, "\"attention\":[\"Mail trouble since 2026-07-12"));
   // A restart forgets nothing of it and says nothing twice.
   bench.close(decided + hours{7});

@@ -74,6 +74,18 @@ void print_what_it_reads(const std::vector<weather::Sample>& samples, std::size_
             << " to " << at(0.75) << ". If that is not your weather, the unit is wrong.\n";
 }
 
+void print_not_found(const SampleGuess& guess, const SampleText& sample) {
+  if (guess.missing.empty()) return;
+  std::cout << "# Not found: ";
+  for (const std::string& key : guess.missing) std::cout << key << " ";
+  std::cout << "\n# The columns are: ";
+  std::string names;
+  for (std::size_t i = 0; i < sample.header.size() && names.size() < 400; ++i) {
+    names += station::visible(sample.header[i], 60) + " | ";
+  }
+  std::cout << names << "\n";
+}
+
 }  // namespace
 
 Exit check_sample(const Invocation& call) {
@@ -121,16 +133,7 @@ Exit check_sample(const Invocation& call) {
     std::cout << "# Look at the end of the file: its last line has no line end, and the service "
                  "reads a line\n# once it ends.\n";
   }
-  if (!guess.missing.empty()) {
-    std::cout << "# Not found: ";
-    for (const std::string& key : guess.missing) std::cout << key << " ";
-    std::cout << "\n# The columns are: ";
-    std::string names;
-    for (std::size_t i = 0; i < sample.header.size() && names.size() < 400; ++i) {
-      names += station::visible(sample.header[i], 60) + " | ";
-    }
-    std::cout << names << "\n";
-  }
+  print_not_found(guess, sample);
   if (samples.empty()) {
     print_first_refused(refused);
     std::cout << "# No row could be read with it: mend the lines above, then run antherd check.\n";
