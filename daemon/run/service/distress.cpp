@@ -36,12 +36,13 @@ void Distress::note(const std::optional<Failure>& refused, Instant now, bool let
 }
 
 /// What went stays told, and with it all that is not graver on that day: a level that falls, at
-/// midnight perhaps, is no news. What did not go is tried again after a while.
+/// midnight perhaps, is no news; that letters wait too is. What did not go is tried again after a
+/// while.
 bool Distress::due(const letters::Letter& letter, CivilDay day, Instant now) const {
   const bool known = std::any_of(told_.begin(), told_.end(), [&](const auto& entry) {
     const Told& told = entry.second;
     return entry.first.first == letter.recipient && told.over && told.day == day &&
-           told.severity >= letter.severity;
+           told.letters_go == letters_go_ && told.severity >= letter.severity;
   });
   if (known) return false;
   const auto told = told_.find({letter.recipient, letter.id});
@@ -59,7 +60,7 @@ std::vector<std::string> Distress::carry(const settings::Settings& settings, con
   for (const letters::Letter& letter : letters) {
     const CivilDay day = letters::store_trouble_day(settings.calendar, now);
     if (!due(letter, day, now) || lets_sleep(letter, settings, now)) continue;
-    told_[{letter.recipient, letter.id}] = {now, day, letter.severity, false};
+    told_[{letter.recipient, letter.id}] = {now, day, letter.severity, letters_go_, false};
     in_hand_ = letter;
     if (settings.mail->server) {
       send(*settings.mail->server, -1, letter);

@@ -52,7 +52,8 @@ class Distress {
     Instant tried;
     CivilDay day{};  // that it speaks of
     alerts::Severity severity = alerts::Severity::minor;
-    bool over = false;  // accepted, refused for good, or perhaps arrived
+    bool letters_go = false;  // that readings alone find no room
+    bool over = false;        // accepted, refused for good, or perhaps arrived
   };
   bool due(const letters::Letter& letter, CivilDay day, Instant now) const;
 
