@@ -6,6 +6,8 @@
 #include <spdlog/spdlog.h>
 
 #include <memory>
+#include <mutex>
+#include <utility>
 
 namespace antherd::service {
 namespace {
@@ -19,6 +21,32 @@ std::string clean(std::string_view text) {
     result += code < 0x20 || code == 0x7f ? ' ' : c;
   }
   return result;
+}
+
+/// The log of now. The signals' thread may speak while the start or a reload changes it.
+class Current {
+ public:
+  void set(std::shared_ptr<spdlog::logger> logger) {
+    const std::lock_guard lock(mutex_);
+    logger_ = std::move(logger);
+  }
+  std::shared_ptr<spdlog::logger> get() {
+    const std::lock_guard lock(mutex_);
+    return logger_;
+  }
+
+ private:
+  std::mutex mutex_;
+  std::shared_ptr<spdlog::logger> logger_ = spdlog::default_logger();
+};
+
+Current& current() {
+  static Current log;
+  return log;
+}
+
+void say(spdlog::level::level_enum level, std::string_view sentence) {
+  current().get()->log(level, "{}", clean(sentence));
 }
 
 }  // namespace
@@ -39,7 +67,7 @@ Outcome open_log(const settings::Log& log) {
     }
     logger->set_level(spdlog::level::from_str(log.level));
     logger->flush_on(spdlog::level::info);
-    spdlog::set_default_logger(logger);
+    current().set(std::move(logger));
   } catch (const spdlog::spdlog_ex& error) {
     return Failure{
         "open the log", log.file, error.what(),
@@ -48,9 +76,9 @@ Outcome open_log(const settings::Log& log) {
   return Done{};
 }
 
-void log_info(std::string_view sentence) { spdlog::info("{}", clean(sentence)); }
-void log_warning(std::string_view sentence) { spdlog::warn("{}", clean(sentence)); }
-void log_error(std::string_view sentence) { spdlog::error("{}", clean(sentence)); }
-void log_debug(std::string_view sentence) { spdlog::debug("{}", clean(sentence)); }
+void log_info(std::string_view sentence) { say(spdlog::level::info, sentence); }
+void log_warning(std::string_view sentence) { say(spdlog::level::warn, sentence); }
+void log_error(std::string_view sentence) { say(spdlog::level::err, sentence); }
+void log_debug(std::string_view sentence) { say(spdlog::level::debug, sentence); }
 
 }  // namespace antherd::service
