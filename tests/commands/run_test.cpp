@@ -46,6 +46,16 @@ class Holder {
   sqlite3* database_ = nullptr;
 };
 
+/// The service's store, as a reading command opens it.
+store::Store store_beside(const Folder& folder) {
+  store::Store::Options options;
+  options.folder = folder / "store";
+  options.read_only = true;
+  auto store = store::Store::open(options);
+  REQUIRE(store);
+  return std::move(*store);
+}
+
 /// A store that was there before, and a service that is held up while it opens it.
 void make_store(const Folder& folder) {
   Service service(folder.path());
@@ -159,15 +169,8 @@ TEST_CASE("strange files in the drop folder are named and the good one is used")
     CHECK(holds(all, file));
   }
   CHECK(service.words().size() < 100 * 1024);  // ten megabytes do not reach the log
-  auto stored = store::Store::open({.folder = folder / "store",
-                                    .read_only = true,
-                                    .service = false,
-                                    .now = {},
-                                    .patience = seconds{5},
-                                    .page_limit = 0,
-                                    .haste = nullptr});
-  REQUIRE(stored);
-  const auto kept = stored->samples("bench", Instant{}, Instant::max());
+  const auto stored = store_beside(folder);
+  const auto kept = stored.samples("bench", Instant{}, Instant::max());
   REQUIRE(kept);
   CHECK(kept->size() >= samples.size());
 }
@@ -191,15 +194,8 @@ TEST_CASE("the review is mailed through a running service, which keeps its store
   CHECK(mailed.status == 0);
   CHECK(holds(mailed.out, "put into the outbox"));
   CHECK(service.running());
-  auto stored = store::Store::open({.folder = folder / "store",
-                                    .read_only = true,
-                                    .service = false,
-                                    .now = {},
-                                    .patience = seconds{5},
-                                    .page_limit = 0,
-                                    .haste = nullptr});
-  REQUIRE(stored);
-  const auto items = stored->letters_since(Instant{});
+  const auto stored = store_beside(folder);
+  const auto items = stored.letters_since(Instant{});
   REQUIRE(items);
   // Under the identity of the week's own review that one would never be sent.
   const auto asked = std::count_if(items->begin(), items->end(), [](const auto& item) {

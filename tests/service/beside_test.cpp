@@ -3,6 +3,7 @@
 #include <sqlite3.h>
 
 #include "ground.hpp"
+#include "some_letter.hpp"
 #include "support/catch.hpp"
 
 using namespace ground;
@@ -12,18 +13,8 @@ namespace {
 const Instant noon = farm_time("2026-07-14 12:05");
 
 store::Decision decided() {
-  outbox::Item item;
-  item.letter.id = "one";
-  item.letter.recipient = "owner@larkspur.example";
-  item.letter.subject = "Heat Severe: north bench";
-  item.letter.body = "north bench\n";
-  item.letter.kind = "heat";
-  item.letter.severity = alerts::Severity::severe;
-  item.letter.decided = item.next_try = noon;
-  item.letter.valid_until = noon + hours{72};
-  item.letter.still = "It held.";
   store::Decision decision;
-  decision.letters = {item};
+  decision.letters = {some_letter("one", noon)};
   return decision;
 }
 
@@ -78,7 +69,7 @@ TEST_CASE("a file that may have been fetched before the end says so when it is w
          "BEGIN SELECT RAISE(ABORT, 'the power fails now'); END");
   bench.turn(noon + minutes{1});
   const std::string first = bench.folder.read("outgoing/one.eml");
-  REQUIRE(first.find("north bench") != std::string::npos);
+  REQUIRE(first.find("A body.") != std::string::npos);
   CHECK(first.find("may already have") == std::string::npos);
   bench.desk.reset();  // killed: nothing more is written down
   change(bench.folder, "DROP TRIGGER ends");

@@ -3,6 +3,7 @@
 #include <algorithm>
 
 #include "ground.hpp"
+#include "some_letter.hpp"
 #include "stopper.hpp"
 #include "support/catch.hpp"
 
@@ -97,17 +98,7 @@ TEST_CASE("a store that cannot note how a letter ended does not stop the mail") 
   bench.open(sown);
   store::Decision decision;
   for (const char* id : {"one", "two"}) {
-    outbox::Item item;
-    item.letter.id = id;
-    item.letter.recipient = "owner@larkspur.example";
-    item.letter.subject = id;
-    item.letter.body = "A body.\n";
-    item.letter.kind = "heat";
-    item.letter.severity = alerts::Severity::severe;
-    item.letter.decided = hot_morning;
-    item.letter.valid_until = hot_morning + hours{72};
-    item.next_try = hot_morning;
-    decision.letters.push_back(item);
+    decision.letters.push_back(some_letter(id, hot_morning));
   }
   REQUIRE(bench.desk->store().save(decision));
   std::vector<std::int64_t> handed;

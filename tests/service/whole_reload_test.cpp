@@ -5,6 +5,7 @@
 #include <algorithm>
 
 #include "ground.hpp"
+#include "some_letter.hpp"
 #include "stopper.hpp"
 #include "support/catch.hpp"
 
@@ -15,20 +16,6 @@ namespace {
 const Instant sown = farm_time("2026-06-25 00:00");
 const Instant noon = farm_time("2026-07-12 12:05");
 const mail::Spoken accepted{mail::How::accepted, mail::About::server, 250, "ok", ""};
-
-outbox::Item letter_of(const std::string& id, Instant due) {
-  outbox::Item item;
-  item.letter.id = id;
-  item.letter.recipient = "owner@larkspur.example";
-  item.letter.subject = id;
-  item.letter.body = "A body.\n";
-  item.letter.kind = "heat";
-  item.letter.severity = alerts::Severity::severe;
-  item.letter.decided = due;
-  item.letter.valid_until = due + hours{72};
-  item.next_try = due;
-  return item;
-}
 
 void rename_farm(const Bench& bench) {
   std::string text = bench.folder.read("antherd.toml");
@@ -55,7 +42,7 @@ struct AtServer {
     bench.desk->on_send(
         [this](mail::Server, std::int64_t item, letters::Letter) { handed.push_back(item); });
     store::Decision decision;
-    decision.letters = {letter_of("one", noon)};
+    decision.letters = {some_letter("one", noon)};
     REQUIRE(bench.desk->store().save(decision));
     bench.turn(noon);
     REQUIRE(handed.size() == 1);
@@ -85,7 +72,7 @@ TEST_CASE("settings that the store does not take leave every station asked") {
   bench.desk->on_poll([&](const std::string&, const station::HttpForm&,
                           const station::PollMemory& memory) { asked.push_back(memory); });
   store::Decision decision;
-  decision.letters = {letter_of("later", noon + minutes{50})};
+  decision.letters = {some_letter("later", noon + minutes{50})};
   REQUIRE(bench.desk->store().save(decision));
   bench.turn(noon);
   REQUIRE(asked.size() == 1);
